@@ -1,0 +1,36 @@
+"""Physical constants and solver tolerances: value, unit, reference, and for tolerances the reason for the size."""
+
+from __future__ import annotations
+
+from typing import Final
+
+# --- physics (exact since 2019; SI Brochure, 9th edition, table 1) -------------------------------------------
+BOLTZMANN_JPK: Final = 1.380649e-23
+CHARGE_C: Final = 1.602176634e-19
+ZERO_CELSIUS_K: Final = 273.15
+"""0 degC in kelvin (SI Brochure, 9th edition, section 2.3.1)."""
+REFERENCE_NOISE_K: Final = 290.0
+"""T0 of noise figure (IEC 60050-702, 702-08-57)."""
+DEFAULT_AMBIENT_C: Final = 27.0
+"""Nominal temperature where neither intent nor netlist gives one (the SPICE-text default)."""
+
+# --- solver ------------------------------------------------------------------------------------------------
+KCL_REL: Final = 1e-9
+"""Certificate: largest |sum of currents| over largest |current| at a node. Double precision leaves about 1e-13."""
+STEP_ABS_V: Final = 1e-9
+"""Certificate: last full Newton correction. 1 nV moves a junction current by 4e-8 of itself."""
+STEP_REL: Final = 1e-9
+CURRENT_FLOOR_A: Final = 1e-15
+"""Currents below this count as zero in the certificate (a femtoampere is under any board's leakage)."""
+MAX_ITERATIONS: Final = 200
+"""Newton iterations a rung; well-posed stages take under 15, so 200 means stuck."""
+CORNER_REL: Final = 1e-6
+"""Relative width to which a band corner is refined."""
+CORNER_LOW_HZ: Final = 1e-3
+CORNER_HIGH_HZ: Final = 1e11
+"""Corners outside these are reported as none."""
+
+
+def thermal_voltage_v(temperature_k: float) -> float:
+    """kT/q [V] at an absolute temperature [K]."""
+    return BOLTZMANN_JPK * temperature_k / CHARGE_C

@@ -1,0 +1,42 @@
+"""A computed quantity over scenarios and frequencies, with the working that explains it."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass, field
+
+import numpy as np
+from numpy.typing import NDArray
+
+FloatArray = NDArray[np.float64]
+ComplexArray = NDArray[np.complex128]
+
+
+@dataclass(frozen=True, slots=True, kw_only=True)
+class Working:
+    """How a figure was got: formula in textbook symbols, the numbers put in, the source or method."""
+
+    formula: str
+    numbers: tuple[tuple[str, float, str], ...] = ()
+    source: str = ""
+
+
+@dataclass(frozen=True, slots=True, kw_only=True)
+class Figure:
+    """`values`: float64 or complex128, (S, F); axis 0 is the scenario (0 nominal), axis 1 is `f_hz`.
+
+    A figure without a frequency has F = 1 and `f_hz` None. `nan` marks what could not be computed there;
+    `reason` then says why.
+    """
+
+    quantity: str
+    subject: str
+    values: FloatArray | ComplexArray
+    unit: str
+    f_hz: FloatArray | None = None
+    working: Working = field(default_factory=lambda: Working(formula=""))
+    reason: str = ""
+
+    @property
+    def nominal(self) -> complex | float:
+        """The value of scenario 0 at the first frequency, as a Python number."""
+        return self.values[0, 0].item()

@@ -1,0 +1,29 @@
+"""A number that knows its unit, how it was written and where it came from."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+
+from checker.words import OriginKind
+
+
+@dataclass(frozen=True, slots=True, kw_only=True)
+class Origin:
+    """Where a datum stands: file (relative, forward slashes), line (1-based, 0 unknown), sheet path."""
+
+    kind: OriginKind
+    file: str = ""
+    line: int = 0
+    sheet: str = ""
+    note: str = ""
+
+
+@dataclass(frozen=True, slots=True, kw_only=True)
+class Value:
+    """One quantity in SI. `tolerance` is a fraction (0.01 is 1 %), None where nothing says."""
+
+    si: float
+    unit: str
+    text: str
+    tolerance: float | None
+    origin: Origin
