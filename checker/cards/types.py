@@ -1,0 +1,43 @@
+"""A device card: what a data sheet says about one type, each figure with its origin."""
+
+from __future__ import annotations
+
+from collections.abc import Mapping
+from dataclasses import dataclass, field
+from typing import Literal
+
+CardKind = Literal["npn", "pnp", "diode", "zener", "led", "njf", "pjf", "nmos", "pmos"]
+
+
+@dataclass(frozen=True, slots=True, kw_only=True)
+class Ratings:
+    """Absolute limits and thermal data; None where unknown. `p_max_w` at 25 degC ambient."""
+
+    v_max_v: float | None = None
+    v_control_max_v: float | None = None
+    i_max_a: float | None = None
+    p_max_w: float | None = None
+    tj_max_c: float | None = None
+    rth_ja_kpw: float | None = None
+
+
+@dataclass(frozen=True, slots=True, kw_only=True)
+class Card:
+    """One type. `model`: SPICE-style parameters, lower case, SI, at 27 degC, typical unit.
+
+    `gain_min`, `gain_max`: spread of the current gain of this gain group (bipolar). `packages`: package family
+    ("TO-92", "SOT-23", ...) -> pad number -> terminal letter ("B", "C", "E", "A", "K", "D", "G", "S").
+    `assumed`: a generic card stood in for an unknown part. `source`: where the figures come from, in words.
+    """
+
+    name: str
+    kind: CardKind
+    model: Mapping[str, float]
+    source: str
+    ratings: Ratings = field(default_factory=Ratings)
+    gain_min: float | None = None
+    gain_max: float | None = None
+    packages: Mapping[str, Mapping[str, str]] = field(default_factory=dict)
+    aliases: tuple[str, ...] = ()
+    assumed: bool = False
+    note: str = ""
