@@ -1,0 +1,198 @@
+"""The electrical board: numbered nodes, columnar elements with a scenario axis, and what is known of each part.
+
+Node 0 is ground. Every value array has axis 0 = scenario (index 0 nominal), axis 1 = element, so that corners,
+samples, states and remedy candidates are one stack and one solve. `with_changes` (in `changes.py`) keeps topology
+and numbering.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Mapping
+from dataclasses import dataclass, field
+from typing import Literal
+
+import numpy as np
+from numpy.typing import NDArray
+
+from checker.cards.types import Card, Ratings
+from checker.quantity.value import Origin, Value
+from checker.words import PortRole
+
+FloatArray = NDArray[np.float64]
+IntArray = NDArray[np.int64]
+
+PartKind = Literal[
+    "resistor",
+    "capacitor",
+    "inductor",
+    "source",
+    "bipolar",
+    "fet",
+    "diode",
+    "connector",
+    "coil",
+    "unmodelled",
+]
+Property = Literal["r_ohm", "c_f", "l_h", "v_v", "i_a", "bf", "factor"]
+
+
+@dataclass(frozen=True, slots=True, kw_only=True)
+class Branches:
+    """Two-terminal linear elements of one kind.
+
+    `names` (n); `nodes` int64 (n, 2), current counted from nodes[:, 0] to nodes[:, 1] through the element;
+    `value` float64 (S, n): ohm, farad, henry, volt (v0 - v1) or ampere.
+    """
+
+    names: tuple[str, ...]
+    nodes: IntArray
+    value: FloatArray
+
+
+@dataclass(frozen=True, slots=True, kw_only=True)
+class Couplings:
+    """Coupled inductor pairs: `pair` int64 (n, 2) into the inductor table; `k` float64 (S, n), -1..1."""
+
+    names: tuple[str, ...]
+    pair: IntArray
+    k: FloatArray
+
+
+@dataclass(frozen=True, slots=True, kw_only=True)
+class Devices:
+    """Semiconductors of one kind with their external terminals.
+
+    `nodes` int64 (n, k): bipolar (collector, base, emitter, substrate; substrate 0 where absent), diode (anode,
+    cathode). `polarity` float64 (n,): +1 NPN or diode, -1 PNP. `params`: SPICE-style names, lower case, SI, at
+    `tnom_k` (n,), each float64 (S, n). `rth_kpw` (n,): nan where unknown.
+    """
+
+    names: tuple[str, ...]
+    nodes: IntArray
+    polarity: FloatArray
+    params: Mapping[str, FloatArray]
+    tnom_k: FloatArray
+    rth_kpw: FloatArray
+
+
+@dataclass(frozen=True, slots=True, kw_only=True)
+class Rail:
+    """A net of known voltage. `source`: "intent", "element" or "net name"; `element` index into `voltages`."""
+
+    net: str
+    volts: float
+    source: Literal["intent", "element", "net name"]
+    element: int
+    tolerance: float | None = None
+    may_be_absent: bool = False
+
+
+@dataclass(frozen=True, slots=True, kw_only=True)
+class Port:
+    """Where signal enters or leaves.
+
+    `node` is the port's plane. An input is driven by `voltages[emf]` where an e.m.f. exists (then `series` is the
+    resistor between e.m.f. and plane, -1 if none), else by a current into `node`. `load`: names of the resistors
+    that are the external load of an output. `role` None: direction still to be found by recognition.
+    """
+
+    name: str
+    net: str
+    node: int
+    role: PortRole | None
+    reference_ohm: float | None
+    emf: int = -1
+    series: int = -1
+    load: tuple[str, ...] = ()
+    level_v: float | None = None
+    band_hz: tuple[float, float] | None = None
+    coaxial: bool = False
+    declared: bool = False
+    part: str = ""
+
+
+@dataclass(frozen=True, slots=True, kw_only=True)
+class PartFact:
+    """What is known of one part: kind, terminals by name -> net, value, card, ratings, where it stands."""
+
+    ref: str
+    kind: PartKind
+    terminals: Mapping[str, str]
+    origin: Origin
+    value: Value | None = None
+    card: Card | None = None
+    model_source: str = ""
+    ratings: Ratings = field(default_factory=Ratings)
+    gain_min: float | None = None
+    gain_max: float | None = None
+    footprint: str = ""
+
+
+@dataclass(frozen=True, slots=True, kw_only=True)
+class Unknown:
+    """A part that cannot be solved with: `datum` names what is missing, `supply` what would help.
+
+    `nets`: those it touches. `blocks_dc`: its island has no operating point because of it; else only signal
+    figures carry the assumption that it is open.
+    """
+
+    ref: str
+    pin: str
+    nets: tuple[str, ...]
+    datum: str
+    supply: str
+    blocks_dc: bool
+
+
+@dataclass(frozen=True, slots=True, kw_only=True)
+class Change:
+    """One altered element: `value` in the property's unit, or a multiplier where `property` is "factor"."""
+
+    part: str
+    property: Property
+    value: float
+
+
+@dataclass(frozen=True, slots=True, kw_only=True)
+class Scenario:
+    """A named set of changes; `temperature_k` None keeps the nominal. `kind` groups them for reports."""
+
+    name: str
+    kind: Literal["nominal", "corner", "state", "candidate", "sample"] = "nominal"
+    changes: tuple[Change, ...] = ()
+    temperature_k: float | None = None
+
+
+@dataclass(frozen=True, slots=True, kw_only=True)
+class Circuit:
+    """Everything a solve needs. S scenarios, n nodes; `nets[0]` is ground."""
+
+    nets: tuple[str, ...]
+    resistors: Branches
+    capacitors: Branches
+    inductors: Branches
+    couplings: Couplings
+    voltages: Branches
+    currents: Branches
+    bipolars: Devices
+    diodes: Devices
+    temperature_k: FloatArray
+    scenarios: tuple[Scenario, ...]
+    rails: tuple[Rail, ...] = ()
+    ports: tuple[Port, ...] = ()
+    parts: Mapping[str, PartFact] = field(default_factory=dict)
+    unknowns: tuple[Unknown, ...] = ()
+    assumptions: tuple[str, ...] = ()
+    band_hz: tuple[float, float] | None = None
+
+    @property
+    def size(self) -> int:
+        """Number of scenarios."""
+        return len(self.scenarios)
+
+    def node(self, net: str) -> int:
+        """Index of a net [ground included]. Raises KeyError for a net that is not in the circuit."""
+        try:
+            return self.nets.index(net)
+        except ValueError:
+            raise KeyError(net) from None
