@@ -189,9 +189,7 @@ class Assembler:
             COUNTERS.device_evaluations += self.scenarios * n
         return np.concatenate(columns, axis=1), np.concatenate(entries, axis=1)
 
-    def residual(
-        self, x: FloatArray, columns: FloatArray, source_scale: float = 1.0, shunt: float = 0.0
-    ) -> FloatArray:
+    def residual(self, x: FloatArray, columns: FloatArray, source_scale: float = 1.0, shunt: float = 0.0) -> FloatArray:
         """Residual (S, U): sums of currents (with the helper `shunt` [S] to ground), voltage equations of branches."""
         f = self._rows.add(columns)
         v = self.voltages(x, source_scale)
