@@ -138,7 +138,8 @@ def placed_parts(text: str) -> list[Placed]:
         if len(nodes) != len(symbol.pins):
             raise ValueError(f"{name}: {len(nodes)} nodes, {symbol.name} has {len(symbol.pins)} pins")
         nets = tuple("GND" if node == "0" else node for node in nodes)
-        parts.append(Placed(ref=name.removeprefix("X"), value=value, symbol=symbol, nets=nets))
+        shown = value.replace("meg", "M")  # a schematic's M is mega, SPICE text's is milli
+        parts.append(Placed(ref=name.removeprefix("X"), value=shown, symbol=symbol, nets=nets))
     return sorted(parts, key=lambda part: (part.ref[0], int(part.ref[1:])))
 
 
