@@ -1,4 +1,4 @@
-"""The plan of the house holds: imports go downward only, and each public name of `checker` says what it is."""
+"""The plan of the house holds: imports go downward only, and public names of `checker` say what they are."""
 
 from __future__ import annotations
 
