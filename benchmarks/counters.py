@@ -97,7 +97,7 @@ def as_toml(counts: dict[str, Counts]) -> str:
 
 def main() -> int:
     """Read the arguments and do one of the three jobs; the exit status."""
-    parser = argparse.ArgumentParser(description="Operation counters of the samples against the committed table.")
+    parser = argparse.ArgumentParser(description="Operation counters of the samples.")
     parser.add_argument("--write", action="store_true", help="write counters.toml instead of comparing")
     parser.add_argument("--one", metavar="NETLIST", help="count one netlist and print JSON")
     arguments = parser.parse_args()

@@ -2,8 +2,8 @@
 
     python benchmarks/startup.py             print both times and their ratio (wanted: at most 2)
 
-Runs alternate, and the smallest of each counts, so that a busy machine disturbs both alike. It prints and never
-fails on a time.
+Runs alternate, and the smallest of each counts, so that a busy machine disturbs both alike. It prints and
+never fails on a time.
 """
 
 from __future__ import annotations
