@@ -10,8 +10,8 @@ Keys of a row in `data/` (SI; lists are in this order)::
     ciss, crss    [VDS, typical]             input and reverse transfer capacitance, VGS = 0
     lam       channel-length modulation 1/V  taken as it is, as are is, pb, n
 
-MOSFETs get the square-law model with width and length of 1 m, so that KP is in A/V2 of the whole device and the
-overlap capacitances per metre are those of the device.
+MOSFETs get the square-law model with width and length of 1 m, so that KP is in A/V2 of the whole device and
+the overlap capacitances per metre are those of the device.
 """
 
 from __future__ import annotations
@@ -22,7 +22,7 @@ from typing import Any
 
 
 def jfet_model(row: Mapping[str, Any]) -> dict[str, float]:
-    """Square-law parameters of the typical unit; VTO is negative for both polarities, as the model wants it."""
+    """Square-law parameters of the typical unit; VTO is negative for both polarities, by the model's rule."""
     vto = -abs(row["vgs_off"][1])
     pb = row["pb"]
     crss_vds, crss = row["crss"]
@@ -43,9 +43,9 @@ def jfet_model(row: Mapping[str, Any]) -> dict[str, float]:
 
 
 def mosfet_model(row: Mapping[str, Any]) -> dict[str, float]:
-    """Square-law parameters of the typical unit; VTO carries the printed sign (negative for an enhancement P type).
+    """Square-law parameters of the typical unit; VTO has the printed sign (negative for enhancement P types).
 
-    KP follows from the transconductance, the rest of the on-resistance is RD. Raises ValueError where the stated
+    KP follows from the transconductance, the rest of the on-resistance is RD. Raises ValueError where the
     channel alone has more than the stated on-resistance.
     """
     vto = row["vgs_th"][1]

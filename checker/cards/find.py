@@ -1,7 +1,7 @@
 """From the value text of a schematic to a card: "BC847BLT1G", "2n3904 (NPN)", "BC 547 B".
 
 A name is known whole, or with a gain group and the makers' endings for tape, plating and outline behind it.
-Anything else behind a known name may be another device, so it is no match: no card is better than a wrong one.
+Anything else behind a known name may be another device, so it is no match: better no card than a wrong one.
 """
 
 from __future__ import annotations
@@ -32,8 +32,8 @@ _POLARITIES: Final = {"NPN": "npn", "PNP": "pnp"}
 def find_card(value: str) -> Card | None:
     """The card that `value` names, None where that is in doubt.
 
-    Several names ("BC547/BC548") count only if all that are known are of one kind, and a polarity written beside
-    the name must agree with the card.
+    Several names ("BC547/BC548") count only if all that are known are of one kind, and a polarity written
+    beside the name must agree with the card.
     """
     text = _CUT.split(value[:MAX_NAME].strip(), maxsplit=1)[0].strip()
     found = [card for card in map(_one, re.split(r"[/|]", text)) if card is not None]
@@ -79,8 +79,6 @@ def _lookup(name: str) -> Card | None:
 
 def _with_rest(family: str, name: str, rest: str) -> Card | None:
     row = rows(family)[name]
-    if _ENDINGS.fullmatch(rest):
-        return card_from(row)
     for group in sorted(row.get("groups", {}), key=len, reverse=True):
         if not rest.startswith(group):
             continue
@@ -90,4 +88,5 @@ def _with_rest(family: str, name: str, rest: str) -> Card | None:
         small = rows(family).get(name + "W")  # the smaller outline is written behind the group: BC847BW
         if ending.startswith("W") and small is not None and _ENDINGS.fullmatch(ending[1:]):
             return card_from(small, group)
-    return None
+    taped = rest == "T" and name.startswith("1N")  # behind other names a T is a smaller outline
+    return card_from(row) if taped or _ENDINGS.fullmatch(rest) else None

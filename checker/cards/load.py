@@ -1,8 +1,8 @@
 """Card data: one JSON file a family, one part a line, read only when asked for.
 
-JSON and not TOML: reading the index and one family is then a few milliseconds, while the TOML reader alone takes
-some twenty to import. A family file is `{"defaults": {...}, "parts": [...]}`; a row has what the defaults lack, or
-`like` names a row above it (of the same file) whose figures it shares but for those it states itself.
+JSON and not TOML: reading the index and one family is then a few milliseconds, while the TOML reader alone
+takes some twenty to import. A family file is `{"defaults": {...}, "parts": [...]}`; a row has what the
+defaults lack, or `like` names a row above it (of the same file) whose figures it shares but for its own.
 """
 
 from __future__ import annotations
@@ -75,7 +75,7 @@ def card_from(row: Mapping[str, Any], group: str = "") -> Card:
     name = row["name"]
     if group:
         row = {**row, "gain": [*row["groups"][group], *row["gain"][3:]]}
-        name += f"-{group}" if group.isdigit() else group
+        name = _grouped(name, group)
     gain = row.get("gain")
     return Card(
         name=name,
@@ -92,7 +92,13 @@ def card_from(row: Mapping[str, Any], group: str = "") -> Card:
     )
 
 
+def _grouped(name: str, group: str) -> str:
+    """BC547 + B, BC817 + 25 -> BC817-25; the W of the small outline stays last: BC847W + B -> BC847BW."""
+    base, small = (name[:-1], "W") if name.endswith("W") else (name, "")
+    return base + (f"-{group}" if group.isdigit() else group) + small
+
+
 def _pads(pins: str) -> dict[str, str]:
-    """ "EBC" or, with units, "E1 B1 C2 E2 B2 C1" as pad number -> terminal; "-" is a pad without connection."""
+    """Pad number -> terminal, from "EBC" or, with units, "E1 B1 C2 E2 B2 C1"; "-" is an unconnected pad."""
     terminals = pins.split() if " " in pins else list(pins)
     return {str(pad): terminal for pad, terminal in enumerate(terminals, start=1) if terminal != "-"}

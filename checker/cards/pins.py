@@ -12,7 +12,7 @@ TWO_LEAD: Final = "two-lead"
 """Every two-lead diode outline: its pad 1 is the cathode by the convention of the footprint libraries."""
 
 _PACKAGES: Final = (
-    ("SOT-23", r"SOT-?23(?:-3)?(?![-\d])"),
+    ("SOT-23", r"SOT-?23(?:-3)?(?!\d|-\d(?![A-Z\d]))"),
     ("SOT-323", r"SOT-?323|SC-?70(?:-3)?(?![-\d])"),
     ("SOT-363", r"SOT-?363|SC-?70-6|SC-?88(?!\d|A)"),
     ("SOT-343", r"SOT-?343|SC-?82(?!\d)"),
@@ -29,16 +29,18 @@ _PACKAGES: Final = (
     ("TO-3", r"TO-?3(?![\dP])"),
     ("TO-252", r"TO-?252(?!\d)|(?<!D2)(?<!D)DPAK"),
     ("TO-263", r"TO-?263(?!\d)|D2PAK|DDPAK"),
-    (TWO_LEAD, r"SOD-?\d|DO-?\d|MELF|SM[ABC](?![A-Z])|(?:^|_)LED|(?:^|[^A-Z])D_\d{4}|A-?405"),
+    (
+        TWO_LEAD,
+        r"(?:MINI)?MELF|SOD-?\d|DO-?\d|SM[ABC](?:_HAND\w+)?$|D_\d{4}|A-?405|LED(?!.*(?:-[3-9]|RGB|5050))",
+    ),
 )
-_PATTERNS: Final = tuple((name, rf"(?<![A-Z0-9]){body}") for name, body in _PACKAGES[:-1]) + (_PACKAGES[-1],)
 
 
 def package_of(footprint: str) -> str | None:
     """Package family ("SOT-23", "TO-92", ...) that a footprint's name tells, None where it tells none."""
     name = footprint[-200:].rpartition(":")[2].upper().replace(" ", "-")
-    for package, pattern in _PATTERNS:
-        if re.search(pattern, name):
+    for package, pattern in _PACKAGES:
+        if re.search(rf"(?<![A-Z0-9]){pattern}", name):
             return package
     return None
 
