@@ -1,0 +1,246 @@
+"""From element equations to stacked residuals and Jacobians, all scenarios at once.
+
+The unknown vector x (S, U) holds node voltages and branch currents in the order of the plan. The residual is the
+sum of currents *leaving* each unknown node through its elements, then one voltage equation a branch.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Callable, Mapping
+from dataclasses import dataclass
+
+import numpy as np
+from numpy.typing import NDArray
+
+from checker.circuit.types import Circuit
+from checker.devices import bipolar, diode
+from checker.solve.counters import COUNTERS
+from checker.solve.plan import Plan
+
+FloatArray = NDArray[np.float64]
+IntArray = NDArray[np.int64]
+Params = dict[str, FloatArray]
+
+
+class Scatter:
+    """Adds columns of (S, m) into (S, size) by destination; a destination of -1 is dropped."""
+
+    def __init__(self, dest: IntArray, size: int) -> None:
+        keep = np.flatnonzero(dest >= 0)
+        order = np.argsort(dest[keep], kind="stable")
+        self._pick = keep[order]
+        self._where, self._starts = np.unique(dest[self._pick], return_index=True)
+        self._size = size
+
+    def add(self, values: FloatArray) -> FloatArray:
+        """Sums by destination, float64 (S, size)."""
+        return self._reduce(np.add, values)
+
+    def largest(self, values: FloatArray) -> FloatArray:
+        """Largest magnitude by destination, float64 (S, size)."""
+        return self._reduce(np.maximum, np.abs(values))
+
+    def _reduce(self, how: np.ufunc, values: FloatArray) -> FloatArray:
+        out = np.zeros((values.shape[0], self._size))
+        if len(self._where):
+            out[:, self._where] = how.reduceat(values[:, self._pick], self._starts, axis=1)
+        return out
+
+
+@dataclass(frozen=True, slots=True, kw_only=True)
+class Junctions:
+    """Junction voltages at which devices are linearised: bipolar (S, n, 2), diode (S, n, 1)."""
+
+    bipolar: FloatArray
+    diode: FloatArray
+
+
+class Assembler:
+    """Everything of one circuit that stays the same from iteration to iteration."""
+
+    def __init__(self, circuit: Circuit, plan: Plan, t_bipolar_k: FloatArray, t_diode_k: FloatArray) -> None:
+        """`t_bipolar_k`, `t_diode_k`: device temperatures (S, n) [K]."""
+        self.circuit = circuit
+        self.plan = plan
+        self.scenarios = circuit.size
+        self.p_bipolar = _params(circuit.bipolars.params, bipolar.at_temperature, t_bipolar_k, circuit.bipolars.tnom_k)
+        self.p_diode = _params(circuit.diodes.params, diode.at_temperature, t_diode_k, circuit.diodes.tnom_k)
+        self._g_r = 1.0 / circuit.resistors.value
+        self._blocks()
+        self._node_rows = plan.unknown[plan.unknown >= 0]
+        self._rows = Scatter(self._row_dest(), plan.n_unknown)
+        self._entries = Scatter(self._device_dest(), self.n_flat)
+        self.j_linear = self._linear_jacobian()
+        self.known_v = self._known_voltages()
+
+    def _blocks(self) -> None:
+        """Offset of each unknown's block in the flat Jacobian, and its row in the block."""
+        plan = self.plan
+        self._block = np.zeros(plan.n_unknown, dtype=np.int64)
+        self._first = np.zeros(plan.n_unknown, dtype=np.int64)
+        self._size = np.zeros(plan.n_unknown, dtype=np.int64)
+        offset = 0
+        self.group_offsets: list[int] = []
+        for first, count, size in plan.groups:
+            self.group_offsets.append(offset)
+            for k in range(count):
+                rows = slice(first + k * size, first + (k + 1) * size)
+                self._block[rows], self._first[rows], self._size[rows] = offset, first + k * size, size
+                offset += size * size
+        self.n_flat = offset
+
+    def flat(self, row: IntArray, column: IntArray) -> IntArray:
+        """Place of (row, column) unknowns in the flat Jacobian; -1 where either is not an unknown."""
+        ok = (row >= 0) & (column >= 0)
+        r, c = np.where(ok, row, 0), np.where(ok, column, 0)
+        if not self.plan.n_unknown:
+            return np.full(row.shape, -1, dtype=np.int64)
+        place = self._block[r] + (r - self._first[r]) * self._size[r] + (c - self._first[r])
+        return np.where(ok, place, -1)
+
+    def _row_dest(self) -> IntArray:
+        """Destination rows in the order in which `_contributions` lists its columns."""
+        c, u = self.circuit, self.plan.unknown
+        parts = [u[c.resistors.nodes[:, 0]], u[c.resistors.nodes[:, 1]]]
+        parts += [u[c.currents.nodes[:, 0]], u[c.currents.nodes[:, 1]]]
+        for table, rows in ((c.voltages, self.plan.v_row), (c.inductors, self.plan.l_row)):
+            live = rows >= 0
+            parts += [np.where(live, u[table.nodes[:, 0]], -1), np.where(live, u[table.nodes[:, 1]], -1)]
+        parts += [u[self.plan.bipolars.nodes].ravel(), u[self.plan.diodes.nodes].ravel()]
+        return np.concatenate(parts)
+
+    def _device_dest(self) -> IntArray:
+        out = []
+        for placed in (self.plan.bipolars, self.plan.diodes):
+            rows = self.plan.unknown[placed.nodes]
+            out.append(self.flat(*np.broadcast_arrays(rows[:, :, None], rows[:, None, :])).ravel())
+        return np.concatenate(out)
+
+    def _linear_jacobian(self) -> FloatArray:
+        c, u, s = self.circuit, self.plan.unknown, self.scenarios
+        dest, vals = [], []
+        a, b = u[c.resistors.nodes[:, 0]], u[c.resistors.nodes[:, 1]]
+        for row, column, sign in ((a, a, 1.0), (b, b, 1.0), (a, b, -1.0), (b, a, -1.0)):
+            dest.append(self.flat(row, column))
+            vals.append(sign * self._g_r)
+        for table, rows in ((c.voltages, self.plan.v_row), (c.inductors, self.plan.l_row)):
+            ones = np.ones((s, len(rows)))
+            for end, sign in ((0, 1.0), (1, -1.0)):
+                node = u[table.nodes[:, end]]
+                dest += [self.flat(node, rows), self.flat(rows, node)]
+                vals += [sign * ones, sign * ones]
+        return Scatter(np.concatenate(dest), self.n_flat).add(np.concatenate(vals, axis=1))
+
+    def _known_voltages(self) -> FloatArray:
+        v = np.full((self.scenarios, self.plan.n_nodes), np.nan)
+        v[:, 0] = 0.0
+        for step in self.plan.known:
+            v[:, step.node] = v[:, step.parent] + step.sign * self.circuit.voltages.value[:, step.source]
+        v[:, ~self.plan.is_known] = 0.0
+        return v
+
+    def voltages(self, x: FloatArray, source_scale: float = 1.0) -> FloatArray:
+        """All node voltages (S, n_nodes) [V]; unsolved nodes read 0 here."""
+        v = self.known_v * source_scale
+        live = self.plan.unknown >= 0
+        v[:, live] = x[:, self.plan.unknown[live]]
+        return v
+
+    def junctions(self, v: FloatArray) -> Junctions:
+        """Junction voltages at node voltages `v`."""
+        b, d = self.circuit.bipolars, self.circuit.diodes
+        return Junctions(
+            bipolar=bipolar.junctions(v[:, self.plan.bipolars.nodes], b.polarity),
+            diode=diode.junctions(v[:, self.plan.diodes.nodes], d.polarity),
+        )
+
+    def start(self) -> Junctions:
+        """Junction voltages for the first iteration."""
+        return Junctions(bipolar=bipolar.start(self.p_bipolar), diode=diode.start(self.p_diode))
+
+    def limit(self, new: Junctions, old: Junctions) -> Junctions:
+        """Steps held to what the exponentials can follow."""
+        return Junctions(
+            bipolar=bipolar.limit(self.p_bipolar, new.bipolar, old.bipolar),
+            diode=diode.limit(self.p_diode, new.diode, old.diode),
+        )
+
+    def contributions(
+        self, x: FloatArray, at: Junctions, gmin: float = 0.0, source_scale: float = 1.0
+    ) -> tuple[FloatArray, FloatArray]:
+        """Currents leaving nodes, column by column, and the device part of the flat Jacobian's columns."""
+        c = self.circuit
+        v = self.voltages(x, source_scale)
+        i_r = (v[:, c.resistors.nodes[:, 0]] - v[:, c.resistors.nodes[:, 1]]) * self._g_r
+        i_s = c.currents.value * source_scale
+        columns = [i_r, -i_r, i_s, -i_s]
+        for rows in (self.plan.v_row, self.plan.l_row):
+            i = np.where(rows >= 0, x[:, np.maximum(rows, 0)] if x.shape[1] else 0.0, 0.0)
+            columns += [i, -i]
+        entries = []
+        for module, placed, p, junction in (
+            (bipolar, self.plan.bipolars, self.p_bipolar, at.bipolar),
+            (diode, self.plan.diodes, self.p_diode, at.diode),
+        ):
+            n, k = placed.nodes.shape
+            e = module.evaluate(p, placed.table.polarity, v[:, placed.nodes], junction, gmin)
+            columns.append(e.i.reshape(self.scenarios, n * k))
+            entries.append(e.g.reshape(self.scenarios, n * k * k))
+            COUNTERS.device_evaluations += self.scenarios * n
+        return np.concatenate(columns, axis=1), np.concatenate(entries, axis=1)
+
+    def residual(
+        self, x: FloatArray, columns: FloatArray, source_scale: float = 1.0, shunt: float = 0.0
+    ) -> FloatArray:
+        """Residual (S, U): sums of currents (with the helper `shunt` [S] to ground), voltage equations of branches."""
+        f = self._rows.add(columns)
+        v = self.voltages(x, source_scale)
+        if shunt:
+            f[:, self._node_rows] += shunt * x[:, self._node_rows]
+        for table, rows, on in (
+            (self.circuit.voltages, self.plan.v_row, 1.0),
+            (self.circuit.inductors, self.plan.l_row, 0.0),
+        ):
+            live = np.flatnonzero(rows >= 0)
+            drop = v[:, table.nodes[live, 0]] - v[:, table.nodes[live, 1]]
+            f[:, rows[live]] = drop - on * source_scale * table.value[:, live]
+        return f
+
+    def largest(self, columns: FloatArray) -> FloatArray:
+        """Largest single current at each node (S, U) [A].
+
+        A device lists an inner node's currents already summed, so there the current of the lead stands for them.
+        """
+        sized = np.abs(columns)
+        at = columns.shape[1] - sum(placed.nodes.size for placed in (self.plan.bipolars, self.plan.diodes))
+        for placed, leads in ((self.plan.bipolars, bipolar.INNER), (self.plan.diodes, diode.INNER)):
+            n, k = placed.nodes.shape
+            block = sized[:, at : at + n * k].reshape(self.scenarios, n, k)
+            for _, outer, inner in leads:
+                block[..., inner] = np.maximum(block[..., inner], block[..., outer])
+            at += n * k
+        return self._rows.largest(sized)
+
+    def jacobian(self, entries: FloatArray, shunt: float = 0.0) -> FloatArray:
+        """Flat Jacobian (S, n_flat); `shunt` [S] from every node to ground is a helper of hard starts."""
+        j = self.j_linear + self._entries.add(entries)
+        if shunt:
+            j[:, self.flat(self._node_rows, self._node_rows)] += shunt
+        return j
+
+    def block_views(self, flat: FloatArray) -> list[FloatArray]:
+        """The flat Jacobian as one stack (S, islands, n, n) a group."""
+        views = []
+        for (_, count, size), offset in zip(self.plan.groups, self.group_offsets, strict=True):
+            views.append(flat[:, offset : offset + count * size * size].reshape(-1, count, size, size))
+        return views
+
+
+def _params(
+    params: Mapping[str, FloatArray],
+    move: Callable[[Mapping[str, FloatArray], FloatArray, FloatArray], Params],
+    t_k: FloatArray,
+    tnom_k: FloatArray,
+) -> Params:
+    """Parameters at temperature; infinite ones stay infinite."""
+    return move(params, t_k, np.broadcast_to(tnom_k, t_k.shape))

@@ -1,0 +1,200 @@
+"""Damped Newton over stacked islands, with the helpers a hard start needs and a certificate without any of them.
+
+Each pass evaluates all devices of all scenarios once and solves every island's small system in a few stacked calls.
+Islands that have converged stop moving. Ladder: plain; then steps of a conductance across every junction and to
+ground; then steps of all sources together. No helper is left in when convergence is judged.
+"""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+
+import numpy as np
+from numpy.typing import NDArray
+
+from checker.constants import CURRENT_FLOOR_A, MAX_ITERATIONS, STEP_ABS_V, STEP_REL
+from checker.solve.assemble import Assembler, Junctions
+from checker.solve.counters import COUNTERS
+
+FloatArray = NDArray[np.float64]
+BoolArray = NDArray[np.bool_]
+
+
+@dataclass(frozen=True, slots=True, kw_only=True)
+class Solved:
+    """`x` (S, U); `done` (S, islands): converged without helpers; `step` (S, islands) [V]: the last full undamped
+    correction; `kcl` (S, islands): worst current balance; `condition` and `sign` (S, islands): of the Jacobian."""
+
+    x: FloatArray
+    done: BoolArray
+    step: FloatArray
+    kcl: FloatArray
+    condition: FloatArray
+    sign: FloatArray
+
+
+def solve(assembler: Assembler, x0: FloatArray | None = None) -> Solved:
+    """Solve all islands of all scenarios; `x0` (S, U) starts from known answers."""
+    plan = assembler.plan
+    shape = (assembler.scenarios, plan.n_unknown)
+    count = sum(g[1] for g in plan.groups)
+    x = np.zeros(shape) if x0 is None else x0.copy()
+    done = np.zeros((shape[0], count), dtype=bool)
+    if count:
+        start = assembler.start() if x0 is None else assembler.junctions(assembler.voltages(x))
+        x, done, _ = _iterate(assembler, x, start, done)
+        for ladder in (_by_conductance, _by_sources):
+            if done.all():
+                break
+            x, done = ladder(assembler, x, done)
+    return _certify(assembler, x, done)
+
+
+def _iterate(
+    assembler: Assembler,
+    x: FloatArray,
+    at: Junctions,
+    done: BoolArray,
+    *,
+    gmin: float = 0.0,
+    source_scale: float = 1.0,
+    limit: int = MAX_ITERATIONS,
+) -> tuple[FloatArray, BoolArray, Junctions]:
+    """Newton passes until every island not yet `done` holds still, or `limit` passes."""
+    fresh = done.copy()
+    for _ in range(limit):
+        columns, entries = assembler.contributions(x, at, gmin, source_scale)
+        f = assembler.residual(x, columns, source_scale, gmin)
+        dx = newton_step(assembler, f, assembler.jacobian(entries, gmin))
+        dx[expand(assembler, fresh)] = 0.0
+        x = x + dx
+        wanted = assembler.junctions(assembler.voltages(x, source_scale))
+        held = assembler.limit(wanted, at)
+        still = _still(assembler, x, dx) & _unlimited(assembler, wanted, held, at)
+        at = held
+        fresh |= still
+        COUNTERS.newton_passes += 1
+        if fresh.all():
+            break
+    return x, fresh, at
+
+
+def newton_step(assembler: Assembler, f: FloatArray, flat: FloatArray) -> FloatArray:
+    """Correction (S, U) of every island; nan where an island's Jacobian is singular."""
+    dx = np.zeros_like(f)
+    for (first, count, size), block in zip(assembler.plan.groups, assembler.block_views(flat), strict=True):
+        rows = slice(first, first + count * size)
+        rhs = -f[:, rows].reshape(-1, count, size, 1)
+        COUNTERS.solves += block.shape[0] * count
+        dx[:, rows] = _solve_stack(block, rhs).reshape(-1, count * size)
+    return dx
+
+
+def _solve_stack(a: FloatArray, b: FloatArray) -> FloatArray:
+    """Stacked solve; a singular member is replaced by its least-squares step, the others are unharmed."""
+    try:
+        return np.linalg.solve(a, b)
+    except np.linalg.LinAlgError:
+        out = np.zeros_like(b)
+        for where in np.ndindex(a.shape[:-2]):
+            try:
+                out[where] = np.linalg.solve(a[where], b[where])
+            except np.linalg.LinAlgError:
+                out[where] = np.linalg.lstsq(a[where], b[where], rcond=None)[0]
+        return out
+
+
+def expand(assembler: Assembler, per_island: BoolArray) -> BoolArray:
+    """(S, islands) -> (S, U)."""
+    sizes = [size for _, count, size in assembler.plan.groups for _ in range(count)]
+    return np.repeat(per_island, sizes, axis=1)
+
+
+def per_island(assembler: Assembler, values: FloatArray) -> FloatArray:
+    """Largest value of each island's unknowns: (S, U) -> (S, islands)."""
+    out = [
+        values[:, first : first + count * size].reshape(-1, count, size).max(axis=2)
+        for first, count, size in assembler.plan.groups
+    ]
+    return np.concatenate(out, axis=1) if out else np.zeros((values.shape[0], 0))
+
+
+def _still(assembler: Assembler, x: FloatArray, dx: FloatArray) -> BoolArray:
+    """Islands whose last step is within the tolerance."""
+    excess = np.abs(dx) / (STEP_ABS_V + STEP_REL * np.abs(x))
+    return per_island(assembler, np.where(np.isfinite(excess), excess, np.inf)) <= 1.0
+
+
+def _unlimited(assembler: Assembler, wanted: Junctions, held: Junctions, before: Junctions) -> BoolArray:
+    """Islands none of whose junctions was held back, or still moves after the linearisation."""
+    plan = assembler.plan
+    count = sum(g[1] for g in plan.groups)
+    ok = np.ones((assembler.scenarios, count), dtype=bool)
+    owner = np.full(plan.n_nodes, -1, dtype=np.int64)
+    for index, island in enumerate(plan.islands[:count]):
+        owner[list(island.nodes)] = index
+    for placed, new, kept, old in (
+        (plan.bipolars, wanted.bipolar, held.bipolar, before.bipolar),
+        (plan.diodes, wanted.diode, held.diode, before.diode),
+    ):
+        if not len(placed.nodes):
+            continue
+        moved = np.max(np.abs(new - kept), axis=-1) > 0.0
+        moved |= np.max(np.abs(new - old) / (1e-7 + 1e-7 * np.abs(new)), axis=-1) > 1.0
+        home = owner[placed.nodes].max(axis=1)
+        for island in np.unique(home[home >= 0]):
+            ok[:, island] &= ~moved[:, home == island].any(axis=1)
+    return ok
+
+
+def _by_conductance(assembler: Assembler, x: FloatArray, done: BoolArray) -> tuple[FloatArray, BoolArray]:
+    """Ladder of shunt conductances, 10 mS down to nothing."""
+    keep = x.copy()
+    trial = np.where(expand(assembler, done), x, 0.0)
+    at = assembler.start()
+    for gmin in (*np.logspace(-2, -13, 23), 0.0):
+        trial, good, at = _iterate(assembler, trial, at, done, gmin=float(gmin))
+    return np.where(expand(assembler, good), trial, keep), good
+
+
+def _by_sources(assembler: Assembler, x: FloatArray, done: BoolArray) -> tuple[FloatArray, BoolArray]:
+    """Ladder of source levels, from nothing to full."""
+    keep = x.copy()
+    trial = np.where(expand(assembler, done), x, 0.0)
+    at = assembler.junctions(assembler.voltages(trial, 0.0))
+    for scale in np.linspace(0.0, 1.0, 41):
+        trial, good, at = _iterate(assembler, trial, at, done, source_scale=float(scale))
+    return np.where(expand(assembler, good), trial, keep), good
+
+
+def _certify(assembler: Assembler, x: FloatArray, done: BoolArray) -> Solved:
+    """One more full step without any helper from `x`; its size and the current balance there are the proof."""
+    at = assembler.junctions(assembler.voltages(x))
+    columns, entries = assembler.contributions(x, at)
+    flat = assembler.jacobian(entries)
+    f = assembler.residual(x, columns)
+    dx = newton_step(assembler, f, flat)
+    node = np.zeros(x.shape[1], dtype=bool)
+    node[assembler.plan.unknown[assembler.plan.unknown >= 0]] = True
+    balance = np.where(node, np.abs(f) / np.maximum(assembler.largest(columns), CURRENT_FLOOR_A), 0.0)
+    step = np.where(node, np.abs(dx), 0.0)
+    condition, sign = _conditions(assembler, flat)
+    step_isl = per_island(assembler, step)
+    within = per_island(assembler, np.where(node, step / (STEP_ABS_V + STEP_REL * np.abs(x)), 0.0)) <= 1.0
+    kcl = per_island(assembler, balance)
+    return Solved(x=x, done=done & within, step=step_isl, kcl=kcl, condition=condition, sign=sign)
+
+
+def _conditions(assembler: Assembler, flat: FloatArray) -> tuple[FloatArray, FloatArray]:
+    """Condition estimate (2-norm, after scaling rows and columns) and sign of the determinant, (S, islands)."""
+    conditions, signs = [], []
+    for a in assembler.block_views(flat):
+        scale = np.sqrt(np.maximum(np.abs(a).max(axis=-1, keepdims=True), 1e-300))
+        scaled = a / scale / np.sqrt(np.maximum(np.abs(a).max(axis=-2, keepdims=True), 1e-300))
+        COUNTERS.factorisations += 2 * a.shape[0] * a.shape[1]
+        conditions.append(np.linalg.cond(scaled))
+        signs.append(np.linalg.slogdet(a)[0])
+    if not conditions:
+        empty = np.zeros((assembler.scenarios, 0))
+        return empty, empty
+    return np.concatenate(conditions, axis=1), np.concatenate(signs, axis=1)

@@ -1,0 +1,282 @@
+"""The numbering of a DC solve: known nodes, unknowns, islands, and where every stamp goes.
+
+A node is *known* when ideal sources tie it to ground. The rest falls into islands: nodes joined by parts that
+carry direct current. Unknowns (node voltages and the branch currents of floating sources and inductors) are ordered
+island by island, islands of one size side by side, so that equal sizes form one stack (S, k, n, n).
+"""
+
+from __future__ import annotations
+
+from collections.abc import Iterator
+from dataclasses import dataclass
+
+import numpy as np
+from numpy.typing import NDArray
+
+from checker.circuit.types import Circuit, Devices
+from checker.devices import bipolar, diode
+
+IntArray = NDArray[np.int64]
+
+
+@dataclass(frozen=True, slots=True, kw_only=True)
+class Placed:
+    """A device table with inner nodes: `nodes` int64 (n, k) into the extended node list (nets, then inner nodes)."""
+
+    table: Devices
+    nodes: IntArray
+
+
+@dataclass(frozen=True, slots=True, kw_only=True)
+class Tree:
+    """How a known node's voltage follows: v[node] = v[parent] + sign * voltages.value[:, source]; in order."""
+
+    node: int
+    parent: int
+    source: int
+    sign: float
+
+
+@dataclass(frozen=True, slots=True, kw_only=True)
+class IslandPlan:
+    """One island: extended node indices, branch rows, and why it cannot be solved (empty if it can)."""
+
+    nodes: tuple[int, ...]
+    voltages: tuple[int, ...]
+    inductors: tuple[int, ...]
+    trouble: str = ""
+
+    @property
+    def size(self) -> int:
+        """Number of unknowns."""
+        return len(self.nodes) + len(self.voltages) + len(self.inductors)
+
+
+@dataclass(frozen=True, slots=True, kw_only=True)
+class Plan:
+    """All of it. `n_nodes` counts nets and inner nodes; `unknown` int64 (n_nodes,) gives each node's place in the
+    unknown vector, -1 where known or not solved; `groups` = (first unknown, number of islands, size)."""
+
+    n_nodes: int
+    bipolars: Placed
+    diodes: Placed
+    known: tuple[Tree, ...]
+    is_known: NDArray[np.bool_]
+    islands: tuple[IslandPlan, ...]
+    unknown: IntArray
+    v_row: IntArray
+    l_row: IntArray
+    groups: tuple[tuple[int, int, int], ...]
+    n_unknown: int
+    isolated: tuple[int, ...]
+
+
+class Sets:
+    """Disjoint sets over node indices."""
+
+    def __init__(self, n: int) -> None:
+        self.parent = list(range(n))
+
+    def find(self, a: int) -> int:
+        while self.parent[a] != a:
+            self.parent[a] = self.parent[self.parent[a]]
+            a = self.parent[a]
+        return a
+
+    def join(self, a: int, b: int) -> bool:
+        """Join two sets; False where they already were one."""
+        a, b = self.find(a), self.find(b)
+        self.parent[b] = a
+        return a != b
+
+
+def _place(table: Devices, inner: tuple[tuple[str, int, int], ...], k: int, first: int) -> tuple[Placed, int]:
+    """Give inner nodes to the devices whose lead resistance is not zero."""
+    n = len(table.names)
+    nodes = np.zeros((n, k), dtype=np.int64)
+    width = table.nodes.shape[1]
+    nodes[:, :width] = table.nodes
+    for name, outer, inside in inner:
+        has = np.any(table.params[name] > 0.0, axis=0) if n else np.zeros(0, dtype=bool)
+        nodes[:, inside] = np.where(has, first + np.cumsum(has) - 1, nodes[:, outer])
+        first += int(has.sum())
+    return Placed(table=table, nodes=nodes), first
+
+
+def _grow_known(circuit: Circuit, n: int) -> tuple[tuple[Tree, ...], NDArray[np.bool_], list[int]]:
+    """Follow ideal sources from ground. Returns the tree, the known mask, and the sources left over."""
+    is_known = np.zeros(n, dtype=bool)
+    is_known[0] = True
+    pending = list(range(len(circuit.voltages.names)))
+    tree: list[Tree] = []
+    grown = True
+    while grown:
+        grown = False
+        for source in list(pending):
+            a, b = (int(x) for x in circuit.voltages.nodes[source])
+            if is_known[a] == is_known[b]:
+                continue
+            node, parent, sign = (a, b, 1.0) if is_known[b] else (b, a, -1.0)
+            tree.append(Tree(node=node, parent=parent, source=source, sign=sign))
+            is_known[node] = True
+            pending.remove(source)
+            grown = True
+    return tuple(tree), is_known, pending
+
+
+def _conductors(circuit: Circuit, bipolars: Placed, diodes: Placed) -> Iterator[tuple[int, int]]:
+    """Every pair of nodes joined for direct current."""
+    for table in (circuit.resistors, circuit.inductors, circuit.voltages):
+        for a, b in table.nodes:
+            yield int(a), int(b)
+    for row in diodes.nodes:
+        yield int(row[0]), int(row[1])
+        yield int(row[0]), int(row[2])
+    for row in bipolars.nodes:
+        for inner in (0, 2, 4, 5, 6):
+            yield int(row[1]), int(row[inner])
+
+
+def _conflict(circuit: Circuit, tree: tuple[Tree, ...], is_known: NDArray[np.bool_], left: list[int]) -> str:
+    """A source that says otherwise than the sources already followed: names it, or is empty."""
+    volts = {0: 0.0}
+    for step in tree:
+        volts[step.node] = volts[step.parent] + step.sign * float(circuit.voltages.value[0, step.source])
+    for source in left:
+        a, b = (int(x) for x in circuit.voltages.nodes[source])
+        if is_known[a] and is_known[b]:
+            wanted = float(circuit.voltages.value[0, source])
+            if abs(volts[a] - volts[b] - wanted) > 1e-9 * max(1.0, abs(wanted)):
+                return f"{circuit.voltages.names[source]} contradicts the other ideal voltage sources"
+    return ""
+
+
+def make_plan(circuit: Circuit) -> Plan:
+    """The DC numbering of a circuit; the same for all its scenarios."""
+    n = len(circuit.nets)
+    bipolars, n_total = _place(circuit.bipolars, bipolar.INNER, bipolar.TERMINALS, n)
+    diodes, n_total = _place(circuit.diodes, diode.INNER, diode.TERMINALS, n_total)
+    tree, is_known, left = _grow_known(circuit, n_total)
+    pairs = list(_conductors(circuit, bipolars, diodes))
+    islands, isolated = _islands(circuit, pairs, tree, is_known, left, n_total)
+    return _number(circuit, bipolars, diodes, tree, is_known, islands, isolated, n_total)
+
+
+def _islands(
+    circuit: Circuit,
+    pairs: list[tuple[int, int]],
+    tree: tuple[Tree, ...],
+    is_known: NDArray[np.bool_],
+    left: list[int],
+    n: int,
+) -> tuple[list[IslandPlan], tuple[int, ...]]:
+    sets, anchored, touched = Sets(n), set(), set()
+    for a, b in pairs:
+        touched.update((a, b))
+        if not is_known[a] and not is_known[b]:
+            sets.join(a, b)
+    for a, b in pairs:
+        if a != b and is_known[a] != is_known[b]:
+            anchored.add(sets.find(b if is_known[a] else a))
+    members: dict[int, list[int]] = {}
+    for node in range(n):
+        if not is_known[node] and node in touched:
+            members.setdefault(sets.find(node), []).append(node)
+    isolated = tuple(node for node in range(n) if not is_known[node] and node not in touched)
+    blocked = _blocked(circuit, sets, is_known)
+    loop = _conflict(circuit, tree, is_known, left)
+    out = []
+    for root, nodes in members.items():
+        inside = set(nodes)
+        v_rows, l_rows, trouble = _branches(circuit, left, inside, is_known)
+        if root not in anchored:
+            trouble = trouble or f"no DC path ties {circuit.nets[min(nodes)]} to ground or a supply"
+        trouble = blocked.get(root, "") or trouble or loop
+        out.append(IslandPlan(nodes=tuple(nodes), voltages=v_rows, inductors=l_rows, trouble=trouble))
+    return out, isolated
+
+
+def _blocked(circuit: Circuit, sets: Sets, is_known: NDArray[np.bool_]) -> dict[int, str]:
+    """Islands that touch a part which cannot be solved with."""
+    index = {net: i for i, net in enumerate(circuit.nets)}
+    out: dict[int, str] = {}
+    for unknown in circuit.unknowns:
+        if not unknown.blocks_dc:
+            continue
+        for net in unknown.nets:
+            node = index.get(net)
+            if node is not None and not is_known[node]:
+                pin = f" pin {unknown.pin}" if unknown.pin else ""
+                out.setdefault(sets.find(node), f"{unknown.ref}{pin} on {net}: {unknown.datum} is not known")
+    return out
+
+
+def _branches(
+    circuit: Circuit, left: list[int], inside: set[int], is_known: NDArray[np.bool_]
+) -> tuple[tuple[int, ...], tuple[int, ...], str]:
+    """Branch-current unknowns of an island. An inductor that closes a loop of zero-resistance parts gets none: how
+    direct current divides there is not determined, the voltages are."""
+    merged, strict = Sets(len(is_known)), Sets(len(is_known))
+    trouble = ""
+    v_rows: list[int] = []
+    l_rows: list[int] = []
+    for table, chosen, rows in (
+        (circuit.voltages, left, v_rows),
+        (circuit.inductors, range(len(circuit.inductors.names)), l_rows),
+    ):
+        for j in chosen:
+            a, b = (int(x) for x in table.nodes[j])
+            if a == b or (a not in inside and b not in inside):
+                continue
+            ends = tuple(0 if is_known[x] else x for x in (a, b))
+            if merged.join(*ends):
+                strict.join(a, b)
+                rows.append(j)
+            elif table is circuit.voltages:
+                trouble = f"{table.names[j]} closes a loop of ideal voltage sources"
+            elif strict.join(a, b):
+                trouble = f"{table.names[j]} shorts two known voltages together for direct current"
+    return tuple(v_rows), tuple(l_rows), trouble
+
+
+def _number(
+    circuit: Circuit,
+    bipolars: Placed,
+    diodes: Placed,
+    tree: tuple[Tree, ...],
+    is_known: NDArray[np.bool_],
+    islands: list[IslandPlan],
+    isolated: tuple[int, ...],
+    n: int,
+) -> Plan:
+    solvable = sorted((i for i in islands if not i.trouble), key=lambda i: (i.size, i.nodes))
+    unknown = np.full(n, -1, dtype=np.int64)
+    v_row = np.full(len(circuit.voltages.names), -1, dtype=np.int64)
+    l_row = np.full(len(circuit.inductors.names), -1, dtype=np.int64)
+    groups: list[tuple[int, int, int]] = []
+    at = 0
+    for island in solvable:
+        if groups and groups[-1][2] == island.size:
+            first, count, size = groups[-1]
+            groups[-1] = (first, count + 1, size)
+        else:
+            groups.append((at, 1, island.size))
+        for target, members in ((unknown, island.nodes), (v_row, island.voltages), (l_row, island.inductors)):
+            for member in members:
+                target[member] = at
+                at += 1
+    ordered = tuple(solvable) + tuple(i for i in islands if i.trouble)
+    return Plan(
+        n_nodes=n,
+        bipolars=bipolars,
+        diodes=diodes,
+        known=tree,
+        is_known=is_known,
+        islands=ordered,
+        unknown=unknown,
+        v_row=v_row,
+        l_row=l_row,
+        groups=tuple(groups),
+        n_unknown=at,
+        isolated=isolated,
+    )
