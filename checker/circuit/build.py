@@ -105,7 +105,7 @@ def _sorted(netlist: Netlist, draft: Draft) -> list[tuple[Kind, Part]]:
         kind, part = entry
         return (0 if kind in _FIRST else 2 if kind in _LAST else 1), natural_key(part.ref)
 
-    return sorted(kinds, key=place)  # type: ignore[arg-type]
+    return sorted(kinds, key=place)
 
 
 def _kind(draft: Draft, part: Part, *, spice: bool) -> Kind:

@@ -106,7 +106,8 @@ def add_potentiometer(draft: Draft, part: Part) -> None:
         draft.wire("resistors", f"{part.ref}.b", pins["2"], pins["3"], value.si / 2)
     elif len(pins) == 2:
         draft.notes.add("parts", "variable resistor taken at its written value", part.ref)
-        draft.wire("resistors", part.ref, *pins.values(), value.si)
+        first, second = pins.values()
+        draft.wire("resistors", part.ref, first, second, value.si)
     else:
         draft.loose(part.ref, pins.values(), f"pins of {part.ref}", "pins 1, 2 (wiper) and 3")
 

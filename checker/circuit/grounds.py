@@ -31,8 +31,8 @@ class Ground:
 def find_ground(netlist: Netlist, intent: Intent, notes: Notes) -> Ground:
     """The ground nets: what the format fixes, and nets with ground names, merged into one.
 
-    A board with neither takes a rail that the intent declares as 0 V. Otherwise none is guessed. Names: common
-    practice, no source.
+    A board with neither takes a rail that the intent declares as 0 V. Otherwise none is guessed.
+    Names: common practice, no source.
     """
     fixed = [key for key in netlist.ground if key in netlist.nets]
     kicad = netlist.format == "kicad"
