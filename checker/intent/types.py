@@ -7,7 +7,7 @@ from collections.abc import Mapping
 from dataclasses import dataclass, field
 
 from checker.quantity.value import Origin
-from checker.words import PortRole, Relation
+from checker.words import PortRole
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)
@@ -40,8 +40,9 @@ class RailIntent:
 
 @dataclass(frozen=True, slots=True, kw_only=True)
 class PortIntent:
-    """A declared port: by `net`, or by `part` and `pin`. `level_v` is the peak e.m.f. [V] of the largest signal.
+    """A declared port: by `net`, or by `part` and `pin`.
 
+    `level_v` is the peak e.m.f. [V] of the largest signal.
     `impedance_ohm` is the reference; `attach` False where the netlist already holds source or load.
     """
 
@@ -83,9 +84,9 @@ class TargetIntent:
 
 @dataclass(frozen=True, slots=True, kw_only=True)
 class PartIntent:
-    """What the engineer says of one part: a card by name, ratings (`v_max_v`, `i_max_a`, `p_max_w`, `tj_max_c`,
-    `rth_ja_kpw`), tolerance, or a two-terminal model (`resistance_ohm`, `inductance_h`, `capacitance_f`) for
-    a part the netlist gives none for, e.g. a relay coil."""
+    """What the engineer says of one part: a card by name, ratings (`v_max_v`, `i_max_a`, `p_max_w`,
+    `tj_max_c`, `rth_ja_kpw`), tolerance, or a two-terminal model (`resistance_ohm`, `inductance_h`,
+    `capacitance_f`) for a part the netlist gives none for, e.g. a relay coil."""
 
     ref: str
     origin: Origin
@@ -112,8 +113,10 @@ class AcceptedIntent:
 
 @dataclass(frozen=True, slots=True, kw_only=True)
 class Intent:
-    """The whole file; `path` empty where there is none. `limits`: rule id -> limit name -> number or text with
-    unit, checked against the rules only once these are known."""
+    """The whole file; `path` empty where there is none.
+
+    `limits`: rule id -> limit name -> number or text with unit, checked against the rules only once these
+    are known."""
 
     path: str = ""
     band: Band | None = None

@@ -1,0 +1,63 @@
+"""Numbers of SPICE-style text: suffixes in any case, `M` is milli, `MEG` and `x` are mega, unit letters ignored."""
+
+from __future__ import annotations
+
+import math
+import re
+
+from checker.quantity.prefixes import plain
+from checker.trouble import NotAQuantity
+
+_SUFFIXES = {
+    "t": "e12",
+    "g": "e9",
+    "meg": "e6",
+    "x": "e6",
+    "k": "e3",
+    "m": "e-3",
+    "u": "e-6",
+    "n": "e-9",
+    "p": "e-12",
+    "f": "e-15",
+    "a": "e-18",
+    "r": "e0",
+}
+_MIL_M = 25.4e-6
+"""One thousandth of an inch [m]."""
+
+_NUMBER = re.compile(
+    r"([+-]?)(\d+(?:[.,]\d*)?|[.,]\d+)(?:[ed]([+-]?\d{1,9}))?(meg|mil|[tgxkmunpfa])?([a-z%]*)(?:/[a-z]+)?",
+    re.IGNORECASE,
+)
+_INFIX = re.compile(r"([+-]?)(\d*)(meg|[tgxkmunpfr])(\d{1,3})([a-z%]*)", re.IGNORECASE)
+
+
+def parse_spice_number(text: str) -> float:
+    """The SI value of a SPICE number such as `4.7k`, `1MEG`, `68kOhm`, `10uF`, `4.7x`; also `4k7` and `k51`.
+
+    `M` is milli in any case and `F` is femto; a decimal comma is read as a point. Raises `NotAQuantity` for what is
+    no number and for numbers that do not fit (`1e400`). The suffix rules are common practice, no source.
+    """
+    folded = plain(text)
+    found = _NUMBER.fullmatch(folded)
+    if found is not None:
+        sign, digits, power, suffix, _ = found.groups()
+        scale = (suffix or "r").lower()
+        value = float(f"{sign}{digits.replace(',', '.')}e{power or 0}")
+        value = value * _MIL_M if scale == "mil" else _scaled(value, sign, digits, power, scale)
+    else:
+        infix = _INFIX.fullmatch(folded)
+        if infix is None:
+            raise NotAQuantity(f"{text[:60]!r} is not a number")
+        sign, whole, letter, part, _ = infix.groups()
+        value = float(f"{sign}{whole or '0'}.{part}{_SUFFIXES[letter.lower()]}")
+    if not math.isfinite(value):
+        raise NotAQuantity(f"{text[:60]!r} is too large to be a number")
+    return value
+
+
+def _scaled(value: float, sign: str, digits: str, power: str | None, scale: str) -> float:
+    """Fold both exponents into one text, so that `4.7k` is the float nearest to 4700."""
+    if not math.isfinite(value):
+        return value
+    return float(f"{sign}{digits.replace(',', '.')}e{int(power or 0) + int(_SUFFIXES[scale][1:])}")
