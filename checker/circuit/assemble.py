@@ -9,6 +9,7 @@ import numpy as np
 from numpy.typing import NDArray
 
 from checker.circuit.draft import Draft, DraftDevice, DraftPort, Wire
+from checker.circuit.parameters import BIPOLAR, DIODE
 from checker.circuit.order import natural, natural_key
 from checker.circuit.types import (
     Branches,
@@ -41,8 +42,8 @@ def assemble(draft: Draft, temperature_k: float) -> Circuit:
         couplings=_couplings(draft.couplings, inductors.names),
         voltages=voltages,
         currents=_branches(draft.currents, node),
-        bipolars=_devices(draft.bipolars, node, 4),
-        diodes=_devices(draft.diodes, node, 2),
+        bipolars=_devices(draft.bipolars, node, 4, BIPOLAR),
+        diodes=_devices(draft.diodes, node, 2, DIODE),
         temperature_k=frozen(np.array([temperature_k])),
         scenarios=(NOMINAL,),
         rails=rails,
@@ -85,18 +86,21 @@ def _couplings(pairs: Mapping[str, tuple[str, str, float]], inductors: tuple[str
     return Couplings(names=names, pair=pair, k=frozen(k))
 
 
-def _devices(devices: Mapping[str, DraftDevice], node: Mapping[str, int], terminals: int) -> Devices:
+def _devices(
+    devices: Mapping[str, DraftDevice], node: Mapping[str, int], terminals: int, known: Mapping[str, float]
+) -> Devices:
     names = tuple(natural(devices))
     entries = [devices[name] for name in names]
     nodes = np.array([[node[net] for net in entry.nets] for entry in entries], dtype=np.int64)
     nodes = nodes.reshape(len(names), terminals)
     nodes.setflags(write=False)
-    keys = tuple(entries[0].params) if entries else ()
     return Devices(
         names=names,
         nodes=nodes,
         polarity=frozen(np.array([entry.polarity for entry in entries], dtype=np.float64)),
-        params={key: frozen(np.array([[entry.params[key] for entry in entries]])) for key in keys},
+        params={
+            key: frozen(np.array([[entry.params[key] for entry in entries]], dtype=np.float64)) for key in known
+        },
         tnom_k=frozen(np.array([entry.tnom_k for entry in entries], dtype=np.float64)),
         rth_kpw=frozen(np.array([entry.rth_kpw for entry in entries], dtype=np.float64)),
     )
