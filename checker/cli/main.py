@@ -42,9 +42,7 @@ class LazyGroup(click.Group):
         return command
 
 
-@click.group(
-    cls=LazyGroup, context_settings={"help_option_names": ["-h", "--help"], "max_content_width": 100}
-)
+@click.group(cls=LazyGroup, context_settings={"help_option_names": ["-h", "--help"], "max_content_width": 100})
 @click.version_option(checker.__version__, message="%(prog)s %(version)s")
 @click.option("--debug", is_flag=True, help=f"Show the traceback of an internal failure (or set {DEBUG}).")
 @click.pass_obj

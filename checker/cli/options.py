@@ -47,9 +47,7 @@ require_checked = click.option(
     type=click.FloatRange(0, 100),
     help="Fail where a smaller share of the stages was checked.",
 )
-width = click.option(
-    "--width", type=click.IntRange(60, 250), help="Columns of the text; else the terminal's."
-)
+width = click.option("--width", type=click.IntRange(60, 250), help="Columns of the text; else the terminal's.")
 colour = click.option(
     "--colour",
     type=click.Choice(["auto", "always", "never"]),

@@ -2,23 +2,52 @@
 
 from __future__ import annotations
 
-from dataclasses import fields
+from collections.abc import Mapping, Sequence
+from typing import Protocol
 
-from checker.cards.types import Card
 from checker.report.clean import clean, name
 from checker.report.layout import Page, finished, hanging
-from checker.report.quantities import given, unit_of, words
+from checker.report.quantities import given
 
-_RATINGS = {
-    "v_max_v": "largest voltage",
-    "v_control_max_v": "largest control voltage",
-    "i_max_a": "largest current",
-    "p_max_w": "dissipation",
-    "tj_max_c": "largest junction temperature",
+RATINGS = {
+    "v_max_v": ("largest voltage", "V"),
+    "v_control_max_v": ("largest control voltage", "V"),
+    "i_max_a": ("largest current", "A"),
+    "p_max_w": ("dissipation", "W"),
+    "tj_max_c": ("largest junction temperature", "degC"),
+    "rth_ja_kpw": ("junction to ambient", "K/W"),
 }
+"""Rating to its words and unit."""
 
 
-def render_card(card: Card, *, width: int, colour: bool) -> str:
+class CardShown(Protocol):
+    """What is printed of a card; its `ratings` have the attributes of `RATINGS`, None where unknown."""
+
+    @property
+    def name(self) -> str: ...
+    @property
+    def kind(self) -> str: ...
+    @property
+    def assumed(self) -> bool: ...
+    @property
+    def aliases(self) -> Sequence[str]: ...
+    @property
+    def ratings(self) -> object: ...
+    @property
+    def gain_min(self) -> float | None: ...
+    @property
+    def gain_max(self) -> float | None: ...
+    @property
+    def packages(self) -> Mapping[str, Mapping[str, str]]: ...
+    @property
+    def model(self) -> Mapping[str, float]: ...
+    @property
+    def source(self) -> str: ...
+    @property
+    def note(self) -> str: ...
+
+
+def render_card(card: CardShown, *, width: int, colour: bool) -> str:
     """Ratings, gain, pin order, model parameters and where they come from."""
     page = Page(width=width, colour=colour)
     lines = [f"{page.paint(name(card.name), 'bold')}  {card.kind}" + ("  (assumed)" if card.assumed else "")]
@@ -27,11 +56,11 @@ def render_card(card: Card, *, width: int, colour: bool) -> str:
     return finished(lines)
 
 
-def _told(card: Card) -> dict[str, str]:
+def _told(card: CardShown) -> dict[str, str]:
     gain = f"{card.gain_min:g} to {card.gain_max:g}" if card.gain_min and card.gain_max else ""
     return {
         "also": ", ".join(map(name, card.aliases)),
-        "ratings": ", ".join(_ratings(card)),
+        "ratings": ", ".join(_ratings(card.ratings)),
         "gain": gain,
         "pins": "; ".join(
             f"{name(package)}: " + ", ".join(f"{pin} {terminal}" for pin, terminal in sorted(pads.items()))
@@ -43,15 +72,6 @@ def _told(card: Card) -> dict[str, str]:
     }
 
 
-def _ratings(card: Card) -> list[str]:
-    told = []
-    for each in fields(card.ratings):
-        value = getattr(card.ratings, each.name)
-        if value is None:
-            continue
-        label = _RATINGS.get(each.name)
-        if each.name == "rth_ja_kpw":
-            told.append(f"junction to ambient {value:.4g} K/W")
-        else:
-            told.append(f"{label or words(each.name)} {given(value, unit_of(each.name))}")
-    return told
+def _ratings(ratings: object) -> list[str]:
+    values = ((label, getattr(ratings, key), unit) for key, (label, unit) in RATINGS.items())
+    return [f"{label} {given(value, unit)}" for label, value, unit in values if value is not None]

@@ -40,6 +40,10 @@ class RuleShown(Protocol):
     @property
     def weight(self) -> str: ...
     @property
+    def bench(self) -> str: ...
+    @property
+    def source(self) -> str: ...
+    @property
     def limits(self) -> Sequence[LimitShown]: ...
 
 
@@ -59,8 +63,10 @@ def render_rules(rules: Iterable[RuleShown], *, width: int, colour: bool) -> str
 def _rule(rule: RuleShown, page: Page) -> list[str]:
     lines = [f"  {page.paint(clean(rule.id), 'bold')}  ({clean(rule.weight)})"]
     lines += hanging("    ", clean(rule.summary), page)
+    for label, text in (("you see", rule.bench), ("source", rule.source)):
+        lines += hanging(f"    {label}".ljust(13), clean(text), page, style="dim") if text else []
     for limit in rule.limits:
-        lines += hanging("    limit  ", _limit(limit), page, style="dim")
+        lines += hanging("    limit    ", _limit(limit), page, style="dim")
     return lines
 
 

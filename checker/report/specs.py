@@ -12,9 +12,9 @@ from checker.report.sections.stages import stages
 def render_specs(report: Report, *, width: int, colour: bool) -> str:
     """The stage tables, then everything that is known of each stage."""
     page, report = Page(width=width, colour=colour), in_order(report)
-    lines = [*conditions(report, page), *stages(report, page)]
-    if not report.stages:
-        lines += ["", "No transistor stage was found."]
+    count = len(report.stages)
+    title = f"{count} stage{'' if count == 1 else 's'}" if count else "No transistor stage"
+    lines = [page.paint(title, "bold"), *conditions(report, page), *stages(report, page)]
     for stage in report.stages:
         lines += ["", *details(report, stage, page)]
     return finished(lines)

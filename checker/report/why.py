@@ -13,9 +13,7 @@ from checker.report.sections.findings import block
 from checker.trouble import InputTrouble
 
 
-def render_why(
-    report: Report, subject: str, workings: Sequence[WorkingLine], *, width: int, colour: bool
-) -> str:
+def render_why(report: Report, subject: str, workings: Sequence[WorkingLine], *, width: int, colour: bool) -> str:
     """What is known of `subject`, and how its figures were got.
 
     `subject`: a stage, group, port or part, or a finding by rule or fingerprint (then the workings of all
@@ -55,9 +53,7 @@ def _working(line: WorkingLine, page: Page) -> list[str]:
     lines = [page.paint(title, "bold") + (f" = {clean(line.result)}" if line.result else "")]
     lines += hanging("  ", clean(line.formula), page) if line.formula else []
     if line.numbers:
-        put_in = ", ".join(
-            f"{clean(symbol)} = {number(si, clean(unit), 4)}" for symbol, si, unit in line.numbers
-        )
+        put_in = ", ".join(f"{clean(symbol)} = {number(si, clean(unit), 4)}" for symbol, si, unit in line.numbers)
         lines += hanging("  with  ", put_in, page, style="dim")
     return lines + (hanging("  from  ", clean(line.source), page, style="dim") if line.source else [])
 

@@ -82,9 +82,7 @@ def test_internal_failure_is_one_line_and_debug_shows_more(
     path = board("a.net", "crash")
     done = call("check", path)
     assert (done.status, done.out) == (3, "")
-    assert done.err.startswith(
-        "stageproof: internal failure, ZeroDivisionError: in the<U+000A>kitchen; --debug"
-    )
+    assert done.err.startswith("stageproof: internal failure, ZeroDivisionError: in the<U+000A>kitchen; --debug")
     assert done.err.count("\n") == 1
     assert "Traceback" in call("--debug", "check", path).err
     monkeypatch.setenv("STAGEPROOF_DEBUG", "1")
@@ -141,18 +139,14 @@ def test_out_is_written_whole(pipeline: Pipeline, board: Board, call: Call, tmp_
     assert sorted(path.name for path in tmp_path.iterdir()) == ["a.net", "r.json"]
 
 
-def test_new_out_has_the_usual_permissions(
-    pipeline: Pipeline, board: Board, call: Call, tmp_path: Path
-) -> None:
+def test_new_out_has_the_usual_permissions(pipeline: Pipeline, board: Board, call: Call, tmp_path: Path) -> None:
     plain = tmp_path / "plain"
     plain.write_text("")
     call("check", board("a.net", "x"), "--out", str(tmp_path / "r.txt"))
     assert (tmp_path / "r.txt").stat().st_mode == plain.stat().st_mode
 
 
-def test_out_through_a_link_keeps_the_link(
-    pipeline: Pipeline, board: Board, call: Call, tmp_path: Path
-) -> None:
+def test_out_through_a_link_keeps_the_link(pipeline: Pipeline, board: Board, call: Call, tmp_path: Path) -> None:
     (tmp_path / "real").write_text("old")
     (tmp_path / "link").symlink_to(tmp_path / "real")
     call("check", board("a.net", "x"), "--out", str(tmp_path / "link"))
@@ -199,9 +193,7 @@ def test_out_to_a_device_writes_into_it(pipeline: Pipeline, board: Board, call: 
     assert not Path(os.devnull).is_file()
 
 
-def test_colour_and_width(
-    pipeline: Pipeline, board: Board, call: Call, monkeypatch: pytest.MonkeyPatch
-) -> None:
+def test_colour_and_width(pipeline: Pipeline, board: Board, call: Call, monkeypatch: pytest.MonkeyPatch) -> None:
     path = board("a.net", "x")
     painted = call("check", path, "--colour", "always", "--width", "80").out
     assert painted == render(report(), width=80, colour=True)

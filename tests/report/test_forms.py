@@ -37,14 +37,24 @@ def test_several_reports_in_one_object() -> None:
 def test_rules_are_listed_by_theme_with_limits() -> None:
     limit = SimpleNamespace(name="shift", default=0.1, unit="%", low=0.01, high=0.5, source="common practice")
     rules = [
-        SimpleNamespace(id="b-rule", summary="Second.", theme="bias", weight="review", limits=()),
-        SimpleNamespace(id="a-rule", summary="First\x1b.", theme="bias", weight="must-fix", limits=(limit,)),
+        SimpleNamespace(id="b-rule", summary="Second.", theme="bias", weight="review", bench="", source="", limits=()),
+        SimpleNamespace(
+            id="a-rule",
+            summary="First\x1b.",
+            theme="bias",
+            weight="must-fix",
+            bench="It hums.",
+            source="Invented, page 1",
+            limits=(limit,),
+        ),
     ]
     assert render_rules(rules, width=80, colour=False) == (
         "Bias\n"
         "  a-rule  (must-fix)\n"
         "    First<U+001B>.\n"
-        "    limit  shift = 10 %, may be 1 % to 50 %; common practice\n"
+        "    you see  It hums.\n"
+        "    source   Invented, page 1\n"
+        "    limit    shift = 10 %, may be 1 % to 50 %; common practice\n"
         "  b-rule  (review)\n"
         "    Second.\n"
     )

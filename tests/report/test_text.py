@@ -136,18 +136,31 @@ def test_bare_report_renders() -> None:
         "  boards/receiver.net, intent none: see assumptions",
         "  25 °C, no band (no port was found)",
     ]
-    assert "No transistor stage" in render_specs(bare, width=80, colour=False)
+    assert render_specs(bare, width=80, colour=False).startswith("No transistor stage\n")
+
+
+def test_notes_and_consequences_are_brief() -> None:
+    full = report().findings[0]
+    consequence = replace(full, fingerprint="c", caused_by="x", rule="zz-rule")
+    note = replace(full, severity="note", fingerprint="n", rule="zz-note")
+    cause = replace(full, fingerprint="x", rule="aa-rule")
+    text = render(replace(report(), findings=(consequence, note, cause)), width=100, colour=False)
+    blocks = text.partition("Stages at rest")[0].split("\n\n")[1:4]
+    assert ["why " in block for block in blocks] == [True, False, False]
+    assert ["follows   from aa-rule of Q1, R3, ANT" in block for block in blocks] == [False, True, False]
+    assert all("change    R3 27 Ω → 43 Ω" in block for block in blocks)
+    assert "11.6 dB at 3.00 MHz (limit: at least 14 dB, limits of the intent file)" in blocks[2]
 
 
 def test_finding_without_figures_and_with_a_foreign_cause() -> None:
     finding = replace(
-        report().findings[2],
+        report().findings[1],
         caused_by="gone",
         measured=Measured(quantity="duty", value=None, unit=""),
         limit=Bound(relation="equals", value=0.5, unit="", source=""),
     )
     text = render(replace(report(), findings=(finding,)), width=80, colour=False)
-    assert "found     duty —\n  limit     equals 0.5\n  follows   from another finding\n" in text
+    assert "  found     duty —\n  limit     equals 0.5\n" in text and "follows" not in text
 
 
 def test_why_refuses_an_unknown_subject_with_a_hint() -> None:

@@ -19,9 +19,7 @@ def ports(report: Report, page: Page) -> list[str]:
     rows = map(_port_row, report.ports)
     # The other figures of a port hang on its impedance: one reason is enough.
     nulls = [
-        (name(port.name), ("ports", port.name, "impedance_ohm"))
-        for port in report.ports
-        if port.impedance_ohm is None
+        (name(port.name), ("ports", port.name, "impedance_ohm")) for port in report.ports if port.impedance_ohm is None
     ]
     return [*page.heading("Ports"), *table(header, rows, "lllrrrrr", page), *dashes(report, nulls, page)]
 

@@ -27,9 +27,15 @@ def findings(report: Report, page: Page) -> list[str]:
 
 
 def block(finding: Finding, by_fingerprint: dict[str, Finding], page: Page) -> list[str]:
-    """One finding; `by_fingerprint` lets it name the one that it follows from."""
+    """One finding, in full unless it is a note or follows from another; `by_fingerprint` finds that other."""
     lines = [*_title(finding, page), *hanging("  ", clean(finding.message), page)]
-    for label, text in _lines(finding, by_fingerprint):
+    cause = by_fingerprint.get(finding.caused_by or "")
+    if finding.severity == "note" or cause:
+        told = _in_brief(finding)
+    else:
+        told = _in_full(finding)
+    follows = [("follows", f"from {clean(cause.rule)} of {subject(cause)}")] if cause else []
+    for label, text in (*told, *follows):
         lines += hanging(f"  {label}".ljust(LABEL), text, page, style="dim")
     return lines
 
@@ -67,11 +73,30 @@ def subject(finding: Finding) -> str:
     return ", ".join(map(name, finding.subject))
 
 
-def _lines(finding: Finding, by_fingerprint: dict[str, Finding]) -> Iterator[tuple[str, str]]:
+def _in_full(finding: Finding) -> Iterator[tuple[str, str]]:
     if finding.measured:
         yield "found", _measured(finding)
     if finding.limit:
         yield "limit", _limit(finding.limit)
+    yield from _when(finding)
+    if finding.effect:
+        yield "you see", clean(finding.effect)
+    if finding.why:
+        yield "why", clean(finding.why)
+    if finding.remedy:
+        yield from _remedy(finding.remedy)
+
+
+def _in_brief(finding: Finding) -> Iterator[tuple[str, str]]:
+    limit = f" (limit: {_limit(finding.limit)})" if finding.limit else ""
+    if finding.measured:
+        yield "found", _measured(finding) + limit
+    yield from _when(finding)
+    if finding.remedy:
+        yield "change", ", ".join(map(_change, finding.remedy.changes))
+
+
+def _when(finding: Finding) -> Iterator[tuple[str, str]]:
     if finding.outcome == "may-violate":
         corner = clean(finding.scenario) if finding.scenario else "some corner"
         yield "when", f"passes at nominal, fails in {corner}"
@@ -79,15 +104,6 @@ def _lines(finding: Finding, by_fingerprint: dict[str, Finding]) -> Iterator[tup
         yield "when", f"worst in {clean(finding.scenario)}"
     if finding.state:
         yield "state", clean(finding.state)
-    if finding.effect:
-        yield "you see", clean(finding.effect)
-    if finding.why:
-        yield "why", clean(finding.why)
-    if finding.caused_by:
-        cause = by_fingerprint.get(finding.caused_by)
-        yield "follows", f"from {clean(cause.rule)} of {subject(cause)}" if cause else "from another finding"
-    if finding.remedy:
-        yield from _remedy(finding.remedy)
 
 
 def _measured(finding: Finding) -> str:

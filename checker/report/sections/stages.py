@@ -97,9 +97,7 @@ def with_signal(report: Report, page: Page) -> list[str]:
 def by_hand(report: Report, page: Page) -> list[str]:
     """The rule of thumb beside the exact figure at the terminals, and whether they agree."""
     rows = [
-        _hand_row(stage, key, thumb)
-        for stage in report.stages
-        for key, thumb in sorted(stage.rule_of_thumb.items())
+        _hand_row(stage, key, thumb) for stage in report.stages for key, thumb in sorted(stage.rule_of_thumb.items())
     ]
     if not rows:
         return []
