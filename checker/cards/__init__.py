@@ -1,0 +1,1 @@
+"""Device cards: what data sheets say of common parts, and a model fitted to each."""

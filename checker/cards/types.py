@@ -25,8 +25,9 @@ class Ratings:
 class Card:
     """One type. `model`: SPICE-style parameters, lower case, SI, at 27 degC, typical unit.
 
-    `gain_min`, `gain_max`: spread of the current gain of this gain group (bipolar). `packages`: package family
-    ("TO-92", "SOT-23", ...) -> pad number -> terminal letter ("B", "C", "E", "A", "K", "D", "G", "S").
+    `gain_min`, `gain_max`: spread of the current gain of this gain group (bipolar). `packages`: package
+    family ("TO-92", "SOT-23", ...) -> pad number -> terminal letter ("B", "C", "E", "A", "K", "D", "G", "S");
+    of a dual device with its unit ("B1", "E2"; "K1A2" where a pad serves two).
     `assumed`: a generic card stood in for an unknown part. `source`: where the figures come from, in words.
     """
 

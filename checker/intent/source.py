@@ -16,8 +16,10 @@ from checker.trouble import InputTrouble
 
 MAX_BYTES: Final = 1_000_000
 """An intent file is written by hand; a megabyte is some twenty thousand lines."""
-MAX_LINE: Final = 4_000
-"""A longer line is no handwriting; the TOML reader takes time quadratic in the parts of one dotted key."""
+MAX_LINE: Final = 2_000
+"""A longer line is no handwriting."""
+MAX_DOTS: Final = 100
+"""Dots in one line: the TOML reader takes time quadratic in the parts of a dotted key."""
 
 KeyPath = tuple[str | int, ...]
 """Keys from the root of the file; a number counts the tables of a list from 0."""
@@ -88,9 +90,9 @@ def _text(path: Path, file: str) -> str:
         raise InputTrouble(
             "the intent file is not UTF-8 text; save it as UTF-8", file=file, line=line
         ) from None
-    for number, line_text in enumerate(text.split("\n"), start=1):
-        if len(line_text) > MAX_LINE:
-            message = f"the line has {len(line_text)} characters, at most {MAX_LINE} are read; break it up"
+    for number, written in enumerate(text.split("\n"), start=1):
+        if len(written) > MAX_LINE or written.count(".") > MAX_DOTS:
+            message = f"a line may have {MAX_LINE} characters and {MAX_DOTS} dots; break it up"
             raise InputTrouble(message, file=file, line=number)
     return text
 

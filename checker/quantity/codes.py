@@ -33,7 +33,8 @@ _SMALL_CAPACITOR_F = 10e-12
 
 
 def tolerance_of_letter(letter: str, si: float, unit: str) -> float | None:
-    """Tolerance as a fraction of `si` [unit], the wider side of an unequal one; None for a letter without meaning.
+    """Tolerance as a fraction of `si` [unit], the wider side of an unequal one; None for a letter without
+    meaning.
 
     Source: IEC 60062 (from memory).
     """

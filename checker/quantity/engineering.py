@@ -1,7 +1,7 @@
 """Values as people write them on schematics: `4k7`, `8,2k`, `.1uF`, `18k1%`, `10uF/25V`.
 
-Here `M` is mega and `m` is milli (SPICE text has its own rule, see `spice_number`). Letter-for-point codes follow
-IEC 60062. What could be read in two ways is refused, never guessed.
+Here `M` is mega and `m` is milli (SPICE text has its own rule, see `spice_number`). Letter-for-point codes
+follow IEC 60062. What could be read in two ways is refused, never guessed.
 """
 
 from __future__ import annotations
@@ -17,8 +17,8 @@ from checker.trouble import NotAQuantity
 
 @dataclass(frozen=True, slots=True, kw_only=True)
 class Reading:
-    """A value read from text. `si` in the unit asked for; `tolerance` a fraction (the wider side of an unequal
-    one) or None; `rating_v` the voltage rating [V] or None; `text` as written."""
+    """A value read from text. `si` in the unit asked for; `tolerance` a fraction (the wider side of an
+    unequal one) or None; `rating_v` the voltage rating [V] or None; `text` as written."""
 
     si: float
     tolerance: float | None
@@ -50,15 +50,17 @@ def parse_engineering(text: str, unit: str) -> Reading:
     """Read a schematic value of `unit` ("ohm", "F", "H", "V", "A", "Hz", "W"...).
 
     A tolerance (percentage, or IEC 60062 letter) and a voltage rating may follow; other words after the value
-    (dielectric, package, taper) are passed over. Raises `NotAQuantity` for placeholders, ranges, a unit of another
-    kind, and whatever could be read in two ways. Source of the codes: IEC 60062.
+    (dielectric, package, taper) are passed over. Raises `NotAQuantity` for placeholders, ranges, a unit of
+    another kind, and whatever could be read in two ways. Source of the codes: IEC 60062.
     """
     folded = _decimal_comma(plain(text))
     if not folded or len(folded) > _LONGEST:
         raise _refusal(text, unit, "it is empty" if not folded else "it is too long")
     if unit == "F" and _EIA_CODE.fullmatch(folded):
         # EIA three-digit code: two digits and a count of zeros, in pF. Common practice.
-        return Reading(si=float(f"{folded[:2]}e{int(folded[2]) - 12}"), tolerance=None, rating_v=None, text=text)
+        return Reading(
+            si=float(f"{folded[:2]}e{int(folded[2]) - 12}"), tolerance=None, rating_v=None, text=text
+        )
     head = _head(folded, text, unit)
     if head is None:
         raise _refusal(text, unit, "it does not start with a number")
@@ -122,9 +124,9 @@ def _plain_number(head: re.Match[str], folded: str, unit: str, text: str) -> tup
     prefix = (after["prefix"] or "") if after else ""
     behind = rest[after.end() :] if after else rest
     bare = _without_unit(rest, unit)
-    if prefix and (bare != rest and _ends(bare)):
-        prefix, behind = "", rest
-    elif prefix and rest[:1].isspace() and not _ends(_without_unit(behind, unit)):
+    is_unit = bare != rest and _ends(bare)
+    is_word = rest[:1].isspace() and not _ends(_without_unit(behind, unit))
+    if prefix and (is_unit or is_word):
         prefix, behind = "", rest
     if unit in _NEEDS_PREFIX and not prefix and not head["power"] and behind == _without_unit(behind, unit):
         raise _refusal(text, unit, "a bare number is ambiguous; write the prefix or the unit")
@@ -166,8 +168,8 @@ def _is_letter_code(behind: str) -> bool:
 
 
 def _tolerance_letter(rest: str, unit: str, behind: str) -> tuple[str, str]:
-    """A letter right after the value. F, H and W are units as well: they count only behind a letter that leaves no
-    doubt, so that `10uF`, `10mH` or `5W` never pass for resistors."""
+    """A letter right after the value. F, H and W are units as well: they count only behind a letter that
+    leaves no doubt, so that `10uF`, `10mH` or `5W` never pass for resistors."""
     trimmed = rest.lstrip()
     if not _is_letter_code(trimmed) or tolerance_of_letter(trimmed[0], 1.0, unit) is None:
         return "", rest

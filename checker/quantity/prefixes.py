@@ -39,27 +39,32 @@ SPELLINGS: dict[str, tuple[str, ...]] = {
 }
 """Unit key to accepted spellings, lower case; a unit that is not listed is spelt as its key alone."""
 
-UNPREFIXED = frozenset({"%", "degC", "dB", "dBm", "dBV", "dBu", "dBc", "deg", "ppm", "ppm/K", "K", "K/W", "degC/W", ""})
+UNPREFIXED = frozenset(
+    {"%", "degC", "dB", "dBm", "dBV", "dBu", "dBc", "deg", "ppm", "ppm/K", "K", "K/W", "degC/W", ""}
+)
 """Units that take no prefix, neither read nor printed."""
 
 SYMBOLS = {"ohm": "Ω", "degC": "°C", "degC/W": "°C/W", "deg": "°"}
 """Unit key to printed symbol where they differ."""
 
-_FOLDED = str.maketrans({
-    "µ": "u",
-    "μ": "u",
-    "\u2126": "Ω",
-    "−": "-",
-    "–": "-",
-    "\u00a0": " ",
-    "\u202f": " ",
-    "\u2009": " ",
-    "℃": "°C",
-})
+_FOLDED = str.maketrans(
+    {
+        "µ": "u",
+        "μ": "u",
+        "\u2126": "Ω",
+        "−": "-",
+        "–": "-",
+        "\u00a0": " ",
+        "\u202f": " ",
+        "\u2009": " ",
+        "℃": "°C",
+    }
+)
 
 
 def plain(text: str) -> str:
-    """`text` trimmed, with the lookalikes of µ, Ω, the minus sign and the space folded to one spelling each."""
+    """`text` trimmed, with the lookalikes of µ, Ω, the minus sign and the space folded to one spelling
+    each."""
     return text.translate(_FOLDED).replace("°C", "degC").replace("Ω", "ohm").strip()
 
 

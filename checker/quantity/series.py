@@ -1,7 +1,8 @@
 """The preferred numbers of IEC 60063, E3 to E192, and the standard values around a given one.
 
 E3 to E24 are tabulated, since E24 departs from the rounded powers at eight places. E48 to E192 are the powers
-10^(i/n) rounded to three digits, but for 9.20 in E192, which the rule would make 9.19. Source: IEC 60063, from memory.
+10^(i/n) rounded to three digits, but for 9.20 in E192, which the rule would make 9.19. Source: IEC 60063,
+from memory.
 """
 
 from __future__ import annotations
@@ -38,8 +39,9 @@ def nearest(si: float, series: str) -> float:
 
 
 def neighbours(si: float, series: str, count_below: int, count_above: int) -> tuple[float, ...]:
-    """The `count_below` standard values under `si` > 0 and the `count_above` over it, ascending; `si` itself, where
-    it is a standard value, is left out. Raises `ValueError` for a value that is not positive and finite."""
+    """The `count_below` standard values under `si` > 0 and the `count_above` over it, ascending; `si` itself,
+    where it is a standard value, is left out. Raises `ValueError` for a value that is not positive and
+    finite."""
     below, above = _around(si, series, count_below, count_above)
     return (*below, *above)
 

@@ -50,8 +50,8 @@ def _rounded(si: float, digits: int) -> tuple[float, int]:
 
 
 def _significant(value: float, digits: int) -> str:
-    """Fixed-point text of `digits` significant digits; at least the whole part, which is never in powers of ten
-    below a million."""
+    """Fixed-point text of `digits` significant digits; at least the whole part, which is never in powers of
+    ten below a million."""
     if value == 0:
         return "0"
     power = int(f"{value:.{max(digits, 1) - 1}e}".partition("e")[2])

@@ -1,4 +1,5 @@
-"""Numbers of SPICE-style text: suffixes in any case, `M` is milli, `MEG` and `x` are mega, unit letters ignored."""
+"""Numbers of SPICE-style text: suffixes in any case, `M` is milli, `MEG` and `x` are mega, unit letters
+ignored."""
 
 from __future__ import annotations
 
@@ -35,8 +36,9 @@ _INFIX = re.compile(r"([+-]?)(\d*)(meg|[tgxkmunpfr])(\d{1,3})([a-z%]*)", re.IGNO
 def parse_spice_number(text: str) -> float:
     """The SI value of a SPICE number such as `4.7k`, `1MEG`, `68kOhm`, `10uF`, `4.7x`; also `4k7` and `k51`.
 
-    `M` is milli in any case and `F` is femto; a decimal comma is read as a point. Raises `NotAQuantity` for what is
-    no number and for numbers that do not fit (`1e400`). The suffix rules are common practice, no source.
+    `M` is milli in any case and `F` is femto; a decimal comma is read as a point. Raises `NotAQuantity` for
+    what is no number and for numbers that do not fit (`1e400`). The suffix rules are common practice, no
+    source.
     """
     folded = plain(text)
     found = _NUMBER.fullmatch(folded)

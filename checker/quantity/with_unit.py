@@ -14,9 +14,9 @@ _NUMBER = re.compile(r"([+-]?)(\d+(?:\.\d*)?|\.\d+)(?:[eE]([+-]?\d{1,3}))?\s*")
 def parse_with_unit(text: str, unit: str) -> float:
     """Read `text` as a number of `unit`: "3 MHz" in "Hz" is 3e6, "5 %" in "%" is the fraction 0.05.
 
-    A number alone is taken to be in `unit` itself (for "%", "5" is 0.05). Logarithmic units, "degC" and "%" take
-    no prefix. Raises `NotAQuantity` for another unit or no number. The result is SI, but for "degC" and the
-    logarithmic units, which stay as they are.
+    A number alone is taken to be in `unit` itself (for "%", "5" is 0.05). Logarithmic units, "degC" and "%"
+    take no prefix. Raises `NotAQuantity` for another unit or no number. The result is SI, but for "degC" and
+    the logarithmic units, which stay as they are.
     """
     folded = plain(text)
     found = _NUMBER.match(folded)

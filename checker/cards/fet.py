@@ -1,0 +1,72 @@
+"""Field-effect transistors: model parameters in closed form from what a data sheet states.
+
+Keys of a row in `data/` (SI; lists are in this order)::
+
+    idss      [min, typical, max]            junction FET: drain current at VGS = 0
+    vgs_off   [min, typical, max]            cut-off voltage as printed (negative for N)
+    vgs_th    [min, typical, max]            MOSFET: threshold as printed
+    gfs       [ID, transconductance]         MOSFET, typical
+    rds_on    [VGS, resistance]              MOSFET, typical; VGS as printed
+    ciss, crss    [VDS, typical]             input and reverse transfer capacitance, VGS = 0
+    lam       channel-length modulation 1/V  taken as it is, as are is, pb, n
+
+MOSFETs get the square-law model with width and length of 1 m, so that KP is in A/V2 of the whole device and
+the overlap capacitances per metre are those of the device.
+"""
+
+from __future__ import annotations
+
+import math
+from collections.abc import Mapping
+from typing import Any
+
+
+def jfet_model(row: Mapping[str, Any]) -> dict[str, float]:
+    """Square-law parameters of the typical unit; VTO is negative for both polarities, by the model's rule."""
+    vto = -abs(row["vgs_off"][1])
+    pb = row["pb"]
+    crss_vds, crss = row["crss"]
+    return {
+        "vto": vto,
+        "beta": row["idss"][1] / vto**2,
+        "lambda": row["lam"],
+        "is": row["is"],
+        "n": row["n"],
+        "pb": pb,
+        "m": 0.5,
+        "fc": 0.5,
+        "cgd": crss * math.sqrt(1.0 + crss_vds / pb),
+        "cgs": row["ciss"][1] - crss,
+        "rd": 0.0,
+        "rs": 0.0,
+    }
+
+
+def mosfet_model(row: Mapping[str, Any]) -> dict[str, float]:
+    """Square-law parameters of the typical unit; VTO has the printed sign (negative for enhancement P types).
+
+    KP follows from the transconductance, the rest of the on-resistance is RD. Raises ValueError where the
+    channel alone has more than the stated on-resistance.
+    """
+    vto = row["vgs_th"][1]
+    id_a, gfs = row["gfs"]
+    kp = gfs**2 / (2.0 * id_a)
+    vgs, rds_on = row["rds_on"]
+    rd = rds_on - 1.0 / (kp * abs(vgs - vto))
+    if rd < 0.0:
+        raise ValueError(f"{row['name']}: its channel alone has {rds_on - rd:.3g} ohm, more than stated")
+    crss = row["crss"][1]
+    return {
+        "level": 1.0,
+        "w": 1.0,
+        "l": 1.0,
+        "vto": vto,
+        "kp": kp,
+        "lambda": row["lam"],
+        "rd": rd,
+        "rs": 0.0,
+        "cgdo": crss,
+        "cgso": row["ciss"][1] - crss,
+        "is": row["is"],
+        "n": row["n"],
+    }

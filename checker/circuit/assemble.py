@@ -1,0 +1,124 @@
+"""The finished draft in numbers: nodes, columns, and everything sorted by name."""
+
+from __future__ import annotations
+
+from collections.abc import Mapping
+from dataclasses import replace
+
+import numpy as np
+from numpy.typing import NDArray
+
+from checker.circuit.draft import Draft, DraftDevice, DraftPort, Wire
+from checker.circuit.order import natural, natural_key
+from checker.circuit.types import (
+    Branches,
+    Circuit,
+    Couplings,
+    Devices,
+    FloatArray,
+    Port,
+    Scenario,
+)
+
+NOMINAL = Scenario(name="nominal")
+
+
+def assemble(draft: Draft, temperature_k: float) -> Circuit:
+    """Number the nodes (ground 0, then nets in natural order) and fill the tables; S = 1."""
+    nets = (draft.ground, *natural(draft.present() - {draft.ground}))
+    node = {net: place for place, net in enumerate(nets)}
+    voltages = _branches(draft.voltages, node)
+    resistors = _branches(draft.resistors, node)
+    inductors = _branches(draft.inductors, node)
+    rails = tuple(
+        replace(rail, element=_index(voltages, draft.rail_elements.get(rail.net, ""))) for rail in draft.rails
+    )
+    return Circuit(
+        nets=nets,
+        resistors=resistors,
+        capacitors=_branches(draft.capacitors, node),
+        inductors=inductors,
+        couplings=_couplings(draft.couplings, inductors.names),
+        voltages=voltages,
+        currents=_branches(draft.currents, node),
+        bipolars=_devices(draft.bipolars, node, 4),
+        diodes=_devices(draft.diodes, node, 2),
+        temperature_k=frozen(np.array([temperature_k])),
+        scenarios=(NOMINAL,),
+        rails=rails,
+        ports=tuple(_port(port, node, voltages, resistors) for port in draft.ports if port.net in node),
+        parts={ref: draft.facts[ref] for ref in natural(draft.facts)},
+        unknowns=tuple(
+            sorted(
+                draft.unknowns,
+                key=lambda entry: (natural_key(entry.ref), natural_key(entry.pin), entry.datum),
+            )
+        ),
+        assumptions=draft.notes.lines(),
+        band_hz=None if draft.intent.band is None else (draft.intent.band.low_hz, draft.intent.band.high_hz),
+    )
+
+
+def frozen(array: FloatArray) -> FloatArray:
+    """The same array, made read-only."""
+    array.setflags(write=False)
+    return array
+
+
+def _branches(wires: Mapping[str, Wire], node: Mapping[str, int]) -> Branches:
+    names = tuple(natural(wires))
+    nodes: NDArray[np.int64] = np.array(
+        [(node[wires[name].first], node[wires[name].second]) for name in names], dtype=np.int64
+    ).reshape(len(names), 2)
+    nodes.setflags(write=False)
+    value = np.array([[wires[name].value for name in names]], dtype=np.float64).reshape(1, len(names))
+    return Branches(names=names, nodes=nodes, value=frozen(value))
+
+
+def _couplings(pairs: Mapping[str, tuple[str, str, float]], inductors: tuple[str, ...]) -> Couplings:
+    names = tuple(natural(pairs))
+    place = {name: index for index, name in enumerate(inductors)}
+    pair = np.array([(place[pairs[name][0]], place[pairs[name][1]]) for name in names], dtype=np.int64)
+    pair = pair.reshape(len(names), 2)
+    pair.setflags(write=False)
+    k = np.array([[pairs[name][2] for name in names]], dtype=np.float64).reshape(1, len(names))
+    return Couplings(names=names, pair=pair, k=frozen(k))
+
+
+def _devices(devices: Mapping[str, DraftDevice], node: Mapping[str, int], terminals: int) -> Devices:
+    names = tuple(natural(devices))
+    entries = [devices[name] for name in names]
+    nodes = np.array([[node[net] for net in entry.nets] for entry in entries], dtype=np.int64)
+    nodes = nodes.reshape(len(names), terminals)
+    nodes.setflags(write=False)
+    keys = tuple(entries[0].params) if entries else ()
+    return Devices(
+        names=names,
+        nodes=nodes,
+        polarity=frozen(np.array([entry.polarity for entry in entries], dtype=np.float64)),
+        params={key: frozen(np.array([[entry.params[key] for entry in entries]])) for key in keys},
+        tnom_k=frozen(np.array([entry.tnom_k for entry in entries], dtype=np.float64)),
+        rth_kpw=frozen(np.array([entry.rth_kpw for entry in entries], dtype=np.float64)),
+    )
+
+
+def _index(branches: Branches, name: str) -> int:
+    return branches.names.index(name) if name in branches.names else -1
+
+
+def _port(port: DraftPort, node: Mapping[str, int], voltages: Branches, resistors: Branches) -> Port:
+    return Port(
+        name=port.name,
+        net=port.net,
+        node=node[port.net],
+        role=port.role,
+        reference_ohm=port.reference_ohm,
+        emf=_index(voltages, port.emf),
+        series=_index(resistors, port.series),
+        load=port.load,
+        level_v=port.level_v,
+        band_hz=port.band_hz,
+        coaxial=port.coaxial,
+        declared=port.declared,
+        part=port.part,
+    )

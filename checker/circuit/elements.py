@@ -1,0 +1,228 @@
+"""Resistors, capacitors, inductors, couplings, sources and what is made of them, put into the draft."""
+
+from __future__ import annotations
+
+import math
+from typing import Final
+
+from checker.circuit.devices import bare_fact
+from checker.circuit.draft import Draft, Table
+from checker.circuit.types import PartFact, PartKind
+from checker.circuit.values import part_value
+from checker.netlist.types import Part
+from checker.quantity.parse import parse_engineering
+from checker.quantity.value import Value
+from checker.trouble import NotAQuantity
+
+_UNITS: Final[dict[str, tuple[str, Table, PartKind, str]]] = {
+    "resistor": ("ohm", "resistors", "resistor", "value"),
+    "capacitor": ("F", "capacitors", "capacitor", "value"),
+    "inductor": ("H", "inductors", "inductor", "value"),
+}
+
+
+def add_passive(draft: Draft, part: Part, kind: str) -> None:
+    """A resistor, capacitor or inductor; series and parallel resistance where the netlist writes them.
+
+    0 ohm becomes an ideal wire (a 0 V entry by the part's name). An unknown resistor blocks; an unknown
+    capacitor is open at DC and an unknown inductor a wire, so they only leave signal figures in doubt.
+    """
+    unit, table, fact_kind, _ = _UNITS[kind]
+    ends = two_ends(part)
+    value = part_value(draft, part, unit)
+    if ends is None:
+        _not_two_ended(draft, part, fact_kind)
+        return
+    draft.facts[part.ref] = _fact(draft, part, fact_kind, ends, value)
+    if value is None or (value.si == 0.0 and kind == "capacitor"):
+        _without_value(draft, part, kind, ends)
+    elif value.si == 0.0:
+        draft.tie(part.ref, *ends, 0.0, link=True)
+    else:
+        ends = _parasitics(draft, part, ends)
+        draft.wire(table, part.ref, *ends, _multiplied(part, kind, value.si))
+
+
+def add_voltage(draft: Draft, part: Part) -> None:
+    """An independent voltage source; one with an AC part or a waveform carries signal."""
+    ends = two_ends(part)
+    source = part.source
+    volts = source.dc if source is not None else part.number
+    if source is not None and volts is None:
+        volts = source.rest or 0.0
+    if ends is None or volts is None:
+        draft.loose(part.ref, [pin.net for pin in part.pins], f"volts of {part.ref}", "a DC value")
+        draft.facts[part.ref] = bare_fact(draft, part, "source")
+        return
+    draft.facts[part.ref] = _fact(draft, part, "source", ends, None)
+    placed = draft.tie(part.ref, *_series(draft, part, ends), volts)
+    if placed and source is not None and (source.ac is not None or source.waveform):
+        draft.signals.add(part.ref)
+
+
+def add_current(draft: Draft, part: Part) -> None:
+    """An independent current source, current from its first pin through itself to its second."""
+    ends = two_ends(part)
+    source = part.source
+    amps = source.dc if source is not None else part.number
+    if source is not None and amps is None:
+        amps = source.rest or 0.0
+    draft.facts[part.ref] = bare_fact(draft, part, "source")
+    if ends is None or amps is None:
+        draft.loose(part.ref, [pin.net for pin in part.pins], f"amperes of {part.ref}", "a DC value")
+        return
+    draft.wire("currents", part.ref, *ends, amps)
+    if source is not None and (source.ac is not None or source.waveform):
+        draft.signals.add(part.ref)
+
+
+def add_coupling(draft: Draft, part: Part) -> None:
+    """Coupled inductors; more than two are coupled in pairs. Runs after every inductor is placed."""
+    prefix = part.ref.rsplit(".", 1)[0] + "." if "." in part.ref else ""
+    names = [name if name in draft.inductors else prefix + name for name in part.controls]
+    factor = part.number
+    absent = [name for name in names if name not in draft.inductors]
+    if factor is None or absent or len(names) < 2 or not math.isfinite(factor) or abs(factor) > 1.0:
+        datum = f"inductors and factor of {part.ref}"
+        nets = [net for name in names if name in draft.inductors for net in _ends_of(draft, name)]
+        draft.loose(part.ref, nets, datum, "K with two inductors and a factor from -1 to 1", blocks_dc=False)
+        return
+    pairs = [(first, second) for place, first in enumerate(names) for second in names[place + 1 :]]
+    for first, second in pairs:
+        name = part.ref if len(pairs) == 1 else f"{part.ref}.{first}.{second}"
+        draft.couplings[name] = (first, second, factor)
+
+
+def add_potentiometer(draft: Draft, part: Part) -> None:
+    """A potentiometer at mid travel as two resistors; one drawn with two pins as its whole resistance."""
+    pins = {pin.number: pin.net for pin in part.pins}
+    value = part_value(draft, part, "ohm")
+    draft.facts[part.ref] = bare_fact(draft, part, "resistor")
+    if value is None or value.si == 0.0:
+        draft.loose(part.ref, pins.values(), f"value of {part.ref}", "a value in ohm")
+    elif {"1", "2", "3"} <= pins.keys():
+        draft.notes.add("parts", "potentiometer taken at mid travel, linear", part.ref)
+        draft.wire("resistors", f"{part.ref}.a", pins["1"], pins["2"], value.si / 2)
+        draft.wire("resistors", f"{part.ref}.b", pins["2"], pins["3"], value.si / 2)
+    elif len(pins) == 2:
+        draft.notes.add("parts", "variable resistor taken at its written value", part.ref)
+        first, second = pins.values()
+        draft.wire("resistors", part.ref, first, second, value.si)
+    else:
+        draft.loose(part.ref, pins.values(), f"pins of {part.ref}", "pins 1, 2 (wiper) and 3")
+
+
+def add_battery(draft: Draft, part: Part) -> None:
+    """A battery whose value text states volts; pin 1 is its positive pole."""
+    draft.facts[part.ref] = bare_fact(draft, part, "source")
+    poles = sorted(
+        part.pins, key=lambda pin: pin.number.strip("+") != "1" and not pin.function.startswith("+")
+    )
+    try:
+        volts = parse_engineering(part.value, "V").si
+    except NotAQuantity:
+        volts = None
+    if volts is None or len(poles) != 2:
+        supply = 'a value such as "9V", or its net under [rails]'
+        draft.loose(part.ref, [pin.net for pin in part.pins], f"volts of {part.ref}", supply)
+        return
+    draft.tie(part.ref, poles[0].net, poles[1].net, volts)
+
+
+def add_declared(draft: Draft, part: Part) -> bool:
+    """A part whose two-terminal model the intent gives (a relay coil, a motor); False where it gives none."""
+    said = draft.said(part.ref)
+    given = None if said is None else (said.resistance_ohm, said.inductance_h, said.capacitance_f)
+    if given is None or all(value is None for value in given):
+        return False
+    ends = _coil_pins(part)
+    if ends is None:
+        return False
+    resistance, inductance, capacitance = given
+    draft.facts[part.ref] = _fact(draft, part, "coil", ends, None)
+    if capacitance is not None:
+        draft.wire("capacitors", f"{part.ref}.c", *ends, capacitance)
+    if resistance is not None and inductance is not None:
+        middle = f"{part.ref}.n"
+        draft.wire("resistors", f"{part.ref}.r", ends[0], middle, resistance)
+        draft.wire("inductors", f"{part.ref}.l", middle, ends[1], inductance)
+    elif resistance is not None:
+        draft.wire("resistors", f"{part.ref}.r", *ends, resistance)
+    elif inductance is not None:
+        draft.wire("inductors", f"{part.ref}.l", *ends, inductance)
+    return True
+
+
+def two_ends(part: Part) -> tuple[str, str] | None:
+    """The two nets of a two-terminal part; pins doubled on one net count once."""
+    nets = list(dict.fromkeys(pin.net for pin in part.pins))
+    if len(part.pins) == 2:
+        return part.pins[0].net, part.pins[1].net
+    return (nets[0], nets[1]) if len(nets) == 2 else None
+
+
+def _coil_pins(part: Part) -> tuple[str, str] | None:
+    """The coil of a relay (A1, A2), else the only two pins."""
+    coil = {pin.number.upper(): pin.net for pin in part.pins if pin.number.upper() in ("A1", "A2")}
+    coil = coil or {
+        pin.function.upper(): pin.net for pin in part.pins if pin.function.upper() in ("A1", "A2")
+    }
+    return (coil["A1"], coil["A2"]) if len(coil) == 2 else two_ends(part)
+
+
+def _not_two_ended(draft: Draft, part: Part, kind: PartKind) -> None:
+    """One-ended parts do nothing; others are of a form that is not modelled."""
+    draft.facts[part.ref] = bare_fact(draft, part, kind)
+    if len(part.pins) > 1:
+        draft.loose(
+            part.ref, [pin.net for pin in part.pins], f"which pins of {part.ref} belong together", "two pins"
+        )
+
+
+def _without_value(draft: Draft, part: Part, kind: str, ends: tuple[str, str]) -> None:
+    unit = {"resistor": "ohm", "capacitor": "farad", "inductor": "henry"}[kind]
+    if kind == "inductor":
+        draft.tie(part.ref, *ends, 0.0, link=True)
+    supply = f"a value in {unit}; {part.value!r} is none" if part.value else f"a value in {unit}"
+    draft.loose(part.ref, ends, f"value of {part.ref}", supply, blocks_dc=kind == "resistor")
+
+
+def _fact(draft: Draft, part: Part, kind: PartKind, ends: tuple[str, str], value: Value | None) -> PartFact:
+    return PartFact(
+        ref=part.ref,
+        kind=kind,
+        terminals={"1": draft.net(ends[0]), "2": draft.net(ends[1])},
+        origin=part.origin,
+        value=value,
+        footprint=part.footprint,
+    )
+
+
+def _multiplied(part: Part, kind: str, si: float) -> float:
+    """`m` devices in parallel."""
+    count = part.params.get("m", 1.0)
+    return si * count if kind == "capacitor" else si / count
+
+
+def _parasitics(draft: Draft, part: Part, ends: tuple[str, str]) -> tuple[str, str]:
+    """Parallel and series resistance written on a capacitor or inductor."""
+    parallel = part.params.get("rpar")
+    if parallel:
+        draft.wire("resistors", f"{part.ref}.rpar", *ends, parallel)
+    return _series(draft, part, ends)
+
+
+def _series(draft: Draft, part: Part, ends: tuple[str, str]) -> tuple[str, str]:
+    """The nets of the ideal part behind its written series resistance, which becomes a resistor of its
+    own."""
+    series = part.params.get("rser")
+    if not series:
+        return ends
+    inner = f"{part.ref}.n"
+    draft.wire("resistors", f"{part.ref}.rser", ends[0], inner, series)
+    return inner, ends[1]
+
+
+def _ends_of(draft: Draft, name: str) -> tuple[str, str]:
+    wire = draft.inductors[name]
+    return wire.first, wire.second

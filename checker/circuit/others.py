@@ -1,0 +1,143 @@
+"""Parts that are no element: jumpers, fuses, connectors, test points, circuits without a model, lossless
+lines."""
+
+from __future__ import annotations
+
+import re
+from typing import Final
+
+from checker.circuit.devices import bare_fact
+from checker.circuit.draft import Draft, LoosePin
+from checker.circuit.elements import two_ends
+from checker.circuit.types import Unknown
+from checker.netlist.types import Part
+
+_SAFE: Final = frozenset({"input", "no_connect", "notconnected", "unconnected", "free"})
+"""Pin kinds that draw no current worth counting."""
+
+
+def add_closed(draft: Draft, part: Part) -> None:
+    """A closed jumper, a fuse or a bead: an ideal wire, noted."""
+    draft.facts[part.ref] = bare_fact(draft, part, "unmodelled")
+    ends = two_ends(part)
+    if ends is None:
+        add_unmodelled(draft, part)
+        return
+    draft.notes.add("parts", "closed jumper, fuse or bead taken as a wire", part.ref)
+    draft.tie(part.ref, *ends, 0.0, link=True)
+
+
+def add_open(draft: Draft, part: Part) -> None:
+    """An open jumper, a push button at rest or a crystal: no DC path, noted."""
+    draft.facts[part.ref] = bare_fact(draft, part, "unmodelled")
+    if re.search(r"XTAL|CRYSTAL", f"{part.symbol} {part.value}", re.IGNORECASE) or part.letter.upper() in (
+        "Y",
+        "QZ",
+    ):
+        nets = [pin.net for pin in part.pins]
+        draft.loose(
+            part.ref,
+            nets,
+            f"a model of the crystal {part.ref}",
+            "nothing yet: crystals are open",
+            blocks_dc=False,
+        )
+        return
+    draft.notes.add("parts", "open jumper or push button taken as open", part.ref)
+
+
+def add_connector(draft: Draft, part: Part) -> None:
+    """A connector without a defined impedance: its pins are open, noted where they reach elements."""
+    draft.facts[part.ref] = bare_fact(draft, part, "connector")
+    _pins(draft, part, "connector", "", "")
+
+
+def add_unmodelled(draft: Draft, part: Part) -> None:
+    """A part without a model; which of its pins matter is decided once the board is complete."""
+    draft.facts[part.ref] = bare_fact(draft, part, "unmodelled")
+    name = part.value or part.model
+    shown = f"{part.ref} ({name})" if name else part.ref
+    supply = 'its level in a [[state]], e.g. pins = {{ "{pin}" = "2.5 V" }}, or its net under [rails]'
+    if len({pin.net for pin in part.pins}) == 2:
+        supply = f'[[part]] ref = "{part.ref}" with resistance, inductance or capacitance'
+    _pins(draft, part, "", f"what {shown} does at {{pin}}", supply)
+
+
+def add_controlled(draft: Draft, part: Part) -> None:
+    """A controlled or behavioural source, not solved yet."""
+    draft.facts[part.ref] = bare_fact(draft, part, "source")
+    outputs = [pin.net for pin in part.pins[:2]]
+    draft.loose(part.ref, outputs, f"a solved model of {part.ref}", "controlled sources are not solved yet")
+
+
+def add_line(draft: Draft, part: Part) -> None:
+    """A lossless line, not solved yet; its ends are coaxial."""
+    draft.facts[part.ref] = bare_fact(draft, part, "unmodelled")
+    for pin in part.pins:
+        draft.lines[draft.net(pin.net)] = part.params.get("z0")
+    nets = [pin.net for pin in part.pins]
+    draft.loose(part.ref, nets, f"a solved model of {part.ref}", "transmission lines are not solved yet")
+
+
+def _pins(draft: Draft, part: Part, kind: str, datum: str, supply: str) -> None:
+    for pin in part.pins:
+        label = f"{part.ref}.{pin.number}"
+        draft.loose_pins.append(
+            LoosePin(
+                part=part.ref,
+                pin=pin.number,
+                net=draft.net(pin.net),
+                kind=kind or pin.kind,
+                datum=datum.format(pin=f"pin {pin.number}"),
+                supply=supply.format(pin=label),
+            )
+        )
+
+
+def settle(draft: Draft) -> None:
+    """Decide which loose parts and pins matter, now that every element is known; fills `draft.unknowns`."""
+    tables = (draft.resistors, draft.capacitors, draft.inductors, draft.voltages, draft.currents)
+    ends = [{net for wire in table.values() for net in (wire.first, wire.second)} for table in tables]
+    devices = {
+        net for table in (draft.bipolars, draft.diodes) for device in table.values() for net in device.nets
+    }
+    conducting = set().union(ends[0], *ends[2:], devices)
+    present = conducting | ends[1]
+    for loose in draft.loose_parts:
+        nets = tuple(net for net in loose.nets if net in present and draft.known_volts(net) is None)
+        conducts = any(net in conducting for net in nets)
+        draft.unknowns.append(
+            Unknown(
+                ref=loose.ref,
+                pin="",
+                nets=nets,
+                datum=loose.datum,
+                supply=loose.supply,
+                blocks_dc=loose.blocks_dc and conducts,
+            )
+        )
+    for pin in draft.loose_pins:
+        if pin.net in present and draft.known_volts(pin.net) is None:
+            _settle_pin(draft, pin, pin.net in conducting)
+
+
+def _settle_pin(draft: Draft, pin: LoosePin, conducts: bool) -> None:
+    """One pin on a net of unknown voltage that has elements."""
+    if f"{pin.part}.{pin.pin}" in draft.driven:
+        return
+    base = pin.kind.lower().split("+")[0]
+    if pin.kind == "connector":
+        draft.notes.add("connectors", "pins of connectors taken as open", pin.part)
+    elif "no_connect" in pin.kind.lower() or base in _SAFE:
+        draft.notes.add("parts", "inputs taken as drawing no current", pin.part)
+    else:
+        draft.unknowns.append(
+            Unknown(
+                ref=pin.part,
+                pin=pin.pin,
+                nets=(pin.net,),
+                datum=pin.datum,
+                supply=pin.supply,
+                blocks_dc=conducts,
+            )
+        )

@@ -1,0 +1,147 @@
+"""SPICE-style model parameters: names, values where a card is silent, other spellings, scaling with area.
+
+Source: the parameter tables of the SPICE 2G6/3F5 user guides (Gummel-Poon bipolar, junction diode), from
+memory. `inf` stands for "effect absent" where the guide's default is infinite; a written 0 means the same
+there.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Mapping
+from typing import Final
+
+import numpy as np
+
+INF: Final = float(np.inf)
+
+BIPOLAR: Final[Mapping[str, float]] = {
+    "is": 1e-16,
+    "bf": 100.0,
+    "nf": 1.0,
+    "vaf": INF,
+    "ikf": INF,
+    "ise": 0.0,
+    "ne": 1.5,
+    "br": 1.0,
+    "nr": 1.0,
+    "var": INF,
+    "ikr": INF,
+    "isc": 0.0,
+    "nc": 2.0,
+    "rb": 0.0,
+    "irb": INF,
+    "rbm": 0.0,
+    "re": 0.0,
+    "rc": 0.0,
+    "cje": 0.0,
+    "vje": 0.75,
+    "mje": 0.33,
+    "tf": 0.0,
+    "xtf": 0.0,
+    "vtf": INF,
+    "itf": 0.0,
+    "ptf": 0.0,
+    "cjc": 0.0,
+    "vjc": 0.75,
+    "mjc": 0.33,
+    "xcjc": 1.0,
+    "tr": 0.0,
+    "cjs": 0.0,
+    "vjs": 0.75,
+    "mjs": 0.0,
+    "xtb": 0.0,
+    "eg": 1.11,
+    "xti": 3.0,
+    "fc": 0.5,
+    "kf": 0.0,
+    "af": 1.0,
+}
+"""`rbm` follows `rb` where it is not given."""
+
+DIODE: Final[Mapping[str, float]] = {
+    "is": 1e-14,
+    "n": 1.0,
+    "rs": 0.0,
+    "cjo": 0.0,
+    "vj": 1.0,
+    "m": 0.5,
+    "tt": 0.0,
+    "eg": 1.11,
+    "xti": 3.0,
+    "bv": INF,
+    "ibv": 1e-3,
+    "fc": 0.5,
+    "isr": 0.0,
+    "nr": 2.0,
+    "ikf": INF,
+    "kf": 0.0,
+    "af": 1.0,
+}
+
+BIPOLAR_SPELLINGS: Final[Mapping[str, str]] = {
+    "va": "vaf",
+    "vb": "var",
+    "vbf": "vaf",
+    "ik": "ikf",
+    "jbf": "ikf",
+    "jbr": "ikr",
+    "jlc": "isc",
+    "jle": "ise",
+    "c2": "ise_over_is",
+    "c4": "isc_over_is",
+    "pe": "vje",
+    "me": "mje",
+    "pc": "vjc",
+    "mc": "mjc",
+    "ps": "vjs",
+    "ms": "mjs",
+    "ccs": "cjs",
+    "csub": "cjs",
+    "psub": "vjs",
+    "esub": "mjs",
+    "jrb": "irb",
+    "iob": "irb",
+    "tref": "tnom",
+    "t_measured": "tnom",
+    "pt": "xti",
+    "tb": "xtb",
+    "tcb": "xtb",
+}
+"""Older and other spellings of the same bipolar parameter."""
+
+DIODE_SPELLINGS: Final[Mapping[str, str]] = {
+    "cj0": "cjo",
+    "cj": "cjo",
+    "pb": "vj",
+    "mj": "m",
+    "vb": "bv",
+    "vrb": "bv",
+    "js": "is",
+    "ik": "ikf",
+    "tref": "tnom",
+    "t_measured": "tnom",
+}
+
+ZERO_IS_ABSENT: Final = frozenset({"vaf", "var", "ikf", "ikr", "irb", "vtf", "bv"})
+"""A written 0 means infinite: the effect is switched off."""
+
+BIPOLAR_TIMES_AREA: Final = (
+    "is",
+    "ise",
+    "isc",
+    "ikf",
+    "ikr",
+    "irb",
+    "itf",
+    "cje",
+    "cjc",
+    "cjs",
+)
+BIPOLAR_OVER_AREA: Final = ("rb", "rbm", "re", "rc")
+DIODE_TIMES_AREA: Final = ("is", "isr", "ikf", "ibv", "cjo")
+DIODE_OVER_AREA: Final = ("rs",)
+
+SILENT: Final = frozenset(
+    {"level", "tnom", "vceo", "vcbo", "icrating", "iave", "vpk", "irms", "isurge", "mfg", "type"}
+)
+"""Written in models without an effect on what is computed here: no remark is made."""

@@ -1,0 +1,157 @@
+"""Which pin is which terminal: functions, simulation pin maps, symbol names, and cards by package, in that
+order."""
+
+from __future__ import annotations
+
+import re
+from collections.abc import Mapping
+from dataclasses import dataclass
+from typing import Final
+
+from checker.cards.pins import pin_map
+from checker.cards.types import Card
+from checker.circuit.notes import Notes
+from checker.circuit.parts import symbol_name
+from checker.netlist.types import Part
+
+_WORDS: Final = {
+    "BASE": "B",
+    "COLLECTOR": "C",
+    "EMITTER": "E",
+    "ANODE": "A",
+    "CATHODE": "K",
+    "KATHODE": "K",
+    "SUBSTRATE": "S",
+    "DRAIN": "D",
+    "GATE": "G",
+    "SOURCE": "S",
+}
+_FUNCTION: Final = re.compile(r"([A-Z]+?)[_ ]?(\d*)")
+_SUFFIX: Final = re.compile(r"_([BCES]{3,4})$", re.IGNORECASE)
+_ORDER: Final = {"bipolar": "CBE", "diode": "AK"}
+"""Terminal order of SPICE elements."""
+_WANTED: Final = {"bipolar": frozenset("CBE"), "diode": frozenset("AK")}
+
+
+@dataclass(frozen=True, slots=True, kw_only=True)
+class Unit:
+    """One device of a part: `suffix` "" or ".A", ".B"...; `nets` by terminal letter."""
+
+    suffix: str
+    nets: Mapping[str, str]
+
+
+def spice_terminals(part: Part, kind: str) -> tuple[Unit, ...]:
+    """Terminals of a SPICE element by position: C B E (S), or A K; empty where pins are missing."""
+    letters = _ORDER[kind] + ("S" if kind == "bipolar" else "")
+    nets = {letter: pin.net for letter, pin in zip(letters, part.pins, strict=False)}
+    return (Unit(suffix="", nets=nets),) if _WANTED[kind] <= nets.keys() else ()
+
+
+def kicad_terminals(part: Part, kind: str, card: Card | None, notes: Notes) -> tuple[Unit, ...]:
+    """Terminals of a schematic part; empty where nothing tells them apart.
+
+    `kind` is "bipolar" or "diode". A disagreement between symbol and card about the pads is noted.
+    """
+    wanted = _WANTED[kind]
+    units = _by_function(part, wanted) or _by_number(part, wanted)
+    by_card = pin_map(card, part.footprint) if card is not None else None
+    if units:
+        _compare(part, units, by_card, notes)
+        return units
+    for letters in (_simulation_pins(part, kind), _symbol_order(part), by_card):
+        units = _from_pads(part, letters, wanted)
+        if units:
+            return units
+    if kind == "diode" and {pin.number for pin in part.pins} == {"1", "2"}:
+        notes.add("pins", "pin 1 taken as cathode and pin 2 as anode, as editor symbols have them", part.ref)
+        return _from_pads(part, {"1": "K", "2": "A"}, wanted)
+    return ()
+
+
+def letter_of(function: str) -> tuple[str, str]:
+    """(terminal letter, unit number as text) of a pin function: "B1" is ("B", "1"), "Emitter" is ("E",
+    "")."""
+    found = _FUNCTION.fullmatch(function.upper().strip("~ "))
+    if found is None:
+        return "", ""
+    word, unit = found.groups()
+    return _WORDS.get(word, word), unit
+
+
+def _by_function(part: Part, wanted: frozenset[str]) -> tuple[Unit, ...]:
+    """Terminals by pin function; the one pin that an export leaves out because nothing is on it gets its own
+    net."""
+    units: dict[str, dict[str, set[str]]] = {}
+    for pin in part.pins:
+        letter, unit = letter_of(pin.function)
+        units.setdefault(unit, {}).setdefault(letter, set()).add(pin.net)
+    if len(units) == 1 and len(part.pins) == len(wanted) - 1:
+        ((unit, pins),) = units.items()
+        for letter in wanted - pins.keys():
+            pins[letter] = {f"{part.ref}.{letter}"}
+    return _units(units, wanted)
+
+
+def _by_number(part: Part, wanted: frozenset[str]) -> tuple[Unit, ...]:
+    """Old symbols number their pins by letter."""
+    pins: dict[str, set[str]] = {}
+    for pin in part.pins:
+        pins.setdefault(pin.number.upper(), set()).add(pin.net)
+    return _units({"": pins}, wanted)
+
+
+def _units(units: Mapping[str, Mapping[str, set[str]]], wanted: frozenset[str]) -> tuple[Unit, ...]:
+    """Complete devices whose terminals each lie on one net; empty if any is ambiguous."""
+    complete = {unit: pins for unit, pins in units.items() if wanted <= pins.keys()}
+    if not complete or any(len(pins[letter]) != 1 for pins in complete.values() for letter in wanted):
+        return ()
+    suffixes = [""] if len(complete) == 1 else [f".{chr(ord('A') + index)}" for index in range(len(complete))]
+    return tuple(
+        Unit(suffix=suffix, nets={letter: next(iter(complete[unit][letter])) for letter in sorted(wanted)})
+        for suffix, unit in zip(suffixes, sorted(complete), strict=True)
+    )
+
+
+def _from_pads(part: Part, letters: Mapping[str, str] | None, wanted: frozenset[str]) -> tuple[Unit, ...]:
+    """Devices from a map pad -> terminal ("1": "B", or "B1" for a dual)."""
+    if not letters:
+        return ()
+    units: dict[str, dict[str, set[str]]] = {}
+    for pin in part.pins:
+        letter, unit = letter_of(letters.get(pin.number, ""))
+        units.setdefault(unit, {}).setdefault(letter, set()).add(pin.net)
+    return _units(units, wanted)
+
+
+def _simulation_pins(part: Part, kind: str) -> dict[str, str] | None:
+    """`Sim.Pins` ("1=C 2=B 3=E") or the older node sequence ("3,2,1")."""
+    text = part.fields.get("Sim.Pins", "")
+    if text:
+        pairs = [pair.partition("=") for pair in text.split()]
+        return {pad: letter.upper() for pad, _, letter in pairs}
+    sequence = re.split(r"[\s,]+", part.fields.get("Spice_Node_Sequence", "").strip())
+    if len(sequence) >= len(_ORDER[kind]):
+        return dict(zip(sequence, _ORDER[kind], strict=False))
+    return None
+
+
+def _symbol_order(part: Part) -> dict[str, str] | None:
+    """Pads in the order that the symbol's name spells: Q_NPN_BCE."""
+    for name in (symbol_name(part), part.value):
+        found = _SUFFIX.search(name)
+        if found is not None:
+            return {str(place): letter for place, letter in enumerate(found[1].upper(), start=1)}
+    return None
+
+
+def _compare(part: Part, units: tuple[Unit, ...], by_card: Mapping[str, str] | None, notes: Notes) -> None:
+    """Note where the card's pads for this footprint would give other terminals than the symbol."""
+    if not by_card or len(units) != 1 or not all(pin.number in by_card for pin in part.pins):
+        return
+    nets: dict[str, set[str]] = {}
+    for pin in part.pins:
+        nets.setdefault(by_card[pin.number], set()).add(pin.net)
+    if any(nets.get(letter) != {net} for letter, net in units[0].nets.items()):
+        pads = ", ".join(f"{pad}={letter}" for pad, letter in sorted(by_card.items()))
+        notes.add("pins", f"the symbol's pins are used, but the part in this package has {pads}", part.ref)

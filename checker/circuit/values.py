@@ -1,0 +1,52 @@
+"""The value of a two-terminal part, with its tolerance, and the tolerances assumed where nothing says."""
+
+from __future__ import annotations
+
+import math
+from typing import Final
+
+from checker.circuit.draft import Draft
+from checker.netlist.types import Part
+from checker.quantity.parse import parse_engineering
+from checker.quantity.value import Value
+from checker.trouble import NotAQuantity
+
+TOLERANCE: Final = {"ohm": 0.05, "F": 0.20, "H": 0.20}
+"""Fractions assumed where neither value text nor intent says (common practice, no source: E24 carbon film
+and general-purpose capacitors and inductors)."""
+NAMES: Final = {"ohm": "resistors", "F": "capacitors", "H": "inductors"}
+
+
+def part_value(draft: Draft, part: Part, unit: str) -> Value | None:
+    """The part's value in SI [`unit`: "ohm", "F", "H"], or None where it says none; notes an assumed
+    tolerance."""
+    said = draft.said(part.ref)
+    intended = None
+    if said is not None:
+        intended = {"ohm": said.resistance_ohm, "F": said.capacitance_f, "H": said.inductance_h}[unit]
+    found = _written(part, unit) if intended is None else (intended, None)
+    if found is None or not math.isfinite(found[0]) or found[0] < 0.0:
+        return None
+    si, tolerance = found
+    if said is not None and said.tolerance is not None:
+        tolerance = said.tolerance
+    if tolerance is None and si > 0.0:
+        tolerance = TOLERANCE[unit]
+        draft.notes.add("tolerances", f"{NAMES[unit]} without a written tolerance: ±{tolerance * 100:g} %")
+    origin = part.origin if intended is None or said is None else said.origin
+    return Value(si=si, unit=unit, text=part.value, tolerance=tolerance, origin=origin)
+
+
+def _written(part: Part, unit: str) -> tuple[float, float | None] | None:
+    """(SI value, tolerance) as the netlist writes it."""
+    if part.number is not None:
+        tolerance = part.params.get("tol")
+        return part.number, tolerance
+    text = part.fields.get("Spice_Model", "") if part.fields.get("Spice_Primitive") else part.value
+    for candidate in dict.fromkeys((text, part.value)):
+        try:
+            reading = parse_engineering(candidate, unit)
+        except NotAQuantity:
+            continue
+        return reading.si, reading.tolerance
+    return None

@@ -1,0 +1,34 @@
+"""Whether a part is drawn but not fitted, by its value or its fields. The spellings are common practice, no
+source."""
+
+from __future__ import annotations
+
+import re
+from collections.abc import Mapping
+
+_WORDS = re.compile(
+    r"(?<![A-Za-z0-9])(dnp|dnf|dni|dns|do\s*not\s*(?:fit|populate|place|install|stuff)|not\s*(?:fitted|populated)"
+    r"|no\s*(?:pop|stuff|fit|mount)|unpopulated|n\.?\s?f\.?$)(?![A-Za-z0-9])",
+    re.IGNORECASE,
+)
+_FIELDS = ("dnp", "dnf", "dni", "donotpopulate", "donotfit", "donotplace", "nopop")
+_FITTED_FIELDS = ("populate", "fitted", "fit", "mount")
+_NO = ("", "0", "n", "no", "false", "-", "~")
+_BARE_NO = ("0", "n", "no", "false")
+
+
+def is_left_out(value: str, fields: Mapping[str, str]) -> bool:
+    """True where the value says so ("DNP", "10k DNF"), a field of that name is set (a property without value
+    counts as set), or a field such as `Populate` says no."""
+    if _WORDS.search(value):
+        return True
+    for key, text in fields.items():
+        name = re.sub(r"[\s_-]", "", key).lower()
+        word = text.strip().lower()
+        if name in _FIELDS and (word not in _NO or (word == "" and key == "dnp")):
+            return True
+        if name in _FITTED_FIELDS and (word in _BARE_NO or _WORDS.search(text)):
+            return True
+        if name in ("config", "variant", "assembly", "bom") and _WORDS.search(text):
+            return True
+    return False

@@ -1,0 +1,230 @@
+"""KiCad S-expression export, versions D and E, into a `Netlist`.
+
+Nets are keyed by code, since names repeat or are empty. Pin names and types stand on the nodes in version E
+and in the library parts in version D.
+"""
+
+from __future__ import annotations
+
+import re
+from collections import Counter, defaultdict
+from collections.abc import Mapping
+from dataclasses import dataclass, replace
+
+from checker.netlist.fitting import is_left_out
+from checker.netlist.limits import ReadLimits, over
+from checker.netlist.sexpr import Parsed, Tree, child, children, own_text, parse, text_of
+from checker.netlist.types import Net, Netlist, Part, Pin, Remark
+from checker.quantity.value import Origin
+from checker.trouble import InputTrouble
+
+_VERSIONS = ("D", "E")
+_LETTERS = re.compile(r"[^\W\d_]+")
+_DIGITS = re.compile(r"(\d+)")
+_OF_THE_TOOL = ("Sheetname", "Sheetfile", "ki_keywords", "ki_fp_filters", "ki_description")
+
+_PinTable = Mapping[tuple[str, str], Mapping[str, tuple[str, str]]]
+"""(library, part) to pin number to (name, type)."""
+
+
+@dataclass(frozen=True, slots=True, kw_only=True)
+class _Nodes:
+    nets: dict[str, Net]
+    pins: dict[str, list[Pin]]
+    lines: dict[str, int]
+
+
+def read_kicad(text: str, *, name: str, sha256: str, limits: ReadLimits) -> Netlist:
+    """Read the export in `text`; `name` is the file's name in messages and origins.
+
+    Raises `InputTrouble` for damaged text, no component list, or a limit exceeded.
+    """
+    parsed = parse(text, name=name, depth=limits.depth)
+    root = parsed.root
+    if not child(root, "components"):
+        raise InputTrouble(
+            "the export has no (components ...) list; export the netlist again", file=name, line=1
+        )
+    remarks = list(_version_remark(root, name))
+    nodes = _nodes(parsed)
+    parts = _parts(parsed, nodes, name, limits)
+    parts = _told_apart(parts, remarks)
+    remarks += _lost_nodes(parts, nodes, name)
+    remarks += _doubled_pins(parts)
+    return Netlist(
+        path=name,
+        format="kicad",
+        sha256=sha256,
+        title=_title(root),
+        parts=tuple(parts),
+        nets=nodes.nets,
+        remarks=tuple(remarks),
+    )
+
+
+def _version_remark(root: Tree, name: str) -> tuple[Remark, ...]:
+    version = text_of(root, "version")
+    if version in _VERSIONS:
+        return ()
+    text = f"export version {version or 'not given'}: only D and E are known; read in the same way"
+    return (Remark(text=text, origin=Origin(kind="netlist", file=name, line=1)),)
+
+
+def _title(root: Tree) -> str:
+    sheets = children(child(root, "design"), "sheet")
+    return text_of(child(sheets[0], "title_block"), "title") if sheets else ""
+
+
+def _nodes(parsed: Parsed) -> _Nodes:
+    """Nets with unique keys, and the pins of each reference in the order of the file."""
+    trees = children(child(parsed.root, "nets"), "net")
+    codes = [text_of(tree, "code") or str(index) for index, tree in enumerate(trees, start=1)]
+    names = [text_of(tree, "name") for tree in trees]
+    nets: dict[str, Net] = {}
+    pins: dict[str, list[Pin]] = defaultdict(list)
+    lines: dict[str, int] = {}
+    uses = Counter(names)
+    for index, tree in enumerate(trees):
+        key = _net_key(names[index], codes[index], uses, nets)
+        nets[key] = Net(key=key, name=names[index])
+        for node in children(tree, "node"):
+            pin = Pin(
+                number=text_of(node, "pin"),
+                net=key,
+                function=text_of(node, "pinfunction"),
+                kind=text_of(node, "pintype"),
+            )
+            ref = text_of(node, "ref")
+            if pin not in pins[ref]:
+                pins[ref].append(pin)
+            lines.setdefault(ref, parsed.lines["net"][index] if index < len(parsed.lines["net"]) else 0)
+    return _Nodes(nets=nets, pins=pins, lines=lines)
+
+
+def _net_key(name: str, code: str, uses: Counter[str], taken: Mapping[str, Net]) -> str:
+    key = name if name and uses[name] == 1 and name not in taken else f"{name}#{code}"
+    while key in taken:
+        key += "#"
+    return key
+
+
+def _parts(parsed: Parsed, nodes: _Nodes, name: str, limits: ReadLimits) -> list[Part]:
+    trees = children(child(parsed.root, "components"), "comp")
+    if len(trees) > limits.parts:
+        over("parts", limits.parts, f"{len(trees)} parts", file=name)
+    table = _pin_table(parsed.root)
+    lines = parsed.lines["comp"]
+    return [
+        _part(tree, nodes, table, name, lines[index] if len(lines) == len(trees) else 0)
+        for index, tree in enumerate(trees)
+    ]
+
+
+def _pin_table(root: Tree) -> _PinTable:
+    table: dict[tuple[str, str], dict[str, tuple[str, str]]] = {}
+    for libpart in children(child(root, "libparts"), "libpart"):
+        library = text_of(libpart, "lib")
+        pins = {
+            text_of(pin, "num"): (text_of(pin, "name"), text_of(pin, "type"))
+            for pin in children(child(libpart, "pins"), "pin")
+        }
+        aliases = [own_text(alias) for alias in children(child(libpart, "aliases"), "alias")]
+        for part in (text_of(libpart, "part"), *aliases):
+            table.setdefault((library, part), pins)
+    return table
+
+
+def _part(tree: Tree, nodes: _Nodes, table: _PinTable, name: str, line: int) -> Part:
+    ref = text_of(tree, "ref")
+    source = child(tree, "libsource")
+    library, symbol = text_of(source, "lib"), text_of(source, "part")
+    known = table.get((library, symbol), {})
+    fields = _fields(tree)
+    value = text_of(tree, "value")
+    letters = _LETTERS.match(ref)
+    pins = [
+        replace(pin, function=pin.function or known[pin.number][0], kind=pin.kind or known[pin.number][1])
+        if pin.number in known
+        else pin
+        for pin in nodes.pins.get(ref, ())
+    ]
+    return Part(
+        ref=ref,
+        letter=letters.group().upper() if letters else "",
+        value=value,
+        pins=tuple(sorted(pins, key=_pin_order)),
+        origin=Origin(kind="netlist", file=name, line=line, sheet=text_of(child(tree, "sheetpath"), "names")),
+        fields=fields,
+        footprint=text_of(tree, "footprint"),
+        symbol=f"{library}:{symbol}" if library or symbol else "",
+        description=text_of(tree, "description") or text_of(source, "description"),
+        do_not_fit=bool(child(tree, "dnp")) or is_left_out(value, fields),
+    )
+
+
+def _fields(tree: Tree) -> dict[str, str]:
+    """User fields, then properties that no field repeats (`Sim.*`, `dnp`); an entry without value is empty
+    text."""
+    fields = {text_of(entry, "name"): own_text(entry) for entry in children(child(tree, "fields"), "field")}
+    for entry in children(tree, "property"):
+        key = text_of(entry, "name")
+        if key not in _OF_THE_TOOL:
+            fields.setdefault(key, text_of(entry, "value"))
+    if datasheet := text_of(tree, "datasheet"):
+        fields.setdefault("Datasheet", datasheet)
+    return fields
+
+
+def _pin_order(pin: Pin) -> tuple[list[tuple[int, str]], str]:
+    """Numbers by size, so that neither export order nor `10` before `2` matters."""
+    pieces = _DIGITS.split(pin.number)
+    return [(int(piece), "") if piece.isdecimal() else (-1, piece) for piece in pieces], pin.net
+
+
+def _told_apart(parts: list[Part], remarks: list[Remark]) -> list[Part]:
+    """Parts with unique references. Nodes name only a reference: of several parts behind one, nobody can say
+    whose pins they are, so all of them are marked as not understood."""
+    uses = Counter(part.ref for part in parts)
+    taken = set(uses)
+    result: list[Part] = []
+    seen: Counter[str] = Counter()
+    for part in parts:
+        if uses[part.ref] == 1:
+            result.append(part)
+            continue
+        seen[part.ref] += 1
+        ref = part.ref if seen[part.ref] == 1 else _free(part.ref, seen[part.ref], taken)
+        reason = f"{uses[part.ref]} parts bear the reference {part.ref}: their pins cannot be told apart"
+        pins = part.pins if ref == part.ref else ()
+        result.append(replace(part, ref=ref, pins=pins, unknown=reason))
+        remarks.append(Remark(text=f"{reason}; this one is called {ref}", origin=part.origin, parts=(ref,)))
+    return result
+
+
+def _free(ref: str, count: int, taken: set[str]) -> str:
+    while f"{ref}#{count}" in taken:
+        count += 1
+    taken.add(f"{ref}#{count}")
+    return f"{ref}#{count}"
+
+
+def _lost_nodes(parts: list[Part], nodes: _Nodes, name: str) -> list[Remark]:
+    known = {part.ref for part in parts}
+    return [
+        Remark(
+            text=f"nets name pins of {ref or 'a part without reference'}, which is not in the component list",
+            origin=Origin(kind="netlist", file=name, line=nodes.lines.get(ref, 0)),
+            parts=(ref,) if ref else (),
+        )
+        for ref in sorted(set(nodes.pins) - known)
+    ]
+
+
+def _doubled_pins(parts: list[Part]) -> list[Remark]:
+    remarks = []
+    for part in parts:
+        numbers = Counter(pin.number for pin in part.pins)
+        for number in sorted(number for number, count in numbers.items() if count > 1):
+            text = f"pin {number} of {part.ref} is on {numbers[number]} nets at once"
+            remarks.append(Remark(text=text, origin=part.origin, parts=(part.ref,)))
+    return remarks

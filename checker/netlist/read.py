@@ -1,0 +1,53 @@
+"""The door to the readers: which dialect the content is in (never the file's suffix)."""
+
+from __future__ import annotations
+
+import hashlib
+import re
+from pathlib import Path
+
+from checker.netlist.kicad_read import read_kicad
+from checker.netlist.limits import ReadLimits
+from checker.netlist.spice_read import read_spice
+from checker.netlist.text import decode, display_name, read_bytes
+from checker.netlist.types import Netlist
+from checker.trouble import InputTrouble
+
+_EXPORT = re.compile(r"\(\s*export[\s()]")
+
+
+def read_netlist(
+    path: Path, *, include_dirs: tuple[Path, ...] = (), limits: ReadLimits | None = None
+) -> Netlist:
+    """Read a SPICE-style text or a KiCad S-expression export (versions D and E) into one `Netlist`.
+
+    `path` is also the name used in the result, with forward slashes. SPICE includes are followed only inside
+    the netlist's own folder and `include_dirs`. `limits` defaults to `ReadLimits()`. Raises `InputTrouble`
+    for a file that cannot be read, is neither format, or exceeds a limit; what is merely not understood
+    becomes a remark or a part's `unknown`.
+    """
+    limits = limits or ReadLimits()
+    name = display_name(path)
+    data = read_bytes(path, name, budget=limits.bytes, limit=limits.bytes)
+    text = decode(data, name)
+    if not text.strip():
+        raise InputTrouble("is empty; expected a netlist", file=name)
+    sha256 = hashlib.sha256(data).hexdigest()
+    start = text.lstrip()
+    if not start.startswith("("):
+        return read_spice(
+            text,
+            name=name,
+            sha256=sha256,
+            path=path,
+            include_dirs=include_dirs,
+            limits=limits,
+            size=len(data),
+        )
+    if not _EXPORT.match(start):
+        raise InputTrouble(
+            "an S-expression, but not a netlist export (expected `(export ...`); export the netlist",
+            file=name,
+            line=1,
+        )
+    return read_kicad(text, name=name, sha256=sha256, limits=limits)

@@ -1,0 +1,251 @@
+"""From declarations to the flat netlist: nets joined, models evaluated where they are in force, subcircuits
+expanded."""
+
+from __future__ import annotations
+
+from collections.abc import Iterator
+from dataclasses import dataclass, replace
+
+from checker.netlist.limits import ReadLimits, over
+from checker.netlist.spice_deck import Deck, Definition, Element
+from checker.netlist.spice_model import model_name, read_model
+from checker.netlist.spice_parts import part_of
+from checker.netlist.spice_scope import Scope
+from checker.netlist.types import Model, Net, Part, Remark
+from checker.quantity.value import Origin
+from checker.trouble import NotAQuantity
+
+GROUND = "0"
+_GROUND_NAMES = frozenset({"0", "gnd", "gnd!"})
+
+
+@dataclass(frozen=True, slots=True, kw_only=True)
+class Frame:
+    """One instance of a definition. `ports`: lower-case port name to net key. `outer`: the frame whose
+    definition holds this one's, where models and subcircuits that are not found here are looked for."""
+
+    definition: Definition
+    scope: Scope
+    prefix: str
+    ports: dict[str, str]
+    outer: Frame | None
+    level: int
+    multiplier: float
+    note: str
+    models: dict[str, str | None]
+    """Cache: lower-case name to the key text it means here."""
+
+    def around(self) -> Iterator[Frame]:
+        frame: Frame | None = self
+        while frame is not None:
+            yield frame
+            frame = frame.outer
+
+
+class Expansion:
+    """The growing result. `nets` by key; `models` by lower-case name."""
+
+    def __init__(self, deck: Deck, limits: ReadLimits) -> None:
+        self.deck = deck
+        self.limits = limits
+        self.parts: list[Part] = []
+        self.nets: dict[str, Net] = {}
+        self.models: dict[str, Model] = {}
+        self.remarks: list[Remark] = []
+        self.expanded = 0
+        self._spelling: dict[str, str] = {}
+        self._said: set[tuple[str, str, int]] = set()
+
+    def run(self) -> None:
+        """Expand the board. Raises `InputTrouble` where a limit is exceeded."""
+        root = self.deck.root
+        scope = Scope(root.params, outer=None, limits=self.limits)
+        frame = Frame(
+            definition=root,
+            scope=scope,
+            prefix="",
+            ports={},
+            outer=None,
+            level=0,
+            multiplier=1.0,
+            note="",
+            models={},
+        )
+        self.settle(frame)
+        for name in root.models:
+            self.model(frame, name)
+        self.fill(frame)
+
+    def settle(self, frame: Frame) -> None:
+        """Evaluate the parameters of a frame; those that do not compute are named once."""
+        for name, reason in frame.scope.settle().items():
+            card = frame.definition.param_cards.get(name)
+            if card is not None:
+                self.say(card.remark(f"the parameter {name[:40]} is unknown: {reason}"))
+
+    def say(self, remark: Remark) -> None:
+        """A remark, once a place however often the subcircuit is used."""
+        key = (remark.text, remark.origin.file, remark.origin.line)
+        if key not in self._said:
+            self._said.add(key)
+            self.remarks.append(remark)
+
+    def fill(self, frame: Frame) -> None:
+        for element in frame.definition.elements:
+            self.expanded += 1
+            if self.expanded > self.limits.expanded:
+                card = element.card
+                over(
+                    "expanded",
+                    self.limits.expanded,
+                    "too many expanded parts",
+                    file=card.file,
+                    line=card.line,
+                )
+            definition, holder = self.subcircuit(frame, element)
+            if definition is not None and holder is not None:
+                self.instance(frame, element, definition, holder)
+                continue
+            part = part_of(element, _At(self, frame, element))
+            if part is None:
+                text = f"the line {element.card.text[:60]!r} has too few words for a part and is passed over"
+                self.say(element.card.remark(text))
+            else:
+                self.parts.append(part)
+
+    def subcircuit(self, frame: Frame, element: Element) -> tuple[Definition | None, Frame | None]:
+        """The definition that an X element names, and the frame it was found in."""
+        if element.letter != "X" or len(element.words.positional) < 2:
+            return None, None
+        name = element.words.positional[-1].lower()
+        for around in frame.around():
+            if name in around.definition.subcircuits:
+                return around.definition.subcircuits[name], around
+        return None, None
+
+    def instance(self, frame: Frame, element: Element, definition: Definition, holder: Frame) -> None:
+        card = element.card
+        if frame.level >= self.limits.depth:
+            over("depth", self.limits.depth, "subcircuits within subcircuits", file=card.file, line=card.line)
+        place = _At(self, frame, element)
+        nodes = element.words.positional[1:-1]
+        if len(nodes) != len(definition.ports):
+            reason = (
+                f"{len(nodes)} nodes for the {len(definition.ports)} of subcircuit {definition.name[:40]}"
+            )
+            part = part_of(element, place)
+            if part is not None:
+                self.parts.append(replace(part, unknown=reason))
+            return
+        scope, multiplier = self.arguments(element, definition, holder, place)
+        where = f"{frame.note} in " if frame.note else ""
+        inner = Frame(
+            definition=definition,
+            scope=scope,
+            prefix=f"{frame.prefix}{element.ref}.",
+            ports={
+                port.lower(): place.net(f"?{element.ref}.{index}" if node == "?" else node)
+                for index, (port, node) in enumerate(zip(definition.ports, nodes, strict=True), start=1)
+            },
+            outer=holder,
+            level=frame.level + 1,
+            multiplier=frame.multiplier * multiplier,
+            note=f"{where}{element.ref}, line {card.line}",
+            models={},
+        )
+        self.settle(inner)
+        self.fill(inner)
+
+    def arguments(
+        self, element: Element, definition: Definition, holder: Frame, place: _At
+    ) -> tuple[Scope, float]:
+        """Parameters of an instance: the definition's own, overridden by the pairs on the X card, which are
+        evaluated where that card stands. `m` counts parallel instances unless the subcircuit has a parameter
+        of that name."""
+        scope = Scope({**definition.defaults, **definition.params}, outer=holder.scope, limits=self.limits)
+        multiplier = 1.0
+        for name, text in element.words.named.items():
+            try:
+                value = place.number(text)
+            except NotAQuantity as error:
+                self.say(element.card.remark(f"{name[:40]} is passed over: {error}", place.ref(element.name)))
+                continue
+            if name == "m" and "m" not in definition.defaults:
+                multiplier = value
+            else:
+                scope.give(name, value)
+        return scope, multiplier
+
+    def net(self, frame: Frame, name: str) -> str:
+        """Key of the net a node name means in `frame`; the first spelling seen is the one that stays."""
+        lower = name.lower()
+        if lower in frame.ports:
+            return frame.ports[lower]
+        if lower in _GROUND_NAMES:
+            key = GROUND
+        elif lower in self.deck.global_nets:
+            key = self._spelling.setdefault(lower, name)
+        else:
+            full = frame.prefix + name
+            key = self._spelling.setdefault(full.lower(), full)
+        if key not in self.nets:
+            self.nets[key] = Net(key=key, name=name if key == GROUND else key)
+        return key
+
+    def model(self, frame: Frame, name: str) -> str | None:
+        """Key text of the model in force under a name, evaluated and filed on first use."""
+        lower = name.lower()
+        if lower not in frame.models:
+            frame.models[lower] = self._find_model(frame, lower)
+        return frame.models[lower]
+
+    def _find_model(self, frame: Frame, lower: str) -> str | None:
+        for around in frame.around():
+            if lower in around.definition.models:
+                if around is frame:
+                    return self._file_model(frame, lower)
+                return self.model(around, lower)
+        return None
+
+    def _file_model(self, frame: Frame, lower: str) -> str:
+        """File a model under its name; one of a subcircuit that differs from what stands there gets the name
+        of the subcircuit, and if it differs from instance to instance, that of the instance, in front."""
+        card = frame.definition.models[lower]
+        name = model_name(card)
+        model, remarks = read_model(card, frame.scope, name)
+        for remark in remarks:
+            self.say(remark)
+        for full in (name, f"{frame.definition.name}.{name}", f"{frame.prefix}{name}"):
+            named = replace(model, name=full)
+            if self.models.setdefault(full.lower(), named) == named:
+                return full
+        return name
+
+
+class _At:
+    """What one element sees: see `spice_parts.Place`."""
+
+    def __init__(self, expansion: Expansion, frame: Frame, element: Element) -> None:
+        self._expansion, self._frame, self._element = expansion, frame, element
+
+    @property
+    def origin(self) -> Origin:
+        card = self._element.card
+        return Origin(kind="netlist", file=card.file, line=card.line, note=self._frame.note)
+
+    def ref(self, name: str) -> str:
+        if name == self._element.name:
+            return self._frame.prefix + self._element.ref
+        return self._frame.prefix + self._frame.definition.refs.get(name.lower(), name)
+
+    def net(self, name: str) -> str:
+        return self._expansion.net(self._frame, name)
+
+    def number(self, word: str) -> float:
+        return self._frame.scope.number(word)
+
+    def model(self, name: str) -> str | None:
+        return self._expansion.model(self._frame, name)
+
+    def multiplier(self) -> float:
+        return self._frame.multiplier

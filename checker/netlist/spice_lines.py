@@ -1,0 +1,85 @@
+"""SPICE-style text into cards: comments off, continuation lines joined, control blocks passed over.
+
+A `+` line continues the last card, also across blank and comment lines. Comments: a line that begins with
+`*`, `;`, `#` or `//`; the rest of a line after `;`, after ` $ ` or after ` //`.
+"""
+
+from __future__ import annotations
+
+import re
+from dataclasses import dataclass
+
+from checker.netlist.types import Remark
+from checker.quantity.value import Origin
+
+_COMMENT = re.compile(r"\"[^\"]*\"|(;|(?<!\S)\$(?=\s|$)|(?<!\S)//)")
+_PATH_COMMENT = re.compile(r"\"[^\"]*\"|(;|(?<!\S)\$(?=\s|$))")
+_PATH_CARD = re.compile(r"\s*\.(inc|lib)", re.IGNORECASE)
+
+
+@dataclass(frozen=True, slots=True, kw_only=True)
+class Card:
+    """One logical line: `text` without comments; `file` and `line` where it begins."""
+
+    text: str
+    file: str
+    line: int
+
+    @property
+    def origin(self) -> Origin:
+        return Origin(kind="netlist", file=self.file, line=self.line)
+
+    def remark(self, text: str, *parts: str) -> Remark:
+        """A remark that stands at this card."""
+        return Remark(text=text, origin=self.origin, parts=parts)
+
+
+def cards_of(text: str, *, file: str, first_line: int = 1) -> tuple[list[Card], list[Remark]]:
+    """The cards of one file up to `.end`, and remarks on what was passed over. `first_line`: number of the
+    first line of `text` in the file."""
+    pieces: list[tuple[int, list[str]]] = []
+    remarks: list[Remark] = []
+    control = 0
+    for number, line in enumerate(text.split("\n"), start=first_line):
+        bare = without_comment(line)
+        if not bare:
+            continue
+        word = bare.split(None, 1)[0].lower()
+        if control:
+            control = 0 if word == ".endc" else control
+        elif word == ".control":
+            control = number
+            remarks.append(
+                _remark("a control block is passed over: it holds commands, no parts", file, number)
+            )
+        elif word == ".end":
+            break
+        elif bare[0] != "+":
+            pieces.append((number, [bare]))
+        elif pieces:
+            pieces[-1][1].append(bare[1:])
+        else:
+            remarks.append(_remark("a continuation line with nothing before it is passed over", file, number))
+    if control:
+        remarks.append(
+            _remark("the control block never ends: all that follows it is passed over", file, control)
+        )
+    return [Card(text=" ".join(parts), file=file, line=number) for number, parts in pieces], remarks
+
+
+def without_comment(line: str) -> str:
+    """`line` without its comment and outer blanks; empty for a comment line."""
+    bare = line.strip()
+    if not bare or bare[0] in "*;#":
+        return ""
+    if ";" not in bare and "$" not in bare and "//" not in bare:
+        return bare
+    pattern = _PATH_COMMENT if _PATH_CARD.match(bare) else _COMMENT
+    for match in pattern.finditer(bare):
+        if match[1]:
+            return bare[: match.start()].rstrip()
+    return bare
+
+
+def _remark(text: str, file: str, line: int) -> Remark:
+    return Remark(text=text, origin=Origin(kind="netlist", file=file, line=line))

@@ -1,0 +1,52 @@
+"""`.model NAME KIND (p=1 q=2)` cards: numeric parameters evaluated, the rest named in a remark."""
+
+from __future__ import annotations
+
+import re
+
+from checker.netlist.spice_lines import Card
+from checker.netlist.spice_scope import Scope
+from checker.netlist.spice_words import split_words
+from checker.netlist.types import Model, Remark
+from checker.trouble import NotAQuantity
+
+_COLON = re.compile(r"(?<=[A-Za-z0-9_])\s*:\s*(?=[\d.+-])")
+_NOTES = frozenset(
+    {"mfg", "manufacturer", "vendor", "type", "icrating", "vceo", "vds", "ron", "qg", "iave", "vpk"}
+)
+"""Parameters that describe the part and enter no equation; as text they are no loss."""
+
+
+def model_name(card: Card) -> str:
+    """The name a model card gives, as written."""
+    words = split_words(card.text).positional
+    return words[1] if len(words) > 1 else ""
+
+
+def read_model(card: Card, scope: Scope, name: str) -> tuple[Model, list[Remark]]:
+    """Evaluate a card in `scope`. `name` is the name it shall bear. A `:` for `=` (a slip seen in real
+    libraries) is read as one."""
+    body = _COLON.sub("=", card.text)
+    words = split_words(body)
+    kind = words.positional[2].lower() if len(words.positional) > 2 else ""
+    remarks = []
+    if not kind or ":" in kind:
+        remarks.append(
+            card.remark(f"the model {name[:40]} names no kind that is understood: {kind[:40] or 'none'}")
+        )
+    params: dict[str, float] = {}
+    for key, text in words.named.items():
+        try:
+            params[key] = scope.number(text)
+        except NotAQuantity as error:
+            if key not in _NOTES:
+                remarks.append(card.remark(f"model {name[:40]}: {key[:20]} is passed over: {error}"))
+    loose = [word for word in words.positional[3:] if word.lower() not in ("nchan", "pchan")]
+    if loose:
+        text = f"model {name[:40]}: {' '.join(loose)[:60]!r} belongs to no parameter and is passed over"
+        remarks.append(card.remark(text))
+    # `VDMOS(pchan ...)` carries its polarity as a bare word.
+    for word in words.positional[3:]:
+        if word.lower() in ("nchan", "pchan"):
+            params[word.lower()] = 1.0
+    return Model(name=name, kind=kind, params=params, origin=card.origin), remarks

@@ -1,0 +1,110 @@
+"""SPICE-style text into a `Netlist`: title, cards, expansion, and the question whether this is SPICE text at
+all."""
+
+from __future__ import annotations
+
+from pathlib import Path
+
+from checker.netlist.limits import ReadLimits
+from checker.netlist.spice_cards import CardReader
+from checker.netlist.spice_deck import Deck, Definition
+from checker.netlist.spice_expand import GROUND, Expansion
+from checker.netlist.spice_expression import TooMuch
+from checker.netlist.spice_includes import Folders
+from checker.netlist.spice_lines import cards_of, without_comment
+from checker.netlist.spice_title import is_element, title_of
+from checker.netlist.types import Netlist, Remark
+from checker.quantity.value import Origin
+from checker.trouble import InputTrouble
+
+
+def read_spice(
+    text: str,
+    *,
+    name: str,
+    sha256: str,
+    path: Path,
+    include_dirs: tuple[Path, ...],
+    limits: ReadLimits,
+    size: int,
+) -> Netlist:
+    """Read the deck in `text`; `name` is the file's name in messages and origins, `size` its bytes.
+
+    Raises `InputTrouble` where the text is no SPICE-style netlist or a limit is exceeded.
+    """
+    deck = _declared(text, name, path, include_dirs, limits, size)
+    expansion = Expansion(deck, limits)
+    try:
+        expansion.run()
+    except TooMuch as error:
+        raise InputTrouble(str(error), file=name) from error
+    understood = sum(not part.unknown for part in expansion.parts)
+    if not deck.directives and 2 * understood <= len(expansion.parts):
+        raise InputTrouble(
+            "neither a SPICE-style netlist nor a KiCad export: hardly a line reads as an element; "
+            "give the netlist that the schematic editor exports",
+            file=name,
+        )
+    return Netlist(
+        path=name,
+        format="spice",
+        sha256=sha256,
+        title=deck.title,
+        parts=tuple(expansion.parts),
+        nets=expansion.nets,
+        models=expansion.models,
+        temperature_c=deck.temperature_c,
+        ground=(GROUND,) if GROUND in expansion.nets else (),
+        remarks=tuple(deck.remarks + expansion.remarks),
+    )
+
+
+def _declared(
+    text: str, name: str, path: Path, include_dirs: tuple[Path, ...], limits: ReadLimits, size: int
+) -> Deck:
+    deck = Deck(root=Definition(name=""))
+    first, _, others = text.partition("\n")
+    skipped = _title(deck, first, others, name)
+    cards, remarks = cards_of(others if skipped else text, file=name, first_line=2 if skipped else 1)
+    deck.remarks += remarks
+    reader = CardReader(deck, Folders(path, include_dirs), path, limits, size)
+    reader.read(cards)
+    reader.finish()
+    for definition in _all(deck.root):
+        deck.remarks += definition.settle()
+    if not deck.root.elements and deck.root.subcircuits:
+        names = ", ".join(definition.name[:40] for definition in list(deck.root.subcircuits.values())[:5])
+        deck.remarks.append(
+            _remark(name, 0, f"a library: only subcircuits ({names}) and no part that uses them")
+        )
+    return deck
+
+
+def _title(deck: Deck, first: str, others: str, name: str) -> bool:
+    """Set the title from the first line; True where that line is nothing but a title."""
+    bare = without_comment(first)
+    if bare.startswith("."):
+        return False
+    if not bare:
+        deck.title = title_of(first)
+        return False
+    if not is_element(first, others.split("\n")):
+        deck.title = first.strip()
+        return True
+    deck.remarks.append(
+        _remark(
+            name, 1, "the first line reads as an element and is taken for one, though custom makes it a title"
+        )
+    )
+    return False
+
+
+def _all(definition: Definition) -> list[Definition]:
+    found = [definition]
+    for inner in definition.subcircuits.values():
+        found += _all(inner)
+    return found
+
+
+def _remark(name: str, line: int, text: str) -> Remark:
+    return Remark(text=text, origin=Origin(kind="netlist", file=name, line=line))
