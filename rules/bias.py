@@ -51,13 +51,10 @@ class SaturatedAtRest(Rule[Stage]):
     theme = "bias"
     weight = "must-fix"
     bench = "next to no gain; the collector stands a few tenths of a volt above the emitter and hardly moves"
-    source = (
-        "definition: forward base-collector junction with forced gain; device equations at the "
-        "operating point"
-    )
+    source = "definition: forward base-collector junction with forced gain; device equations at the operating point"
     applies = Applies(kind="stage", configurations=LINEAR)
 
-    def judge(self, board: Board, subject: Stage, limits: Mapping[str, Bound]) -> Iterable[Evidence]:  # noqa: ARG002
+    def judge(self, board: Board, subject: Stage, limits: Mapping[str, Bound]) -> Iterable[Evidence]:
         """One check of the region."""
         message = f"{subject.id} rests in saturation: VCE {{vce}} at IC {{ic}}"
         return _rests(board, subject, 1, "saturated", message)
@@ -74,13 +71,11 @@ class CutOffAtRest(Rule[Stage]):
     summary = "a linear stage does not rest cut off"
     theme = "bias"
     weight = "must-fix"
-    bench = (
-        "the collector stands at the supply; small signals vanish, large ones come through as narrow peaks"
-    )
+    bench = "the collector stands at the supply; small signals vanish, large ones come through as narrow peaks"
     source = "a silicon junction needs about 0.5 V for a small current (device equation)"
     applies = Applies(kind="stage", configurations=LINEAR)
 
-    def judge(self, board: Board, subject: Stage, limits: Mapping[str, Bound]) -> Iterable[Evidence]:  # noqa: ARG002
+    def judge(self, board: Board, subject: Stage, limits: Mapping[str, Bound]) -> Iterable[Evidence]:
         """One check of the region."""
         message = f"{subject.id} is cut off at rest: VBE {{vbe}}, IC {{ic}}"
         return _rests(board, subject, 2, "cut_off", message)
@@ -102,12 +97,10 @@ class ReverseActive(Rule[Stage]):
     source = "sign of both junction voltages (device equation)"
     applies = Applies(kind="stage", configurations=LINEAR)
 
-    def judge(self, board: Board, subject: Stage, limits: Mapping[str, Bound]) -> Iterable[Evidence]:  # noqa: ARG002
+    def judge(self, board: Board, subject: Stage, limits: Mapping[str, Bound]) -> Iterable[Evidence]:
         """One check of the region."""
         found = _rests(board, subject, 3, "reverse_active", "")[0]
-        message = (
-            f"{subject.id} runs backwards: VCE {{vce}}, VBE {{vbe}}; are collector and emitter exchanged?"
-        )
+        message = f"{subject.id} runs backwards: VCE {{vce}}, VBE {{vbe}}; are collector and emitter exchanged?"
         return [
             Evidence(
                 check=found.check,
@@ -133,8 +126,7 @@ class SoftDivider(Rule[Stage]):
     weight = "review"
     bench = "collector current well under the calculated one, and different from unit to unit"
     source = (
-        "r = Rth / ((beta + 1) RE); 0.1 is firm, 0.01 stiff (Malvino, 7th ed., examples 8-3 and "
-        "8-4, as transcribed)"
+        "r = Rth / ((beta + 1) RE); 0.1 is firm, 0.01 stiff (Malvino, 7th ed., examples 8-3 and 8-4, as transcribed)"
     )
     applies = Applies(kind="stage", configurations=LINEAR)
     limits = (
@@ -178,10 +170,7 @@ class BetaDependentBias(Rule[Stage]):
     theme = "bias"
     weight = "review"
     bench = "some boards saturate or distort and others do not, with the same values fitted"
-    source = (
-        "IC = beta (V - VBE)/RB; Bell, 5th ed., example 5.4 (VCE 13.95 V at 50, 1.80 V at 200, "
-        "as transcribed)"
-    )
+    source = "IC = beta (V - VBE)/RB; Bell, 5th ed., example 5.4 (VCE 13.95 V at 50, 1.80 V at 200, as transcribed)"
     applies = Applies(kind="stage", configurations=LINEAR)
     limits = (
         Limit(
@@ -199,9 +188,7 @@ class BetaDependentBias(Rule[Stage]):
         parts = board.bias_parts(subject.id)
         return [
             Evidence(
-                check=require(
-                    board.ask("gain_spread_ratio", subject.id), "at most", limits["gain_spread_ratio"]
-                ),
+                check=require(board.ask("gain_spread_ratio", subject.id), "at most", limits["gain_spread_ratio"]),
                 subject=(subject.id, *parts)[:2],
                 message=f"collector current of {subject.id} spreads {{value}} to 1 over the current "
                 f"gain of the part, at "
@@ -226,7 +213,7 @@ class NoBasePath(Rule[Stage]):
     source = "structure: Kirchhoff's current law at the base"
     applies = Applies(kind="stage")
 
-    def judge(self, board: Board, subject: Stage, limits: Mapping[str, Bound]) -> Iterable[Evidence]:  # noqa: ARG002
+    def judge(self, board: Board, subject: Stage, limits: Mapping[str, Bound]) -> Iterable[Evidence]:
         """One check of the structure."""
         return [
             Evidence(

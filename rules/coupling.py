@@ -44,10 +44,7 @@ class CouplingLoss(Rule[CapacitorUse]):
     theme = "coupling"
     weight = "must-fix"
     bench = "the low end of the band is weak and early in phase; pulses and video fields tilt"
-    source = (
-        "exact solution with the capacitor shorted; rule of thumb XC = R/10 (Bell, 5th ed., ch. "
-        "12, from memory)"
-    )
+    source = "exact solution with the capacitor shorted; rule of thumb XC = R/10 (Bell, 5th ed., ch. 12, from memory)"
     applies = Applies(kind="capacitor")
     limits = (_LOSS,)
 
@@ -56,8 +53,7 @@ class CouplingLoss(Rule[CapacitorUse]):
         if subject.use != "coupling":
             return ()
         message = (
-            f"coupling capacitor {subject.part} loses {{value}} at {{frequency}}, at most "
-            f"{{limit}} is allowed to it"
+            f"coupling capacitor {subject.part} loses {{value}} at {{frequency}}, at most {{limit}} is allowed to it"
         )
         return _loss(board, subject, limits, message)
 
@@ -93,7 +89,6 @@ class BypassLoss(Rule[CapacitorUse]):
         if subject.use != "bypass":
             return ()
         message = (
-            f"bypass capacitor {subject.part} costs {{value}} of gain at {{frequency}}, at most "
-            f"{{limit}} is allowed"
+            f"bypass capacitor {subject.part} costs {{value}} of gain at {{frequency}}, at most {{limit}} is allowed"
         )
         return _loss(board, subject, limits, message)

@@ -22,9 +22,7 @@ class InputMismatch(Rule[Port]):
     theme = "matching"
     weight = "must-fix"
     bench = "level and response change with the length of the cable; a filter ahead of the input is pulled"
-    source = (
-        "return loss as in IEC 60050-702 (702-07-25); re' = VT/IE for a common-base input, common practice"
-    )
+    source = "return loss as in IEC 60050-702 (702-07-25); re' = VT/IE for a common-base input, common practice"
     applies = Applies(kind="port")
     limits = (
         Limit(
@@ -39,24 +37,16 @@ class InputMismatch(Rule[Port]):
 
     def judge(self, board: Board, subject: Port, limits: Mapping[str, Bound]) -> Iterable[Evidence]:
         """One check of the worst return loss in the band."""
-        if (
-            subject.role != "input"
-            or subject.reference_ohm is None
-            or not (subject.declared or subject.coaxial)
-        ):
+        if subject.role != "input" or subject.reference_ohm is None or not (subject.declared or subject.coaxial):
             return ()
         stage = board.stage_at_port(subject.name)
         parts = () if stage is None else (stage.id, *board.bias_parts(stage.id)[:1])
         turn: tuple[Lever, ...] = ()
         if stage is not None and stage.entry is not None:
-            turn = levers(
-                dict.fromkeys((*board.resistors_at(stage.id, stage.entry), *board.bias_parts(stage.id)))
-            )
+            turn = levers(dict.fromkeys((*board.resistors_at(stage.id, stage.entry), *board.bias_parts(stage.id))))
         return [
             Evidence(
-                check=require(
-                    board.ask("return_loss_db", subject.name), "at least", limits["return_loss_db"]
-                ),
+                check=require(board.ask("return_loss_db", subject.name), "at least", limits["return_loss_db"]),
                 subject=(*parts[:1], subject.part or subject.name),
                 message=f"input {subject.name} presents {{impedance}} to a {subject.reference_ohm:g} "
                 f"Ω line: return "

@@ -35,10 +35,7 @@ class Dissipation(Rule[Stage]):
     theme = "stress"
     weight = "must-fix"
     bench = "too hot to touch; current creeps up after switching on; early failures"
-    source = (
-        "P = IC VCE + IB VBE; linear derating (Bell, 5th ed., example 8.11, 625 mW and 5 mW/K, "
-        "as transcribed)"
-    )
+    source = "P = IC VCE + IB VBE; linear derating (Bell, 5th ed., example 8.11, 625 mW and 5 mW/K, as transcribed)"
     applies = Applies(kind="stage")
     limits = (_SHARE,)
     always = True
@@ -52,8 +49,7 @@ class Dissipation(Rule[Stage]):
                     board.ask("power_w", subject.id), "at most", ceiling(rating, share=limits["share"].value)
                 ),
                 subject=(subject.id,),
-                message=f"{subject.id} dissipates {{value}}, rated for {{rating}} at this ambient "
-                f"temperature",
+                message=f"{subject.id} dissipates {{value}}, rated for {{rating}} at this ambient temperature",
                 figures={"rating": rating},
                 levers=levers(_current_setters(board, subject)),
             )
@@ -95,8 +91,7 @@ class JunctionTemperature(Rule[Stage]):
                     board.ask("tj_c", subject.id), "at most", ceiling(highest, less=limits["margin_k"].value)
                 ),
                 subject=(subject.id,),
-                message=f"the junction of {subject.id} reaches {{value}} at {{power}}, at most "
-                f"{{limit}} allowed",
+                message=f"the junction of {subject.id} reaches {{value}} at {{power}}, at most {{limit}} allowed",
                 figures={"power": board.ask("power_w", subject.id)},
                 levers=levers(_current_setters(board, subject)),
             )

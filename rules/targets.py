@@ -22,7 +22,7 @@ class TargetMissed(Rule[TargetIntent]):
     source = "the intent file"
     applies = Applies(kind="target")
 
-    def judge(self, board: Board, subject: TargetIntent, limits: Mapping[str, Bound]) -> Iterable[Evidence]:  # noqa: ARG002
+    def judge(self, board: Board, subject: TargetIntent, limits: Mapping[str, Bound]) -> Iterable[Evidence]:
         """One check a target."""
         stages = _stages(board, subject)
         name = subject.stage or subject.group or f"{subject.source}->{subject.to}"
