@@ -18,7 +18,7 @@ class Measured(Record):
     value: float | None
     """In `unit`; the worst of the scenarios that the outcome rests on."""
     unit: str
-    """SI unit, or "" for a plain number."""
+    """V, A, W, ohm, F, H, Hz, s, S, dB, degC and the like, % for percent, "" for a plain number."""
 
 
 @record

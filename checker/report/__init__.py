@@ -1,0 +1,1 @@
+"""Forms of the report. Formatting only: nothing here computes a figure."""

@@ -335,11 +335,9 @@ def _mismatch() -> Finding:
         limit=Bound(relation="at least", value=14.0, unit="dB", source="limits of the intent file"),
         location=Location(file=FILE, line=9, sheet="/rx/"),
         remedy=Remedy(
-            changes=(Change(part="R3", property="r_ohm", from_=27.0, to=43.0, unit="Ω"),),
+            changes=(Change(part="R3", property="r_ohm", from_=27.0, to=43.0, unit="ohm"),),
             effects=(
-                Effect(
-                    quantity="return_loss_worst_db", before=11.6, after=22.4, unit="dB", subject="port ANT"
-                ),
+                Effect(quantity="return_loss_worst_db", before=11.6, after=22.4, unit="dB", subject="port ANT"),
                 Effect(quantity="voltage_gain_db", before=27.92, after=25.8, unit="dB", subject="Q1"),
             ),
             verified_over=("nominal", "cold", "hot", "gain low", "gain high"),

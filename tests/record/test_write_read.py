@@ -27,9 +27,7 @@ def test_round_trip_keeps_everything() -> None:
 
 def test_keys_are_those_of_the_contract() -> None:
     value = json.loads(to_json(report()))
-    assert {"schema", "tool", "netlist", "conditions", "checked", "assumptions", "cautions", "rails"} <= set(
-        value
-    )
+    assert {"schema", "tool", "netlist", "conditions", "checked", "assumptions", "cautions", "rails"} <= set(value)
     assert {"nets", "islands", "stages", "groups", "ports", "gains", "findings"} <= set(value)
     assert {"accepted", "unchecked", "unavailable"} <= set(value)
     assert value["schema"] == "stageproof-report/1"

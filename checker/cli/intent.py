@@ -1,0 +1,23 @@
+"""`stageproof intent`: a starter intent file."""
+
+from __future__ import annotations
+
+from pathlib import Path
+
+import click
+
+from checker.cli import options
+from checker.cli.output import deliver
+from checker.cli.status import CLEAN
+
+
+@click.command("intent")
+@options.netlist
+@options.out
+def command(netlist: Path, out: Path | None) -> int:
+    """Write a starter intent file from what NETLIST shows."""
+    from checker.pipeline import starter_intent
+
+    options.spare_the_input(out, [netlist])
+    deliver(starter_intent(netlist), out)
+    return CLEAN

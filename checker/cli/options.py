@@ -1,0 +1,65 @@
+"""Options that several commands share."""
+
+from __future__ import annotations
+
+from collections.abc import Iterable
+from pathlib import Path
+from typing import get_args
+
+import click
+
+from checker.report.forms import FORMS
+from checker.trouble import InputTrouble
+from checker.words import Gate
+
+EXISTING = click.Path(exists=True, dir_okay=False, path_type=Path)
+
+netlist = click.argument("netlist", type=EXISTING)
+netlists = click.argument("netlists", metavar="NETLIST...", nargs=-1, required=True, type=EXISTING)
+intent = click.option(
+    "--intent",
+    type=EXISTING,
+    help="Intent file; else NAME.intent.toml or intent.toml beside the netlist.",
+)
+out = click.option(
+    "--out",
+    type=click.Path(dir_okay=False, path_type=Path),
+    help="Write to this file, whole or not at all, instead of standard output.",
+)
+form = click.option(
+    "--as",
+    "form",
+    type=click.Choice(list(FORMS)),
+    default="text",
+    show_default=True,
+    help="Form of the report.",
+)
+gate = click.option(
+    "--gate",
+    type=click.Choice(get_args(Gate)),
+    default="must-fix",
+    show_default=True,
+    help="Least severity of a finding that fails.",
+)
+require_checked = click.option(
+    "--require-checked",
+    metavar="PERCENT",
+    type=click.FloatRange(0, 100),
+    help="Fail where a smaller share of the stages was checked.",
+)
+width = click.option("--width", type=click.IntRange(60, 250), help="Columns of the text; else the terminal's.")
+colour = click.option(
+    "--colour",
+    type=click.Choice(["auto", "always", "never"]),
+    default="auto",
+    help="Colours in the text; auto: on a terminal.",
+)
+
+
+def spare_the_input(out: Path | None, inputs: Iterable[Path]) -> None:
+    """Raises InputTrouble where the output would overwrite an input."""
+    if out is None or not out.exists():
+        return
+    for path in inputs:
+        if out.samefile(path):
+            raise InputTrouble("is an input and would be overwritten; give --out another name", file=str(out))

@@ -1,0 +1,1 @@
+"""The sections of the text form, one subject a file; each is lines for a page."""

@@ -1,0 +1,119 @@
+"""The other commands, help, start-up, and a reader that goes away."""
+
+from __future__ import annotations
+
+import subprocess
+import sys
+from collections.abc import Callable
+from pathlib import Path
+from types import ModuleType, SimpleNamespace
+
+import pytest
+
+import checker
+from checker.cards.types import Card
+from checker.cli.main import COMMANDS, main
+from checker.report.specs import render_specs
+from checker.report.why import render_why
+from tests.cli.conftest import Done, Pipeline
+from tests.record.invented import report, workings
+
+Board = Callable[[str, str], str]
+Call = Callable[..., Done]
+
+
+def test_specs(pipeline: Pipeline, board: Board, call: Call) -> None:
+    done = call("specs", board("a.net", "x"))
+    assert done == Done(status=0, out=render_specs(report(), width=100, colour=False), err="")
+
+
+def test_why(pipeline: Pipeline, board: Board, call: Call) -> None:
+    done = call("why", board("a.net", "x"), "Q1")
+    expected = render_why(report(), "Q1", workings(), width=100, colour=False)
+    assert done == Done(status=0, out=expected, err="")
+    lost = call("why", board("a.net", "x"), "Q77")
+    assert lost.status == 2 and lost.err.count("\n") == 1 and "it knows J1, Q1, Q2, Q10" in lost.err
+
+
+def test_intent(pipeline: Pipeline, board: Board, call: Call, tmp_path: Path) -> None:
+    assert call("intent", board("a.net", "x")).out == "# starter for a.net\n"
+    out = tmp_path / "a.intent.toml"
+    assert call("intent", board("a.net", "x"), "--out", str(out)).status == 0
+    assert out.read_text() == "# starter for a.net\n"
+
+
+def test_rules(call: Call, monkeypatch: pytest.MonkeyPatch) -> None:
+    module = ModuleType("checker.judge.discover")
+    rule = SimpleNamespace(id="a-rule", summary="Sums up.", theme="bias", weight="note", bench="", source="", limits=())
+    module.load_rules = lambda: (rule,)  # type: ignore[attr-defined]
+    monkeypatch.setitem(sys.modules, "checker.judge.discover", module)
+    assert call("rules").out == "Bias\n  a-rule  (note)\n    Sums up.\n"
+
+
+def test_parts(call: Call, monkeypatch: pytest.MonkeyPatch) -> None:
+    module = ModuleType("checker.cards.find")
+    card = Card(name="XY1", kind="npn", model={}, source="invented")
+    module.find_card = lambda value: card if value == "XY1B" else None  # type: ignore[attr-defined]
+    module.all_names = lambda: ("XY1", "XY2")  # type: ignore[attr-defined]
+    monkeypatch.setitem(sys.modules, "checker.cards.find", module)
+    assert call("parts").out == "XY1\nXY2\n"
+    assert call("parts", "XY1B").out.startswith("XY1  npn\n")
+    lost = call("parts", "ZZ9")
+    assert lost.status == 2 and "no card for 'ZZ9'" in lost.err
+
+
+def test_help_lists_every_command_and_no_other(call: Call) -> None:
+    done = call("--help")
+    assert done.status == 0
+    listed = [line.split()[0] for line in done.out.partition("Commands:\n")[2].splitlines()]
+    assert listed == list(COMMANDS) == ["check", "specs", "why", "intent", "rules", "parts"]
+
+
+def test_no_command_prints_help_to_standard_error(call: Call) -> None:
+    done = call()
+    assert done.status == 2 and done.out == "" and "Commands:" in done.err
+
+
+def test_version(call: Call) -> None:
+    assert call("--version") == Done(status=0, out=f"stageproof {checker.__version__}\n", err="")
+
+
+@pytest.mark.parametrize("arguments", [["--help"], ["check", "--help"], ["--version"]])
+def test_help_does_not_load_numpy(arguments: list[str]) -> None:
+    code = (
+        "import sys; from checker.cli.main import run; status = run(sys.argv[1:]);"
+        "sys.exit(status or sum(name in sys.modules for name in ('numpy', 'sexpdata', 'difflib')))"
+    )
+    done = subprocess.run([sys.executable, "-c", code, *arguments], capture_output=True, text=True)
+    assert (done.returncode, done.stderr) == (0, "")
+
+
+def test_main_leaves_with_the_status() -> None:
+    with pytest.raises(SystemExit) as left:
+        main(["--version"])
+    assert left.value.code == 0
+
+
+def test_interruption_from_the_keyboard(pipeline: Pipeline, board: Board, call: Call) -> None:
+    def stop(*_: object) -> None:
+        raise KeyboardInterrupt
+
+    sys.modules["checker.pipeline"].check_board = stop  # type: ignore[attr-defined]
+    assert call("check", board("a.net", "x")).status == 130
+
+
+@pytest.mark.skipif(sys.platform == "win32", reason="pipes break differently")
+def test_a_reader_that_goes_away_is_no_failure() -> None:
+    code = (
+        "import sys; from checker.cli.output import deliver;"
+        "sys.stdin.read(); deliver('x' * 1_000_000, None); sys.exit(1)"
+    )
+    child = subprocess.Popen(
+        [sys.executable, "-c", code], stdin=subprocess.PIPE, stdout=subprocess.PIPE, stderr=subprocess.PIPE
+    )
+    assert child.stdout and child.stdin and child.stderr
+    child.stdout.close()
+    child.stdin.close()
+    with child.stderr:
+        assert child.stderr.read() == b""
+    assert child.wait(timeout=60) == 1
