@@ -23,7 +23,16 @@ STEP_REL: Final = 1e-9
 CURRENT_FLOOR_A: Final = 1e-15
 """Currents below this count as zero in the certificate (a femtoampere is under any board's leakage)."""
 MAX_ITERATIONS: Final = 200
-"""Newton iterations a rung; well-posed stages take under 15, so 200 means stuck."""
+"""Newton iterations of the plain start; well-posed stages take under 15, so 200 means stuck."""
+RUNG_ITERATIONS: Final = 40
+"""Newton iterations at one value of a helper, which starts from the neighbouring value's answer."""
+FIRST_RUNG: Final = 0.05
+SMALLEST_RUNG: Final = 1e-3
+"""First and smallest step of a helper's parameter, which runs from 0 to 1."""
+MAX_RUNGS: Final = 150
+"""Steps a helper may take; with 40 iterations each this bounds the time that a hopeless island can cost."""
+RUNAWAY: Final = 1e9
+"""A Newton step beyond this [V or A] has left the physics; the island is taken back to a helper."""
 CORNER_REL: Final = 1e-6
 """Relative width to which a band corner is refined."""
 CORNER_LOW_HZ: Final = 1e-3

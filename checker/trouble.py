@@ -33,5 +33,14 @@ class Unsolved(Trouble, ArithmeticError):
     """An island without a certified answer; carries the reason in words."""
 
 
+class CannotTell(Trouble, LookupError):
+    """A datum is missing, so a question has no answer: `datum` names it, `supply` says what would help."""
+
+    def __init__(self, datum: str, supply: str = "") -> None:
+        self.datum = datum
+        self.supply = supply
+        super().__init__(f"{datum}: {supply}" if supply else datum)
+
+
 class Internal(Trouble, RuntimeError):
     """A fault of the program itself: visible in the report, exit status 3."""

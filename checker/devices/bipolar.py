@@ -135,7 +135,7 @@ def core(p: Mapping[str, FloatArray], vbe: FloatArray, vbc: FloatArray) -> Core:
 
 
 def base_resistance(p: Mapping[str, FloatArray], k: Core) -> tuple[FloatArray, FloatArray, FloatArray]:
-    """Base resistance [ohm] and its derivatives to vbe and vbc [ohm/V]; falls with qb, or with IB where IRB is given."""
+    """Base resistance [ohm], derivatives to vbe and vbc [ohm/V]; falls with qb, or with IB where IRB is given."""
     span = p["rb"] - p["rbm"]
     by_charge = p["rbm"] + span / k.qb
     slope_q = -span / k.qb**2
@@ -235,6 +235,15 @@ def _base_lead(
         g[..., row, BI] += sign * polarity * (to_be + to_bc)
         g[..., row, EI] -= sign * polarity * to_be
         g[..., row, CI] -= sign * polarity * to_bc
+
+
+def without_gm(g: FloatArray, gm: FloatArray) -> FloatArray:
+    """The conductance matrix (S, n, 7, 7) with the controlled current gm vbe taken out; `gm` (S, n) [S]."""
+    out = g.copy()
+    for row, sign in ((CI, -1.0), (EI, 1.0)):
+        out[..., row, BI] += sign * gm
+        out[..., row, EI] -= sign * gm
+    return out
 
 
 def charges(p: Mapping[str, FloatArray], vbe: FloatArray, vbc: FloatArray) -> tuple[FloatArray, FloatArray, FloatArray]:

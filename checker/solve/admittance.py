@@ -35,6 +35,15 @@ def device_pencils(point: OperatingPoint) -> tuple[tuple[FloatArray, FloatArray]
     return out[0], out[1]
 
 
+def transconductance(point: OperatingPoint) -> FloatArray:
+    """gm = dIC/dVBE at constant VCE of every bipolar, float64 (S, n) [S]; nan without bias."""
+    placed = point.plan.bipolars
+    v = point.v_v[:, placed.nodes]
+    at = bipolar.junctions(v, placed.table.polarity)
+    k = bipolar.core(point.assembler.p_bipolar, at[..., 0], at[..., 1])
+    return k.ic_vbe + k.ic_vbc
+
+
 def outer_admittance(placed: Placed, g: FloatArray, c: FloatArray, f_hz: FloatArray, outer: int) -> ComplexArray:
     """Y of each device at its `outer` first terminals, complex128 (S, F, n, outer, outer) [S]."""
     y = g[:, None] + 2j * np.pi * f_hz[None, :, None, None, None] * c[:, None]

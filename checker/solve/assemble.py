@@ -189,9 +189,7 @@ class Assembler:
             COUNTERS.device_evaluations += self.scenarios * n
         return np.concatenate(columns, axis=1), np.concatenate(entries, axis=1)
 
-    def residual(
-        self, x: FloatArray, columns: FloatArray, source_scale: float = 1.0, shunt: float = 0.0
-    ) -> FloatArray:
+    def residual(self, x: FloatArray, columns: FloatArray, source_scale: float = 1.0, shunt: float = 0.0) -> FloatArray:
         """Residual (S, U): sums of currents (with the helper `shunt` [S] to ground), voltage equations of branches."""
         f = self._rows.add(columns)
         v = self.voltages(x, source_scale)
@@ -220,6 +218,24 @@ class Assembler:
                 block[..., inner] = np.maximum(block[..., inner], block[..., outer])
             at += n * k
         return self._rows.largest(sized)
+
+    def rounding(self, x: FloatArray, entries: FloatArray) -> FloatArray:
+        """What rounding of the node voltages alone makes of each current balance, (S, U) [A].
+
+        A conductance g between nodes at 10 V cannot carry a current known better than g times the spacing of
+        doubles at 10 V; behind 1 ohm that is a femtoampere, more than a transistor leaks.
+        """
+        c, s = self.circuit, self.scenarios
+        v = np.abs(self.voltages(x))
+        i_r = (v[:, c.resistors.nodes[:, 0]] + v[:, c.resistors.nodes[:, 1]]) * self._g_r
+        branches = 2 * (c.currents.value.shape[1] + len(self.plan.v_row) + len(self.plan.l_row))
+        columns, at = [i_r, i_r, np.zeros((s, branches))], 0
+        for placed in (self.plan.bipolars, self.plan.diodes):
+            n, k = placed.nodes.shape
+            g = np.abs(entries[:, at : at + n * k * k]).reshape(s, n, k, k)
+            columns.append(np.einsum("snrc,snc->snr", g, v[:, placed.nodes]).reshape(s, n * k))
+            at += n * k * k
+        return np.finfo(float).eps * self._rows.add(np.concatenate(columns, axis=1))
 
     def jacobian(self, entries: FloatArray, shunt: float = 0.0) -> FloatArray:
         """Flat Jacobian (S, n_flat); `shunt` [S] from every node to ground is a helper of hard starts."""

@@ -7,12 +7,24 @@ ground; then steps of all sources together. No helper is left in when convergenc
 
 from __future__ import annotations
 
+from collections.abc import Callable
 from dataclasses import dataclass
 
 import numpy as np
 from numpy.typing import NDArray
 
-from checker.constants import CURRENT_FLOOR_A, MAX_ITERATIONS, STEP_ABS_V, STEP_REL
+from checker.constants import (
+    CURRENT_FLOOR_A,
+    FIRST_RUNG,
+    KCL_REL,
+    MAX_ITERATIONS,
+    MAX_RUNGS,
+    RUNAWAY,
+    RUNG_ITERATIONS,
+    SMALLEST_RUNG,
+    STEP_ABS_V,
+    STEP_REL,
+)
 from checker.solve.assemble import Assembler, Junctions
 from checker.solve.counters import COUNTERS
 
@@ -43,10 +55,10 @@ def solve(assembler: Assembler, x0: FloatArray | None = None) -> Solved:
     if count:
         start = assembler.start() if x0 is None else assembler.junctions(assembler.voltages(x))
         x, done, _ = _iterate(assembler, x, start, done)
-        for ladder in (_by_conductance, _by_sources):
+        for helper in (BY_CONDUCTANCE, BY_SOURCES):
             if done.all():
                 break
-            x, done = ladder(assembler, x, done)
+            x, done = _continue(assembler, x, done, helper)
     return _certify(assembler, x, done)
 
 
@@ -60,21 +72,23 @@ def _iterate(
     source_scale: float = 1.0,
     limit: int = MAX_ITERATIONS,
 ) -> tuple[FloatArray, BoolArray, Junctions]:
-    """Newton passes until every island not yet `done` holds still, or `limit` passes."""
+    """Newton passes until every island not yet `done` holds still or has run away, or `limit` passes."""
     fresh = done.copy()
+    lost = np.zeros_like(done)
     for _ in range(limit):
         columns, entries = assembler.contributions(x, at, gmin, source_scale)
         f = assembler.residual(x, columns, source_scale, gmin)
         dx = newton_step(assembler, f, assembler.jacobian(entries, gmin))
-        dx[expand(assembler, fresh)] = 0.0
+        lost |= per_island(assembler, np.where(np.isfinite(dx), np.abs(dx), np.inf)) > RUNAWAY
+        dx[expand(assembler, fresh | lost)] = 0.0
         x = x + dx
         wanted = assembler.junctions(assembler.voltages(x, source_scale))
         held = assembler.limit(wanted, at)
         still = _still(assembler, x, dx) & _unlimited(assembler, wanted, held, at)
         at = held
-        fresh |= still
+        fresh |= still & ~lost
         COUNTERS.newton_passes += 1
-        if fresh.all():
+        if (fresh | lost).all():
             break
     return x, fresh, at
 
@@ -147,28 +161,55 @@ def _unlimited(assembler: Assembler, wanted: Junctions, held: Junctions, before:
     return ok
 
 
-def _by_conductance(assembler: Assembler, x: FloatArray, done: BoolArray) -> tuple[FloatArray, BoolArray]:
-    """Ladder of shunt conductances, 10 mS down to nothing."""
-    keep = x.copy()
-    trial = np.where(expand(assembler, done), x, 0.0)
-    at = assembler.start()
-    for gmin in (*np.logspace(-2, -13, 23), 0.0):
-        trial, good, at = _iterate(assembler, trial, at, done, gmin=float(gmin))
-    return np.where(expand(assembler, good), trial, keep), good
+@dataclass(frozen=True, slots=True, kw_only=True)
+class _Helper:
+    """A one-parameter family of easier problems: `gmin(t)` [S] and `scale(t)` of all sources, t from 0 to 1."""
+
+    gmin: Callable[[float], float]
+    scale: Callable[[float], float]
 
 
-def _by_sources(assembler: Assembler, x: FloatArray, done: BoolArray) -> tuple[FloatArray, BoolArray]:
-    """Ladder of source levels, from nothing to full."""
-    keep = x.copy()
-    trial = np.where(expand(assembler, done), x, 0.0)
-    at = assembler.junctions(assembler.voltages(trial, 0.0))
-    for scale in np.linspace(0.0, 1.0, 41):
-        trial, good, at = _iterate(assembler, trial, at, done, source_scale=float(scale))
-    return np.where(expand(assembler, good), trial, keep), good
+BY_CONDUCTANCE = _Helper(gmin=lambda t: 10.0 ** (-2.0 - 11.0 * t) if t < 1.0 else 0.0, scale=lambda t: 1.0)
+BY_SOURCES = _Helper(gmin=lambda t: 0.0, scale=lambda t: t)
+
+
+def _continue(assembler: Assembler, x: FloatArray, done: BoolArray, helper: _Helper) -> tuple[FloatArray, BoolArray]:
+    """Follow the helper from t = 0 to 1 with a step that halves on failure and doubles on success.
+
+    Islands that fail at the smallest step are given up; the others go on.
+    """
+    given_up = done.copy()
+    state = np.where(expand(assembler, done), x, 0.0), assembler.start()
+    if helper.scale(0.0) == 0.0:
+        state = state[0], assembler.junctions(assembler.voltages(state[0], 0.0))
+    t, step = 0.0, 0.0
+    for _ in range(MAX_RUNGS):
+        aim = min(1.0, t + step)
+        trial, good, at = _iterate(
+            assembler,
+            *state,
+            given_up,
+            gmin=helper.gmin(aim),
+            source_scale=helper.scale(aim),
+            limit=RUNG_ITERATIONS,
+        )
+        if not good.all() and step > SMALLEST_RUNG:
+            step *= 0.5
+            continue
+        given_up |= ~good
+        lost = expand(assembler, ~good)
+        state, t, step = (np.where(lost, x, trial), at), aim, 2.0 * step if step else FIRST_RUNG
+        if t >= 1.0 or given_up.all():
+            break
+    reached = done | (~given_up & (t >= 1.0))
+    return np.where(expand(assembler, reached), state[0], x), reached
 
 
 def _certify(assembler: Assembler, x: FloatArray, done: BoolArray) -> Solved:
-    """One more full step without any helper from `x`; its size and the current balance there are the proof."""
+    """One more full step without any helper from `x`; its size and the current balance there are the proof.
+
+    Currents too small for their balance to be resolved at a node's voltage count as the smallest that could be.
+    """
     at = assembler.junctions(assembler.voltages(x))
     columns, entries = assembler.contributions(x, at)
     flat = assembler.jacobian(entries)
@@ -176,7 +217,8 @@ def _certify(assembler: Assembler, x: FloatArray, done: BoolArray) -> Solved:
     dx = newton_step(assembler, f, flat)
     node = np.zeros(x.shape[1], dtype=bool)
     node[assembler.plan.unknown[assembler.plan.unknown >= 0]] = True
-    balance = np.where(node, np.abs(f) / np.maximum(assembler.largest(columns), CURRENT_FLOOR_A), 0.0)
+    floor = np.maximum(CURRENT_FLOOR_A, assembler.rounding(x, entries) / KCL_REL)
+    balance = np.where(node, np.abs(f) / np.maximum(assembler.largest(columns), floor), 0.0)
     step = np.where(node, np.abs(dx), 0.0)
     condition, sign = _conditions(assembler, flat)
     step_isl = per_island(assembler, step)
@@ -192,8 +234,9 @@ def _conditions(assembler: Assembler, flat: FloatArray) -> tuple[FloatArray, Flo
         scale = np.sqrt(np.maximum(np.abs(a).max(axis=-1, keepdims=True), 1e-300))
         scaled = a / scale / np.sqrt(np.maximum(np.abs(a).max(axis=-2, keepdims=True), 1e-300))
         COUNTERS.factorisations += 2 * a.shape[0] * a.shape[1]
-        conditions.append(np.linalg.cond(scaled))
-        signs.append(np.linalg.slogdet(a)[0])
+        finite = np.isfinite(scaled).all(axis=(-1, -2))
+        conditions.append(np.where(finite, np.linalg.cond(np.where(finite[..., None, None], scaled, 0.0)), np.inf))
+        signs.append(np.where(finite, np.linalg.slogdet(a)[0], 0.0))
     if not conditions:
         empty = np.zeros((assembler.scenarios, 0))
         return empty, empty

@@ -130,11 +130,12 @@ def _conductors(circuit: Circuit, bipolars: Placed, diodes: Placed) -> Iterator[
         for a, b in table.nodes:
             yield int(a), int(b)
     for row in diodes.nodes:
-        yield int(row[0]), int(row[1])
         yield int(row[0]), int(row[2])
+        yield int(row[2]), int(row[1])
     for row in bipolars.nodes:
-        for inner in (0, 2, 4, 5, 6):
-            yield int(row[1]), int(row[inner])
+        # A base at a known voltage still lets collector and emitter act on each other.
+        for a, b in ((0, 4), (1, 5), (2, 6), (4, 5), (5, 6), (4, 6)):
+            yield int(row[a]), int(row[b])
 
 
 def _conflict(circuit: Circuit, tree: tuple[Tree, ...], is_known: NDArray[np.bool_], left: list[int]) -> str:

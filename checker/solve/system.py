@@ -49,7 +49,9 @@ class SignalSystem:
             full[..., pin, pin] += 1.0
         return full[..., : self.size], full[..., self.size :]
 
-    def _admittances(self, s: ComplexArray, y_b: ComplexArray, y_d: ComplexArray) -> list[tuple[int, int, ComplexArray]]:
+    def _admittances(
+        self, s: ComplexArray, y_b: ComplexArray, y_d: ComplexArray
+    ) -> list[tuple[int, int, ComplexArray]]:
         c = self.circuit
         out: list[tuple[int, int, ComplexArray]] = []
         for table, y in (
@@ -164,9 +166,7 @@ def _joins(c: Circuit) -> list[list[int]]:
     return out + [[node for node in (ends[p] + ends[q]) if node > 0] for p, q in pairs]
 
 
-def _rows(
-    table: Branches, first: int, known: NDArray[np.bool_], skip: set[int]
-) -> tuple[IntArray, int]:
+def _rows(table: Branches, first: int, known: NDArray[np.bool_], skip: set[int]) -> tuple[IntArray, int]:
     """Branch unknowns of the elements that touch a free net."""
     rows = np.full(len(table.names), -1, dtype=np.int64)
     for j, (a, b) in enumerate(table.nodes.tolist()):

@@ -1,0 +1,71 @@
+"""Where the signal enters a device and where it leaves.
+
+Entry: the whole device is taken out; of the voltages that its surroundings then offer at base, emitter and collector,
+which one drives the junction once the device is back? (Taking out gm alone is not enough: the kept junction
+impedance bridges base and emitter and misleads at RF and in feedback pairs.) Exit: a current injected at the collector
+alone, then at the emitter alone; the larger effect at the output port.
+"""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+
+import numpy as np
+from numpy.typing import NDArray
+
+from checker.stages.role import Part
+from checker.stages.scene import Path, Scene
+from checker.words import Terminal
+
+TERMINALS: tuple[Terminal, Terminal, Terminal] = ("collector", "base", "emitter")
+
+
+@dataclass(frozen=True, slots=True, kw_only=True)
+class Direction:
+    """`entry`, `exit` terminals; `agreement` 0..1 over the frequencies looked at; `margin_db` of the weaker choice."""
+
+    entry: Terminal
+    exit: Terminal
+    agreement: float
+    entry_margin_db: float
+    exit_margin_db: float
+
+
+def direction(scene: Scene, device: str, part: Part) -> Direction:
+    """Entry and exit of a signal device along its strongest path."""
+    drive_be, effect_ce = entry_weights(scene, device, part.path), exit_weights(scene, device, part.path)
+    entries = np.where(drive_be[1] >= drive_be[2], 1, 2)
+    exits = np.where(effect_ce[0] >= effect_ce[1], 0, 2)
+    middle = len(entries) // 2
+    agreement = float(np.mean((entries == entries[middle]) & (exits == exits[middle])))
+    return Direction(
+        entry=TERMINALS[int(entries[middle])],
+        exit=TERMINALS[int(exits[middle])],
+        agreement=agreement,
+        entry_margin_db=_margin(drive_be[1][middle], drive_be[2][middle]),
+        exit_margin_db=_margin(effect_ce[0][middle], effect_ce[1][middle]),
+    )
+
+
+def entry_weights(scene: Scene, device: str, path: Path) -> NDArray[np.float64]:
+    """|vbe| that each terminal's open-circuit voltage causes alone, float64 (3, F): collector, base, emitter."""
+    terminals = list(scene.nodes(device))
+    out = scene.response.removed([device])
+    v0 = out.voltages(path.drive)[0][:, terminals]
+    z = np.stack([np.stack([out.transfer(a, b)[0] for b in terminals], -1) for a in terminals], -2)
+    y = scene.response.bipolar_y[0, :, scene.devices.index(device), :3, :3]
+    back = np.linalg.inv(np.eye(3) + z @ y)
+    vbe = (back[:, 1, :] - back[:, 2, :]) * v0
+    return np.abs(vbe.T)
+
+
+def exit_weights(scene: Scene, device: str, path: Path) -> NDArray[np.float64]:
+    """|v| at the output port for 1 A injected at the collector, and at the emitter: float64 (2, F)."""
+    c, _, e = scene.nodes(device)
+    out = scene.response.removed([device])
+    return np.abs(np.stack([out.transfer(path.to.node, c)[0], out.transfer(path.to.node, e)[0]]))
+
+
+def _margin(a: float, b: float) -> float:
+    big, small = max(a, b), min(a, b)
+    return float(min(20.0 * np.log10(big / small), 200.0)) if small > 0.0 < big else 200.0

@@ -1,0 +1,86 @@
+"""Operating region of bipolars, as the report defines it.
+
+Cut-off: |IC| under 1e-3 of what would flow with collector and emitter shorted and the device out (surroundings
+linearised at the operating point, exact where they are linear). Saturated: VBC > 0 and IC/IB under 0.9 of its value at
+the same VBE with VBC = 0. Reverse-active: VBC forward, VBE not. Else active.
+"""
+
+from __future__ import annotations
+
+import numpy as np
+from numpy.typing import NDArray
+
+from checker.devices import bipolar
+from checker.solve.operating import OperatingPoint
+from checker.solve.response import Response, small_signal
+from checker.words import Region
+
+FloatArray = NDArray[np.float64]
+REGIONS: tuple[Region, ...] = ("active", "saturated", "cut-off", "reverse-active")
+CUT_OFF = 1e-3
+SATURATED = 0.9
+SLOW_HZ = 1e-3
+"""The frequency that stands for direct current in a linearised circuit: capacitors of a board are open there."""
+
+
+def region_codes(point: OperatingPoint) -> FloatArray:
+    """Index into `REGIONS`, float64 (S, n); nan without bias."""
+    placed = point.plan.bipolars
+    v = point.v_v[:, placed.nodes]
+    at = bipolar.junctions(v, placed.table.polarity)
+    vbe, vbc = at[..., 0], at[..., 1]
+    with np.errstate(invalid="ignore"):
+        code = np.where(saturation_edge_v(point) < vbc, 1.0, 0.0)
+        code = np.where((vbc > 0.0) & (vbe <= 0.0), 3.0, code)
+        code = np.where(_cut_off(point), 2.0, code)
+    return np.where(np.isfinite(vbe), code, np.nan)
+
+
+def saturation_edge_v(point: OperatingPoint) -> FloatArray:
+    """Inner VBC [V], (S, n), at which IC/IB has fallen to 0.9 of its value at VBC = 0, VBE as it is."""
+    placed = point.plan.bipolars
+    p = point.assembler.p_bipolar
+    at = bipolar.junctions(np.nan_to_num(point.v_v[:, placed.nodes]), placed.table.polarity)
+    vbe = np.maximum(at[..., 0], 1e-6)
+    base = bipolar.core(p, vbe, np.zeros_like(vbe))
+    low, high = np.zeros_like(vbe), vbe
+    for _ in range(50):
+        middle = 0.5 * (low + high)
+        k = bipolar.core(p, vbe, middle)
+        keeps = k.ic * base.ib >= SATURATED * base.ic * k.ib
+        low, high = np.where(keeps, middle, low), np.where(keeps, high, middle)
+    return low
+
+
+def headroom_v(point: OperatingPoint) -> FloatArray:
+    """How far VCE may fall before the device saturates [V], (S, n); negative when it has."""
+    placed = point.plan.bipolars
+    at = bipolar.junctions(point.v_v[:, placed.nodes], placed.table.polarity)
+    return saturation_edge_v(point) - at[..., 1]
+
+
+def _cut_off(point: OperatingPoint) -> NDArray[np.bool_]:
+    names = point.circuit.bipolars.names
+    ic = np.abs(point.bipolar["ic_a"])
+    out = np.zeros(ic.shape, dtype=bool)
+    suspects = [j for j in range(len(names)) if np.nanmin(ic[:, j], initial=np.inf) < 1e-3]
+    if not suspects:
+        return out
+    slow = small_signal(point, np.array([SLOW_HZ]))
+    for j in suspects:
+        out[:, j] = ic[:, j] < CUT_OFF * shorted_current(point, slow, j)
+    return out
+
+
+def shorted_current(point: OperatingPoint, slow: Response, j: int) -> FloatArray:
+    """Current [A], (S,), with collector and emitter of bipolar `j` shorted and the device out; inf between supplies."""
+    device = point.circuit.bipolars
+    c, b, e = device.nodes[j, :3].tolist()
+    out = slow.removed([device.names[j]])
+    i = {c: point.bipolar["ic_a"][:, j], b: point.bipolar["ib_a"][:, j], e: point.bipolar["ie_a"][:, j]}
+    vce = point.v_v[:, c] - point.v_v[:, e]
+    for node, current in i.items():
+        vce = vce + np.real(out.transfer(c, node)[:, 0] - out.transfer(e, node)[:, 0]) * current
+    z = np.real(out.between(c, e)[:, 0])
+    with np.errstate(divide="ignore", invalid="ignore"):
+        return np.where(z > 0.0, np.abs(vce / z), np.inf)

@@ -1,0 +1,65 @@
+"""Does a device carry signal? Participation in the transfer between ports, and its share of the load's current."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+
+import numpy as np
+from numpy.typing import NDArray
+
+from checker.stages.scene import Path, Scene
+
+SIGNAL_FROM = 0.3
+"""A device without which the transfer changes by this much, or which feeds this much of the load, carries signal."""
+BIAS_BELOW = 0.2
+
+
+@dataclass(frozen=True, slots=True, kw_only=True)
+class Part:
+    """How much a device takes part: `weight` (F,) the larger of both measures, `path` the path where it is most."""
+
+    weight: NDArray[np.float64]
+    path: Path
+
+
+def participation(scene: Scene, device: str) -> Part | None:
+    """The strongest path of a device; None where no path exists or none could be computed."""
+    best: Part | None = None
+    if not np.isfinite(scene.response.bipolar_y[0, :, scene.devices.index(device)]).all():
+        return None
+    passive = scene.response.without_gm(device)
+    for path in scene.paths:
+        without = passive.voltages(path.drive)[0, :, path.to.node]
+        change = np.abs(1.0 - without / path.h)
+        weight = np.maximum(change, _share(scene, device, path))
+        if np.isfinite(weight).all() and (best is None or weight.max() > best.weight.max()):
+            best = Part(weight=weight, path=path)
+    return best
+
+
+def _share(scene: Scene, device: str, path: Path) -> NDArray[np.float64]:
+    """|gm vbe| over the current that the output port's own impedance and load take from the driving point."""
+    current = np.abs(scene.response.controlled_current(device, path.solution)[0])
+    load = _load_admittance(scene, path)
+    driven = np.abs(path.h) * load
+    # Below the load's own current the share is meaningless (a port without a load): only change counts there.
+    return np.where(driven > 0.0, current / np.maximum(driven, 1e-30), 0.0) * _reaches(scene, device, path)
+
+
+def _load_admittance(scene: Scene, path: Path) -> NDArray[np.float64]:
+    total = np.zeros(len(path.h))
+    for name in path.to.load:
+        j = scene.circuit.resistors.names.index(name)
+        total = total + 1.0 / scene.circuit.resistors.value[0, j]
+    return total
+
+
+def _reaches(scene: Scene, device: str, path: Path) -> NDArray[np.float64]:
+    """1 where the device's controlled current explains a part of the output voltage, else 0.
+
+    A current source's own current is no share of the load: what it injects must arrive at the port.
+    """
+    c, _, e = scene.nodes(device)
+    current = scene.response.controlled_current(device, path.solution)[0]
+    z = scene.response.transfer(path.to.node, e)[0] - scene.response.transfer(path.to.node, c)[0]
+    return (np.abs(current * z) > 0.1 * np.abs(path.h)).astype(float)
