@@ -101,9 +101,7 @@ def add_potentiometer(draft: Draft, part: Part) -> None:
     if value is None or value.si == 0.0:
         draft.loose(part.ref, [pin.net for pin in part.pins], f"value of {part.ref}", "a value in ohm")
     elif len(ends) != 2:
-        draft.loose(
-            part.ref, [pin.net for pin in part.pins], f"pins of {part.ref}", "pins 1, 2 (wiper) and 3"
-        )
+        draft.loose(part.ref, [pin.net for pin in part.pins], f"pins of {part.ref}", "pins 1, 2 (wiper) and 3")
     elif wiper:
         draft.notes.add("parts", "potentiometer taken at mid travel, linear", part.ref)
         draft.wire("resistors", f"{part.ref}.a", ends[0], wiper, value.si / 2)
@@ -146,9 +144,7 @@ def _even(count: int) -> int:
 def add_battery(draft: Draft, part: Part) -> None:
     """A battery whose value text states volts; pin 1 is its positive pole."""
     draft.facts[part.ref] = bare_fact(draft, part, "source")
-    poles = sorted(
-        part.pins, key=lambda pin: pin.number.strip("+") != "1" and not pin.function.startswith("+")
-    )
+    poles = sorted(part.pins, key=lambda pin: pin.number.strip("+") != "1" and not pin.function.startswith("+"))
     try:
         volts = parse_engineering(part.value, "V").si
     except NotAQuantity:
@@ -230,9 +226,7 @@ def _not_two_ended(draft: Draft, part: Part, kind: PartKind) -> None:
     """One-ended parts do nothing; others are of a form that is not modelled."""
     draft.facts[part.ref] = bare_fact(draft, part, kind)
     if len(part.pins) > 1:
-        draft.loose(
-            part.ref, [pin.net for pin in part.pins], f"which pins of {part.ref} belong together", "two pins"
-        )
+        draft.loose(part.ref, [pin.net for pin in part.pins], f"which pins of {part.ref} belong together", "two pins")
 
 
 def _without_value(draft: Draft, part: Part, kind: str, ends: tuple[str, str]) -> None:
