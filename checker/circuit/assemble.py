@@ -2,15 +2,15 @@
 
 from __future__ import annotations
 
-from collections.abc import Mapping
+from collections.abc import Iterable, Mapping
 from dataclasses import replace
 
 import numpy as np
 from numpy.typing import NDArray
 
 from checker.circuit.draft import Draft, DraftDevice, DraftPort, Wire
-from checker.circuit.parameters import BIPOLAR, DIODE
 from checker.circuit.order import natural, natural_key
+from checker.circuit.parameters import BIPOLAR, DIODE
 from checker.circuit.types import (
     Branches,
     Circuit,
@@ -72,8 +72,7 @@ def _branches(wires: Mapping[str, Wire], node: Mapping[str, int]) -> Branches:
         [(node[wires[name].first], node[wires[name].second]) for name in names], dtype=np.int64
     ).reshape(len(names), 2)
     nodes.setflags(write=False)
-    value = np.array([[wires[name].value for name in names]], dtype=np.float64).reshape(1, len(names))
-    return Branches(names=names, nodes=nodes, value=frozen(value))
+    return Branches(names=names, nodes=nodes, value=_column([wires[name].value for name in names]))
 
 
 def _couplings(pairs: Mapping[str, tuple[str, str, float]], inductors: tuple[str, ...]) -> Couplings:
@@ -82,13 +81,13 @@ def _couplings(pairs: Mapping[str, tuple[str, str, float]], inductors: tuple[str
     pair = np.array([(place[pairs[name][0]], place[pairs[name][1]]) for name in names], dtype=np.int64)
     pair = pair.reshape(len(names), 2)
     pair.setflags(write=False)
-    k = np.array([[pairs[name][2] for name in names]], dtype=np.float64).reshape(1, len(names))
-    return Couplings(names=names, pair=pair, k=frozen(k))
+    return Couplings(names=names, pair=pair, k=_column([pairs[name][2] for name in names]))
 
 
 def _devices(
-    devices: Mapping[str, DraftDevice], node: Mapping[str, int], terminals: int, known: Mapping[str, float]
+    devices: Mapping[str, DraftDevice], node: Mapping[str, int], terminals: int, keys: Iterable[str]
 ) -> Devices:
+    """A device table; every parameter has its column even where there is no device."""
     names = tuple(natural(devices))
     entries = [devices[name] for name in names]
     nodes = np.array([[node[net] for net in entry.nets] for entry in entries], dtype=np.int64)
@@ -98,12 +97,15 @@ def _devices(
         names=names,
         nodes=nodes,
         polarity=frozen(np.array([entry.polarity for entry in entries], dtype=np.float64)),
-        params={
-            key: frozen(np.array([[entry.params[key] for entry in entries]], dtype=np.float64)) for key in known
-        },
+        params={key: _column([entry.params[key] for entry in entries]) for key in keys},
         tnom_k=frozen(np.array([entry.tnom_k for entry in entries], dtype=np.float64)),
         rth_kpw=frozen(np.array([entry.rth_kpw for entry in entries], dtype=np.float64)),
     )
+
+
+def _column(values: list[float]) -> FloatArray:
+    """One row of nominal values, (1, n)."""
+    return frozen(np.array(values, dtype=np.float64).reshape(1, len(values)))
 
 
 def _index(branches: Branches, name: str) -> int:

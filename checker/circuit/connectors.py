@@ -51,8 +51,7 @@ FAMILIES: Final = (
     Family(name="cinch", pattern=r"RCA|CINCH", ohm=None, source="no nominal impedance"),
 )
 _COMPILED: Final = tuple(
-    (family, re.compile(rf"(?<![A-Z0-9.])(?:{family.pattern})(?![A-Z])", re.IGNORECASE))
-    for family in FAMILIES
+    (family, re.compile(rf"(?<![A-Z0-9.])(?:{family.pattern})(?![A-Z])", re.IGNORECASE)) for family in FAMILIES
 )
 _STATED: Final = re.compile(r"(?<![\d.])(50|75|93|100)(?:[\s_-]*(?:ohms?|Ω|R))?(?![\d.%])", re.IGNORECASE)
 _IN: Final = re.compile(
@@ -94,7 +93,7 @@ def role_by_name(*texts: str) -> PortRole | None:
     """Direction that net, value or reference names tell; None where they tell none or both."""
     roles: set[PortRole] = set()
     for text in texts:
-        last = text.rsplit("/", 1)[-1]
+        last = "" if text.startswith("Net-(") else text.rsplit("/", 1)[-1]
         for word in (last, *_SPLIT.split(last)):
             if _IN.fullmatch(word):
                 roles.add("input")
@@ -103,14 +102,19 @@ def role_by_name(*texts: str) -> PortRole | None:
     return roles.pop() if len(roles) == 1 else None
 
 
+def role_of_net(net: str) -> PortRole | None:
+    """Direction that a net's own name tells: IN, RF_OUT; not a name that merely contains such a word, and not
+    the TX and RX of a data bus."""
+    last = net.rsplit("/", 1)[-1]
+    if re.fullmatch(r"[TR]X|IF", last, re.IGNORECASE):
+        return None
+    return "input" if _IN.fullmatch(last) else "output" if _OUT.fullmatch(last) else None
+
+
 def signal_net(part: Part, known: frozenset[str]) -> str | None:
     """Net of the inner conductor: the one net of the connector that is not in `known` (ground and rails)."""
     nets = list(dict.fromkeys(pin.net for pin in part.pins if pin.net not in known))
     if len(nets) == 1:
         return nets[0]
-    inner = [
-        pin.net
-        for pin in part.pins
-        if pin.function.upper() in ("IN", "CENTER", "CENTRE", "SIG", "RF", "INNER")
-    ]
+    inner = [pin.net for pin in part.pins if pin.function.upper() in ("IN", "CENTER", "CENTRE", "SIG", "RF", "INNER")]
     return inner[0] if len(set(inner)) == 1 else None

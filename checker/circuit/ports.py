@@ -6,7 +6,7 @@ from __future__ import annotations
 from dataclasses import replace
 from typing import Final
 
-from checker.circuit.connectors import nominal, role_by_name, signal_net
+from checker.circuit.connectors import nominal, role_by_name, role_of_net, signal_net
 from checker.circuit.draft import Draft, DraftPort
 from checker.circuit.lookup import find_net, find_pin
 from checker.circuit.order import last_segment, natural, natural_key
@@ -96,11 +96,7 @@ def existing_source(draft: Draft, net: str) -> tuple[str, str]:
     """
     on = draft.elements_on(net)
     for table, name in on:
-        if (
-            table == "voltages"
-            and draft.voltages[name].other(net) == draft.ground
-            and _may_drive(draft, name)
-        ):
+        if table == "voltages" and draft.voltages[name].other(net) == draft.ground and _may_drive(draft, name):
             return name, ""
     for table, name in on:
         if table != "resistors":
@@ -123,11 +119,11 @@ def existing_load(draft: Draft, net: str) -> tuple[str, ...]:
     on = draft.elements_on(net)
     resistors = [name for table, name in on if table == "resistors"]
     capacitors = [
-        name
-        for table, name in on
-        if table == "capacitors" and draft.capacitors[name].other(net) != draft.ground
+        name for table, name in on if table == "capacitors" and draft.capacitors[name].other(net) != draft.ground
     ]
     others = [name for table, name in on if table not in ("resistors", "capacitors")]
+    if net in draft.foreign or net not in draft.netlist.nets:
+        return ()
     grounded = tuple(name for name in resistors if draft.resistors[name].other(net) == draft.ground)
     if not capacitors or others or draft.device_pins(net) or len(grounded) != len(resistors):
         return ()
@@ -151,9 +147,7 @@ def _from_sources(draft: Draft) -> None:
             series, plane = _lone_resistor(draft, name, hot)
             coaxial = _is_coaxial(draft, plane)
             draft.ports.append(
-                DraftPort(
-                    name=name, net=plane, role="input", emf=name, series=series, coaxial=coaxial, part=name
-                )
+                DraftPort(name=name, net=plane, role="input", emf=name, series=series, coaxial=coaxial, part=name)
             )
         draft.notes.add("ports", f"{name} carries signal; taken as an input port at {draft.ports[-1].net}")
 
@@ -209,9 +203,9 @@ def _from_loads(draft: Draft) -> None:
     """Nets joined to the rest by capacitors only, with a resistor to ground: outputs and their loads."""
     taken = {port.net for port in draft.ports}
     found = [net for net in natural(draft.present()) if net not in taken and existing_load(draft, net)]
-    named = [net for net in found if role_by_name(net) == "output"]
+    named = [net for net in found if role_of_net(net) == "output"]
     for net in named or found:
-        if role_by_name(net) == "input":
+        if role_of_net(net) == "input":
             continue
         load = existing_load(draft, net)
         draft.notes.add(
@@ -229,7 +223,7 @@ def _from_names(draft: Draft) -> None:
             continue
         for net in natural(present & draft.netlist.nets.keys()):
             taken = {port.net for port in draft.ports}
-            if net in taken or draft.known_volts(net) is not None or role_by_name(last_segment(net)) != role:
+            if net in taken or draft.known_volts(net) is not None or role_of_net(net) != role:
                 continue
             draft.notes.add("ports", f"{net} taken as an {role} port from its name")
             load = existing_load(draft, net) if role == "output" else ()

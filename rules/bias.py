@@ -1,0 +1,224 @@
+"""Theme bias: where a stage rests, and what its collector current rides on."""
+
+from __future__ import annotations
+
+from collections.abc import Iterable, Mapping
+
+from checker.rulekit import (
+    LINEAR,
+    Applies,
+    Board,
+    Bound,
+    Evidence,
+    Limit,
+    Rule,
+    Stage,
+    flag,
+    levers,
+    require,
+)
+
+_NO = Bound.at(0.0, "", "definition of the regions of operation")
+_YES = Bound.at(1.0, "", "Kirchhoff's current law")
+
+
+def _rests(board: Board, stage: Stage, code: float, name: str, message: str) -> list[Evidence]:
+    """That the stage does not rest in the region of that code; VCE is what the report shows."""
+    vce = board.ask("vce_v", stage.id)
+    turn = (*board.resistors_at(stage.id, "collector"), *board.bias_parts(stage.id))
+    return [
+        Evidence(
+            check=require(flag(board.ask("region_code", stage.id), code, name), "equals", _NO),
+            subject=(stage.id, *dict.fromkeys(turn))[:2],
+            message=message,
+            figures={"vce": vce, "ic": board.ask("ic_a", stage.id), "vbe": board.ask("vbe_v", stage.id)},
+            levers=levers(dict.fromkeys(turn)),
+            measured=vce,
+        )
+    ]
+
+
+class SaturatedAtRest(Rule[Stage]):
+    """IC RC exceeds what the supply leaves: the collector sits at the emitter, and one half of the signal
+    is gone.
+
+    Saturated: VBC > 0 and IC/IB under 0.9 of its value at VBC = 0 (certified operating point). Switches
+    rest so on purpose and are not asked. A stage that merely comes close is judged by its swing, not here.
+    """
+
+    id = "saturated-at-rest"
+    summary = "a linear stage does not rest in saturation"
+    theme = "bias"
+    weight = "must-fix"
+    bench = "next to no gain; the collector stands a few tenths of a volt above the emitter and hardly moves"
+    source = "definition: forward base-collector junction with forced gain; device equations at the operating point"
+    applies = Applies(kind="stage", configurations=LINEAR)
+
+    def judge(self, board: Board, subject: Stage, limits: Mapping[str, Bound]) -> Iterable[Evidence]:
+        """One check of the region."""
+        message = f"{subject.id} rests in saturation: VCE {{vce}} at IC {{ic}}"
+        return _rests(board, subject, 1, "saturated", message)
+
+
+class CutOffAtRest(Rule[Stage]):
+    """The base divider gives less than a junction needs: without signal no collector current flows.
+
+    Cut off: |IC| under 1e-3 of the current with collector and emitter joined and the device removed. A
+    class C stage and a limiter that waits for a fault rest so on purpose; accept them.
+    """
+
+    id = "cut-off-at-rest"
+    summary = "a linear stage does not rest cut off"
+    theme = "bias"
+    weight = "must-fix"
+    bench = "the collector stands at the supply; small signals vanish, large ones come through as narrow peaks"
+    source = "a silicon junction needs about 0.5 V for a small current (device equation)"
+    applies = Applies(kind="stage", configurations=LINEAR)
+
+    def judge(self, board: Board, subject: Stage, limits: Mapping[str, Bound]) -> Iterable[Evidence]:
+        """One check of the region."""
+        message = f"{subject.id} is cut off at rest: VBE {{vbe}}, IC {{ic}}"
+        return _rests(board, subject, 2, "cut_off", message)
+
+
+class ReverseActive(Rule[Stage]):
+    """Collector and emitter are exchanged, or their rails are: the device runs backwards with a current
+    gain of a few, and its emitter junction takes the reverse voltage that it breaks down under at 5 to 7 V.
+
+    Reverse-active: base-collector junction forward, base-emitter junction not. A muting transistor used
+    backwards on purpose looks the same; accept it.
+    """
+
+    id = "reverse-active"
+    summary = "no device runs backwards"
+    theme = "bias"
+    weight = "must-fix"
+    bench = "gain of a few at best; noise grows over months as the emitter junction is worn"
+    source = "sign of both junction voltages (device equation)"
+    applies = Applies(kind="stage", configurations=LINEAR)
+
+    def judge(self, board: Board, subject: Stage, limits: Mapping[str, Bound]) -> Iterable[Evidence]:
+        """One check of the region."""
+        found = _rests(board, subject, 3, "reverse_active", "")[0]
+        message = f"{subject.id} runs backwards: VCE {{vce}}, VBE {{vbe}}; are collector and emitter exchanged?"
+        return [
+            Evidence(
+                check=found.check,
+                subject=(subject.id,),
+                message=message,
+                figures=found.figures,
+                measured=found.measured,
+            )
+        ]
+
+
+class SoftDivider(Rule[Stage]):
+    """Base current loads the divider, so the collector current is not what the simple formula says and
+    drifts with gain.
+
+    Shift = |IC / IC(base current taken as zero) - 1|; about Rth / ((beta + 1) RE). Judged by its effect,
+    not by the ratio of resistances, and only where a divider sets the base.
+    """
+
+    id = "soft-divider"
+    summary = "the base divider carries the base current without giving way"
+    theme = "bias"
+    weight = "review"
+    bench = "collector current well under the calculated one, and different from unit to unit"
+    source = (
+        "r = Rth / ((beta + 1) RE); 0.1 is firm, 0.01 stiff (Malvino, 7th ed., examples 8-3 and 8-4, as transcribed)"
+    )
+    applies = Applies(kind="stage", configurations=LINEAR)
+    limits = (
+        Limit(
+            name="shift",
+            default=0.1,
+            unit="%",
+            low=0.01,
+            high=1.0,
+            source="a firm divider (Malvino, 7th ed., example 8-3, as transcribed)",
+        ),
+    )
+
+    def judge(self, board: Board, subject: Stage, limits: Mapping[str, Bound]) -> Iterable[Evidence]:
+        """One check of the shift that the base current makes."""
+        divider = board.resistors_at(subject.id, "base")
+        return [
+            Evidence(
+                check=require(board.ask("divider_shift", subject.id), "at most", limits["shift"]),
+                subject=(subject.id, *divider)[:3],
+                message=f"base current moves the collector current of {subject.id} to {{ic}}, "
+                f"{{value}} from what its "
+                "divider alone would set; at most {limit} wanted",
+                figures={"ic": board.ask("ic_a", subject.id)},
+                levers=levers(divider, "down"),
+            )
+        ]
+
+
+class BetaDependentBias(Rule[Stage]):
+    """The collector current is set by the current gain, which differs two- or threefold within one type: it
+    works with one reel and saturates with the next.
+
+    Ratio = IC at the highest gain of the part's group / IC at the lowest, by two bias solutions; for a
+    single base resistor it is the ratio of the gains themselves. Where the spread of the part is unknown it
+    cannot tell.
+    """
+
+    id = "beta-dependent-bias"
+    summary = "the collector current does not ride on the current gain"
+    theme = "bias"
+    weight = "review"
+    bench = "some boards saturate or distort and others do not, with the same values fitted"
+    source = "IC = beta (V - VBE)/RB; Bell, 5th ed., example 5.4 (VCE 13.95 V at 50, 1.80 V at 200, as transcribed)"
+    applies = Applies(kind="stage", configurations=LINEAR)
+    limits = (
+        Limit(
+            name="gain_spread_ratio",
+            default=2.0,
+            unit="",
+            low=1.0,
+            high=20.0,
+            source="a spread of 2:1 to 3:1 maps one to one into IC (application note AN1293, as transcribed)",
+        ),
+    )
+
+    def judge(self, board: Board, subject: Stage, limits: Mapping[str, Bound]) -> Iterable[Evidence]:
+        """One check of the two collector currents."""
+        parts = board.bias_parts(subject.id)
+        return [
+            Evidence(
+                check=require(board.ask("gain_spread_ratio", subject.id), "at most", limits["gain_spread_ratio"]),
+                subject=(subject.id, *parts)[:2],
+                message=f"collector current of {subject.id} spreads {{value}} to 1 over the current "
+                f"gain of the part, at "
+                "most {limit} to 1 wanted",
+                levers=levers(parts),
+            )
+        ]
+
+
+class NoBasePath(Rule[Stage]):
+    """A base that touches capacitors alone gets no direct current: leakage decides where it drifts to.
+
+    Structure: a path of resistors, windings, sources or junctions other than the device's own from the base
+    to a net of known voltage. A pin of a circuit that has no model may supply it; then it cannot tell.
+    """
+
+    id = "no-base-path"
+    summary = "every base has a path for its direct current"
+    theme = "bias"
+    weight = "must-fix"
+    bench = "the stage works for a moment after touching the base, then drifts to a rail"
+    source = "structure: Kirchhoff's current law at the base"
+    applies = Applies(kind="stage")
+
+    def judge(self, board: Board, subject: Stage, limits: Mapping[str, Bound]) -> Iterable[Evidence]:
+        """One check of the structure."""
+        return [
+            Evidence(
+                check=require(board.ask("base_dc_path", subject.id), "equals", _YES),
+                subject=(subject.id,),
+                message=f"the base of {subject.id} has no path for direct current",
+            )
+        ]
