@@ -7,9 +7,8 @@ from dataclasses import replace
 
 import numpy as np
 
-from checker.circuit.types import Circuit, Scenario
 from checker.circuit.changes import with_changes
-from checker.circuit.types import Change
+from checker.circuit.types import Change, Circuit, Scenario
 from checker.measure.bench import Bench, FloatArray
 from checker.measure.bias import require_bias
 from checker.measure.make import figure, first, missing
@@ -29,7 +28,7 @@ def _stacked(bench: Bench) -> Mapping[str, FloatArray]:
         names = circuit.bipolars.names
         scenarios = [Scenario(name="nominal")]
         for name in names:
-            low, high = gain_range(bench, name)
+            low, high = gain_limits(circuit, name)
             scenarios += [
                 Scenario(name=f"{name} {word}", kind="sample", changes=(Change(part=name, property="bf", value=bf),))
                 for word, bf in (("low", low), ("high", high), ("none", high * NO_BASE_CURRENT))
@@ -57,16 +56,16 @@ def _without_leakage(stack: Circuit, count: int) -> Circuit:
     return replace(stack, bipolars=replace(stack.bipolars, params=params))
 
 
-def gain_range(bench: Bench, device: str) -> tuple[float, float]:
+def gain_limits(circuit: Circuit, device: str) -> tuple[float, float]:
     """Lowest and highest BF of a device: its card's range of gain over its typical, else half and twice.
 
     The card gives the terminal gain at a stated current; BF is moved in the same proportion.
     """
-    fact = bench.facts.get(device)
-    bf = float(bench.circuit.bipolars.params["bf"][0, bench.circuit.bipolars.names.index(device)])
+    fact = circuit.parts.get(device)
+    bf = float(circuit.bipolars.params["bf"][0, circuit.bipolars.names.index(device)])
     if fact is None or fact.gain_min is None or fact.gain_max is None:
         return 0.5 * bf, 2.0 * bf
-    typical = np.sqrt(fact.gain_min * fact.gain_max)
+    typical = float(np.sqrt(fact.gain_min * fact.gain_max))
     return bf * fact.gain_min / typical, bf * fact.gain_max / typical
 
 
@@ -78,7 +77,7 @@ def gain_spread_ratio(bench: Bench, stage: str) -> Figure:
     low, high = _stacked(bench)["low"][index], _stacked(bench)["high"][index]
     values = np.full(bench.size, np.nan)
     values[0] = max(high, low) / min(high, low)
-    bf = gain_range(bench, stage)
+    bf = gain_limits(bench.circuit, stage)
     return figure(
         "gain_spread_ratio",
         stage,
