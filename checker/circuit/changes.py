@@ -125,9 +125,7 @@ def state_scenarios(circuit: Circuit, intent: Intent) -> tuple[Scenario, ...]:
 
     The nominal scenario is not among them. Raises InputTrouble for a rail that the circuit does not know.
     """
-    return tuple(
-        Scenario(name=state.name, kind="state", changes=_changes(circuit, state)) for state in intent.states
-    )
+    return tuple(Scenario(name=state.name, kind="state", changes=_changes(circuit, state)) for state in intent.states)
 
 
 def nominal() -> Scenario:
@@ -154,18 +152,14 @@ def _pin_changes(circuit: Circuit, label: str, level: float | str) -> list[Chang
     if name in circuit.voltages.names:
         emf, series, driven = name, f"{name}.r", DRIVEN_OHM
     else:
-        port = next(
-            (port for port in circuit.ports if port.net == terminals.get(pin) and port.emf >= 0), None
-        )
+        port = next((port for port in circuit.ports if port.net == terminals.get(pin) and port.emf >= 0), None)
         if port is None or port.series < 0:
             return []
         emf, series = circuit.voltages.names[port.emf], circuit.resistors.names[port.series]
         driven = float(circuit.resistors.value[0, port.series])
     if level == "open":
         return [Change(part=series, property="r_ohm", value=OPEN_OHM)]
-    volts = (
-        high_volts(circuit.rails, terminals.values()) if level == "high" else 0.0 if level == "low" else level
-    )
+    volts = high_volts(circuit.rails, terminals.values()) if level == "high" else 0.0 if level == "low" else level
     if not isinstance(volts, float | int):
         raise Internal(f"state level {level!r} of {label} has no volts")
     return [

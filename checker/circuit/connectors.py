@@ -51,8 +51,7 @@ FAMILIES: Final = (
     Family(name="cinch", pattern=r"RCA|CINCH", ohm=None, source="no nominal impedance"),
 )
 _COMPILED: Final = tuple(
-    (family, re.compile(rf"(?<![A-Z0-9.])(?:{family.pattern})(?![A-Z])", re.IGNORECASE))
-    for family in FAMILIES
+    (family, re.compile(rf"(?<![A-Z0-9.])(?:{family.pattern})(?![A-Z])", re.IGNORECASE)) for family in FAMILIES
 )
 _STATED: Final = re.compile(r"(?<![\d.])(50|75|93|100)(?:[\s_-]*(?:ohms?|Ω|R))?(?![\d.%])", re.IGNORECASE)
 _IN: Final = re.compile(
@@ -108,9 +107,5 @@ def signal_net(part: Part, known: frozenset[str]) -> str | None:
     nets = list(dict.fromkeys(pin.net for pin in part.pins if pin.net not in known))
     if len(nets) == 1:
         return nets[0]
-    inner = [
-        pin.net
-        for pin in part.pins
-        if pin.function.upper() in ("IN", "CENTER", "CENTRE", "SIG", "RF", "INNER")
-    ]
+    inner = [pin.net for pin in part.pins if pin.function.upper() in ("IN", "CENTER", "CENTRE", "SIG", "RF", "INNER")]
     return inner[0] if len(set(inner)) == 1 else None

@@ -43,13 +43,9 @@ def add_bipolar(draft: Draft, part: Part) -> None:
         return
     units = _terminals(draft, part, "bipolar", known)
     if not units:
-        leave_out(
-            draft, part, "bipolar", f"pin order of {part.ref}", "pin names B, C, E on the symbol, or Sim.Pins"
-        )
+        leave_out(draft, part, "bipolar", f"pin order of {part.ref}", "pin names B, C, E on the symbol, or Sim.Pins")
         return
-    parameters = bipolar_parameters(
-        known.written, area=part.params.get("area", 1.0), count=part.params.get("m", 1.0)
-    )
+    parameters = bipolar_parameters(known.written, area=part.params.get("area", 1.0), count=part.params.get("m", 1.0))
     _tell_unused(draft, known, parameters)
     for unit in units:
         order = (unit.nets["C"], unit.nets["B"], unit.nets["E"], _substrate(draft, unit))
@@ -88,9 +84,7 @@ def add_fet(draft: Draft, part: Part) -> None:
     """Name a field-effect transistor as unsolved, unless its part number is a bipolar's."""
     card = card_by_value(part)
     if card is not None and card.kind in BIPOLAR:
-        draft.notes.add(
-            "models", f"{card.name} is a bipolar; the part number is used, not the symbol", part.ref
-        )
+        draft.notes.add("models", f"{card.name} is a bipolar; the part number is used, not the symbol", part.ref)
         add_bipolar(draft, part)
         return
     leave_out(draft, part, "fet", *_NO_FET)
@@ -200,9 +194,7 @@ def _place(
     )
 
 
-def _gain(
-    draft: Draft, name: str, known: Identity, values: Mapping[str, float]
-) -> tuple[float | None, float | None]:
+def _gain(draft: Draft, name: str, known: Identity, values: Mapping[str, float]) -> tuple[float | None, float | None]:
     """Limits of the current gain of this type, from the card, else assumed around the model's."""
     if known.kind not in BIPOLAR:
         return None, None
@@ -210,9 +202,7 @@ def _gain(
     if card is not None and card.gain_min is not None and card.gain_max is not None and not card.assumed:
         return card.gain_min, card.gain_max
     low, high = ASSUMED_SPREAD
-    draft.notes.add(
-        "tolerances", f"current gain from {low:g} to {high:g} times the model's, for want of a card", name
-    )
+    draft.notes.add("tolerances", f"current gain from {low:g} to {high:g} times the model's, for want of a card", name)
     return values["bf"] * low, values["bf"] * high
 
 

@@ -182,9 +182,7 @@ class Draft:
 
     def elements_on(self, net: str) -> list[tuple[Table, str]]:
         """Two-terminal elements with an end on a net, as (table, name) in natural order."""
-        return sorted(
-            self.ends.get(net, ()), key=lambda entry: (TABLES.index(entry[0]), natural_key(entry[1]))
-        )
+        return sorted(self.ends.get(net, ()), key=lambda entry: (TABLES.index(entry[0]), natural_key(entry[1])))
 
     def _enter(self, table: Table, name: str, wire: Wire) -> None:
         self.table(table)[name] = wire
@@ -207,14 +205,10 @@ class Draft:
         }
         return tables[table]
 
-    def loose(
-        self, ref: str, nets: Iterable[str], datum: str, supply: str, *, blocks_dc: bool = True
-    ) -> None:
+    def loose(self, ref: str, nets: Iterable[str], datum: str, supply: str, *, blocks_dc: bool = True) -> None:
         """Record a part that cannot be solved with as a whole."""
         canonical = tuple(dict.fromkeys(self.net(net) for net in nets))
-        self.loose_parts.append(
-            LoosePart(ref=ref, nets=canonical, datum=datum, supply=supply, blocks_dc=blocks_dc)
-        )
+        self.loose_parts.append(LoosePart(ref=ref, nets=canonical, datum=datum, supply=supply, blocks_dc=blocks_dc))
 
     def said(self, ref: str) -> PartIntent | None:
         """The intent's entry for a part."""

@@ -115,9 +115,7 @@ def add_potentiometer(draft: Draft, part: Part) -> None:
 def add_battery(draft: Draft, part: Part) -> None:
     """A battery whose value text states volts; pin 1 is its positive pole."""
     draft.facts[part.ref] = bare_fact(draft, part, "source")
-    poles = sorted(
-        part.pins, key=lambda pin: pin.number.strip("+") != "1" and not pin.function.startswith("+")
-    )
+    poles = sorted(part.pins, key=lambda pin: pin.number.strip("+") != "1" and not pin.function.startswith("+"))
     try:
         volts = parse_engineering(part.value, "V").si
     except NotAQuantity:
@@ -164,9 +162,7 @@ def two_ends(part: Part) -> tuple[str, str] | None:
 def _coil_pins(part: Part) -> tuple[str, str] | None:
     """The coil of a relay (A1, A2), else the only two pins."""
     coil = {pin.number.upper(): pin.net for pin in part.pins if pin.number.upper() in ("A1", "A2")}
-    coil = coil or {
-        pin.function.upper(): pin.net for pin in part.pins if pin.function.upper() in ("A1", "A2")
-    }
+    coil = coil or {pin.function.upper(): pin.net for pin in part.pins if pin.function.upper() in ("A1", "A2")}
     return (coil["A1"], coil["A2"]) if len(coil) == 2 else two_ends(part)
 
 
@@ -174,9 +170,7 @@ def _not_two_ended(draft: Draft, part: Part, kind: PartKind) -> None:
     """One-ended parts do nothing; others are of a form that is not modelled."""
     draft.facts[part.ref] = bare_fact(draft, part, kind)
     if len(part.pins) > 1:
-        draft.loose(
-            part.ref, [pin.net for pin in part.pins], f"which pins of {part.ref} belong together", "two pins"
-        )
+        draft.loose(part.ref, [pin.net for pin in part.pins], f"which pins of {part.ref} belong together", "two pins")
 
 
 def _without_value(draft: Draft, part: Part, kind: str, ends: tuple[str, str]) -> None:

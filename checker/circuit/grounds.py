@@ -11,9 +11,7 @@ from checker.circuit.order import last_segment, listed, natural
 from checker.intent.types import Intent
 from checker.netlist.types import Netlist
 
-_GROUND = re.compile(
-    r"[ADPSC]?GND(?:[ADPSR]|PWR|REF|ISO|\d{1,2})?(?:[_-]\w{1,10})?|EARTH(?:_\w+)?|0V", re.IGNORECASE
-)
+_GROUND = re.compile(r"[ADPSC]?GND(?:[ADPSR]|PWR|REF|ISO|\d{1,2})?(?:[_-]\w{1,10})?|EARTH(?:_\w+)?|0V", re.IGNORECASE)
 _WEAK = re.compile(r"VSS[AD]?", re.IGNORECASE)
 """A ground by name only where no net has a stronger one: beside a GND it may be a negative supply."""
 
@@ -36,9 +34,7 @@ def find_ground(netlist: Netlist, intent: Intent, notes: Notes) -> Ground:
     """
     fixed = [key for key in netlist.ground if key in netlist.nets]
     kicad = netlist.format == "kicad"
-    named = (
-        _named(netlist, _GROUND) if kicad or not fixed else _named(netlist, re.compile("GND", re.IGNORECASE))
-    )
+    named = _named(netlist, _GROUND) if kicad or not fixed else _named(netlist, re.compile("GND", re.IGNORECASE))
     keys = fixed + [key for key in named if key not in fixed]
     keys = keys or _named(netlist, _WEAK)
     if not keys:

@@ -51,9 +51,7 @@ class Identity:
     @property
     def written(self) -> Mapping[str, float]:
         """Model parameters as written."""
-        return (
-            self.model.params if self.model is not None else self.card.model if self.card is not None else {}
-        )
+        return self.model.params if self.model is not None else self.card.model if self.card is not None else {}
 
 
 def intended_card(draft: Draft, part: Part) -> Card | None:
@@ -142,7 +140,5 @@ def _compare(
     """Note every hint that contradicts the part number."""
     for who, kind in hints:
         if kind in family and card.kind in family and kind != card.kind and family == BIPOLAR:
-            text = (
-                f"{card.name} is {card.kind.upper()}, but {who} says {kind.upper()}; the part number is used"
-            )
+            text = f"{card.name} is {card.kind.upper()}, but {who} says {kind.upper()}; the part number is used"
             draft.notes.add("models", text, part.ref)

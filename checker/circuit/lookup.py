@@ -44,9 +44,7 @@ def find_pin(draft: Draft, ref: str, pin: str, origin: Origin, what: str) -> tup
     found = [entry for entry in part.pins if entry.number == pin]
     found = found or [entry for entry in part.pins if entry.function.upper() == pin.upper()]
     if not found or len({entry.net for entry in found}) != 1:
-        known = {entry.number for entry in part.pins} | {
-            entry.function for entry in part.pins if entry.function
-        }
+        known = {entry.number for entry in part.pins} | {entry.function for entry in part.pins if entry.function}
         message = f"{what}: {unknown(pin, known, f'pin of {ref}')}"
         raise InputTrouble(message, file=origin.file, line=origin.line)
     return part, found[0]

@@ -59,14 +59,10 @@ def _respelt(written: Mapping[str, float], spellings: Mapping[str, str]) -> dict
     for name, value in written.items():
         given.setdefault(spellings.get(name, name), value)
     given.update({name: value for name, value in written.items() if name not in spellings})
-    return {
-        name: p.INF if value == 0.0 and name in p.ZERO_IS_ABSENT else value for name, value in given.items()
-    }
+    return {name: p.INF if value == 0.0 and name in p.ZERO_IS_ABSENT else value for name, value in given.items()}
 
 
-def _scaled(
-    values: dict[str, float], factor: float, times: tuple[str, ...], over: tuple[str, ...]
-) -> dict[str, float]:
+def _scaled(values: dict[str, float], factor: float, times: tuple[str, ...], over: tuple[str, ...]) -> dict[str, float]:
     if factor == 1.0:
         return values
     scaled = dict(values)

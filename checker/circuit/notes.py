@@ -7,9 +7,7 @@ from typing import Final, Literal
 
 from checker.circuit.order import listed, natural_key
 
-Topic = Literal[
-    "ground", "rails", "states", "ports", "connectors", "models", "pins", "parts", "values", "tolerances"
-]
+Topic = Literal["ground", "rails", "states", "ports", "connectors", "models", "pins", "parts", "values", "tolerances"]
 _TOPICS: Final[tuple[Topic, ...]] = (
     "ground",
     "rails",

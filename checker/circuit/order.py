@@ -12,9 +12,7 @@ def natural_key(name: str) -> tuple[tuple[int, int, str], ...]:
     """Sort key in which runs of ASCII digits count as numbers."""
     runs = _RUN.split(name)
     return tuple(
-        (1, int(run), "") if run.isascii() and run.isdigit() and len(run) < 19 else (0, 0, run)
-        for run in runs
-        if run
+        (1, int(run), "") if run.isascii() and run.isdigit() and len(run) < 19 else (0, 0, run) for run in runs if run
     )
 
 

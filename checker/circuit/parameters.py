@@ -141,7 +141,5 @@ BIPOLAR_OVER_AREA: Final = ("rb", "rbm", "re", "rc")
 DIODE_TIMES_AREA: Final = ("is", "isr", "ikf", "ibv", "cjo")
 DIODE_OVER_AREA: Final = ("rs",)
 
-SILENT: Final = frozenset(
-    {"level", "tnom", "vceo", "vcbo", "icrating", "iave", "vpk", "irms", "isurge", "mfg", "type"}
-)
+SILENT: Final = frozenset({"level", "tnom", "vceo", "vcbo", "icrating", "iave", "vpk", "irms", "isurge", "mfg", "type"})
 """Written in models without an effect on what is computed here: no remark is made."""

@@ -159,9 +159,7 @@ def classify(part: Part, *, spice: bool) -> Kind:
             return kind
     if part.symbol:
         return _by_library(part)
-    return next(
-        (kind for kind, letters in _LETTERS if re.fullmatch(letters, part.letter.upper())), "unmodelled"
-    )
+    return next((kind for kind, letters in _LETTERS if re.fullmatch(letters, part.letter.upper())), "unmodelled")
 
 
 def is_coaxial(part: Part) -> bool:
@@ -210,9 +208,7 @@ def _by_library(part: Part) -> Kind:
         return "unmodelled"
     if "bjt" in library or re.search(r"\b(?:NPN|PNP)\b", text, re.IGNORECASE):
         return "bipolar"
-    if library in ("diode", "led", "diodes") or re.search(
-        r"\b(?:diode|LED)\b", part.description, re.IGNORECASE
-    ):
+    if library in ("diode", "led", "diodes") or re.search(r"\b(?:diode|LED)\b", part.description, re.IGNORECASE):
         return "diode"
     if part.letter.upper() in ("Q", "VT"):
         return "bipolar"

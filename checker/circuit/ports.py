@@ -96,11 +96,7 @@ def existing_source(draft: Draft, net: str) -> tuple[str, str]:
     """
     on = draft.elements_on(net)
     for table, name in on:
-        if (
-            table == "voltages"
-            and draft.voltages[name].other(net) == draft.ground
-            and _may_drive(draft, name)
-        ):
+        if table == "voltages" and draft.voltages[name].other(net) == draft.ground and _may_drive(draft, name):
             return name, ""
     for table, name in on:
         if table != "resistors":
@@ -123,9 +119,7 @@ def existing_load(draft: Draft, net: str) -> tuple[str, ...]:
     on = draft.elements_on(net)
     resistors = [name for table, name in on if table == "resistors"]
     capacitors = [
-        name
-        for table, name in on
-        if table == "capacitors" and draft.capacitors[name].other(net) != draft.ground
+        name for table, name in on if table == "capacitors" and draft.capacitors[name].other(net) != draft.ground
     ]
     others = [name for table, name in on if table not in ("resistors", "capacitors")]
     grounded = tuple(name for name in resistors if draft.resistors[name].other(net) == draft.ground)
@@ -151,9 +145,7 @@ def _from_sources(draft: Draft) -> None:
             series, plane = _lone_resistor(draft, name, hot)
             coaxial = _is_coaxial(draft, plane)
             draft.ports.append(
-                DraftPort(
-                    name=name, net=plane, role="input", emf=name, series=series, coaxial=coaxial, part=name
-                )
+                DraftPort(name=name, net=plane, role="input", emf=name, series=series, coaxial=coaxial, part=name)
             )
         draft.notes.add("ports", f"{name} carries signal; taken as an input port at {draft.ports[-1].net}")
 

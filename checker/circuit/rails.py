@@ -89,17 +89,13 @@ def _from_intent(draft: Draft) -> None:
         known = draft.known_volts(net)
         if net == draft.ground:
             if said.volts != 0.0:
-                draft.notes.add(
-                    "rails", f"{said.net} is ground; the {said.volts:g} V declared for it are not used"
-                )
+                draft.notes.add("rails", f"{said.net} is ground; the {said.volts:g} V declared for it are not used")
         elif known is not None:
             _declared_and_driven(draft, said, net, known)
         else:
             named = volts_of_name(net)
             if named is not None and named != said.volts:
-                draft.notes.add(
-                    "rails", f"{net} is {said.volts:g} V as declared, although its name says {named:g} V"
-                )
+                draft.notes.add("rails", f"{net} is {said.volts:g} V as declared, although its name says {named:g} V")
             _hold(draft, net, said.volts)
             _list(draft, net, said.volts, "intent", said)
 
@@ -120,11 +116,7 @@ def _from_names(draft: Draft) -> None:
         volts = volts_of_name(name)
         known = draft.known_volts(net)
         if known is not None:
-            if (
-                volts is not None
-                and abs(known - volts) > 1e-9 * abs(volts)
-                and net not in draft.rail_elements
-            ):
+            if volts is not None and abs(known - volts) > 1e-9 * abs(volts) and net not in draft.rail_elements:
                 draft.notes.add("rails", f"{net} is held at {known:g} V, although its name says {volts:g} V")
         elif volts:
             draft.notes.add("rails", f"{net} taken as {volts:g} V from its name")
