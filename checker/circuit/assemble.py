@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Mapping
+from collections.abc import Iterable, Mapping
 from dataclasses import replace
 
 import numpy as np
@@ -10,6 +10,7 @@ from numpy.typing import NDArray
 
 from checker.circuit.draft import Draft, DraftDevice, DraftPort, Wire
 from checker.circuit.order import natural, natural_key
+from checker.circuit.parameters import BIPOLAR, DIODE
 from checker.circuit.types import (
     Branches,
     Circuit,
@@ -41,8 +42,8 @@ def assemble(draft: Draft, temperature_k: float) -> Circuit:
         couplings=_couplings(draft.couplings, inductors.names),
         voltages=voltages,
         currents=_branches(draft.currents, node),
-        bipolars=_devices(draft.bipolars, node, 4),
-        diodes=_devices(draft.diodes, node, 2),
+        bipolars=_devices(draft.bipolars, node, 4, BIPOLAR),
+        diodes=_devices(draft.diodes, node, 2, DIODE),
         temperature_k=frozen(np.array([temperature_k])),
         scenarios=(NOMINAL,),
         rails=rails,
@@ -71,8 +72,7 @@ def _branches(wires: Mapping[str, Wire], node: Mapping[str, int]) -> Branches:
         [(node[wires[name].first], node[wires[name].second]) for name in names], dtype=np.int64
     ).reshape(len(names), 2)
     nodes.setflags(write=False)
-    value = np.array([[wires[name].value for name in names]], dtype=np.float64).reshape(1, len(names))
-    return Branches(names=names, nodes=nodes, value=frozen(value))
+    return Branches(names=names, nodes=nodes, value=_column([wires[name].value for name in names]))
 
 
 def _couplings(pairs: Mapping[str, tuple[str, str, float]], inductors: tuple[str, ...]) -> Couplings:
@@ -81,25 +81,31 @@ def _couplings(pairs: Mapping[str, tuple[str, str, float]], inductors: tuple[str
     pair = np.array([(place[pairs[name][0]], place[pairs[name][1]]) for name in names], dtype=np.int64)
     pair = pair.reshape(len(names), 2)
     pair.setflags(write=False)
-    k = np.array([[pairs[name][2] for name in names]], dtype=np.float64).reshape(1, len(names))
-    return Couplings(names=names, pair=pair, k=frozen(k))
+    return Couplings(names=names, pair=pair, k=_column([pairs[name][2] for name in names]))
 
 
-def _devices(devices: Mapping[str, DraftDevice], node: Mapping[str, int], terminals: int) -> Devices:
+def _devices(
+    devices: Mapping[str, DraftDevice], node: Mapping[str, int], terminals: int, keys: Iterable[str]
+) -> Devices:
+    """A device table; every parameter has its column even where there is no device."""
     names = tuple(natural(devices))
     entries = [devices[name] for name in names]
     nodes = np.array([[node[net] for net in entry.nets] for entry in entries], dtype=np.int64)
     nodes = nodes.reshape(len(names), terminals)
     nodes.setflags(write=False)
-    keys = tuple(entries[0].params) if entries else ()
     return Devices(
         names=names,
         nodes=nodes,
         polarity=frozen(np.array([entry.polarity for entry in entries], dtype=np.float64)),
-        params={key: frozen(np.array([[entry.params[key] for entry in entries]])) for key in keys},
+        params={key: _column([entry.params[key] for entry in entries]) for key in keys},
         tnom_k=frozen(np.array([entry.tnom_k for entry in entries], dtype=np.float64)),
         rth_kpw=frozen(np.array([entry.rth_kpw for entry in entries], dtype=np.float64)),
     )
+
+
+def _column(values: list[float]) -> FloatArray:
+    """One row of nominal values, (1, n)."""
+    return frozen(np.array(values, dtype=np.float64).reshape(1, len(values)))
 
 
 def _index(branches: Branches, name: str) -> int:

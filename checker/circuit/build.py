@@ -10,12 +10,15 @@ from checker.circuit.devices import add_bipolar, add_diode, add_fet, bare_fact
 from checker.circuit.draft import Draft
 from checker.circuit.drives import add_drives
 from checker.circuit.elements import (
+    add_array,
     add_battery,
     add_coupling,
     add_current,
+    add_declared,
     add_passive,
     add_potentiometer,
     add_voltage,
+    two_ends,
 )
 from checker.circuit.grounds import find_ground
 from checker.circuit.identity import BIPOLAR, DIODE, card_by_value, intended_card
@@ -34,6 +37,7 @@ from checker.circuit.parts import Kind, classify
 from checker.circuit.ports import add_ports
 from checker.circuit.rails import add_rails
 from checker.circuit.types import Circuit
+from checker.circuit.values import written_value
 from checker.constants import DEFAULT_AMBIENT_C, ZERO_CELSIUS_K
 from checker.intent.hints import unknown
 from checker.intent.types import Intent
@@ -61,11 +65,17 @@ _ADDERS: Final[dict[Kind, _Adder]] = {
     "controlled": add_controlled,
     "line": add_line,
     "battery": add_battery,
+    "array": add_array,
     "unmodelled": add_unmodelled,
 }
+_UNIT: Final[dict[str, tuple[Kind, str]]] = {"C": ("capacitor", "F"), "L": ("inductor", "H")}
+"""A symbol of unknown name with the letter, value and two used pins of a capacitor or coil is one."""
 _FIRST: Final[tuple[Kind, ...]] = ("voltage", "battery")
-_LAST: Final[tuple[Kind, ...]] = ("coupling",)
-"""Sources come before what may only repeat them (0 ohm parts); couplings after the inductors they name."""
+_LAST: Final[tuple[Kind, ...]] = ("coupling", "unmodelled")
+"""Sources come before what may only repeat them (0 ohm parts); couplings after the inductors they name, and
+parts whose coil is found by the diode across it after the diodes."""
+_VALUED: Final[tuple[Kind, ...]] = ("resistor", "capacitor", "inductor", "potentiometer", "array")
+"""Kinds whose adder takes the intent's value itself."""
 
 
 def build_circuit(netlist: Netlist, intent: Intent) -> Circuit:
@@ -81,7 +91,8 @@ def build_circuit(netlist: Netlist, intent: Intent) -> Circuit:
     draft.touches.update(draft.net(pin.net) for part in netlist.parts for pin in part.pins)
     _check_names(draft)
     for kind, part in _sorted(netlist, draft):
-        _ADDERS[kind](draft, part)
+        if kind in _VALUED or not add_declared(draft, part):
+            _ADDERS[kind](draft, part)
     add_rails(draft)
     add_ports(draft)
     add_drives(draft)
@@ -113,6 +124,8 @@ def _kind(draft: Draft, part: Part, *, spice: bool) -> Kind:
     kind = classify(part, spice=spice)
     if kind != "unmodelled" or not 2 <= len(part.pins) <= 6:
         return kind
+    if part.letter.upper() in _UNIT and two_ends(part) and written_value(part, _UNIT[part.letter.upper()][1]):
+        return _UNIT[part.letter.upper()][0]
     card = intended_card(draft, part) or card_by_value(part)
     if card is None:
         return kind

@@ -93,13 +93,22 @@ def role_by_name(*texts: str) -> PortRole | None:
     """Direction that net, value or reference names tell; None where they tell none or both."""
     roles: set[PortRole] = set()
     for text in texts:
-        last = text.rsplit("/", 1)[-1]
+        last = "" if text.startswith("Net-(") else text.rsplit("/", 1)[-1]
         for word in (last, *_SPLIT.split(last)):
             if _IN.fullmatch(word):
                 roles.add("input")
             elif _OUT.fullmatch(word):
                 roles.add("output")
     return roles.pop() if len(roles) == 1 else None
+
+
+def role_of_net(net: str) -> PortRole | None:
+    """Direction that a net's own name tells: IN, RF_OUT; not a name that merely contains such a word, and not
+    the TX and RX of a data bus."""
+    last = net.rsplit("/", 1)[-1]
+    if re.fullmatch(r"[TR]X|IF", last, re.IGNORECASE):
+        return None
+    return "input" if _IN.fullmatch(last) else "output" if _OUT.fullmatch(last) else None
 
 
 def signal_net(part: Part, known: frozenset[str]) -> str | None:

@@ -120,6 +120,10 @@ class Draft:
     rails: list[Rail] = field(default_factory=list)
     rail_elements: dict[str, str] = field(default_factory=dict)
     """Rail net -> name of the voltage entry that holds it."""
+    foreign: set[str] = field(default_factory=set)
+    """Nets touched by transistors that are not solved or by pins of unmodelled parts that may feed them."""
+    nameless: set[str] = field(default_factory=set)
+    """Nets that are supplies by name, of unknown voltage."""
     ports: list[DraftPort] = field(default_factory=list)
     driven: dict[str, str] = field(default_factory=dict)
     """Pin named by a state ("U1.7") -> net."""
@@ -140,14 +144,15 @@ class Draft:
         left out."""
         ends = self.net(first), self.net(second)
         if ends[0] == ends[1]:
-            self.notes.add("parts", "both ends on one net; left out", name)
+            if name in self.facts:
+                self.notes.add("parts", "both ends on one net; left out", name)
             return
         self._enter(table, name, Wire(first=ends[0], second=ends[1], value=value))
 
     def tie(self, name: str, first: str, second: str, volts: float, *, link: bool = False) -> bool:
         """Add an ideal source first - second = `volts` [V]; False where the nets are tied already.
 
-        A second source that agrees with the first would leave their shares of the current undetermined, so it is
+        A second source that agrees with the first would leave their shares of current undetermined: it is
         left out; one that disagrees blocks its nets.
         """
         a, b = self.net(first), self.net(second)

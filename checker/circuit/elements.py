@@ -12,7 +12,7 @@ from checker.circuit.values import part_value
 from checker.netlist.types import Part
 from checker.quantity.parse import parse_engineering
 from checker.quantity.value import Value
-from checker.trouble import NotAQuantity
+from checker.trouble import InputTrouble, NotAQuantity
 
 _UNITS: Final[dict[str, tuple[str, Table, PartKind, str]]] = {
     "resistor": ("ohm", "resistors", "resistor", "value"),
@@ -95,21 +95,50 @@ def add_coupling(draft: Draft, part: Part) -> None:
 
 def add_potentiometer(draft: Draft, part: Part) -> None:
     """A potentiometer at mid travel as two resistors; one drawn with two pins as its whole resistance."""
-    pins = {pin.number: pin.net for pin in part.pins}
     value = part_value(draft, part, "ohm")
+    ends, wiper = _track(part)
     draft.facts[part.ref] = bare_fact(draft, part, "resistor")
     if value is None or value.si == 0.0:
-        draft.loose(part.ref, pins.values(), f"value of {part.ref}", "a value in ohm")
-    elif {"1", "2", "3"} <= pins.keys():
+        draft.loose(part.ref, [pin.net for pin in part.pins], f"value of {part.ref}", "a value in ohm")
+    elif len(ends) != 2:
+        draft.loose(part.ref, [pin.net for pin in part.pins], f"pins of {part.ref}", "pins 1, 2 (wiper) and 3")
+    elif wiper:
         draft.notes.add("parts", "potentiometer taken at mid travel, linear", part.ref)
-        draft.wire("resistors", f"{part.ref}.a", pins["1"], pins["2"], value.si / 2)
-        draft.wire("resistors", f"{part.ref}.b", pins["2"], pins["3"], value.si / 2)
-    elif len(pins) == 2:
-        draft.notes.add("parts", "variable resistor taken at its written value", part.ref)
-        first, second = pins.values()
-        draft.wire("resistors", part.ref, first, second, value.si)
+        draft.wire("resistors", f"{part.ref}.a", ends[0], wiper, value.si / 2)
+        draft.wire("resistors", f"{part.ref}.b", wiper, ends[1], value.si / 2)
     else:
-        draft.loose(part.ref, pins.values(), f"pins of {part.ref}", "pins 1, 2 (wiper) and 3")
+        draft.notes.add("parts", "variable resistor taken at its written value", part.ref)
+        draft.wire("resistors", part.ref, *ends, value.si)
+
+
+def _track(part: Part) -> tuple[tuple[str, ...], str]:
+    """(nets of the track's ends, net of the wiper): the pin called W or wiper, else pin 2 of three."""
+    wipers = [pin for pin in part.pins if {pin.number.upper(), pin.function.upper()} & {"W", "WIPER"}]
+    if not wipers and len(part.pins) == 3:
+        wipers = [pin for pin in part.pins if pin.number == "2"]
+    ends = tuple(pin.net for pin in part.pins if pin not in wipers)
+    return ends, wipers[0].net if len(wipers) == 1 and len(part.pins) == 3 else ""
+
+
+def add_array(draft: Draft, part: Part) -> None:
+    """Separate resistors in one case: pin k belongs with the pin opposite, 2 n + 1 - k."""
+    value = part_value(draft, part, "ohm")
+    pins = {int(pin.number): pin.net for pin in part.pins if pin.number.isascii() and pin.number.isdigit()}
+    draft.facts[part.ref] = bare_fact(draft, part, "resistor")
+    count = _even(max(pins, default=0))
+    if value is None or value.si == 0.0 or len(pins) != len(part.pins):
+        draft.loose(part.ref, [pin.net for pin in part.pins], f"value of {part.ref}", "a value in ohm")
+        return
+    draft.notes.add("pins", "resistor array: each pin taken with the one opposite", part.ref)
+    for number in range(1, count // 2 + 1):
+        if number in pins and count + 1 - number in pins:
+            first, second = pins[number], pins[count + 1 - number]
+            draft.wire("resistors", f"{part.ref}.{number}", first, second, value.si)
+
+
+def _even(count: int) -> int:
+    """Number of pins of the array whose highest connected pin this is."""
+    return count + count % 2
 
 
 def add_battery(draft: Draft, part: Part) -> None:
@@ -128,15 +157,20 @@ def add_battery(draft: Draft, part: Part) -> None:
 
 
 def add_declared(draft: Draft, part: Part) -> bool:
-    """A part whose two-terminal model the intent gives (a relay coil, a motor); False where it gives none."""
+    """A part whose two-terminal model the intent gives (a relay coil, a motor); False where it gives none.
+
+    Raises InputTrouble where two of its pins cannot be singled out.
+    """
     said = draft.said(part.ref)
-    given = None if said is None else (said.resistance_ohm, said.inductance_h, said.capacitance_f)
-    if given is None or all(value is None for value in given):
+    if said is None:
         return False
-    ends = _coil_pins(part)
+    resistance, inductance, capacitance = said.resistance_ohm, said.inductance_h, said.capacitance_f
+    if resistance is None and inductance is None and capacitance is None:
+        return False
+    ends = _coil_pins(draft, part)
     if ends is None:
-        return False
-    resistance, inductance, capacitance = given
+        message = f"[[part]] {part.ref!r}: two pins cannot be singled out; a coil's are A1 and A2"
+        raise InputTrouble(message, file=said.origin.file, line=said.origin.line)
     draft.facts[part.ref] = _fact(draft, part, "coil", ends, None)
     if capacitance is not None:
         draft.wire("capacitors", f"{part.ref}.c", *ends, capacitance)
@@ -148,7 +182,15 @@ def add_declared(draft: Draft, part: Part) -> bool:
         draft.wire("resistors", f"{part.ref}.r", *ends, resistance)
     elif inductance is not None:
         draft.wire("inductors", f"{part.ref}.l", *ends, inductance)
+    _contacts(draft, part, ends)
     return True
+
+
+def _contacts(draft: Draft, part: Part, coil: tuple[str, str]) -> None:
+    """Pins of a relay that are not its coil: where they lead is unknown."""
+    nets = [pin.net for pin in part.pins if pin.net not in coil]
+    if nets:
+        draft.loose(part.ref, nets, f"contacts of {part.ref}", "nothing yet: contacts are not modelled")
 
 
 def two_ends(part: Part) -> tuple[str, str] | None:
@@ -159,11 +201,33 @@ def two_ends(part: Part) -> tuple[str, str] | None:
     return (nets[0], nets[1]) if len(nets) == 2 else None
 
 
+<<<<<<< HEAD
 def _coil_pins(part: Part) -> tuple[str, str] | None:
     """The coil of a relay (A1, A2), else the only two pins."""
     coil = {pin.number.upper(): pin.net for pin in part.pins if pin.number.upper() in ("A1", "A2")}
     coil = coil or {pin.function.upper(): pin.net for pin in part.pins if pin.function.upper() in ("A1", "A2")}
     return (coil["A1"], coil["A2"]) if len(coil) == 2 else two_ends(part)
+=======
+def _coil_pins(draft: Draft, part: Part) -> tuple[str, str] | None:
+    """The coil of a relay (A1 and A2, else the two nets with a diode across), else the only two pins."""
+    coil: dict[str, str] = {}
+    for pin in part.pins:
+        for label in (pin.number.upper(), pin.function.upper()):
+            if label in ("A1", "A2"):
+                coil.setdefault(label, pin.net)
+    if len(coil) == 2:
+        return coil["A1"], coil["A2"]
+    ends = two_ends(part)
+    if ends is not None:
+        return ends
+    own = {draft.net(pin.net) for pin in part.pins}
+    across = {device.nets for device in draft.diodes.values() if set(device.nets) <= own}
+    if len(across) != 1:
+        return None
+    ((anode, cathode),) = across
+    draft.notes.add("pins", "the coil is taken to be on the two pins that a diode joins", part.ref)
+    return cathode, anode
+>>>>>>> main
 
 
 def _not_two_ended(draft: Draft, part: Part, kind: PartKind) -> None:

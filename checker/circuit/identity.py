@@ -27,6 +27,8 @@ _MODEL_KIND: Final[Mapping[str, CardKind]] = {
     "pmos": "pmos",
 }
 _WORD: Final = re.compile(r"NPN|PNP", re.IGNORECASE)
+_JIS: Final = re.compile(r"Q?2S([ABCD])\d", re.IGNORECASE)
+"""2SA and 2SB are PNP, 2SC and 2SD NPN (JIS C 7012, from memory)."""
 _PLACEHOLDER: Final = re.compile(
     r"[~?*]*|Q\??|D\??|NPN|PNP|LED|DIODE|ZENER|D_\w+|Q_\w+|BJT|TRANSISTOR\w*", re.IGNORECASE
 )
@@ -67,10 +69,14 @@ def intended_card(draft: Draft, part: Part) -> Card | None:
 
 
 def card_by_value(part: Part) -> Card | None:
-    """The card of the part number that the value (or model name) carries."""
-    texts = (part.model, part.fields.get("Sim.Name", ""), part.fields.get("Spice_Model", ""), part.value)
+    """The card of the part number that the value or model name carries, also behind a letter
+    (`Q2N3904`, `D1N4148`)."""
+    texts = [part.model, part.fields.get("Sim.Name", ""), part.fields.get("Spice_Model", ""), part.value]
+    if re.fullmatch(r"BZ[XVTG]\w+", symbol_name(part), re.IGNORECASE):
+        texts.insert(0, symbol_name(part) + part.value)  # a Zener series as symbol, its voltage as value
     for text in dict.fromkeys(texts):
-        for candidate in (text, text.split()[0] if text.split() else ""):
+        bare = text[1:] if text[:1] in "QqDd" else ""
+        for candidate in (text, text.split()[0] if text.split() else "", bare):
             if candidate and not _PLACEHOLDER.fullmatch(candidate):
                 card = find_card(candidate)
                 if card is not None:
@@ -125,8 +131,11 @@ def _hints(part: Part) -> list[tuple[str, CardKind]]:
     texts += [("the symbol", symbol_name(part)), ("the description", part.description)]
     for who, text in texts:
         word = _WORD.search(text)
+        japanese = _JIS.match(text)
         if word is not None:
             found.append((who, "npn" if word[0].upper() == "NPN" else "pnp"))
+        elif japanese is not None:
+            found.append((who, "pnp" if japanese[1].upper() in "AB" else "npn"))
         elif who == "the symbol" and text and not _PLACEHOLDER.fullmatch(text):
             card = find_card(text)
             if card is not None:

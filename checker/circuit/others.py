@@ -14,6 +14,10 @@ from checker.netlist.types import Part
 
 _SAFE: Final = frozenset({"input", "no_connect", "notconnected", "unconnected", "free"})
 """Pin kinds that draw no current worth counting."""
+_NO_INPUTS: Final = frozenset(
+    ("K", "RL", "RLY", "SW", "S", "SP", "LS", "L", "T", "TR", "M", "BZ", "MK", "R", "RN", "RV", "RT", "X")
+)
+"""Letters of parts that conduct, whatever pin kind a careless symbol gives them."""
 
 
 def add_closed(draft: Draft, part: Part) -> None:
@@ -82,16 +86,22 @@ def add_line(draft: Draft, part: Part) -> None:
 def _pins(draft: Draft, part: Part, kind: str, datum: str, supply: str) -> None:
     for pin in part.pins:
         label = f"{part.ref}.{pin.number}"
+        if kind != "connector" and not _is_safe(pin.kind):
+            draft.foreign.add(draft.net(pin.net))
         draft.loose_pins.append(
             LoosePin(
                 part=part.ref,
                 pin=pin.number,
                 net=draft.net(pin.net),
-                kind=kind or pin.kind,
+                kind=kind or ("passive" if part.letter.upper() in _NO_INPUTS else pin.kind),
                 datum=datum.format(pin=f"pin {pin.number}"),
                 supply=supply.format(pin=label),
             )
         )
+
+
+def _is_safe(kind: str) -> bool:
+    return bool(_SAFE & set(kind.lower().split("+")))
 
 
 def settle(draft: Draft) -> None:
@@ -115,7 +125,7 @@ def settle(draft: Draft) -> None:
             )
         )
     for pin in draft.loose_pins:
-        if pin.net in present and draft.known_volts(pin.net) is None:
+        if pin.net in present - draft.nameless and draft.known_volts(pin.net) is None:
             _settle_pin(draft, pin, pin.net in conducting)
 
 
@@ -123,10 +133,9 @@ def _settle_pin(draft: Draft, pin: LoosePin, conducts: bool) -> None:
     """One pin on a net of unknown voltage that has elements."""
     if f"{pin.part}.{pin.pin}" in draft.driven:
         return
-    base = pin.kind.lower().split("+")[0]
     if pin.kind == "connector":
         draft.notes.add("connectors", "pins of connectors taken as open", pin.part)
-    elif "no_connect" in pin.kind.lower() or base in _SAFE:
+    elif _is_safe(pin.kind):
         draft.notes.add("parts", "inputs taken as drawing no current", pin.part)
     else:
         draft.unknowns.append(

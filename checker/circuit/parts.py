@@ -29,6 +29,7 @@ Kind = Literal[
     "controlled",
     "line",
     "battery",
+    "array",
     "unmodelled",
 ]
 
@@ -67,11 +68,9 @@ _DEVICE: Final[dict[str, Kind]] = {
     "PMOS": "fet",
     "NMES": "fet",
     "PMES": "fet",
-    "J": "fet",
-    "M": "fet",
-    "Z": "fet",
 }
-"""Words of the simulation fields (`Sim.Device`, `Spice_Primitive`)."""
+"""Words of the simulation fields (`Sim.Device`, `Spice_Primitive`). The older field's J and M are not among
+them: it repeats the letter of the reference, so every connector J1 would be a transistor."""
 
 COAXIAL: Final = re.compile(
     r"COAX|(?<![A-Z0-9])(?:BNC|TNC|SMA|SMB|SMC|SMP|MCX|MMCX|UFL|U\.FL|IPEX|RF[-_ ]?CONN)(?![A-Z])",
@@ -91,7 +90,8 @@ _SYMBOLS: Final[tuple[tuple[Kind, str], ...]] = (
     ),
     ("open", r"(?:SOLDER)?_?JUMPER\w*|SW_PUSH\w*|PUSHBUTTON\w*|CRYSTAL\w*|XTAL\w*|\w*XTAL4PIN"),
     ("potentiometer", r"R_?POT\w*|POT(?:ENTIOMETER)?(?:[-_]\w+)?|TRIM_?POT\w*|R_TRIM\w*|R_VARIABLE\w*"),
-    ("unmodelled", r"R_?(?:PACK|NETWORK|ARRAY|PHOTO)\w*|R_SHUNT\w*|THERM\w*|VARISTOR\w*|LDR\w*|VTL5C\w*"),
+    ("array", r"R_?PACK\d+\w*"),
+    ("unmodelled", r"R_?(?:NETWORK|ARRAY|PHOTO)\w*|R_SHUNT\w*|THERM\w*|VARISTOR\w*|LDR\w*|VTL5C\w*"),
     ("resistor", r"R(?:ES(?:ISTOR)?)?(?:[-_ ]\w+)*"),
     ("capacitor", r"CP?1?(?:[-_](?:SMALL|POL\w*|US\w*|EU\w*|ALUM\w*|DEVICE|TRIM\w*|VARIABLE|\d+)[\w.-]*)*"),
     ("capacitor", r"CAP(?:ACITOR)?(?:[-_]\w+)*|C_?TRIM\w*|CPOL\w*"),
@@ -170,23 +170,21 @@ def is_coaxial(part: Part) -> bool:
     return any(COAXIAL.search(text) and not _SMA_DIODE.search(text) for text in texts)
 
 
+_CONNECTOR: Final = re.compile(r"(?<![A-Z])(?:CONN|HEADER|\w*JACK|TERMINAL)", re.IGNORECASE)
+
+
 def _spice_kind(part: Part) -> Kind:
     letter = part.letter.upper()
     if letter == "X" and is_coaxial(part):
         return "coaxial"
-    if letter == "X" and re.search(r"CONN|HEADER|JACK|TERMINAL", f"{part.model} {part.value}", re.IGNORECASE):
+    if letter in "XJCP" and _CONNECTOR.search(f"{part.model} {part.value}"):
         return "connector"
     return _SPICE.get(letter, "unmodelled")
 
 
-def functions(part: Part) -> list[str]:
-    """Pin functions in capitals, without the trailing number of a unit; "" where none is given."""
-    return [re.sub(r"[\d_]+$", "", pin.function.upper().strip("~")) for pin in part.pins]
-
-
 def _by_functions(part: Part) -> Kind | None:
     """Transistors by the names of their pins, whatever the symbol is called."""
-    names = set(functions(part)) - {""}
+    names = {re.sub(r"[\d_]+$", "", pin.function.upper().strip("~")) for pin in part.pins} - {""}
     if not names or part.letter.upper() in ("U", "IC", "J", "P", "K", "RL"):
         return None
     if {"G", "D", "S"} <= names or {"GATE", "DRAIN", "SOURCE"} <= names or {"G", "C", "E"} == names:
@@ -202,6 +200,8 @@ def _by_library(part: Part) -> Kind:
     text = f"{part.description} {symbol_name(part)}"
     if library.startswith("connector") or library in ("conn", "connectors"):
         return "connector"
+    if part.letter.upper() in ("U", "IC", "A", "M", "PS", "K", "RL", "TR") or "amplifier_op" in library:
+        return "unmodelled"
     if re.search(r"\b(?:N|P)[- ]?(?:channel|MOS|JFET)|MOSFET|\bJ?FET\b|IGBT", text, re.IGNORECASE):
         return "fet"
     if re.search(r"photo|opto", part.description, re.IGNORECASE):

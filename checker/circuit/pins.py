@@ -55,7 +55,7 @@ def kicad_terminals(part: Part, kind: str, card: Card | None, notes: Notes) -> t
     """
     wanted = _WANTED[kind]
     units = _by_function(part, wanted) or _by_number(part, wanted)
-    by_card = pin_map(card, part.footprint) if card is not None else None
+    by_card = _pads_of_card(part, card, notes) if card is not None else None
     if units:
         _compare(part, units, by_card, notes)
         return units
@@ -67,6 +67,15 @@ def kicad_terminals(part: Part, kind: str, card: Card | None, notes: Notes) -> t
         notes.add("pins", "pin 1 taken as cathode and pin 2 as anode, as editor symbols have them", part.ref)
         return _from_pads(part, {"1": "K", "2": "A"}, wanted)
     return ()
+
+
+def _pads_of_card(part: Part, card: Card, notes: Notes) -> Mapping[str, str] | None:
+    """The card's pads in the part's footprint; without a footprint, those of the only package it comes in."""
+    if part.footprint or len(card.packages) != 1:
+        return pin_map(card, part.footprint)
+    ((package, pads),) = card.packages.items()
+    notes.add("pins", f"no footprint; pads as in {package}, the only package of its card", part.ref)
+    return pads
 
 
 def letter_of(function: str) -> tuple[str, str]:
@@ -84,7 +93,7 @@ def _by_function(part: Part, wanted: frozenset[str]) -> tuple[Unit, ...]:
     net."""
     units: dict[str, dict[str, set[str]]] = {}
     for pin in part.pins:
-        letter, unit = letter_of(pin.function)
+        letter, unit = letter_of(pin.function.removesuffix(f"_{pin.number}"))
         units.setdefault(unit, {}).setdefault(letter, set()).add(pin.net)
     if len(units) == 1 and len(part.pins) == len(wanted) - 1:
         ((unit, pins),) = units.items()

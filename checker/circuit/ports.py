@@ -6,7 +6,7 @@ from __future__ import annotations
 from dataclasses import replace
 from typing import Final
 
-from checker.circuit.connectors import nominal, role_by_name, signal_net
+from checker.circuit.connectors import nominal, role_by_name, role_of_net, signal_net
 from checker.circuit.draft import Draft, DraftPort
 from checker.circuit.lookup import find_net, find_pin
 from checker.circuit.order import last_segment, natural, natural_key
@@ -122,6 +122,8 @@ def existing_load(draft: Draft, net: str) -> tuple[str, ...]:
         name for table, name in on if table == "capacitors" and draft.capacitors[name].other(net) != draft.ground
     ]
     others = [name for table, name in on if table not in ("resistors", "capacitors")]
+    if net in draft.foreign or net not in draft.netlist.nets:
+        return ()
     grounded = tuple(name for name in resistors if draft.resistors[name].other(net) == draft.ground)
     if not capacitors or others or draft.device_pins(net) or len(grounded) != len(resistors):
         return ()
@@ -201,9 +203,9 @@ def _from_loads(draft: Draft) -> None:
     """Nets joined to the rest by capacitors only, with a resistor to ground: outputs and their loads."""
     taken = {port.net for port in draft.ports}
     found = [net for net in natural(draft.present()) if net not in taken and existing_load(draft, net)]
-    named = [net for net in found if role_by_name(net) == "output"]
+    named = [net for net in found if role_of_net(net) == "output"]
     for net in named or found:
-        if role_by_name(net) == "input":
+        if role_of_net(net) == "input":
             continue
         load = existing_load(draft, net)
         draft.notes.add(
@@ -221,7 +223,7 @@ def _from_names(draft: Draft) -> None:
             continue
         for net in natural(present & draft.netlist.nets.keys()):
             taken = {port.net for port in draft.ports}
-            if net in taken or draft.known_volts(net) is not None or role_by_name(last_segment(net)) != role:
+            if net in taken or draft.known_volts(net) is not None or role_of_net(net) != role:
                 continue
             draft.notes.add("ports", f"{net} taken as an {role} port from its name")
             load = existing_load(draft, net) if role == "output" else ()

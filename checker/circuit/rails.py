@@ -12,7 +12,8 @@ from checker.circuit.types import Rail
 from checker.intent.types import RailIntent
 
 _TAIL: Final = (
-    r"(?:[AD]|[_-](?:IN|OUT|[A-D]|ANA(?:LOG)?|DIG(?:ITAL)?|FUSED|RAW|SUPPLY|RF|AUDIO|MCU|USB|MAIN|AUX|PWR|REG))?"
+    r"(?:[AD]|[_-](?:IN|OUT|[A-D]|ANA(?:LOG)?|DIG(?:ITAL)?|FUSED|RAW|SUPPLY"
+    r"|RF|AUDIO|MCU|USB|MAIN|AUX|PWR|REG))?"
 )
 _NUMBER: Final = r"(?P<whole>\d{1,3})(?:V(?P<part>\d{1,2})|[.,](?P<point>\d{1,2})V(?:DC)?|V(?:DC)?)"
 _NAMED: Final = re.compile(rf"(?P<sign>[+\-PN]?)V?{_NUMBER}{_TAIL}", re.IGNORECASE)
@@ -24,6 +25,8 @@ _V33: Final = re.compile(rf"V33{_TAIL}", re.IGNORECASE)
 _USUAL: Final = frozenset({5, 6, 8, 9, 10, 12, 13, 15, 18, 24, 28, 30, 36, 48})
 """Supply voltages in use; a signed number that names a net without a V is a supply only if it is one of
 these."""
+_FILTER_OHM: Final = 1000.0
+"""Largest resistor taken for a supply filter (common practice, no source)."""
 _NAMELESS: Final = re.compile(
     r"[AD]?V(?:CC|DD|EE)[AD]?|V(?:BAT|BUS|SUP|SUPPLY|S?PP|NN)|V[+-]{1,2}|[+-]V(?:CC|DD|EE|S)?|VSS[AD]?|B\+|[+-]?HV|VS[+-]",
     re.IGNORECASE,
@@ -122,9 +125,20 @@ def _from_names(draft: Draft) -> None:
             draft.notes.add("rails", f"{net} taken as {volts:g} V from its name")
             _hold(draft, net, volts)
             _list(draft, net, volts, "net name", None)
-        elif _NAMELESS.fullmatch(last_segment(name)):
+        elif _NAMELESS.fullmatch(last_segment(name)) and not _is_fed(draft, net):
             supply = f'[rails] "{last_segment(name)}" = "…"'
             draft.loose("", (net,), f"volts of {net}", supply)
+            draft.nameless.add(net)
+
+
+def _is_fed(draft: Draft, net: str) -> bool:
+    """Whether a net of unknown voltage hangs on a known one through a coil or a supply-filter resistor."""
+    for table, name in draft.elements_on(net):
+        wire = draft.table(table)[name]
+        small = table == "inductors" or (table == "resistors" and wire.value <= _FILTER_OHM)
+        if small and wire.other(net) != draft.ground and draft.known_volts(wire.other(net)) is not None:
+            return True
+    return False
 
 
 def _hold(draft: Draft, net: str, volts: float) -> None:

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import math
+import re
 from typing import Final
 
 from checker.circuit.draft import Draft
@@ -14,6 +15,10 @@ from checker.trouble import NotAQuantity
 TOLERANCE: Final = {"ohm": 0.05, "F": 0.20, "H": 0.20}
 """Fractions assumed where neither value text nor intent says (common practice, no source: E24 carbon film
 and general-purpose capacitors and inductors)."""
+_RANGE: Final = re.compile(
+    r"(?P<low>\d+(?:\.\d+)?\s*[a-zµ]{0,2})\s*(?:-|\.\.|to)\s*(?P<high>\d+(?:\.\d+)?)\s*(?P<unit>[a-zµΩ]{0,4})",
+    re.IGNORECASE,
+)
 NAMES: Final = {"ohm": "resistors", "F": "capacitors", "H": "inductors"}
 
 
@@ -24,7 +29,12 @@ def part_value(draft: Draft, part: Part, unit: str) -> Value | None:
     intended = None
     if said is not None:
         intended = {"ohm": said.resistance_ohm, "F": said.capacitance_f, "H": said.inductance_h}[unit]
-    found = _written(part, unit) if intended is None else (intended, None)
+    found = written_value(part, unit) if intended is None else (intended, None)
+    if found is None:
+        middle = _middle(part.value, unit)
+        if middle is not None:
+            draft.notes.add("values", f"{part.value} taken at the middle of its range", part.ref)
+            found = middle, None
     if found is None or not math.isfinite(found[0]) or found[0] < 0.0:
         return None
     si, tolerance = found
@@ -37,7 +47,22 @@ def part_value(draft: Draft, part: Part, unit: str) -> Value | None:
     return Value(si=si, unit=unit, text=part.value, tolerance=tolerance, origin=origin)
 
 
-def _written(part: Part, unit: str) -> tuple[float, float | None] | None:
+def _middle(text: str, unit: str) -> float | None:
+    """Middle of a trimmer's range ("2-10pF") in SI."""
+    found = _RANGE.fullmatch(text.strip())
+    if found is None:
+        return None
+    low, high = found["low"], found["high"]
+    if not low[-1].isalpha():
+        low += found["unit"]
+    try:
+        ends = [parse_engineering(end, unit).si for end in (low, high + found["unit"])]
+    except NotAQuantity:
+        return None
+    return sum(ends) / 2
+
+
+def written_value(part: Part, unit: str) -> tuple[float, float | None] | None:
     """(SI value, tolerance) as the netlist writes it."""
     if part.number is not None:
         tolerance = part.params.get("tol")

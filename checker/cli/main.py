@@ -4,7 +4,6 @@ from __future__ import annotations
 
 import os
 import sys
-import traceback
 from collections.abc import Sequence
 from importlib import import_module
 
@@ -91,6 +90,8 @@ def _help_hint(problem: click.ClickException) -> str:
 
 def _failed(problem: Exception, debug: bool) -> int:
     if debug:
+        import traceback  # costs start-up time and is needed only here
+
         click.echo("".join(traceback.format_exception(problem)), err=True, nl=False)
     hint = "" if debug else "; --debug before the command shows where"
     complain(f"internal failure, {type(problem).__name__}: {problem}{hint}")

@@ -4,9 +4,7 @@ from __future__ import annotations
 
 import contextlib
 import os
-import shutil
 import sys
-import tempfile
 from pathlib import Path
 
 import click
@@ -21,8 +19,14 @@ def columns(asked: int | None) -> int:
     """The width of a line: as asked, else from the terminal."""
     if asked is not None:
         return asked
-    terminal = shutil.get_terminal_size((WIDE, 24)).columns if sys.stdout.isatty() else WIDE
-    return min(max(terminal, NARROW), WIDE)
+    return min(max(_terminal(), NARROW), WIDE)
+
+
+def _terminal() -> int:
+    """Columns of the terminal that standard output is, WIDE where it is none."""
+    with contextlib.suppress(OSError, ValueError):
+        return os.get_terminal_size(sys.stdout.fileno()).columns or WIDE
+    return WIDE
 
 
 def coloured(when: str, out: Path | None) -> bool:
@@ -65,6 +69,8 @@ def _replace(out: Path, data: bytes) -> None:
     if target.exists() and not target.is_file():
         target.write_bytes(data)
         return
+    import tempfile  # costs start-up time and is needed only here
+
     handle, temporary = tempfile.mkstemp(prefix=f".{target.name[:40]}.", dir=target.parent)
     try:
         with os.fdopen(handle, "wb") as stream:

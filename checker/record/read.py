@@ -7,6 +7,7 @@ import math
 import types
 from collections.abc import Mapping
 from dataclasses import fields
+from functools import cache
 from typing import Any, Literal, Union, get_args, get_origin, get_type_hints
 
 from checker.record.base import Record, has_default, key_of
@@ -40,7 +41,7 @@ def _no_constant(name: str) -> float:
 def _record(kind: type[Record], value: Any, where: str) -> Record:
     if not isinstance(value, dict):
         raise ValueError(f"{where}: expected an object, got {_said(value)}")
-    hints = get_type_hints(kind)
+    hints = _hints(kind)  # type: ignore[arg-type]  # the class is hashable, only its instances are not
     given: dict[str, Any] = {}
     for each in fields(kind):
         key = key_of(each.name)
@@ -49,6 +50,11 @@ def _record(kind: type[Record], value: Any, where: str) -> Record:
         elif not has_default(each):
             raise ValueError(f"{where}: the key {key!r} is missing")
     return kind(**given)
+
+
+@cache
+def _hints(kind: type[Record]) -> dict[str, Any]:
+    return get_type_hints(kind)
 
 
 def _value(hint: Any, value: Any, where: str) -> Any:

@@ -175,7 +175,8 @@ class Assembler:
         i_s = c.currents.value * source_scale
         columns = [i_r, -i_r, i_s, -i_s]
         for rows in (self.plan.v_row, self.plan.l_row):
-            i = np.where(rows >= 0, x[:, np.maximum(rows, 0)] if x.shape[1] else 0.0, 0.0)
+            i = np.zeros((self.scenarios, len(rows)))
+            i[:, rows >= 0] = x[:, rows[rows >= 0]]
             columns += [i, -i]
         entries = []
         for module, placed, p, junction in (

@@ -166,6 +166,12 @@ class Response:
         y = SHORT_FACTOR / np.maximum(np.where(np.isfinite(z), z, 1.0), 1e-12)
         return self._changed((a, b), y[..., None, None] * np.array([[1.0, -1.0], [-1.0, 1.0]], dtype=complex))
 
+    def grounded(self, node: int) -> Response:
+        """The same circuit with a net shorted to signal ground."""
+        z = np.abs(self.impedance(node))
+        y = SHORT_FACTOR / np.maximum(np.where(np.isfinite(z), z, 1.0), 1e-12)
+        return self._changed((node,), y[..., None, None].astype(complex))
+
     def opened(self, part: str, terminal: int = 0) -> Response:
         """The same circuit with one terminal of a part lifted off its net."""
         if part in self.circuit.inductors.names:

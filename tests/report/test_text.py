@@ -152,6 +152,19 @@ def test_notes_and_consequences_are_brief() -> None:
     assert "11.6 dB at 3.00 MHz (limit: at least 14 dB, limits of the intent file)" in blocks[2]
 
 
+def test_the_same_reasoning_is_given_once_and_one_datum_gathers_its_subjects() -> None:
+    full = report().findings[0]
+    again = replace(full, subject=("Q9",), fingerprint="again")
+    lacking = report().unchecked
+    text = render(
+        replace(report(), findings=(full, again), unchecked=(*lacking, replace(lacking[1], subject="Q2"))),
+        width=100,
+        colour=False,
+    )
+    assert text.count("MUST FIX") == 2 and text.count("  why ") == 1
+    assert text.count("the source impedance") == 1 and "for     Q1 noise-figure, Q2 noise-figure" in text
+
+
 def test_finding_without_figures_and_with_a_foreign_cause() -> None:
     finding = replace(
         report().findings[1],

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Iterator
+from dataclasses import replace
 
 from checker.record import Accepted, Bound, Change, Effect, Finding, Location, Remedy, Report, Window
 from checker.report.clean import clean, name
@@ -18,22 +19,23 @@ NAMED = 6
 
 
 def findings(report: Report, page: Page) -> list[str]:
-    """Every finding as a block, an empty line before each."""
+    """Every finding as a block, an empty line before each; the same reasoning is given once."""
     by_fingerprint = {finding.fingerprint: finding for finding in report.findings}
+    explained: set[str] = set()
     lines: list[str] = []
     for finding in report.findings:
-        lines += ["", *block(finding, by_fingerprint, page)]
+        again = finding if finding.why not in explained else replace(finding, why="")
+        lines += ["", *block(again, by_fingerprint, page)]
+        if not _is_brief(finding, by_fingerprint):
+            explained.add(finding.why)
     return lines
 
 
 def block(finding: Finding, by_fingerprint: dict[str, Finding], page: Page) -> list[str]:
     """One finding, in full unless it is a note or follows from another; `by_fingerprint` finds that other."""
     lines = [*_title(finding, page), *hanging("  ", clean(finding.message), page)]
+    told = _in_brief(finding) if _is_brief(finding, by_fingerprint) else _in_full(finding)
     cause = by_fingerprint.get(finding.caused_by or "")
-    if finding.severity == "note" or cause:
-        told = _in_brief(finding)
-    else:
-        told = _in_full(finding)
     follows = [("follows", f"from {clean(cause.rule)} of {subject(cause)}")] if cause else []
     for label, text in (*told, *follows):
         lines += hanging(f"  {label}".ljust(LABEL), text, page, style="dim")
@@ -71,6 +73,10 @@ def _title(finding: Finding, page: Page) -> list[str]:
 def subject(finding: Finding) -> str:
     """The parts a finding is about."""
     return ", ".join(map(name, finding.subject))
+
+
+def _is_brief(finding: Finding, by_fingerprint: dict[str, Finding]) -> bool:
+    return finding.severity == "note" or finding.caused_by in by_fingerprint
 
 
 def _in_full(finding: Finding) -> Iterator[tuple[str, str]]:

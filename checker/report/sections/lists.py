@@ -10,14 +10,18 @@ from checker.report.layout import Page, hanging
 
 
 def unchecked(report: Report, page: Page) -> list[str]:
-    """Per subject: the rule, what is missing, and what to supply."""
+    """Per missing datum: what to supply, and for which subjects and rules, since one datum often clears many."""
     if not report.unchecked:
         return []
-    lines = page.heading("Not judged, for want of data")
+    wanted: dict[tuple[str, str], list[str]] = {}
     for each in report.unchecked:
         rule = clean(each.rule) if each.rule else "everything"
-        lines += hanging(f"  {name(each.subject)}  {rule}: ", f"needs {clean(each.datum)}", page)
-        lines += hanging("      supply  ", clean(each.supply), page, style="dim") if each.supply else []
+        wanted.setdefault((each.datum, each.supply), []).append(f"{name(each.subject)} {rule}")
+    lines = page.heading("Not judged, because this is missing")
+    for (datum, supply), subjects in wanted.items():
+        lines += hanging("  - ", clean(datum), page)
+        lines += hanging("    for     ", ", ".join(subjects), page, style="dim")
+        lines += hanging("    supply  ", clean(supply), page, style="dim") if supply else []
     return lines
 
 

@@ -9,6 +9,17 @@ from checker.report.clean import cell, clean, name
 from checker.report.layout import Page, hanging, table
 from checker.report.quantities import figure, number, unit_of, words
 from checker.report.sections.dashes import dashes
+from checker.words import Configuration, Role
+
+USUAL: dict[Configuration, Role] = {
+    "switch": "switch",
+    "current-source": "bias",
+    "diode-connected": "bias",
+    "vbe-multiplier": "bias",
+    "regulator": "bias",
+    "clamp": "bias",
+}
+"""The role that a configuration has anyway and that needs no word; the others carry signal."""
 
 SIGNAL = {
     "voltage_gain_db": "gain",
@@ -38,7 +49,7 @@ def at_rest(report: Report, page: Page) -> list[str]:
 
 
 def _rest_row(stage: Stage) -> tuple[str, ...]:
-    what = stage.configuration + ("" if stage.role == "signal" else f" ({stage.role})")
+    what = stage.configuration + ("" if stage.role == USUAL.get(stage.configuration, "signal") else f" ({stage.role})")
     groups = ", ".join(map(cell, stage.groups))
     bias = stage.bias
     if bias is None:
@@ -57,11 +68,12 @@ def _rest_row(stage: Stage) -> tuple[str, ...]:
 
 
 def _remarks(report: Report, page: Page) -> list[str]:
-    lines: list[str] = []
+    """One line a remark, naming the stages that it is about."""
+    stages_of: dict[str, list[str]] = {}
     for stage in report.stages:
-        told = "; ".join(_remarks_on(stage, reason_for(report, "stages", stage.id, "bias")))
-        lines += hanging(f"  {name(stage.id)}: ", told, page) if told else []
-    return lines
+        for remark in _remarks_on(stage, reason_for(report, "stages", stage.id, "bias")):
+            stages_of.setdefault(remark, []).append(name(stage.id))
+    return [line for remark, ids in stages_of.items() for line in hanging("  ", f"{', '.join(ids)}: {remark}", page)]
 
 
 def _remarks_on(stage: Stage, no_bias: str) -> Iterator[str]:

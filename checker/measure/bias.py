@@ -1,0 +1,131 @@
+"""Figures of the operating point, one value a scenario."""
+
+from __future__ import annotations
+
+import numpy as np
+
+from checker.constants import ZERO_CELSIUS_K
+from checker.measure.bench import Bench, FloatArray
+from checker.measure.make import figure, first
+from checker.measure.registry import quantity
+from checker.quantity.figure import Figure
+from checker.stages.region import REGIONS, headroom_v, region_codes
+from checker.trouble import CannotTell
+
+SOLVED = "certified operating point (Gummel-Poon, node equations)"
+
+
+def _table(bench: Bench, key: str, stage: str) -> FloatArray:
+    return bench.point.bipolar[key][:, bench.stage(stage).index]
+
+
+def require_bias(bench: Bench, stage: str) -> None:
+    """Raises CannotTell where a stage has no certified operating point."""
+    values = _table(bench, "ic_a", stage)
+    if not np.isfinite(values[0]):
+        reason = bench.stage(stage).reason or "no certified operating point"
+        raise CannotTell(datum=f"the operating point of {stage}", supply=reason)
+
+
+def _plain(name: str, key: str, unit: str, meaning: str, formula: str) -> None:
+    @quantity(name, unit, "stage", meaning)
+    def measure(bench: Bench, stage: str) -> Figure:
+        require_bias(bench, stage)
+        return figure(name, stage, _table(bench, key, stage), unit, formula=formula, source=SOLVED)
+
+
+_plain("ic_a", "ic_a", "A", "collector current, into the terminal", "IC from the node equations")
+_plain("ib_a", "ib_a", "A", "base current, into the terminal", "IB from the node equations")
+_plain("vce_v", "vce_v", "V", "collector to emitter, times -1 for PNP", "VC - VE")
+_plain("vbe_v", "vbe_v", "V", "base to emitter, times -1 for PNP", "VB - VE")
+_plain("vbc_v", "vbc_v", "V", "base to collector, times -1 for PNP", "VB - VC")
+_plain("power_w", "power_w", "W", "dissipation at rest", "IC (VC - VE) + IB (VB - VE)")
+
+
+def _kept(bench: Bench, key: str) -> FloatArray:
+    """Region codes and headroom of all devices, computed once."""
+    if key not in bench.kept:
+        bench.kept[key] = region_codes(bench.point) if key == "regions" else headroom_v(bench.point)
+    value = bench.kept[key]
+    assert isinstance(value, np.ndarray)  # noqa: S101 - narrows the type
+    return value
+
+
+@quantity("region_code", "1", "stage", "0 active, 1 saturated, 2 cut-off, 3 reverse-active")
+def region_code(bench: Bench, stage: str) -> Figure:
+    """Region as an index into `REGIONS`, so that it can be compared over scenarios."""
+    require_bias(bench, stage)
+    codes = _kept(bench, "regions")[:, bench.stage(stage).index]
+    return figure("region_code", stage, codes, "1", formula="see the region's definition", source="docs/figures.md")
+
+
+def region_words(bench: Bench, stage: str, scenario: int) -> str:
+    """The region in words; empty without bias."""
+    code = _kept(bench, "regions")[scenario, bench.stage(stage).index]
+    return REGIONS[int(code)] if np.isfinite(code) else ""
+
+
+@quantity("headroom_v", "V", "stage", "how far VCE may fall before the stage saturates")
+def headroom(bench: Bench, stage: str) -> Figure:
+    """VBC at the edge of saturation minus VBC."""
+    require_bias(bench, stage)
+    values = _kept(bench, "headroom")[:, bench.stage(stage).index]
+    return figure(
+        "headroom_v", stage, values, "V", formula="VBC where IC/IB is 0.9 of its value at VBC = 0, minus VBC"
+    )
+
+
+@quantity("tj_c", "degC", "stage", "junction temperature of the self-heated solution")
+def junction_temperature(bench: Bench, stage: str) -> Figure:
+    """TA + P RthJA, solved together with the bias."""
+    require_bias(bench, stage)
+    index = bench.stage(stage).index
+    rth = float(bench.circuit.bipolars.rth_kpw[index])
+    if not np.isfinite(rth):
+        raise CannotTell(datum=f"thermal resistance of {stage}", supply=f'[[part]] ref = "{stage}" with rth_ja_kpw')
+    tj = bench.heated.bipolar_k[:, index] - ZERO_CELSIUS_K
+    p = bench.heated.bipolar["power_w"][:, index]
+    ambient = bench.circuit.temperature_k - ZERO_CELSIUS_K
+    return figure(
+        "tj_c",
+        stage,
+        np.where(np.isfinite(p), tj, np.nan),
+        "degC",
+        formula="TJ = TA + P RthJA",
+        numbers=(("TA", first(ambient), "degC"), ("P", first(p), "W"), ("RthJA", rth, "K/W")),
+        source="self-heated operating point",
+    )
+
+
+@quantity("tj_max_c", "degC", "stage", "rated junction temperature")
+def junction_limit(bench: Bench, stage: str) -> Figure:
+    """From the card or the intent."""
+    value = bench.facts[stage].ratings.tj_max_c
+    if value is None:
+        raise CannotTell(datum=f"rated junction temperature of {stage}", supply=f'[[part]] ref = "{stage}" tj_max_c')
+    return figure("tj_max_c", stage, np.full(bench.size, value), "degC", formula="rating", source=_origin(bench, stage))
+
+
+@quantity("power_limit_w", "W", "stage", "rated dissipation at the ambient temperature")
+def power_limit(bench: Bench, stage: str) -> Figure:
+    """Ptot at 25 degC, falling in a straight line to nothing at the rated junction temperature."""
+    ratings = bench.facts[stage].ratings
+    if ratings.p_max_w is None:
+        raise CannotTell(datum=f"rated dissipation of {stage}", supply=f'[[part]] ref = "{stage}" with p_max_w')
+    ambient = bench.circuit.temperature_k - ZERO_CELSIUS_K
+    tj = ratings.tj_max_c if ratings.tj_max_c is not None else 150.0
+    values = ratings.p_max_w * np.clip((tj - ambient) / (tj - 25.0), 0.0, 1.0)
+    return figure(
+        "power_limit_w",
+        stage,
+        values,
+        "W",
+        formula="Ptot (TJmax - TA)/(TJmax - 25 degC), at most Ptot",
+        numbers=(("Ptot", ratings.p_max_w, "W"), ("TJmax", tj, "degC"), ("TA", first(ambient), "degC")),
+        source=_origin(bench, stage),
+    )
+
+
+def _origin(bench: Bench, stage: str) -> str:
+    card = bench.facts[stage].card
+    return f"card {card.name}: {card.source}" if card is not None else "intent file"

@@ -1,0 +1,43 @@
+"""T(f): what a stage delivers over the open-circuit voltage of everything upstream, and what follows from it.
+
+T = v(output reference, loaded in place) / e, with e the voltage before the cut input link. A link element belongs to
+the stage it feeds; the last one to the stage that drives the port, whose T ends at the port.
+"""
+
+from __future__ import annotations
+
+import numpy as np
+from numpy.typing import NDArray
+
+from checker.measure.bench import Bench
+from checker.measure.links import ComplexArray, Outer, cut_input, drive_of
+from checker.solve.response import Response
+
+FloatArray = NDArray[np.float64]
+
+
+def end_node(bench: Bench, outer: Outer) -> int:
+    """The net where T ends: the output reference, or the port's plane for the last stage."""
+    link = outer.output_link
+    ports = {port.name: port for port in bench.ports}
+    if link.other in ports:
+        return ports[link.other].node
+    return link.stage_node
+
+
+def source_voltage(bench: Bench, response: Response, outer: Outer) -> ComplexArray:
+    """e(f), (S, F) [V]: the voltage before the input link with that link cut, for the unit drive."""
+    drive = drive_of(bench, outer)
+    link = outer.input_link
+    if link.kind == "port":
+        port = bench.port(link.other)
+        if port.emf >= 0:
+            return np.ones(response.z.shape[:2], dtype=complex)
+        return response.voltages(drive)[..., port.node]
+    return cut_input(response, outer).voltages(drive)[..., link.far_node]
+
+
+def transfer(bench: Bench, response: Response, outer: Outer) -> ComplexArray:
+    """T(f) in place, complex128 (S, F)."""
+    out = response.voltages(drive_of(bench, outer))[..., end_node(bench, outer)]
+    return out / source_voltage(bench, response, outer)

@@ -1,0 +1,83 @@
+"""Gains and impedances of stages and groups at their links, as they stand loaded, over scenarios at the band's edges
+and f0 (axis 1: low edge, f0, high edge)."""
+
+from __future__ import annotations
+
+from collections.abc import Callable
+
+import numpy as np
+
+from checker.measure.bench import Bench
+from checker.measure.links import ComplexArray, Outer, current_in, current_out, cut_output, drive_of, outer_of
+from checker.measure.make import db, figure, missing
+from checker.measure.registry import Subject, quantity
+from checker.quantity.figure import Figure, FloatArray
+from checker.solve.response import Response
+
+METHOD = "in-place small-signal solution at the certified operating point"
+Compute = Callable[[Bench, Response, Outer], ComplexArray | FloatArray]
+
+
+def input_impedance(bench: Bench, response: Response, outer: Outer) -> ComplexArray:
+    """v/i at the input reference, driven from the port."""
+    solution = response.solution(drive_of(bench, outer))
+    return solution[..., outer.input_link.stage_node] / current_in(bench, response, outer, solution)
+
+
+def output_impedance(bench: Bench, response: Response, outer: Outer) -> ComplexArray:
+    """Looking back at the output reference with the output link open and the source's signal zero."""
+    return cut_output(bench, response, outer).impedance(outer.output_link.stage_node)
+
+
+def voltage_gain(bench: Bench, response: Response, outer: Outer) -> ComplexArray:
+    """v(output reference) over v(input reference)."""
+    v = response.voltages(drive_of(bench, outer))
+    return v[..., outer.output_link.stage_node] / v[..., outer.input_link.stage_node]
+
+
+def current_gain(bench: Bench, response: Response, outer: Outer) -> ComplexArray:
+    """Output-link current over input-link current."""
+    solution = response.solution(drive_of(bench, outer))
+    return current_out(bench, response, outer, solution) / current_in(bench, response, outer, solution)
+
+
+def power_gain_db(bench: Bench, response: Response, outer: Outer) -> FloatArray:
+    """10 log10 of Re(v i*) out over in."""
+    s = response.solution(drive_of(bench, outer))
+    into = np.real(s[..., outer.input_link.stage_node] * np.conj(current_in(bench, response, outer, s)))
+    out = np.real(s[..., outer.output_link.stage_node] * np.conj(current_out(bench, response, outer, s)))
+    with np.errstate(invalid="ignore", divide="ignore"):
+        ratio = out / into
+        return np.asarray(10.0 * np.log10(np.where(ratio > 0.0, ratio, np.nan)))
+
+
+def voltage_gain_db(bench: Bench, response: Response, outer: Outer) -> FloatArray:
+    """20 log10 of the voltage gain."""
+    return db(voltage_gain(bench, response, outer))
+
+
+QUANTITIES: tuple[tuple[str, str, str, Compute, str], ...] = (
+    ("input_impedance_ohm", "ohm", "v/i at the input reference", input_impedance, "Zin = v(in)/i(input link)"),
+    ("output_impedance_ohm", "ohm", "looking back, output link open", output_impedance, "Zout = v(out)/i, link open"),
+    ("voltage_gain", "1", "v(out) over v(in), loaded", voltage_gain, "Av = v(out)/v(in)"),
+    ("voltage_gain_db", "dB", "voltage gain", voltage_gain_db, "20 log10 |v(out)/v(in)|"),
+    ("current_gain", "1", "output-link over input-link current", current_gain, "Ai = i(out)/i(in)"),
+    ("power_gain_db", "dB", "power out over power in", power_gain_db, "10 log10 Re(v i*) out/in"),
+)
+
+
+def _register(name: str, unit: str, meaning: str, compute: Compute, formula: str, subject: Subject) -> None:
+    @quantity(name, unit, subject, meaning)
+    def measure(bench: Bench, ident: str) -> Figure:
+        outer = outer_of(bench, ident, group=subject == "group")
+        if isinstance(outer, str):
+            return missing(name, ident, bench.size, unit, outer)
+        f = bench.edges_hz
+        values = compute(bench, bench.response(f), outer)
+        reason = "" if np.isfinite(values[0, 1]) else "not defined here: no load current, or an unbiased device"
+        return figure(name, ident, values, unit, f_hz=f, formula=formula, source=METHOD, reason=reason)
+
+
+for _name, _unit, _meaning, _compute, _formula in QUANTITIES:
+    _register(_name, _unit, _meaning, _compute, _formula, "stage")
+    _register(_name, _unit, _meaning, _compute, _formula, "group")

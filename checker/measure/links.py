@@ -1,0 +1,162 @@
+"""Voltages and currents at the links of a stage or group, in one solution.
+
+An `Outer` is anything with an entry, an exit and links: a stage or a group.
+"""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+
+import numpy as np
+from numpy.typing import NDArray
+
+from checker.circuit.types import Circuit, Port
+from checker.measure.bench import Bench
+from checker.solve.response import Drive, Response, port_drive
+from checker.stages.direction import TERMINALS
+from checker.stages.types import Link
+from checker.words import Terminal
+
+ComplexArray = NDArray[np.complex128]
+
+
+@dataclass(frozen=True, slots=True, kw_only=True)
+class Outer:
+    """The outside of a stage or group. `entry`, `exit`: (device, terminal); `devices`: its members."""
+
+    id: str
+    devices: tuple[str, ...]
+    entry: tuple[str, Terminal]
+    exit: tuple[str, Terminal]
+    input_link: Link
+    output_link: Link
+    port_in: str
+    port_out: str
+
+
+def outer_of(bench: Bench, ident: str, *, group: bool = False) -> Outer | str:
+    """The outside of a stage or group, or the reason why it has none."""
+    if group:
+        item = bench.group(ident)
+        entry, leaving, devices = item.entry, item.exit, item.devices
+    else:
+        stage = bench.stage(ident)
+        if stage.role != "signal":
+            return f"not applicable: {ident} carries no signal"
+        entry = (stage.device, stage.entry) if stage.entry else None
+        leaving = (stage.device, stage.exit) if stage.exit else None
+        item, devices = stage, (stage.device,)
+    if entry is None or leaving is None:
+        return f"not applicable: no signal path through {ident}"
+    if item.input_link is None:
+        return f"no single element brings the signal to {ident}"
+    if item.output_link is None:
+        return f"no single element takes the signal from {ident}"
+    return Outer(
+        id=ident,
+        devices=devices,
+        entry=entry,
+        exit=leaving,
+        input_link=item.input_link,
+        output_link=item.output_link,
+        port_in=item.port_in,
+        port_out=item.port_out,
+    )
+
+
+def drive_of(bench: Bench, outer: Outer) -> Drive:
+    """The drive of the input port that reaches the stage."""
+    return port_drive(bench.port(outer.port_in))
+
+
+def terminal_net(circuit: Circuit, at: tuple[str, Terminal]) -> int:
+    """Net of a device terminal."""
+    row = circuit.bipolars.nodes[circuit.bipolars.names.index(at[0])]
+    return int(row[TERMINALS.index(at[1])])
+
+
+def terminal_index(terminal: Terminal) -> int:
+    """Column of a terminal in a bipolar's block."""
+    return TERMINALS.index(terminal)
+
+
+def port_current(bench: Bench, response: Response, port: Port, solution: ComplexArray) -> ComplexArray:
+    """Current from an input port into the board at its plane, (S, F) [A]."""
+    circuit = bench.circuit
+    if port.emf < 0:
+        return np.ones(solution.shape[:2], dtype=complex)
+    if port.series >= 0:
+        name = circuit.resistors.names[port.series]
+        ends = circuit.resistors.nodes[port.series].tolist()
+        return -response.current(name, ends.index(port.node), solution)
+    return net_current(response, port.node, solution)
+
+
+def net_current(response: Response, node: int, solution: ComplexArray) -> ComplexArray:
+    """Sum of currents from a net into everything on it but ideal sources, (S, F) [A]."""
+    c = response.circuit
+    total = np.zeros(solution.shape[:2], dtype=complex)
+    for table in (c.resistors, c.capacitors, c.inductors, c.bipolars, c.diodes):
+        for j, terminal in zip(*np.nonzero(table.nodes == node), strict=True):
+            total = total + response.current(table.names[int(j)], int(terminal), solution)
+    return total
+
+
+def load_current(bench: Bench, port: Port, solution: ComplexArray) -> ComplexArray:
+    """Current into the external load of an output port, (S, F) [A]; nan where it has none."""
+    if not port.load:
+        return np.full(solution.shape[:2], np.nan, dtype=complex)
+    r = bench.circuit.resistors
+    y = sum(1.0 / r.value[:, r.names.index(name)] for name in port.load)
+    return solution[..., port.node] * np.asarray(y)[:, None]
+
+
+def current_in(bench: Bench, response: Response, outer: Outer, solution: ComplexArray) -> ComplexArray:
+    """Current through the input link into the stage, (S, F) [A]."""
+    link = outer.input_link
+    if link.kind == "port":
+        return port_current(bench, response, bench.port(link.other), solution)
+    if link.kind == "direct":
+        return response.current(outer.entry[0], terminal_index(outer.entry[1]), solution)
+    return -response.current(link.part, _end(response.circuit, link.part, link.stage_node), solution)
+
+
+def current_out(bench: Bench, response: Response, outer: Outer, solution: ComplexArray) -> ComplexArray:
+    """Current through the output link out of the stage, (S, F) [A]; nan where there is no load."""
+    link = outer.output_link
+    if link.kind == "port":
+        return load_current(bench, bench.port(link.other), solution)
+    if link.kind == "direct":
+        assert link.terminal  # noqa: S101 - a direct link names the receiving terminal
+        return response.current(link.part, TERMINALS.index(link.terminal), solution)  # type: ignore[arg-type]
+    return response.current(link.part, _end(response.circuit, link.part, link.stage_node), solution)
+
+
+def cut_input(response: Response, outer: Outer) -> Response:
+    """The circuit with the input link open."""
+    link = outer.input_link
+    if link.kind == "port":
+        return response
+    if link.kind == "direct":
+        return response.opened(outer.entry[0], terminal_index(outer.entry[1]))
+    return response.opened(link.part)
+
+
+def cut_output(bench: Bench, response: Response, outer: Outer) -> Response:
+    """The circuit with the output link open: what lies beyond it is gone."""
+    link = outer.output_link
+    if link.kind == "port":
+        for name in bench.port(link.other).load:
+            response = response.opened(name)
+        return response
+    if link.kind == "direct":
+        return response.opened(link.part, TERMINALS.index(link.terminal))  # type: ignore[arg-type]
+    return response.opened(link.part)
+
+
+def _end(circuit: Circuit, part: str, node: int) -> int:
+    """Which end of a two-terminal part stands on a net."""
+    for table in (circuit.capacitors, circuit.inductors, circuit.resistors):
+        if part in table.names:
+            return 0 if int(table.nodes[table.names.index(part), 0]) == node else 1
+    raise KeyError(part)

@@ -1,0 +1,88 @@
+"""Intrinsic small-signal parameters at the operating point, one value a scenario."""
+
+from __future__ import annotations
+
+import numpy as np
+
+from checker.devices import bipolar
+from checker.measure.bench import Bench, FloatArray
+from checker.measure.bias import require_bias
+from checker.measure.make import figure, first
+from checker.measure.registry import quantity
+from checker.quantity.figure import Figure
+
+
+def _core(bench: Bench) -> dict[str, FloatArray]:
+    """gm, r_pi, ro [S, n], charge capacitances and VT of all devices; kept."""
+    if "small signal" not in bench.kept:
+        point = bench.point
+        placed = point.plan.bipolars
+        at = bipolar.junctions(point.v_v[:, placed.nodes], placed.table.polarity)
+        p = point.assembler.p_bipolar
+        k = bipolar.core(p, at[..., 0], at[..., 1])
+        be, be_bc, bc = bipolar.charges(p, at[..., 0], at[..., 1])
+        bench.kept["small signal"] = {
+            "gm": k.ic_vbe + k.ic_vbc,
+            "g_pi": k.ib_vbe + k.ib_vbc,
+            "g_o": -k.ic_vbc,
+            "c": be + be_bc + bc,
+            "vt": p["vt"],
+        }
+    kept = bench.kept["small signal"]
+    assert isinstance(kept, dict)  # noqa: S101 - narrows the type
+    return kept
+
+
+def _of(bench: Bench, stage: str, key: str) -> FloatArray:
+    require_bias(bench, stage)
+    return _core(bench)[key][:, bench.stage(stage).index]
+
+
+@quantity("gm_s", "S", "stage", "transconductance dIC/dVBE at constant VCE")
+def gm(bench: Bench, stage: str) -> Figure:
+    """Intrinsic, from the analytic derivatives."""
+    return figure("gm_s", stage, _of(bench, stage, "gm"), "S", formula="gm = dIC/dVBE at VCE")
+
+
+@quantity("rpi_ohm", "ohm", "stage", "base input resistance 1/(dIB/dVBE)")
+def r_pi(bench: Bench, stage: str) -> Figure:
+    """At constant VCE."""
+    return figure("rpi_ohm", stage, _inverse(_of(bench, stage, "g_pi")), "ohm", formula="r_pi = 1/(dIB/dVBE)")
+
+
+@quantity("ro_ohm", "ohm", "stage", "output resistance 1/(dIC/dVCE)")
+def r_o(bench: Bench, stage: str) -> Figure:
+    """Infinite (null) where the model has no Early voltage."""
+    values = _inverse(_of(bench, stage, "g_o"))
+    reason = "" if np.isfinite(values[0]) else "infinite: the model has no Early voltage"
+    return figure("ro_ohm", stage, values, "ohm", formula="ro = 1/(dIC/dVCE)", reason=reason)
+
+
+@quantity("re_ohm", "ohm", "stage", "hand figure VT/IE")
+def r_e(bench: Bench, stage: str) -> Figure:
+    """Declared a hand figure."""
+    require_bias(bench, stage)
+    ie = np.abs(bench.point.bipolar["ie_a"][:, bench.stage(stage).index])
+    vt = _of(bench, stage, "vt")
+    return figure(
+        "re_ohm",
+        stage,
+        _inverse(ie / vt),
+        "ohm",
+        formula="re' = VT/IE",
+        numbers=(("VT", first(vt), "V"), ("IE", first(ie), "A")),
+        source="common practice, hand figure",
+    )
+
+
+@quantity("ft_hz", "Hz", "stage", "transition frequency at this bias")
+def f_t(bench: Bench, stage: str) -> Figure:
+    """gm over 2 pi of all base charge, junction charge included."""
+    c = _of(bench, stage, "c")
+    values = _of(bench, stage, "gm") * _inverse(2.0 * np.pi * c)
+    reason = "" if np.isfinite(values[0]) else "the model has no charges"
+    return figure("ft_hz", stage, values, "Hz", formula="fT = gm/(2 pi (Cpi + Cmu))", reason=reason)
+
+
+def _inverse(x: FloatArray) -> FloatArray:
+    return np.asarray(1.0 / np.where(x > 0.0, x, np.nan))

@@ -1,0 +1,156 @@
+"""How much a bias leans on the transistor: divider stiffness, gain spread, and the base's path for direct current."""
+
+from __future__ import annotations
+
+from collections.abc import Mapping
+from dataclasses import replace
+
+import numpy as np
+
+from checker.circuit.changes import with_changes
+from checker.circuit.types import Change, Circuit, Scenario
+from checker.measure.bench import Bench, FloatArray
+from checker.measure.bias import require_bias
+from checker.measure.make import figure, first, missing
+from checker.measure.registry import quantity
+from checker.measure.single import nominal_circuit
+from checker.quantity.figure import Figure
+from checker.solve.operating import operating_point
+
+NO_BASE_CURRENT = 1e9
+"""Factor on the forward current gain that stands for a base current of zero."""
+
+
+def _stacked(bench: Bench) -> Mapping[str, FloatArray]:
+    """IC of each device itself at highest and lowest gain, and without base current: (n,) each; one solve, kept."""
+    if "steadiness" not in bench.kept:
+        circuit = nominal_circuit(bench.circuit)
+        names = circuit.bipolars.names
+        scenarios = [Scenario(name="nominal")]
+        for name in names:
+            low, high = gain_limits(circuit, name)
+            scenarios += [
+                Scenario(name=f"{name} {word}", kind="sample", changes=(Change(part=name, property="bf", value=bf),))
+                for word, bf in (("low", low), ("high", high), ("none", high * NO_BASE_CURRENT))
+            ]
+        stack = _without_leakage(with_changes(circuit, scenarios), len(names))
+        ic = np.abs(operating_point(stack, near=bench.nominal_point).bipolar["ic_a"])
+        rows = 1 + 3 * np.arange(len(names))
+        own = np.arange(len(names))
+        bench.kept["steadiness"] = {
+            "low": ic[rows, own],
+            "high": ic[rows + 1, own],
+            "none": ic[rows + 2, own],
+        }
+    kept = bench.kept["steadiness"]
+    assert isinstance(kept, dict)  # noqa: S101 - narrows the type
+    return kept
+
+
+def _without_leakage(stack: Circuit, count: int) -> Circuit:
+    """Take the base leakage out too, in the scenarios that stand for no base current."""
+    params = dict(stack.bipolars.params)
+    leak = np.array(params["ise"])
+    leak[3 + 3 * np.arange(count), np.arange(count)] = 0.0
+    params["ise"] = leak
+    return replace(stack, bipolars=replace(stack.bipolars, params=params))
+
+
+def gain_limits(circuit: Circuit, device: str) -> tuple[float, float]:
+    """Lowest and highest BF of a device: its card's range of gain over its typical, else half and twice.
+
+    The card gives the terminal gain at a stated current; BF is moved in the same proportion.
+    """
+    fact = circuit.parts.get(device)
+    bf = float(circuit.bipolars.params["bf"][0, circuit.bipolars.names.index(device)])
+    if fact is None or fact.gain_min is None or fact.gain_max is None:
+        return 0.5 * bf, 2.0 * bf
+    typical = float(np.sqrt(fact.gain_min * fact.gain_max))
+    return bf * fact.gain_min / typical, bf * fact.gain_max / typical
+
+
+@quantity("gain_spread_ratio", "1", "stage", "collector current at the highest over the lowest current gain of the part")
+def gain_spread_ratio(bench: Bench, stage: str) -> Figure:
+    """Each device moved alone, at the nominal temperature."""
+    require_bias(bench, stage)
+    index = bench.stage(stage).index
+    low, high = _stacked(bench)["low"][index], _stacked(bench)["high"][index]
+    values = np.full(bench.size, np.nan)
+    values[0] = max(high, low) / min(high, low)
+    bf = gain_limits(bench.circuit, stage)
+    return figure(
+        "gain_spread_ratio",
+        stage,
+        values,
+        "1",
+        formula="IC at highest gain / IC at lowest gain",
+        numbers=(("IC high", high, "A"), ("IC low", low, "A"), ("BF low", bf[0], "1"), ("BF high", bf[1], "1")),
+        source="stacked solve over the part's gain range",
+    )
+
+
+@quantity("divider_shift", "1", "stage", "collector current against that of the same circuit without base current")
+def divider_shift(bench: Bench, stage: str) -> Figure:
+    """|IC/IC(IB = 0) - 1| where a divider feeds the base; at nominal gain (scenario 0)."""
+    require_bias(bench, stage)
+    if len(base_feeds(bench, stage)) < 2:
+        return missing("divider_shift", stage, bench.size, "1", "not applicable: no divider feeds the base")
+    index = bench.stage(stage).index
+    ideal = _stacked(bench)["none"][index]
+    ic = np.abs(bench.point.bipolar["ic_a"][:, index])
+    values = np.full(bench.size, np.nan)
+    values[0] = abs(ic[0] / ideal - 1.0)
+    return figure(
+        "divider_shift",
+        stage,
+        values,
+        "1",
+        formula="|IC/IC(IB = 0) - 1|",
+        numbers=(("IC", first(ic), "A"), ("IC(IB = 0)", float(ideal), "A")),
+        source="stacked solve with and without base current",
+    )
+
+
+def base_feeds(bench: Bench, stage: str) -> tuple[str, ...]:
+    """Resistors that join the base net, through at most one more resistor, to nets of known voltage; sorted."""
+    c = bench.circuit
+    known = bench.point.plan.is_known
+    device = bench.stage(stage).index
+    base = int(c.bipolars.nodes[device, 1])
+    near = {base}
+    found: set[str] = set()
+    for _ in range(2):
+        for name, (a, b) in zip(c.resistors.names, c.resistors.nodes.tolist(), strict=True):
+            for here, there in ((a, b), (b, a)):
+                if here in near and known[there]:
+                    found.add(name)
+        near |= {
+            there
+            for a, b in c.resistors.nodes.tolist()
+            for here, there in ((a, b), (b, a))
+            if here == base and not known[there] and not _device_net(c, there, device)
+        }
+    return tuple(sorted(found))
+
+
+def _device_net(c: Circuit, node: int, device: int) -> bool:
+    """A net that a transistor's collector or emitter drives is no divider."""
+    return bool((c.bipolars.nodes[:, [0, 2]] == node).any()) or node in c.bipolars.nodes[device].tolist()
+
+
+@quantity("base_dc_path", "1", "stage", "1 where direct base current has a path other than the device's own junctions")
+def base_dc_path(bench: Bench, stage: str) -> Figure:
+    """Structure alone: resistors, coils, sources, diodes and other devices lead from the base to a known net."""
+    c, plan = bench.circuit, bench.point.plan
+    index = bench.stage(stage).index
+    start = int(c.bipolars.nodes[index, 1])
+    joins = [row for t in (c.resistors, c.inductors, c.voltages, c.diodes) for row in t.nodes.tolist()]
+    joins += [row[:3] for j, row in enumerate(c.bipolars.nodes.tolist()) if j != index]
+    reached, growing = {start}, True
+    while growing:
+        more = {x for row in joins if reached & set(row) for x in row} - reached
+        reached |= more
+        growing = bool(more)
+    found = bool(plan.is_known[list(reached)].any()) or bool((c.currents.nodes == start).any())
+    values = np.full(bench.size, 1.0 if found else 0.0)
+    return figure("base_dc_path", stage, values, "1", formula="a chain of conducting parts from the base to a supply")

@@ -1,0 +1,214 @@
+"""The same quantities at the device terminals, and the hand formulas that belong beside them."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+
+import numpy as np
+
+from checker.measure.bench import Bench
+from checker.measure.links import (
+    ComplexArray,
+    Outer,
+    current_out,
+    cut_input,
+    cut_output,
+    drive_of,
+    outer_of,
+    terminal_index,
+    terminal_net,
+)
+from checker.measure.make import figure, first, missing
+from checker.measure.registry import quantity
+from checker.measure.small_signal import r_e, r_pi
+from checker.quantity.figure import Figure
+from checker.solve.response import Response
+
+MIDDLE = 1
+"""f0 in the three frequencies of the bench's edges."""
+
+
+def _setup(bench: Bench, stage: str) -> tuple[Outer, Response] | str:
+    outer = outer_of(bench, stage)
+    return outer if isinstance(outer, str) else (outer, bench.response(bench.edges_hz))
+
+
+@quantity("terminal_voltage_gain", "1", "stage", "v(exit terminal) over v(entry terminal)")
+def terminal_voltage_gain(bench: Bench, stage: str) -> Figure:
+    """In place, loaded."""
+    found = _setup(bench, stage)
+    if isinstance(found, str):
+        return missing("terminal_voltage_gain", stage, bench.size, "1", found)
+    outer, response = found
+    v = response.voltages(drive_of(bench, outer))
+    ratio = v[..., terminal_net(bench.circuit, outer.exit)] / v[..., terminal_net(bench.circuit, outer.entry)]
+    return figure("terminal_voltage_gain", stage, ratio, "1", f_hz=response.f_hz, formula="v(exit)/v(entry)")
+
+
+@quantity("terminal_input_impedance_ohm", "ohm", "stage", "v/i into the entry terminal itself")
+def terminal_input(bench: Bench, stage: str) -> Figure:
+    """Bias and emitter resistors on the net are not in it."""
+    found = _setup(bench, stage)
+    if isinstance(found, str):
+        return missing("terminal_input_impedance_ohm", stage, bench.size, "ohm", found)
+    outer, response = found
+    s = response.solution(drive_of(bench, outer))
+    i = response.current(outer.entry[0], terminal_index(outer.entry[1]), s)
+    z = s[..., terminal_net(bench.circuit, outer.entry)] / i
+    return figure("terminal_input_impedance_ohm", stage, z, "ohm", f_hz=response.f_hz, formula="v(entry)/i(entry)")
+
+
+@quantity("terminal_output_impedance_ohm", "ohm", "stage", "of the exit terminal alone, its net's parts taken away")
+def terminal_output(bench: Bench, stage: str) -> Figure:
+    """1/(1/Z in place - 1/Z with the device out), source's signal zero."""
+    found = _setup(bench, stage)
+    if isinstance(found, str):
+        return missing("terminal_output_impedance_ohm", stage, bench.size, "ohm", found)
+    outer, response = found
+    net = terminal_net(bench.circuit, outer.exit)
+    whole, without = response.impedance(net), response.removed([outer.exit[0]]).impedance(net)
+    difference = 1.0 / whole - 1.0 / without
+    z = 1.0 / np.where(np.abs(difference) > 1e-12 / np.abs(whole), difference, np.nan)
+    return figure(
+        "terminal_output_impedance_ohm", stage, z, "ohm", f_hz=response.f_hz, formula="1/(1/Z - 1/Z without device)"
+    )
+
+
+@dataclass(frozen=True, slots=True, kw_only=True)
+class Around:
+    """What stands around a device at f0, nominal, in ohm: `emitter`, `base` nets with the device out; `base_alone` with
+    the input link open too; `collector_alone` with the output link open; `rc` collector in place; `load` beyond the
+    output link; `drive` what the base sees upstream."""
+
+    emitter: float
+    base: float
+    base_alone: float
+    exit_alone: float
+    exit_loaded: float
+    load: float
+
+
+def around(bench: Bench, outer: Outer) -> Around:
+    """Magnitudes from the network with the device taken out."""
+    response = bench.nominal_response(bench.edges_hz)
+    device = outer.entry[0]
+    out = response.removed([device])
+    alone_in = cut_input(response, outer).removed([device]) if outer.input_link.kind != "direct" else out
+    alone_out = cut_output(bench, response, outer).removed([device])
+    emitter, base = (terminal_net(bench.circuit, (device, t)) for t in ("emitter", "base"))  # type: ignore[arg-type]
+    leaving = terminal_net(bench.circuit, outer.exit)
+    s = response.solution(drive_of(bench, outer))
+    with np.errstate(divide="ignore", invalid="ignore"):
+        load = np.abs(s[0, MIDDLE, outer.output_link.stage_node] / _out(bench, response, outer, s))
+    entered = outer.entry[1]
+    return Around(
+        emitter=_size(alone_in if entered == "emitter" else out, emitter),
+        base=_size(out, base),
+        base_alone=_size(alone_in, base),
+        exit_alone=_size(alone_out, leaving),
+        exit_loaded=_size(out, leaving),
+        load=float(load),
+    )
+
+
+def _out(bench: Bench, response: Response, outer: Outer, s: ComplexArray) -> complex:
+    return complex(current_out(bench, response, outer, s)[0, MIDDLE])
+
+
+def _size(response: Response, node: int) -> float:
+    return float(np.abs(response.impedance(node)[0, MIDDLE]))
+
+
+def beside(a: float, b: float) -> float:
+    """Two resistances in parallel [ohm]; either may be infinite or 0."""
+    if a == 0.0 or b == 0.0:
+        return 0.0
+    return 1.0 / (1.0 / a + 1.0 / b)
+
+
+def rule_of_thumb(bench: Bench, stage: str) -> dict[str, Figure]:
+    """Hand figures at f0, nominal, by quantity; empty where no formula belongs to the configuration.
+
+    Common practice, no source: common base gain rc/re', input re' || RE, output RC, current gain rc/RL; common emitter
+    gain -rc/(re' + Ze), input (beta + 1)(re' + Ze) || RB, output RC; common collector gain r/(r + re'),
+    input (beta + 1)(re' + r) || RB, output (re' + RS/(beta + 1)) || RE.
+    """
+    outer = outer_of(bench, stage)
+    label = bench.stage(stage).configuration
+    if isinstance(outer, str) or label not in ("common-base", "common-emitter", "common-collector"):
+        return {}
+    re = first(r_e(bench, stage).values.real)
+    beta = first(r_pi(bench, stage).values.real) * _gm(bench, stage)
+    a = around(bench, outer)
+    rc_words = (("rc", a.exit_loaded, "ohm"), ("re'", re, "ohm"))
+    if label == "common-base":
+        return _written(
+            stage,
+            ("voltage_gain", a.exit_loaded / re, "1", "rc/re'", rc_words),
+            ("input_impedance_ohm", beside(re, a.emitter), "ohm", "re' || RE", (("RE", a.emitter, "ohm"), rc_words[1])),
+            ("output_impedance_ohm", a.exit_alone, "ohm", "RC", ()),
+            ("current_gain", a.exit_loaded / a.load, "1", "rc/RL", (("RL", a.load, "ohm"), rc_words[0])),
+        )
+    if label == "common-emitter":
+        lead = re + a.emitter
+        words = (*rc_words, ("Ze", a.emitter, "ohm"))
+        return _written(
+            stage,
+            ("voltage_gain", -a.exit_loaded / lead, "1", "-rc/(re' + Ze)", words),
+            _base_input(a, beta, lead),
+            ("output_impedance_ohm", a.exit_alone, "ohm", "RC", ()),
+        )
+    r = a.exit_loaded
+    back = beside(re + a.base / (beta + 1.0), a.exit_alone)
+    return _written(
+        stage,
+        ("voltage_gain", r / (r + re), "1", "r/(r + re')", (("r", r, "ohm"), rc_words[1])),
+        _base_input(a, beta, re + r),
+        ("output_impedance_ohm", back, "ohm", "(re' + RS/(beta + 1)) || RE", (("RS", a.base, "ohm"),)),
+    )
+
+
+Hand = tuple[str, float, str, str, tuple[tuple[str, float, str], ...]]
+
+
+def _base_input(a: Around, beta: float, lead: float) -> Hand:
+    z = beside((beta + 1.0) * lead, a.base_alone)
+    return ("input_impedance_ohm", z, "ohm", "(beta + 1)(re' + Ze) || RB", (("beta", beta, "1"), ("Ze + re'", lead, "ohm")))
+
+
+def _written(stage: str, *hands: Hand) -> dict[str, Figure]:
+    return {
+        name: figure(
+            name, stage, np.array([value]), unit, formula=formula, numbers=numbers, source="common practice, no source"
+        )
+        for name, value, unit, formula, numbers in hands
+        if np.isfinite(value)
+    }
+
+
+def _gm(bench: Bench, stage: str) -> float:
+    from checker.measure.small_signal import gm
+
+    return first(gm(bench, stage).values.real)
+
+
+@quantity("base_ground_loss_db", "dB", "stage", "gain lost because the base of a common-base stage is not at ground")
+def base_ground_loss(bench: Bench, stage: str) -> Figure:
+    """|v out| with the base grounded over |v out|, for the same upstream e.m.f.; at both band edges and f0."""
+    outer = outer_of(bench, stage)
+    if isinstance(outer, str) or bench.stage(stage).configuration != "common-base":
+        why = outer if isinstance(outer, str) else "not applicable: not a common-base stage"
+        return missing("base_ground_loss_db", stage, bench.size, "dB", why)
+    response = bench.response(bench.edges_hz)
+    base = terminal_net(bench.circuit, (outer.entry[0], "base"))
+    drive, node = drive_of(bench, outer), outer.output_link.stage_node
+    ratio = response.grounded(base).voltages(drive)[..., node] / response.voltages(drive)[..., node]
+    return figure(
+        "base_ground_loss_db",
+        stage,
+        20.0 * np.log10(np.abs(ratio)),
+        "dB",
+        f_hz=response.f_hz,
+        formula="20 log10 |v(out), base at signal ground|/|v(out)|",
+        source="in-place small-signal solution, low-rank change",
+    )

@@ -1,0 +1,51 @@
+"""Which resistors set which stage's current: one stack of slightly changed circuits, one solve."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+
+import numpy as np
+from numpy.typing import NDArray
+
+from checker.circuit.changes import with_changes
+from checker.circuit.types import Change, Scenario
+from checker.solve.operating import OperatingPoint, operating_point
+
+FloatArray = NDArray[np.float64]
+NUDGE = 1e-3
+CHUNK = 128
+"""Scenarios solved at a time: bounds memory on boards of many resistors."""
+
+
+@dataclass(frozen=True, slots=True, kw_only=True)
+class Influence:
+    """`slope` (n_resistors, n_devices): d ln |IC| / d ln R at the nominal; 0 where there is none."""
+
+    resistors: tuple[str, ...]
+    devices: tuple[str, ...]
+    slope: FloatArray
+
+    def order(self, device: str) -> tuple[str, ...]:
+        """Resistors that move a device's current, the strongest first."""
+        column = np.abs(self.slope[:, self.devices.index(device)])
+        order = np.argsort(-column, kind="stable")
+        return tuple(self.resistors[j] for j in order.tolist() if column[j] > 1e-3)
+
+
+def influence(point: OperatingPoint) -> Influence:
+    """From a solution of the nominal scenario alone."""
+    circuit = point.circuit
+    names = tuple(name for name in circuit.resistors.names if name in circuit.parts)
+    devices = circuit.bipolars.names
+    base = np.log(np.maximum(np.abs(point.bipolar["ic_a"][0]), 1e-30))
+    slope = np.zeros((len(names), len(devices)))
+    for first in range(0, len(names) if devices else 0, CHUNK):
+        part = names[first : first + CHUNK]
+        changes = [
+            Scenario(name=n, kind="sample", changes=(Change(part=n, property="factor", value=1.0 + NUDGE),))
+            for n in part
+        ]
+        stack = operating_point(with_changes(circuit, (Scenario(name="nominal"), *changes)), near=point)
+        moved = np.log(np.maximum(np.abs(stack.bipolar["ic_a"][1:]), 1e-30))
+        slope[first : first + len(part)] = np.nan_to_num((moved - base) / np.log1p(NUDGE))
+    return Influence(resistors=names, devices=devices, slope=slope)

@@ -1,0 +1,77 @@
+"""Directions of ports that nobody declared, and the frequency at which a board without a band is looked at."""
+
+from __future__ import annotations
+
+from dataclasses import replace
+
+import numpy as np
+from numpy.typing import NDArray
+
+from checker.circuit.types import Port
+from checker.solve.operating import OperatingPoint
+from checker.solve.response import Response, port_drive, small_signal
+from checker.words import PortRole
+
+FloatArray = NDArray[np.float64]
+DIRECTION_DB = 10.0
+"""One way must be this much stronger than the other before a direction is stated."""
+
+
+def wide_grid_hz() -> FloatArray:
+    """1 Hz to 1 GHz, six a decade, (55,)."""
+    return np.logspace(0.0, 9.0, 55)
+
+
+def directed(ports: tuple[Port, ...], response: Response) -> tuple[tuple[Port, ...], tuple[str, ...]]:
+    """Give a role to ports without one, by |Z21/Z12| at the frequency where the coupling is strongest.
+
+    Returns the ports and the sentences that say what was found or could not be.
+    """
+    open_ports = [p for p in ports if p.role is None]
+    if not open_ports or len(ports) < 2:
+        return ports, tuple(f"port {p.name}: direction not known, no second port to compare with" for p in open_ports)
+    roles, words = {}, []
+    for port in open_ports:
+        role, sentence = _role(port, [p for p in ports if p.name != port.name], response)
+        roles[port.name] = role
+        words.append(sentence)
+    return tuple(replace(p, role=roles[p.name]) if p.role is None else p for p in ports), tuple(words)
+
+
+def _role(port: Port, others: list[Port], response: Response) -> tuple[PortRole | None, str]:
+    best_db, best = 0.0, None
+    for other in others:
+        forward = np.abs(response.transfer(other.node, port.node)[0])
+        backward = np.abs(response.transfer(port.node, other.node)[0])
+        usable = np.isfinite(forward) & np.isfinite(backward) & (np.maximum(forward, backward) > 1e-12)
+        if not usable.any():
+            continue
+        at = int(np.argmax(np.where(usable, np.maximum(forward, backward), 0.0)))
+        ratio = 20.0 * np.log10(max(forward[at], 1e-15) / max(backward[at], 1e-15))
+        if abs(ratio) > abs(best_db):
+            best_db, best = float(ratio), other
+    if best is None or abs(best_db) < DIRECTION_DB:
+        return None, f"port {port.name}: signal passes either way about equally; its direction is not stated"
+    role: PortRole = "input" if best_db > 0.0 else "output"
+    return role, f"port {port.name} taken as {role}: {abs(best_db):.0f} dB more signal that way, against {best.name}"
+
+
+def widest_band(point: OperatingPoint, ports: tuple[Port, ...]) -> tuple[tuple[float, float] | None, float]:
+    """The widest interval within 1 dB of the largest response between 1 Hz and 1 GHz, and its log-midpoint [Hz].
+
+    Without any path between ports: no band, and 1 kHz.
+    """
+    f = wide_grid_hz()
+    sources = [p for p in ports if p.role == "input"]
+    outputs = [p for p in ports if p.role == "output"]
+    if not sources or not outputs:
+        return None, 1e3
+    response = small_signal(point, f)
+    h = np.abs(response.voltages(port_drive(sources[0]))[0, :, outputs[0].node])
+    if not np.isfinite(h).all() or h.max() <= 0.0:
+        return None, 1e3
+    level = h >= h.max() * 10.0 ** (-1.0 / 20.0)
+    runs = np.flatnonzero(np.diff(np.concatenate([[0], level.astype(int), [0]])))
+    spans = [(f[a], f[b - 1]) for a, b in zip(runs[::2], runs[1::2], strict=True)]
+    low, high = max(spans, key=lambda s: np.log(s[1] / s[0]))
+    return (float(low), float(high)), float(np.sqrt(low * high))
