@@ -199,14 +199,6 @@ def _gain(draft: Draft, name: str, known: Identity, values: Mapping[str, float])
     """Limits of the current gain of this type, from the card, else assumed around the model's."""
     if known.kind not in BIPOLAR:
         return None, None
-<<<<<<< HEAD
-    card = known.card
-    if card is not None and card.gain_min is not None and card.gain_max is not None and not card.assumed:
-        return card.gain_min, card.gain_max
-    low, high = ASSUMED_SPREAD
-    draft.notes.add("tolerances", f"current gain from {low:g} to {high:g} times the model's, for want of a card", name)
-    return values["bf"] * low, values["bf"] * high
-=======
     stated = None if known.card is None or known.card.assumed else known.card
     low = values["bf"] * ASSUMED_SPREAD[0] if stated is None or stated.gain_min is None else stated.gain_min
     high = values["bf"] * ASSUMED_SPREAD[1] if stated is None or stated.gain_max is None else stated.gain_max
@@ -214,7 +206,6 @@ def _gain(draft: Draft, name: str, known: Identity, values: Mapping[str, float])
         times = f"{ASSUMED_SPREAD[0]:g} and {ASSUMED_SPREAD[1]:g} times"
         draft.notes.add("tolerances", f"unstated limits of current gain taken as {times} the model's", name)
     return low, high
->>>>>>> main
 
 
 def _ratings(draft: Draft, part: Part, known: Identity) -> Ratings:

@@ -201,13 +201,6 @@ def two_ends(part: Part) -> tuple[str, str] | None:
     return (nets[0], nets[1]) if len(nets) == 2 else None
 
 
-<<<<<<< HEAD
-def _coil_pins(part: Part) -> tuple[str, str] | None:
-    """The coil of a relay (A1, A2), else the only two pins."""
-    coil = {pin.number.upper(): pin.net for pin in part.pins if pin.number.upper() in ("A1", "A2")}
-    coil = coil or {pin.function.upper(): pin.net for pin in part.pins if pin.function.upper() in ("A1", "A2")}
-    return (coil["A1"], coil["A2"]) if len(coil) == 2 else two_ends(part)
-=======
 def _coil_pins(draft: Draft, part: Part) -> tuple[str, str] | None:
     """The coil of a relay (A1 and A2, else the two nets with a diode across), else the only two pins."""
     coil: dict[str, str] = {}
@@ -227,7 +220,6 @@ def _coil_pins(draft: Draft, part: Part) -> tuple[str, str] | None:
     ((anode, cathode),) = across
     draft.notes.add("pins", "the coil is taken to be on the two pins that a diode joins", part.ref)
     return cathode, anode
->>>>>>> main
 
 
 def _not_two_ended(draft: Draft, part: Part, kind: PartKind) -> None:

@@ -16,7 +16,9 @@ from checker.trouble import InputTrouble
 _EXPORT = re.compile(r"\(\s*export[\s()]")
 
 
-def read_netlist(path: Path, *, include_dirs: tuple[Path, ...] = (), limits: ReadLimits | None = None) -> Netlist:
+def read_netlist(
+    path: Path, *, include_dirs: tuple[Path, ...] = (), limits: ReadLimits | None = None
+) -> Netlist:
     """Read a SPICE-style text or a KiCad S-expression export (versions D and E) into one `Netlist`.
 
     `path` is also the name used in the result, with forward slashes. SPICE includes are followed only inside

@@ -49,7 +49,9 @@ def cards_of(text: str, *, file: str, first_line: int = 1) -> tuple[list[Card], 
             control = 0 if word == ".endc" else control
         elif word == ".control":
             control = number
-            remarks.append(_remark("a control block is passed over: it holds commands, no parts", file, number))
+            remarks.append(
+                _remark("a control block is passed over: it holds commands, no parts", file, number)
+            )
         elif word == ".end":
             break
         elif bare[0] != "+":
@@ -59,7 +61,9 @@ def cards_of(text: str, *, file: str, first_line: int = 1) -> tuple[list[Card], 
         else:
             remarks.append(_remark("a continuation line with nothing before it is passed over", file, number))
     if control:
-        remarks.append(_remark("the control block never ends: all that follows it is passed over", file, control))
+        remarks.append(
+            _remark("the control block never ends: all that follows it is passed over", file, control)
+        )
     return [Card(text=" ".join(parts), file=file, line=number) for number, parts in pieces], remarks
 
 

@@ -44,7 +44,9 @@ def split_words(text: str, *, decimal_comma: bool = False) -> Words:
                 groups[key] = tuple(more)
         elif piece not in "=(),":
             positional.append(piece)
-    return Words(positional=tuple(word for word in positional if word.lower() != "params:"), named=named, groups=groups)
+    return Words(
+        positional=tuple(word for word in positional if word.lower() != "params:"), named=named, groups=groups
+    )
 
 
 def _tokens(text: str, decimal_comma: bool) -> list[str]:

@@ -22,7 +22,9 @@ def find_groups(scene: Scene, ways: Mapping[str, Direction]) -> tuple[Group, ...
     return tuple(sorted(out, key=lambda g: g.id))
 
 
-def _labels(scene: Scene, ways: Mapping[str, Direction], p: str, q: str) -> Iterator[tuple[GroupLabel, str, str, str]]:
+def _labels(
+    scene: Scene, ways: Mapping[str, Direction], p: str, q: str
+) -> Iterator[tuple[GroupLabel, str, str, str]]:
     for a, b in ((p, q), (q, p)):
         if _mirror(scene, a, b):
             yield "current-mirror", a, b, f"{a} has base on collector; bases joined, emitters on the same supply"
@@ -88,12 +90,7 @@ def _compound(
         if ca == cb or _both_followers(ways, a, b):
             yield "darlington", a, b, f"emitter of {a} drives the base of {b}"
     if not same and bb in through_resistors(scene, ca) and cb in through_resistors(scene, ea) and not scene.silent[ea]:
-        yield (
-            "complementary-feedback-pair",
-            a,
-            b,
-            f"collector of {a} drives {b}, whose collector returns to its emitter",
-        )
+        yield "complementary-feedback-pair", a, b, f"collector of {a} drives {b}, whose collector returns to its emitter"
     if eb in through_resistors(scene, ca) and not scene.silent[ca] and ca != bb:
         if _enters(ways, b, "emitter") or scene.silent[bb]:
             yield "cascode", a, b, f"collector of {a} feeds the emitter of {b}, whose base is held"
@@ -125,9 +122,7 @@ def _differential(scene: Scene, p: str, q: str) -> bool:
         return False
     if scene.silent[ep] or scene.silent[eq]:
         return False
-    return (
-        bool(through_resistors(scene, ep) & through_resistors(scene, eq)) and ep not in (bq, cq) and eq not in (bp, cp)
-    )
+    return bool(through_resistors(scene, ep) & through_resistors(scene, eq)) and ep not in (bq, cq) and eq not in (bp, cp)
 
 
 def _feeds(scene: Scene, ways: Mapping[str, Direction], a: str, b: str) -> bool:
