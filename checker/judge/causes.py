@@ -1,0 +1,76 @@
+"""Root causes: one fault sets off several rules, and the report should say which came first.
+
+A finding follows from another where both are about one stage, the table below says that such a thing can be
+its cause, and the cause is at least as certain as the effect. Of several causes the one that stands first
+in `PRIMACY` counts.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Sequence
+
+from checker.judge.verdict import Verdict
+
+REST = ("no-base-path", "reverse-active", "cut-off-at-rest", "saturated-at-rest")
+"""A stage that rests wrongly does nothing right: all its other findings follow."""
+
+PRIMACY = (
+    *REST,
+    "beta-dependent-bias",
+    "soft-divider",
+    "dissipation",
+    "base-not-grounded",
+    "bypass-loss",
+    "coupling-loss",
+    "input-mismatch",
+)
+
+CAUSES: dict[str, tuple[str, ...]] = {
+    "reverse-active": ("no-base-path",),
+    "cut-off-at-rest": ("no-base-path", "reverse-active", "beta-dependent-bias", "soft-divider"),
+    "saturated-at-rest": ("no-base-path", "reverse-active", "beta-dependent-bias", "soft-divider"),
+    "beta-dependent-bias": (*REST, "soft-divider"),
+    "soft-divider": REST,
+    "dissipation": ("reverse-active", "beta-dependent-bias"),
+    "junction-temperature": ("dissipation", "reverse-active", "beta-dependent-bias"),
+    "base-not-grounded": REST,
+    "bypass-loss": (*REST, "base-not-grounded"),
+    "coupling-loss": REST,
+    "input-mismatch": (*REST, "base-not-grounded", "coupling-loss"),
+    "target-missed": (*REST, "base-not-grounded"),
+}
+"""Effect -> what can bring it about, whatever it is that is measured."""
+
+CAUSES_BY_QUANTITY: dict[str, dict[str, tuple[str, ...]]] = {
+    "target-missed": {
+        "corner": ("bypass-loss", "coupling-loss"),
+        "droop": ("bypass-loss", "coupling-loss"),
+        "transducer_gain": ("input-mismatch",),
+        "ic_a": ("soft-divider", "beta-dependent-bias"),
+        "vce_v": ("soft-divider", "beta-dependent-bias"),
+    }
+}
+"""The same, only where the judged quantity's name holds the word."""
+
+
+def causes(verdicts: Sequence[Verdict]) -> tuple[int | None, ...]:
+    """For each verdict the index of the one it follows from, None where it is a root. Never in a circle."""
+    return tuple(_cause(verdict, verdicts) for verdict in verdicts)
+
+
+def _cause(effect: Verdict, verdicts: Sequence[Verdict]) -> int | None:
+    possible = [index for index, each in enumerate(verdicts) if each is not effect and _follows(effect, each)]
+    return min(possible, key=lambda index: (PRIMACY.index(verdicts[index].rule.id), index), default=None)
+
+
+def _follows(effect: Verdict, cause: Verdict) -> bool:
+    if cause.rule.id not in _named(effect) or not set(effect.stages) & set(cause.stages):
+        return False
+    return cause.outcome == "violates" or effect.outcome == "may-violate"
+
+
+def _named(effect: Verdict) -> tuple[str, ...]:
+    quantity = effect.evidence.check.figure.quantity
+    by_quantity = CAUSES_BY_QUANTITY.get(effect.rule.id, {})
+    extra = [rules for word, rules in by_quantity.items() if word in quantity]
+    return (*CAUSES.get(effect.rule.id, ()), *(rule for rules in extra for rule in rules))
