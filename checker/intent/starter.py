@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from collections.abc import Iterable, Iterator, Sequence
 
-from checker.intent.source import MAX_DOTS
+from checker.intent.source import MAX_DOTTED
 from checker.intent.values import BadValueError, text
 from checker.quantity.parse import parse_with_unit
 from checker.quantity.show import show_value
@@ -104,7 +104,7 @@ def _usable(name: str) -> bool:
         text(name).encode("utf-8")
     except (BadValueError, UnicodeEncodeError):
         return False
-    return len(name) <= _MAX_NAME and name.count(".") <= MAX_DOTS // 2
+    return len(name) <= _MAX_NAME and name.count(".") < MAX_DOTTED - 1
 
 
 def _written(si: float, unit: str) -> str:
