@@ -29,7 +29,8 @@ _KEY: Final = rf"{_PART}(?:[ \t]*\.[ \t]*{_PART})*"
 _HEADER: Final = re.compile(rf"[ \t]*(\[\[?)[ \t]*({_KEY})[ \t]*\]")
 _ENTRY: Final = re.compile(rf"[ \t]*({_KEY})[ \t]*=")
 _SPLIT: Final = re.compile(_PART)
-_TOO_DOTTED: Final = re.compile(rf"(?<![A-Za-z0-9_-])(?:{_PART}[ \t]*\.[ \t]*){{{MAX_DOTTED}}}")
+_SHORT: Final = r"(?:[A-Za-z0-9_-]{1,99}|\"(?:[^\"\\]|\\.){0,99}\"|'[^']{0,99}')"  # longer ones: few a line
+_TOO_DOTTED: Final = re.compile(rf"(?<![A-Za-z0-9_-])(?:{_SHORT}[ \t]*\.[ \t]*){{{MAX_DOTTED}}}")
 _LONG_TEXT: Final = re.compile(r'"""|\'\'\'')
 
 
