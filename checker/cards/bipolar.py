@@ -101,9 +101,7 @@ def _transit_time(row: Mapping[str, Any], model: Mapping[str, float]) -> float:
     cjc = model["cjc"] * (1.0 + (vce_v - row["vbe"][1]) / model["vjc"]) ** -model["mjc"]
     tf = 1.0 / (2.0 * math.pi * ft_hz) - (cje + cjc) / gm
     if tf <= 0.0:
-        raise ValueError(
-            f"{row['name']}: the junction capacitances leave no room for its transition frequency"
-        )
+        raise ValueError(f"{row['name']}: the junction capacitances leave no room for its transition frequency")
     return float(tf)
 
 

@@ -82,16 +82,12 @@ def _text(path: Path, file: str) -> str:
         reason = error.strerror or "not readable"
         raise InputTrouble(f"cannot read the intent file: {reason}", file=file) from None
     if len(raw) > MAX_BYTES:
-        raise InputTrouble(
-            f"the intent file is larger than {MAX_BYTES} bytes; is it the right file?", file=file
-        )
+        raise InputTrouble(f"the intent file is larger than {MAX_BYTES} bytes; is it the right file?", file=file)
     try:
         text = raw.decode("utf-8-sig")
     except UnicodeDecodeError as error:
         line = raw.count(b"\n", 0, error.start) + 1
-        raise InputTrouble(
-            "the intent file is not UTF-8 text; save it as UTF-8", file=file, line=line
-        ) from None
+        raise InputTrouble("the intent file is not UTF-8 text; save it as UTF-8", file=file, line=line) from None
     for number, written in enumerate(text.split("\n"), start=1):
         if len(written) > MAX_LINE or _TOO_DOTTED.search(written):
             message = f"a line may have {MAX_LINE} characters, a dotted name {MAX_DOTTED} parts; break it up"

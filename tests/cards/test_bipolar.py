@@ -12,10 +12,7 @@ from checker.cards.load import card_from, families, rows
 from tests.cards import gummel_poon as gp
 
 ROWS: dict[str, Mapping[str, Any]] = {
-    row["name"]: row
-    for family in families()
-    for row in rows(family).values()
-    if row["kind"] in ("npn", "pnp")
+    row["name"]: row for family in families() for row in rows(family).values() if row["kind"] in ("npn", "pnp")
 }
 GROUPS = [(name, group) for name, row in ROWS.items() for group in row.get("groups", {})]
 SMALL = [name for family in ("small_npn", "small_pnp") for name in {r["name"] for r in rows(family).values()}]

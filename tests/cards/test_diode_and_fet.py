@@ -12,9 +12,7 @@ from scipy.optimize import brentq
 from checker.cards.load import card_from, families, rows
 from tests.cards.gummel_poon import VT
 
-ROWS: dict[str, Mapping[str, Any]] = {
-    row["name"]: row for family in families() for row in rows(family).values()
-}
+ROWS: dict[str, Mapping[str, Any]] = {row["name"]: row for family in families() for row in rows(family).values()}
 DIODES = sorted(name for name, row in ROWS.items() if row["kind"] in ("diode", "zener", "led"))
 ZENERS = sorted(name for name, row in ROWS.items() if row["kind"] == "zener")
 JFETS = sorted(name for name, row in ROWS.items() if row["kind"] in ("njf", "pjf"))
@@ -31,9 +29,7 @@ def test_forward_voltage(name: str) -> None:
     model = card_from(ROWS[name]).model
     for current, volts in ROWS[name]["vf"]:
         # the fit leaves out the -1 of the junction law, which counts where IS is not small
-        assert forward_voltage(model, current) == pytest.approx(
-            volts, abs=1e-3 + 2 * VT * model["is"] / current
-        )
+        assert forward_voltage(model, current) == pytest.approx(volts, abs=1e-3 + 2 * VT * model["is"] / current)
 
 
 @pytest.mark.parametrize("name", DIODES)

@@ -89,9 +89,7 @@ def test_doubt_is_no_card(value: str) -> None:
 
 
 @settings(max_examples=300, deadline=None)
-@given(
-    st.text(max_size=40) | st.builds(lambda a, b: a + b, st.sampled_from(all_names()), st.text(max_size=6))
-)
+@given(st.text(max_size=40) | st.builds(lambda a, b: a + b, st.sampled_from(all_names()), st.text(max_size=6)))
 def test_any_text_is_answered(value: str) -> None:
     card = find_card(value)
     assert card is None or card.kind in KINDS
@@ -145,9 +143,7 @@ def test_a_lookup_reads_only_the_family_it_needs() -> None:
         "assert find.find_card('BC547B'); print(time.perf_counter() - start, load.rows.cache_info().misses)"
     )
     root = Path(__file__).parents[2]
-    done = subprocess.run(
-        [sys.executable, "-c", script], cwd=root, capture_output=True, text=True, check=True
-    )
+    done = subprocess.run([sys.executable, "-c", script], cwd=root, capture_output=True, text=True, check=True)
     seconds, families_read = done.stdout.split()
     assert int(families_read) == 1
     assert float(seconds) < 0.05  # some 2 ms on a quiet machine

@@ -12,9 +12,7 @@ from checker.intent.read import read_intent
 from checker.intent.starter import starter_text
 from checker.intent.types import Intent
 
-_NAMES = st.text(max_size=30) | st.sampled_from(
-    ['a"b', "\\", "#", "a.b", "[x]", "\x7f", "\ud800", " ", "." * 150]
-)
+_NAMES = st.text(max_size=30) | st.sampled_from(['a"b', "\\", "#", "a.b", "[x]", "\x7f", "\ud800", " ", "." * 150])
 _OHMS = st.none() | st.floats(1e-3, 1e9)
 
 
@@ -39,9 +37,7 @@ def test_any_names_read_back(
     intent = _read(starter_text(rails, ports, band))
     assert (intent.band and (intent.band.low_hz, intent.band.high_hz)) == band
     assert {rail.net: rail.volts for rail in intent.rails}.items() <= dict(rails).items()
-    assert {(port.net, port.role, port.impedance_ohm) for port in intent.ports} <= {
-        port[1:] for port in ports
-    }
+    assert {(port.net, port.role, port.impedance_ohm) for port in intent.ports} <= {port[1:] for port in ports}
     assert len({port.name for port in intent.ports}) == len(intent.ports)
 
 
