@@ -39,7 +39,7 @@ def _full(defaults: dict[str, float], given: dict[str, float]) -> dict[str, Num]
     p = {**defaults, **{k.rstrip("_"): v for k, v in given.items()}}
     if "rb" in given and "rbm" not in given:
         p["rbm"] = p["rb"]
-    return p
+    return {k: mp.mpf(v) for k, v in p.items()}
 
 
 def _gap(t: Num) -> Num:
@@ -166,9 +166,7 @@ class Linear:
         self.c_bc = mp.diff(q._q_bc, vbc)
         ic, ib, qb, _ = q._inner(vbe, vbc)
         self.rb, self.ib_dc = q._rb(ib, qb), ib
-        self.drb = [
-            mp.diff(lambda a, b: q._rb(q._inner(a, b)[1], q._inner(a, b)[2]), (vbe, vbc), n) for n in (be, bc)
-        ]
+        self.drb = [mp.diff(lambda a, b: q._rb(q._inner(a, b)[1], q._inner(a, b)[2]), (vbe, vbc), n) for n in (be, bc)]
         self.rc, self.re = p["rc"], p["re"]
         v_outer = vbc + self.rb * ib
         self.c_bx = (1 - mp.mpf(p["xcjc"])) * mp.diff(
@@ -177,8 +175,10 @@ class Linear:
         v_sub = -(v_collector - p["rc"] * ic)
         self.c_js = mp.mpf(0)
         if p["cjs"]:
-            self.c_js = p["cjs"] * (1 - v_sub / p["vjs"]) ** -p["mjs"] if v_sub < 0 else p["cjs"] * (
-                1 + p["mjs"] * v_sub / p["vjs"]
+            self.c_js = (
+                p["cjs"] * (1 - v_sub / p["vjs"]) ** -p["mjs"]
+                if v_sub < 0
+                else p["cjs"] * (1 + p["mjs"] * v_sub / p["vjs"])
             )
 
     def at(self, s: Num, vb: Num, vbe: Num, vbc: Num) -> Phasors:
