@@ -46,10 +46,12 @@ def severity(outcome: Outcome, weight: Severity) -> Severity:
 
 def unknown_in(check: Check, scenarios: tuple[Scenario, ...], *, always: bool) -> tuple[str, ...]:
     """Names of the scenarios of the board itself in which the check is unknown; only the nominal one where
-    that is.
+    that is, or where the figure is of the nominal alone.
     """
     if not check.applies:
         return ()
+    if check.figure.nominal_only:
+        return (scenarios[0].name,) if check.unknown[0] else ()
     kinds = {"nominal", "corner", "state"} if always else {"nominal", "corner"}
     names = tuple(s.name for s, nan in zip(scenarios, check.unknown, strict=True) if nan and s.kind in kinds)
     return names[:1] if check.unknown[0] else names
