@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 import datetime
-from dataclasses import dataclass, replace
+from dataclasses import replace
 from pathlib import Path
 
 from checker import __version__
@@ -35,6 +35,7 @@ from checker.record import (
 )
 from checker.remedy.search import propose
 from checker.setup import Setup, set_up
+from checker.shape import frozen
 from checker.summary.ledger import Ledger
 from checker.summary.stages import group_records, stage_records
 from checker.summary.surroundings import cautions, gains, islands, nets, ports, rails
@@ -43,7 +44,7 @@ MOST_REMEDIES = 24
 """Findings for which a remedy is sought, worst first: each costs a few stacked solves."""
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
+@frozen
 class Outcome:
     """What a check leaves: the report, the workings behind its figures, and whether something internal failed."""
 

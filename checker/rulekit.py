@@ -9,7 +9,7 @@ and no business of a rule.
 from __future__ import annotations
 
 from collections.abc import Iterable, Mapping
-from dataclasses import dataclass, field
+from dataclasses import field
 from typing import ClassVar, Generic, Literal, Protocol, TypeVar
 
 import numpy as np
@@ -19,6 +19,7 @@ from checker.circuit.types import Port
 from checker.intent.types import TargetIntent
 from checker.quantity.figure import Figure
 from checker.quantity.show import show
+from checker.shape import frozen
 from checker.stages.types import Recognition, Stage
 from checker.trouble import CannotTell
 from checker.words import Configuration, Relation, Role, Severity, Terminal
@@ -100,7 +101,7 @@ class Board(Protocol):
     def stage_at_port(self, name: str) -> Stage | None: ...
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
+@frozen
 class Limit:
     """A limit of a rule: `default`, `low`, `high` (the range an intent file may set) in `unit`; "%" is a
     fraction.
@@ -114,7 +115,7 @@ class Limit:
     source: str
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
+@frozen
 class Applies:
     """Which subjects a rule is shown. Empty `configurations` or `roles`: all. A capacitor counts by its
     stage.
@@ -125,7 +126,7 @@ class Applies:
     roles: tuple[Role, ...] = ()
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
+@frozen
 class Lever:
     """A value that could be changed to mend the finding, and which way: the most promising first."""
 
@@ -134,7 +135,7 @@ class Lever:
     direction: Direction = "any"
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
+@frozen
 class Bound:
     """Where a figure has to stay: `low`, `high` in `unit`, a number or float64 (S,); None where open."""
 
@@ -159,7 +160,7 @@ class Bound:
         return float(np.ravel(end)[0])
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
+@frozen
 class Check:
     """The outcome over axis 0 = scenario: `failed`, `unknown` bool (S,); `worst` int64 (S,), the index into
     axis 1 of the figure where it is furthest outside or nearest to the bound; `applies` False where the
@@ -221,7 +222,7 @@ def _column(end: float | NDArray[np.float64] | None) -> NDArray[np.float64]:
     return np.reshape(np.asarray(np.nan if end is None else end, dtype=np.float64), (-1, 1))
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
+@frozen
 class Evidence:
     """What a rule found about one subject, whether or not it is a fault.
 

@@ -3,7 +3,6 @@
 from __future__ import annotations
 
 from collections.abc import Sequence
-from dataclasses import dataclass
 
 import numpy as np
 
@@ -14,6 +13,7 @@ from checker.circuit.types import Circuit, Port, Scenario
 from checker.intent.types import Intent
 from checker.measure.bench import Bench
 from checker.netlist.types import Netlist
+from checker.shape import frozen
 from checker.solve.operating import OperatingPoint, operating_point
 from checker.solve.poles import growing_poles
 from checker.solve.response import small_signal
@@ -26,7 +26,7 @@ from checker.stages.types import Recognition
 from checker.words import Region
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
+@frozen
 class Setup:
     """`circuit`, `point`: nominal alone. `scenarios`: nominal, corners, states. `growing`: whether the linearised
     circuit has a pole that grows (its operating point is then no rest)."""

@@ -3,13 +3,15 @@
 from __future__ import annotations
 
 from collections.abc import Mapping
-from dataclasses import dataclass, field
+from dataclasses import field
 from typing import Literal
+
+from checker.shape import frozen
 
 CardKind = Literal["npn", "pnp", "diode", "zener", "led", "njf", "pjf", "nmos", "pmos"]
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
+@frozen
 class Ratings:
     """Absolute limits and thermal data; None where unknown. `p_max_w` at 25 degC ambient."""
 
@@ -21,7 +23,7 @@ class Ratings:
     rth_ja_kpw: float | None = None
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
+@frozen
 class Card:
     """One type. `model`: SPICE-style parameters, lower case, SI, at 27 degC, typical unit.
 

@@ -7,15 +7,15 @@ against the standard. A text that states 50 or 75 outranks the family.
 from __future__ import annotations
 
 import re
-from dataclasses import dataclass
 from typing import Final
 
 from checker.circuit.parts import symbol_name
 from checker.netlist.types import Part
+from checker.shape import frozen
 from checker.words import PortRole
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
+@frozen
 class Family:
     """One connector family: nominal impedance [ohm], None where it has none; `also` a second one in use."""
 
@@ -65,7 +65,7 @@ _OUT: Final = re.compile(
 _SPLIT: Final = re.compile(r"[\s_/().,:-]+")
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
+@frozen
 class Nominal:
     """Impedance of a connector [ohm] (None: none) and the words that say where it is from."""
 

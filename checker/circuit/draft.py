@@ -14,6 +14,7 @@ from checker.circuit.ties import Ties
 from checker.circuit.types import PartFact, Rail, Unknown
 from checker.intent.types import Intent, PartIntent
 from checker.netlist.types import Netlist, Part
+from checker.shape import frozen
 from checker.words import PortRole
 
 Table = Literal["resistors", "capacitors", "inductors", "voltages", "currents"]
@@ -22,7 +23,7 @@ TIE_REL: Final = 1e-9
 """Sources in parallel count as equal within this, of the larger: rounding of sums of a few volts is 1e-15."""
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
+@frozen
 class Wire:
     """A two-terminal element from `first` to `second`; `value` in SI."""
 
@@ -35,7 +36,7 @@ class Wire:
         return self.second if net == self.first else self.first
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
+@frozen
 class DraftDevice:
     """A semiconductor with its nets in the order of `Devices.nodes`."""
 
@@ -46,7 +47,7 @@ class DraftDevice:
     rth_kpw: float
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
+@frozen
 class LoosePin:
     """A pin of a part that is not modelled; whether it matters is decided when the board is complete."""
 
@@ -58,7 +59,7 @@ class LoosePin:
     supply: str
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
+@frozen
 class LoosePart:
     """A part that cannot be solved with as a whole: blocks every net of `nets` that has elements.
 
@@ -72,7 +73,7 @@ class LoosePart:
     blocks_dc: bool = True
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
+@frozen
 class DraftPort:
     """A port with its elements by name ("" where there is none)."""
 

@@ -4,19 +4,19 @@ from __future__ import annotations
 
 import re
 from collections.abc import Iterable
-from dataclasses import dataclass
 
 from checker.circuit.notes import Notes
 from checker.circuit.order import last_segment, listed, natural
 from checker.intent.types import Intent
 from checker.netlist.types import Netlist
+from checker.shape import frozen
 
 _GROUND = re.compile(r"[ADPSC]?GND(?:[ADPSR]|PWR|REF|ISO|\d{1,2})?(?:[_-]\w{1,10})?|EARTH(?:_\w+)?|0V", re.IGNORECASE)
 _WEAK = re.compile(r"VSS[AD]?", re.IGNORECASE)
 """A ground by name only where no net has a stronger one: beside a GND it may be a negative supply."""
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
+@frozen
 class Ground:
     """`name` stands for all `keys`; `found` False where the board shows no reference (then `keys` is
     empty)."""

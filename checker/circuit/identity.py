@@ -4,7 +4,7 @@ from __future__ import annotations
 
 import re
 from collections.abc import Collection, Mapping
-from dataclasses import dataclass, replace
+from dataclasses import replace
 from typing import Final
 
 from checker.cards.find import find_card, generic_card
@@ -12,6 +12,7 @@ from checker.cards.types import Card, CardKind
 from checker.circuit.draft import Draft
 from checker.circuit.parts import symbol_name
 from checker.netlist.types import Model, Part
+from checker.shape import frozen
 from checker.trouble import InputTrouble
 
 BIPOLAR: Final[tuple[CardKind, ...]] = ("npn", "pnp")
@@ -40,7 +41,7 @@ _SPECIAL: Final = (
 _PREBIASED: Final = re.compile(r"(?:L?MUN[25]\d|P?DT[ABC]\w?\d|UMD|RN[12]\d{3}|BCR1\d\d)\w*", re.IGNORECASE)
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
+@frozen
 class Identity:
     """`card` gives ratings, and the model where `model` is None; `source` says in words where the model is
     from."""

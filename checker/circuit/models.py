@@ -3,13 +3,13 @@
 from __future__ import annotations
 
 from collections.abc import Mapping
-from dataclasses import dataclass
 
 from checker.circuit import parameters as p
 from checker.constants import DEFAULT_AMBIENT_C, ZERO_CELSIUS_K
+from checker.shape import frozen
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
+@frozen
 class Parameters:
     """A complete set: `values` by SPICE name in SI at `tnom_k` [K]; `unused` names that were written in
     vain."""

@@ -5,7 +5,6 @@ from __future__ import annotations
 
 import re
 from collections.abc import Mapping
-from dataclasses import dataclass
 from typing import Final
 
 from checker.cards.pins import pin_map
@@ -13,6 +12,7 @@ from checker.cards.types import Card
 from checker.circuit.notes import Notes
 from checker.circuit.parts import symbol_name
 from checker.netlist.types import Part
+from checker.shape import frozen
 
 _WORDS: Final = {
     "BASE": "B",
@@ -33,7 +33,7 @@ _ORDER: Final = {"bipolar": "CBE", "diode": "AK"}
 _WANTED: Final = {"bipolar": frozenset("CBE"), "diode": frozenset("AK")}
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
+@frozen
 class Unit:
     """One device of a part: `suffix` "" or ".A", ".B"...; `nets` by terminal letter."""
 

@@ -8,7 +8,7 @@ and numbering.
 from __future__ import annotations
 
 from collections.abc import Mapping
-from dataclasses import dataclass, field
+from dataclasses import field
 from typing import Literal
 
 import numpy as np
@@ -16,6 +16,7 @@ from numpy.typing import NDArray
 
 from checker.cards.types import Card, Ratings
 from checker.quantity.value import Origin, Value
+from checker.shape import frozen
 from checker.words import PortRole
 
 FloatArray = NDArray[np.float64]
@@ -36,7 +37,7 @@ PartKind = Literal[
 Property = Literal["r_ohm", "c_f", "l_h", "v_v", "i_a", "bf", "factor"]
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
+@frozen
 class Branches:
     """Two-terminal linear elements of one kind.
 
@@ -49,7 +50,7 @@ class Branches:
     value: FloatArray
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
+@frozen
 class Couplings:
     """Coupled inductor pairs: `pair` int64 (n, 2) into the inductor table; `k` float64 (S, n), -1..1."""
 
@@ -58,7 +59,7 @@ class Couplings:
     k: FloatArray
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
+@frozen
 class Devices:
     """Semiconductors of one kind with their external terminals.
 
@@ -75,7 +76,7 @@ class Devices:
     rth_kpw: FloatArray
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
+@frozen
 class Rail:
     """A net of known voltage. `source`: "intent", "element" or "net name"; `element` index into `voltages`."""
 
@@ -87,7 +88,7 @@ class Rail:
     may_be_absent: bool = False
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
+@frozen
 class Port:
     """Where signal enters or leaves.
 
@@ -111,7 +112,7 @@ class Port:
     part: str = ""
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
+@frozen
 class PartFact:
     """What is known of one part: kind, terminals by name -> net, value, card, ratings, where it stands."""
 
@@ -128,7 +129,7 @@ class PartFact:
     footprint: str = ""
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
+@frozen
 class Unknown:
     """A part that cannot be solved with: `datum` names what is missing, `supply` what would help.
 
@@ -144,7 +145,7 @@ class Unknown:
     blocks_dc: bool
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
+@frozen
 class Change:
     """One altered element: `value` in the property's unit, or a multiplier where `property` is "factor"."""
 
@@ -153,7 +154,7 @@ class Change:
     value: float
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
+@frozen
 class Scenario:
     """A named set of changes; `temperature_k` None keeps the nominal. `kind` groups them for reports."""
 
@@ -163,7 +164,7 @@ class Scenario:
     temperature_k: float | None = None
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
+@frozen
 class Circuit:
     """Everything a solve needs. S scenarios, n nodes; `nets[0]` is ground."""
 

@@ -3,7 +3,6 @@
 from __future__ import annotations
 
 from collections.abc import Sequence
-from dataclasses import dataclass
 from pathlib import Path
 
 from checker.cli.complain import complain
@@ -11,11 +10,12 @@ from checker.cli.status import UNUSABLE
 from checker.cli.verdict import exit_status
 from checker.record import Report
 from checker.report.forms import form
+from checker.shape import frozen
 from checker.trouble import InputTrouble
 from checker.words import Gate
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
+@frozen
 class Batch:
     """The reports in the order asked for, and path and message of each netlist that gave none."""
 

@@ -16,7 +16,6 @@ Antognetti and Massobrio, *Semiconductor Device Modeling with SPICE*, chapter 2 
 from __future__ import annotations
 
 from collections.abc import Mapping
-from dataclasses import dataclass
 
 import numpy as np
 from numpy.typing import NDArray
@@ -32,6 +31,7 @@ from checker.devices.junction import (
     saturation_ratio,
     thermal_v,
 )
+from checker.shape import frozen
 
 FloatArray = NDArray[np.float64]
 TERMINALS = 7
@@ -41,7 +41,7 @@ SMALL_Z = 0.01
 """Below this z of base crowding its series is exact to 1e-9 and the closed form loses 1e-11."""
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
+@frozen
 class Core:
     """Inner currents at (vbe, vbc) and their derivatives, each float64 (S, n); `ic`, `ib` [A], the rest [S];
     `qb` and its derivatives [1/V]; forward transport current `i_f` [A] and `g_f` [S], reverse `g_r` [S]."""

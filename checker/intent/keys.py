@@ -6,13 +6,14 @@
 from __future__ import annotations
 
 from collections.abc import Mapping
-from dataclasses import dataclass
 from typing import Final, Literal
+
+from checker.shape import frozen
 
 Kind = Literal["text", "texts", "amount", "fraction", "flag", "level", "role", "day", "band", "map", "bound"]
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
+@frozen
 class Key:
     """One key of a section. `unit` is that of a bare number and of the value read."""
 

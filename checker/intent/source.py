@@ -8,10 +8,10 @@ from __future__ import annotations
 
 import re
 from collections.abc import Mapping
-from dataclasses import dataclass
 from pathlib import Path
 from typing import Any, Final
 
+from checker.shape import frozen
 from checker.trouble import InputTrouble
 
 MAX_BYTES: Final = 1_000_000
@@ -34,7 +34,7 @@ _TOO_DOTTED: Final = re.compile(rf"(?<![A-Za-z0-9_-])(?:{_SHORT}[ \t]*\.[ \t]*){
 _LONG_TEXT: Final = re.compile(r'"""|\'\'\'')
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
+@frozen
 class Source:
     """A parsed file: `data` as TOML gives it, `lines` (1-based) by key path."""
 

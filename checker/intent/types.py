@@ -4,13 +4,14 @@ from __future__ import annotations
 
 import datetime
 from collections.abc import Mapping
-from dataclasses import dataclass, field
+from dataclasses import field
 
 from checker.quantity.value import Origin
+from checker.shape import frozen
 from checker.words import PortRole
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
+@frozen
 class Band:
     """Lowest and highest frequency [Hz]; `low_hz` may be 0."""
 
@@ -18,7 +19,7 @@ class Band:
     high_hz: float
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
+@frozen
 class Ambient:
     """Temperatures [degC]; None where not said."""
 
@@ -27,7 +28,7 @@ class Ambient:
     max_c: float | None = None
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
+@frozen
 class RailIntent:
     """A declared supply: `tolerance` is a fraction."""
 
@@ -38,7 +39,7 @@ class RailIntent:
     may_be_absent: bool = False
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
+@frozen
 class PortIntent:
     """A declared port: by `net`, or by `part` and `pin`.
 
@@ -58,7 +59,7 @@ class PortIntent:
     band: Band | None = None
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
+@frozen
 class StateIntent:
     """A named condition of the board: pins ("U1.7") at "high", "low", "open" or volts; rails absent."""
 
@@ -68,7 +69,7 @@ class StateIntent:
     absent: tuple[str, ...] = ()
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
+@frozen
 class TargetIntent:
     """A wanted figure: of a stage, a group, or between two ports. Bounds in the unit of `quantity`'s key."""
 
@@ -82,7 +83,7 @@ class TargetIntent:
     maximum: float | None = None
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
+@frozen
 class PartIntent:
     """What the engineer says of one part: a card by name, ratings (`v_max_v`, `i_max_a`, `p_max_w`,
     `tj_max_c`, `rth_ja_kpw`), tolerance, or a two-terminal model (`resistance_ohm`, `inductance_h`,
@@ -98,7 +99,7 @@ class PartIntent:
     capacitance_f: float | None = None
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
+@frozen
 class AcceptedIntent:
     """A finding the team lives with: by rule and subject, or by fingerprint; until a day, inclusive."""
 
@@ -111,7 +112,7 @@ class AcceptedIntent:
     until: datetime.date | None = None
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
+@frozen
 class Intent:
     """The whole file; `path` empty where there is none.
 

@@ -5,14 +5,14 @@ tried.
 from __future__ import annotations
 
 from collections.abc import Iterator
-from dataclasses import dataclass
 from typing import Any
 
 from checker.rulekit import Applies, Board, TargetIntent
+from checker.shape import frozen
 from checker.stages.types import Stage
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
+@frozen
 class Subject:
     """`item` is what `judge` gets; `name` as the report calls it; `stages` those it concerns."""
 

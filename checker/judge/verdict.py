@@ -3,7 +3,6 @@
 from __future__ import annotations
 
 from collections.abc import Mapping
-from dataclasses import dataclass
 from typing import Any
 
 import numpy as np
@@ -11,6 +10,7 @@ from numpy.typing import NDArray
 
 from checker.circuit.types import Scenario
 from checker.rulekit import Bound, Evidence, Rule
+from checker.shape import frozen
 from checker.words import Outcome, Severity
 
 AnyRule = Rule[Any]
@@ -18,7 +18,7 @@ Limits = Mapping[str, Mapping[str, Bound]]
 """Rule id -> limit name -> the bound in force."""
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
+@frozen
 class Verdict:
     """One fault: `failed` bool (S,) over the board's scenarios; `worst` the scenario that the outcome rests
     on.
@@ -38,7 +38,7 @@ class Verdict:
     failed: NDArray[np.bool_]
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
+@frozen
 class Open:
     """A rule that could not be judged on one subject: what is missing, and what to supply."""
 
@@ -48,7 +48,7 @@ class Open:
     supply: str
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
+@frozen
 class Failure:
     """A rule that broke down: a fault of the program, never of the board."""
 
@@ -60,7 +60,7 @@ class Failure:
         return f"rule {self.rule} failed on {self.subject}: {self.what}"
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
+@frozen
 class Judged:
     """One piece of evidence with its rule, whether a fault or not: what a remedy compares against."""
 
@@ -69,7 +69,7 @@ class Judged:
     stages: tuple[str, ...]
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
+@frozen
 class Examination:
     """Everything that the rules had to say of one board over its scenarios."""
 

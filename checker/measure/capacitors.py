@@ -2,7 +2,6 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
 from typing import Literal
 
 import numpy as np
@@ -13,10 +12,11 @@ from checker.measure.links import Outer, drive_of, outer_of, terminal_net
 from checker.measure.make import figure, missing
 from checker.measure.registry import quantity
 from checker.quantity.figure import Figure
+from checker.shape import frozen
 from checker.solve.response import Response
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
+@frozen
 class CapacitorUse:
     """A capacitor that the signal needs: in its way (`coupling`) or holding a terminal (`bypass`) of a stage."""
 

@@ -5,13 +5,12 @@ An `Outer` is anything with an entry, an exit and links: a stage or a group.
 
 from __future__ import annotations
 
-from dataclasses import dataclass
-
 import numpy as np
 from numpy.typing import NDArray
 
 from checker.circuit.types import Circuit, Port
 from checker.measure.bench import Bench
+from checker.shape import frozen
 from checker.solve.response import Drive, Response, port_drive
 from checker.stages.direction import TERMINALS
 from checker.stages.types import Link
@@ -20,7 +19,7 @@ from checker.words import Terminal
 ComplexArray = NDArray[np.complex128]
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
+@frozen
 class Outer:
     """The outside of a stage or group. `entry`, `exit`: (device, terminal); `devices`: its members."""
 

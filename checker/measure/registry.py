@@ -3,17 +3,17 @@
 from __future__ import annotations
 
 from collections.abc import Callable
-from dataclasses import dataclass
 from typing import Literal
 
 from checker.measure.bench import Bench
 from checker.quantity.figure import Figure
+from checker.shape import frozen
 
 Subject = Literal["stage", "group", "port", "part", "gain"]
 Measure = Callable[[Bench, str], Figure]
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
+@frozen
 class Quantity:
     """A named question: `unit` of the answer, what it is asked of, one line of meaning, and how it is answered."""
 

@@ -2,8 +2,6 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
-
 import numpy as np
 
 from checker.measure.bench import Bench
@@ -22,6 +20,7 @@ from checker.measure.make import figure, first, missing
 from checker.measure.registry import quantity
 from checker.measure.small_signal import r_e, r_pi
 from checker.quantity.figure import Figure
+from checker.shape import frozen
 from checker.solve.response import Response
 
 MIDDLE = 1
@@ -74,7 +73,7 @@ def terminal_output(bench: Bench, stage: str) -> Figure:
     )
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
+@frozen
 class Around:
     """What stands around a device at f0, nominal, in ohm, with the device out: at the `emitter`, at the `base` (upstream
     source in place), at the base with the input link open too (`base_alone`), at the exit in place (`exit_loaded`) and

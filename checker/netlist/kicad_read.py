@@ -9,13 +9,14 @@ from __future__ import annotations
 import re
 from collections import Counter, defaultdict
 from collections.abc import Mapping
-from dataclasses import dataclass, replace
+from dataclasses import replace
 
 from checker.netlist.fitting import is_left_out
 from checker.netlist.limits import ReadLimits, over
 from checker.netlist.sexpr import Parsed, Tree, child, children, own_text, parse, text_of
 from checker.netlist.types import Net, Netlist, Part, Pin, Remark
 from checker.quantity.value import Origin
+from checker.shape import frozen
 from checker.trouble import InputTrouble
 
 _VERSIONS = ("D", "E")
@@ -27,7 +28,7 @@ _PinTable = Mapping[tuple[str, str], Mapping[str, tuple[str, str]]]
 """(library, part) to pin number to (name, type)."""
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
+@frozen
 class _Nodes:
     nets: dict[str, Net]
     pins: dict[str, list[Pin]]

@@ -2,13 +2,13 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
 from typing import NoReturn
 
+from checker.shape import frozen
 from checker.trouble import InputTrouble
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
+@frozen
 class ReadLimits:
     """`bytes` read in all, includes counted each time; `parts` as written; `depth` of nesting (brackets,
     includes, subcircuits, expressions); `expanded` parts after subcircuits; `steps` of one expression. Far

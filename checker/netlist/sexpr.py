@@ -9,11 +9,11 @@ from __future__ import annotations
 
 import re
 from bisect import bisect_right
-from dataclasses import dataclass
 
 import sexpdata
 
 from checker.netlist.limits import over
+from checker.shape import frozen
 from checker.trouble import InputTrouble
 
 Tree = list["Tree | str"]
@@ -23,7 +23,7 @@ _TOKEN = re.compile(r'"[^"\\]*+(?:\\.[^"\\]*+)*+"|\(\s*(?:comp|net)(?=[\s()])|[(
 _ATOM_END = re.compile(r'[\s()"]')
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
+@frozen
 class Parsed:
     """`root`: the outermost list. `lines`: by tag (`comp`, `net`), the line of each such list of the third
     level, in the order of the file."""

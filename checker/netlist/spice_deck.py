@@ -9,9 +9,10 @@ from checker.netlist.spice_lines import Card
 from checker.netlist.spice_names import references
 from checker.netlist.spice_words import Words, split_words
 from checker.netlist.types import Remark
+from checker.shape import frozen
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
+@frozen
 class Element:
     """One element card: `name` as written, `ref` as an engineer says it, `letter` upper case."""
 

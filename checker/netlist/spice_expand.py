@@ -4,7 +4,7 @@ expanded."""
 from __future__ import annotations
 
 from collections.abc import Iterator
-from dataclasses import dataclass, replace
+from dataclasses import replace
 
 from checker.netlist.limits import ReadLimits, over
 from checker.netlist.spice_deck import Deck, Definition, Element
@@ -15,13 +15,14 @@ from checker.netlist.spice_parts import part_of
 from checker.netlist.spice_scope import Scope
 from checker.netlist.types import Model, Net, Part, Remark
 from checker.quantity.value import Origin
+from checker.shape import frozen
 from checker.trouble import NotAQuantity
 
 GROUND = "0"
 _GROUND_NAMES = frozenset({"0", "gnd", "gnd!"})
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
+@frozen
 class Frame:
     """One instance of a definition. `ports`: lower-case port name to net key. `outer`: the frame whose
     definition holds this one's, where models and subcircuits that are not found here are looked for."""

@@ -3,13 +3,13 @@ caller."""
 
 from __future__ import annotations
 
-from dataclasses import dataclass
 from pathlib import Path
 
 from checker.netlist.text import display_name
+from checker.shape import frozen
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
+@frozen
 class Found:
     """`real`: the resolved file. `shown`: its name for origins, relative as the netlist's own name is."""
 

@@ -7,17 +7,17 @@ A `+` line continues the last card, also across blank and comment lines. Comment
 from __future__ import annotations
 
 import re
-from dataclasses import dataclass
 
 from checker.netlist.types import Remark
 from checker.quantity.value import Origin
+from checker.shape import frozen
 
 _COMMENT = re.compile(r"\"[^\"]*\"|(;|(?<!\S)\$(?=\s|$)|(?<!\S)//)")
 _PATH_COMMENT = re.compile(r"\"[^\"]*\"|(;|(?<!\S)\$(?=\s|$))")
 _PATH_CARD = re.compile(r"\s*\.(inc|lib)", re.IGNORECASE)
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
+@frozen
 class Card:
     """One logical line: `text` without comments; `file` and `line` where it begins."""
 

@@ -3,7 +3,8 @@
 from __future__ import annotations
 
 import re
-from dataclasses import dataclass
+
+from checker.shape import frozen
 
 _PIECE = re.compile(
     r"\{[^{}]*\}|'[^']*'|\"[^\"]*\"|[=(),]"
@@ -21,7 +22,7 @@ _NAME = re.compile(r"[A-Za-z_][\w.]*")
 _ASSIGNMENT = re.compile(r"\{[^{}]*\}|'[^']*'|\"[^\"]*\"|(?<![\w.])([A-Za-z_][\w.]*)\s*=(?!=)")
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
+@frozen
 class Words:
     """`positional` in order; `named` by lower-case name, each as written (braces kept); `groups` the words
     that follow the first in a `name=a,b` pair."""

@@ -3,13 +3,14 @@
 from __future__ import annotations
 
 from collections.abc import Mapping
-from dataclasses import dataclass, field
+from dataclasses import field
 
 from checker.quantity.value import Origin
+from checker.shape import frozen
 from checker.words import Format
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
+@frozen
 class Pin:
     """One pin of a part. `number` as exported ("1", "A1"; SPICE text: position from 1); `function` and `kind`
     (electrical type) only where the export carries them; `net` is a key of `Netlist.nets`."""
@@ -20,7 +21,7 @@ class Pin:
     kind: str = ""
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
+@frozen
 class Source:
     """What an independent V or I element, or a value field of that form, says.
 
@@ -37,7 +38,7 @@ class Source:
     rest: float | None = None
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
+@frozen
 class Part:
     """One element of the netlist.
 
@@ -67,7 +68,7 @@ class Part:
     unknown: str = ""
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
+@frozen
 class Net:
     """`key` is unique (KiCad: the name, made unique by code where repeated or empty); `name` as exported."""
 
@@ -75,7 +76,7 @@ class Net:
     name: str
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
+@frozen
 class Model:
     """A `.model` card: `kind` lower case (`npn`, `pnp`, `d`, `njf`, ...); numeric parameters, keys lower case."""
 
@@ -85,7 +86,7 @@ class Model:
     origin: Origin
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
+@frozen
 class Remark:
     """Something the reader saw and could not use, or passed over on purpose; `parts` it may touch."""
 
@@ -94,7 +95,7 @@ class Remark:
     parts: tuple[str, ...] = ()
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
+@frozen
 class Netlist:
     """A whole board as read. `models` is keyed by lower-case name. `ground`: the keys that the format itself
     fixes as the reference (SPICE text: net `0`); KiCad exports fix none."""

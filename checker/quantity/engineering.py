@@ -8,14 +8,14 @@ from __future__ import annotations
 
 import math
 import re
-from dataclasses import dataclass
 
 from checker.quantity.codes import tolerance_of_letter
 from checker.quantity.prefixes import EXPONENTS, plain, spellings
+from checker.shape import frozen
 from checker.trouble import NotAQuantity
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
+@frozen
 class Reading:
     """A value read from text. `si` in the unit asked for; `tolerance` a fraction (the wider side of an
     unequal one) or None; `rating_v` the voltage rating [V] or None; `text` as written."""

@@ -2,16 +2,18 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass, field
+from dataclasses import field
 
 import numpy as np
 from numpy.typing import NDArray
+
+from checker.shape import frozen
 
 FloatArray = NDArray[np.float64]
 ComplexArray = NDArray[np.complex128]
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
+@frozen
 class Working:
     """How a figure was got: formula in textbook symbols, the numbers put in, the source or method."""
 
@@ -20,7 +22,7 @@ class Working:
     source: str = ""
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
+@frozen
 class Figure:
     """`values`: float64 or complex128, (S, F); axis 0 is the scenario (0 nominal), axis 1 is `f_hz`.
 

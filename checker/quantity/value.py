@@ -2,12 +2,11 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
-
+from checker.shape import frozen
 from checker.words import OriginKind
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
+@frozen
 class Origin:
     """Where a datum stands: file (relative, forward slashes), line (1-based, 0 unknown), sheet path."""
 
@@ -18,7 +17,7 @@ class Origin:
     note: str = ""
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
+@frozen
 class Value:
     """One quantity in SI. `tolerance` is a fraction (0.01 is 1 %), None where nothing says."""
 

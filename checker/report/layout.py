@@ -4,7 +4,8 @@ from __future__ import annotations
 
 import unicodedata
 from collections.abc import Iterable, Sequence
-from dataclasses import dataclass
+
+from checker.shape import frozen
 
 CODES = {"must-fix": "1;31", "review": "1;33", "note": "1;36", "good": "1;32", "bold": "1", "dim": "2"}
 """Style to ANSI parameter; 8-colour codes, so that the terminal's own palette decides."""
@@ -14,7 +15,7 @@ WRAPPED = 16
 """Columns that a wrapped last column gets at least."""
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
+@frozen
 class Page:
     """How wide a line may be [characters], and whether styles are painted."""
 

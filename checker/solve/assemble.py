@@ -7,13 +7,13 @@ sum of currents *leaving* each unknown node through its elements, then one volta
 from __future__ import annotations
 
 from collections.abc import Callable, Mapping
-from dataclasses import dataclass
 
 import numpy as np
 from numpy.typing import NDArray
 
 from checker.circuit.types import Circuit
 from checker.devices import bipolar, diode
+from checker.shape import frozen
 from checker.solve.counters import COUNTERS
 from checker.solve.plan import Plan
 
@@ -47,7 +47,7 @@ class Scatter:
         return out
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
+@frozen
 class Junctions:
     """Junction voltages at which devices are linearised: bipolar (S, n, 2), diode (S, n, 1)."""
 

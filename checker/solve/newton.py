@@ -8,7 +8,6 @@ ground; then steps of all sources together. No helper is left in when convergenc
 from __future__ import annotations
 
 from collections.abc import Callable
-from dataclasses import dataclass
 
 import numpy as np
 from numpy.typing import NDArray
@@ -25,6 +24,7 @@ from checker.constants import (
     STEP_ABS_V,
     STEP_REL,
 )
+from checker.shape import frozen
 from checker.solve.assemble import Assembler, Junctions
 from checker.solve.counters import COUNTERS
 
@@ -32,7 +32,7 @@ FloatArray = NDArray[np.float64]
 BoolArray = NDArray[np.bool_]
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
+@frozen
 class Solved:
     """`x` (S, U); `done` (S, islands): converged without helpers; `step` (S, islands) [V]: the last full undamped
     correction; `kcl` (S, islands): worst current balance; `condition` and `sign` (S, islands): of the Jacobian."""
@@ -161,7 +161,7 @@ def _unlimited(assembler: Assembler, wanted: Junctions, held: Junctions, before:
     return ok
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
+@frozen
 class _Helper:
     """A one-parameter family of easier problems: `gmin(t)` [S] and `scale(t)` of all sources, t from 0 to 1."""
 

@@ -3,7 +3,6 @@
 from __future__ import annotations
 
 from collections.abc import Mapping
-from dataclasses import dataclass
 
 import numpy as np
 from numpy.typing import NDArray
@@ -11,6 +10,7 @@ from numpy.typing import NDArray
 from checker.circuit.types import Circuit
 from checker.constants import KCL_REL
 from checker.devices import bipolar, diode
+from checker.shape import frozen
 from checker.solve.assemble import Assembler
 from checker.solve.newton import Solved, solve
 from checker.solve.plan import Plan, make_plan
@@ -19,7 +19,7 @@ FloatArray = NDArray[np.float64]
 BoolArray = NDArray[np.bool_]
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
+@frozen
 class Island:
     """One DC island. Arrays (S,): `ok`, `kcl`, `step_v`, `condition`, `sign`. `reason` where it was not solved
     at all; `nets` without inner nodes; `states` found, `exhaustive` whether more are ruled out."""
@@ -35,7 +35,7 @@ class Island:
     exhaustive: bool = False
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
+@frozen
 class OperatingPoint:
     """`v_v` float64 (S, n_nodes) [V] over nets then inner nodes, nan where not certified.
 

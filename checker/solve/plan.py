@@ -8,18 +8,18 @@ island by island, islands of one size side by side, so that equal sizes form one
 from __future__ import annotations
 
 from collections.abc import Iterator
-from dataclasses import dataclass
 
 import numpy as np
 from numpy.typing import NDArray
 
 from checker.circuit.types import Circuit, Devices
 from checker.devices import bipolar, diode
+from checker.shape import frozen
 
 IntArray = NDArray[np.int64]
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
+@frozen
 class Placed:
     """A device table with inner nodes: `nodes` int64 (n, k) into the extended node list (nets, then inner nodes)."""
 
@@ -27,7 +27,7 @@ class Placed:
     nodes: IntArray
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
+@frozen
 class Tree:
     """How a known node's voltage follows: v[node] = v[parent] + sign * voltages.value[:, source]; in order."""
 
@@ -37,7 +37,7 @@ class Tree:
     sign: float
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
+@frozen
 class IslandPlan:
     """One island: extended node indices, branch rows, and why it cannot be solved (empty if it can)."""
 
@@ -52,7 +52,7 @@ class IslandPlan:
         return len(self.nodes) + len(self.voltages) + len(self.inductors)
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
+@frozen
 class Plan:
     """All of it. `n_nodes` counts nets and inner nodes; `unknown` int64 (n_nodes,) gives each node's place in the
     unknown vector, -1 where known or not solved; `groups` = (first unknown, number of islands, size)."""

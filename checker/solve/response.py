@@ -9,13 +9,14 @@ Unknowns: voltages of nets that no ideal source fixes, then branch currents of f
 from __future__ import annotations
 
 from collections.abc import Sequence
-from dataclasses import dataclass, replace
+from dataclasses import replace
 
 import numpy as np
 from numpy.typing import NDArray
 
 from checker.circuit.types import Branches, Circuit, Port
 from checker.devices import bipolar
+from checker.shape import frozen
 from checker.solve.admittance import device_pencils, outer_admittance, transconductance
 from checker.solve.counters import COUNTERS
 from checker.solve.operating import OperatingPoint
@@ -29,7 +30,7 @@ SHORT_FACTOR = 1e7
 """A shorted part gets this many times the admittance its nodes present: 1e-7 from ideal, and 1e-9 in arithmetic."""
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
+@frozen
 class Drive:
     """Unit excitation: 1 V on `source` (index into `voltages`), or 1 A into `node` out of ground."""
 
@@ -37,7 +38,7 @@ class Drive:
     node: int = -1
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
+@frozen
 class Block:
     """Element admittances between a few nodes: `nodes` (k,), `y` complex128 (S, F, k, k)."""
 
@@ -45,7 +46,7 @@ class Block:
     y: ComplexArray
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
+@frozen
 class Response:
     """`z` complex128 (S, F, u, u): inverse of the system matrix; `y_known` (S, F, u, n_net): coupling from nets.
 

@@ -6,12 +6,11 @@ net is pinned at one net by 1 S: no current flows there, so differences are unha
 
 from __future__ import annotations
 
-from dataclasses import dataclass
-
 import numpy as np
 from numpy.typing import NDArray
 
 from checker.circuit.types import Branches, Circuit
+from checker.shape import frozen
 from checker.solve.operating import OperatingPoint
 from checker.solve.plan import Sets
 
@@ -20,7 +19,7 @@ ComplexArray = NDArray[np.complex128]
 IntArray = NDArray[np.int64]
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
+@frozen
 class SignalSystem:
     """`row` (n_net,): unknown of a net or -1; `v_row`, `l_row`: of sources and inductors; `islands`: unknowns each;
     `pins`: unknowns that are pinned; `tree`: (node, parent, source, sign) of nets fixed by ideal sources."""

@@ -2,13 +2,12 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
-
 import numpy as np
 from numpy.typing import NDArray
 
 from checker.circuit.changes import with_changes
 from checker.circuit.types import Change, Scenario
+from checker.shape import frozen
 from checker.solve.operating import OperatingPoint, operating_point
 
 FloatArray = NDArray[np.float64]
@@ -17,7 +16,7 @@ CHUNK = 128
 """Scenarios solved at a time: bounds memory on boards of many resistors."""
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
+@frozen
 class Influence:
     """`slope` (n_resistors, n_devices): d ln |IC| / d ln R at the nominal; 0 where there is none."""
 

@@ -8,11 +8,10 @@ alone, then at the emitter alone; the larger effect at the output port.
 
 from __future__ import annotations
 
-from dataclasses import dataclass
-
 import numpy as np
 from numpy.typing import NDArray
 
+from checker.shape import frozen
 from checker.stages.role import Part
 from checker.stages.scene import Path, Scene
 from checker.words import Terminal
@@ -20,7 +19,7 @@ from checker.words import Terminal
 TERMINALS: tuple[Terminal, Terminal, Terminal] = ("collector", "base", "emitter")
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
+@frozen
 class Direction:
     """`entry`, `exit` terminals; `agreement` 0..1 over the frequencies looked at; `margin_db` of the weaker choice."""
 

@@ -8,10 +8,10 @@ use the one whose opening leaves least of it at the output port.
 from __future__ import annotations
 
 from collections.abc import Iterator, Mapping
-from dataclasses import dataclass
 
 import numpy as np
 
+from checker.shape import frozen
 from checker.stages.direction import TERMINALS, Direction
 from checker.stages.scene import Path, Scene
 from checker.stages.types import Link
@@ -21,7 +21,7 @@ CARRIES = 0.5
 """An element carries the signal if opening it leaves less than this part of it."""
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
+@frozen
 class Step:
     """One way off a net: `part` and, for a device, `terminal`; `far` the net at its other end."""
 

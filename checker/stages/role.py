@@ -2,11 +2,10 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
-
 import numpy as np
 from numpy.typing import NDArray
 
+from checker.shape import frozen
 from checker.stages.scene import Path, Scene
 
 SIGNAL_FROM = 0.3
@@ -14,7 +13,7 @@ SIGNAL_FROM = 0.3
 BIAS_BELOW = 0.2
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
+@frozen
 class Part:
     """How much a device takes part: `weight` (F,) the larger of both measures, `path` the path where it is most."""
 

@@ -2,19 +2,18 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
-
 import numpy as np
 from numpy.typing import NDArray
 
 from checker.circuit.types import Circuit, Port
+from checker.shape import frozen
 from checker.solve.operating import OperatingPoint
 from checker.solve.response import Drive, Response, port_drive
 
 ComplexArray = NDArray[np.complex128]
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
+@frozen
 class Path:
     """From an input port to an output port: `h` complex128 (F,), voltage at the output plane for the unit drive."""
 
@@ -25,7 +24,7 @@ class Path:
     h: ComplexArray
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
+@frozen
 class Scene:
     """`response` with S = 1; `paths` sorted by port names; `silent` (n_net,): nets at signal ground."""
 

@@ -2,13 +2,13 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
 from typing import Literal
 
+from checker.shape import frozen
 from checker.words import Configuration, GroupLabel, Role, Terminal
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
+@frozen
 class Link:
     """What carries the signal across a boundary: a part (capacitor, winding) or a device terminal.
 
@@ -24,7 +24,7 @@ class Link:
     terminal: str = ""
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
+@frozen
 class Stage:
     """One device. `entry`, `exit` are device terminals; `input_ref`, `output_ref` nodes; None where it has none.
 
@@ -48,7 +48,7 @@ class Stage:
     evidence: tuple[str, ...] = ()
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
+@frozen
 class Group:
     """Several devices that act as one. Id: device ids joined by "+", sorted."""
 
@@ -64,7 +64,7 @@ class Group:
     evidence: tuple[str, ...] = ()
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
+@frozen
 class Recognition:
     """All stages sorted by id, all groups, and the signal paths (input port, output port) that were followed."""
 

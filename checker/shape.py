@@ -1,0 +1,78 @@
+"""The house's record: a frozen, slotted, keyword-only dataclass that starts up fast.
+
+`@dataclass` writes and compiles `__init__`, `__eq__`, `__repr__`, `__hash__`, `__setattr__` and `__delattr__` anew for
+each class, about a millisecond a class; with a hundred classes that is more than all else of a start. Here they are
+written once, and `@frozen` leaves only fields and slots to `@dataclass`. `fields`, `replace` and `is_dataclass` work as
+ever, and so do static types.
+"""
+
+from __future__ import annotations
+
+from dataclasses import MISSING, Field, FrozenInstanceError, dataclass
+from typing import Any, TypeVar, dataclass_transform
+
+T = TypeVar("T")
+
+_SLOT = object.__setattr__
+
+
+def _init(self: Any, **given: Any) -> None:
+    for name, each in self.__dataclass_fields__.items():
+        if name in given:
+            _SLOT(self, name, given.pop(name))
+        elif each.default is not MISSING:
+            _SLOT(self, name, each.default)
+        elif each.default_factory is not MISSING:
+            _SLOT(self, name, each.default_factory())
+        else:
+            raise TypeError(f"{type(self).__name__} needs {name}")
+    if given:
+        raise TypeError(f"{type(self).__name__} has no field {', '.join(given)}")
+
+
+def _setattr(self: Any, name: str, _value: Any) -> None:
+    raise FrozenInstanceError(f"cannot assign to field {name!r} of {type(self).__name__}")
+
+
+def _delattr(self: Any, name: str) -> None:
+    raise FrozenInstanceError(f"cannot delete field {name!r} of {type(self).__name__}")
+
+
+def _eq(self: Any, other: object) -> Any:
+    if other.__class__ is not self.__class__:
+        return NotImplemented
+    return all(getattr(self, name) == getattr(other, name) for name in self.__dataclass_fields__)
+
+
+def _hash(self: Any) -> int:
+    return hash((type(self), *(getattr(self, name) for name in self.__dataclass_fields__)))
+
+
+def _repr(self: Any) -> str:
+    values = ", ".join(f"{name}={getattr(self, name)!r}" for name in self.__dataclass_fields__)
+    return f"{type(self).__name__}({values})"
+
+
+def _rebuilt(kind: type[Any], given: dict[str, Any]) -> Any:
+    return kind(**given)
+
+
+def _reduce(self: Any) -> tuple[Any, ...]:
+    return _rebuilt, (type(self), {name: getattr(self, name) for name in self.__dataclass_fields__})
+
+
+@dataclass_transform(kw_only_default=True, frozen_default=True, field_specifiers=(Field,))
+def frozen(kind: type[T]) -> type[T]:
+    """Class decorator: the annotated class as a frozen, slotted, keyword-only dataclass.
+
+    Raises TypeError at a call that lacks a field or names one it does not have, as a dataclass would.
+    """
+    made: Any = dataclass(slots=True, kw_only=True, init=False, eq=False, repr=False, match_args=False)(kind)
+    made.__init__ = _init
+    made.__setattr__ = _setattr
+    made.__delattr__ = _delattr
+    made.__eq__ = _eq
+    made.__hash__ = _hash
+    made.__repr__ = _repr
+    made.__reduce__ = _reduce
+    return made  # type: ignore[no-any-return]
