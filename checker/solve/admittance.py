@@ -18,7 +18,13 @@ ComplexArray = NDArray[np.complex128]
 
 
 def device_pencils(point: OperatingPoint) -> tuple[tuple[FloatArray, FloatArray], tuple[FloatArray, FloatArray]]:
-    """(G, C) of all bipolars (S, n, 7, 7) and all diodes (S, n, 3, 3) [S, F]; nan where there is no bias."""
+    """(G, C) of all bipolars (S, n, 7, 7) and all diodes (S, n, 3, 3) [S, F]; nan where there is no bias. Kept."""
+    if "pencils" not in point.kept:
+        point.kept["pencils"] = _pencils(point)
+    return point.kept["pencils"]  # type: ignore[no-any-return]
+
+
+def _pencils(point: OperatingPoint) -> tuple[tuple[FloatArray, FloatArray], tuple[FloatArray, FloatArray]]:
     a, plan = point.assembler, point.plan
     out = []
     for module, placed, p in ((bipolar, plan.bipolars, a.p_bipolar), (diode, plan.diodes, a.p_diode)):

@@ -88,6 +88,16 @@ class Assembler:
                 self._block[rows], self._first[rows], self._size[rows] = offset, first + k * size, size
                 offset += size * size
         self.n_flat = offset
+        sizes = [size for _, count, size in plan.groups for _ in range(count)]
+        self.island_sizes = np.array(sizes, dtype=np.int64)
+        self.by_island = Scatter(self._homes(len(sizes)), len(sizes))
+
+    def _homes(self, count: int) -> IntArray:
+        """The island of each bipolar, then of each diode; -1 where all its nodes are known or not solved."""
+        owner = np.full(self.plan.n_nodes, -1, dtype=np.int64)
+        for index, island in enumerate(self.plan.islands[:count]):
+            owner[list(island.nodes)] = index
+        return np.concatenate([owner[p.nodes].max(axis=1, initial=-1) for p in (self.plan.bipolars, self.plan.diodes)])
 
     def flat(self, row: IntArray, column: IntArray) -> IntArray:
         """Place of (row, column) unknowns in the flat Jacobian; -1 where either is not an unknown."""

@@ -120,8 +120,7 @@ def _solve_stack(a: FloatArray, b: FloatArray) -> FloatArray:
 
 def expand(assembler: Assembler, per_island: BoolArray) -> BoolArray:
     """(S, islands) -> (S, U)."""
-    sizes = [size for _, count, size in assembler.plan.groups for _ in range(count)]
-    return np.repeat(per_island, sizes, axis=1)
+    return np.repeat(per_island, assembler.island_sizes, axis=1)
 
 
 def per_island(assembler: Assembler, values: FloatArray) -> FloatArray:
@@ -141,24 +140,14 @@ def _still(assembler: Assembler, x: FloatArray, dx: FloatArray) -> BoolArray:
 
 def _unlimited(assembler: Assembler, wanted: Junctions, held: Junctions, before: Junctions) -> BoolArray:
     """Islands none of whose junctions was held back, or still moves after the linearisation."""
-    plan = assembler.plan
-    count = sum(g[1] for g in plan.groups)
-    ok = np.ones((assembler.scenarios, count), dtype=bool)
-    owner = np.full(plan.n_nodes, -1, dtype=np.int64)
-    for index, island in enumerate(plan.islands[:count]):
-        owner[list(island.nodes)] = index
-    for placed, new, kept, old in (
-        (plan.bipolars, wanted.bipolar, held.bipolar, before.bipolar),
-        (plan.diodes, wanted.diode, held.diode, before.diode),
+    moved = []
+    for new, kept, old in (
+        (wanted.bipolar, held.bipolar, before.bipolar),
+        (wanted.diode, held.diode, before.diode),
     ):
-        if not len(placed.nodes):
-            continue
-        moved = np.max(np.abs(new - kept), axis=-1) > 0.0
-        moved |= np.max(np.abs(new - old) / (1e-7 + 1e-7 * np.abs(new)), axis=-1) > 1.0
-        home = owner[placed.nodes].max(axis=1)
-        for island in np.unique(home[home >= 0]):
-            ok[:, island] &= ~moved[:, home == island].any(axis=1)
-    return ok
+        far = (new != kept) | (np.abs(new - old) > 1e-7 + 1e-7 * np.abs(new))
+        moved.append(far.any(axis=-1).astype(float))
+    return assembler.by_island.largest(np.concatenate(moved, axis=1)) == 0.0
 
 
 @frozen

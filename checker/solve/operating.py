@@ -3,6 +3,8 @@
 from __future__ import annotations
 
 from collections.abc import Mapping
+from dataclasses import field
+from typing import Any
 
 import numpy as np
 from numpy.typing import NDArray
@@ -40,7 +42,8 @@ class OperatingPoint:
     """`v_v` float64 (S, n_nodes) [V] over nets then inner nodes, nan where not certified.
 
     `bipolar`: ic_a, ib_a, ie_a (into the terminal, signs as they flow), vbe_v, vce_v, vbc_v at the outer terminals
-    times the polarity, power_w; each (S, n). `diode`: i_a, v_v, power_w. `device_k`: temperatures used.
+    times the polarity, power_w; each (S, n). `diode`: i_a, v_v, power_w. `bipolar_k`, `diode_k`: temperatures used.
+    `kept`: what later steps derive from the point once (pencils, numbering).
     """
 
     circuit: Circuit
@@ -53,6 +56,7 @@ class OperatingPoint:
     diode: Mapping[str, FloatArray]
     bipolar_k: FloatArray
     diode_k: FloatArray
+    kept: dict[str, Any] = field(default_factory=dict)
 
     def reason(self, net: str) -> str:
         """Why a net has no certified voltage; empty where it has one in scenario 0."""

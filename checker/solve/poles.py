@@ -72,8 +72,7 @@ def _pencil(point: OperatingPoint, without: str) -> tuple[FloatArray, FloatArray
                 np.add.at(g, np.ix_(nodes, nodes), dg[0, j])
                 np.add.at(cap, np.ix_(nodes, nodes), dc[0, j])
     _branches(point, floating, g, cap, n)
-    fixed = np.flatnonzero(plan.is_known)
-    free = np.setdiff1d(np.arange(size), fixed)
+    free = np.flatnonzero(~np.concatenate([plan.is_known, np.zeros(size - n, dtype=bool)]))
     return g[np.ix_(free, free)], cap[np.ix_(free, free)]
 
 

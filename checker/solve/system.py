@@ -125,7 +125,13 @@ def _inverse(a: ComplexArray) -> ComplexArray:
 
 
 def signal_system(point: OperatingPoint) -> SignalSystem:
-    """Number the small-signal unknowns of a circuit."""
+    """Number the small-signal unknowns of a circuit; kept with the point."""
+    if "signal system" not in point.kept:
+        point.kept["signal system"] = _numbered(point)
+    return point.kept["signal system"]  # type: ignore[no-any-return]
+
+
+def _numbered(point: OperatingPoint) -> SignalSystem:
     c, plan = point.circuit, point.plan
     n = len(c.nets)
     known = plan.is_known[:n]

@@ -62,7 +62,7 @@ def recognise(
 
 
 def _carries(part: Part) -> bool:
-    return float(np.median(part.weight)) >= SIGNAL_FROM
+    return part.typical >= SIGNAL_FROM
 
 
 def _regions(point: OperatingPoint) -> dict[str, Region | None]:
@@ -114,7 +114,7 @@ def _splits(scene: Scene, name: str, part: Part) -> bool:
 def _confidence(part: Part, way: Direction) -> float:
     """Agreement over the frequencies, lowered where a choice was close or the participation middling."""
     margin = min(1.0, min(way.entry_margin_db, way.exit_margin_db) / 10.0)
-    weight = min(1.0, float(np.median(part.weight)) / SIGNAL_FROM - 0.2)
+    weight = min(1.0, part.typical / SIGNAL_FROM - 0.2)
     return round(float(way.agreement * (0.5 + 0.5 * margin) * max(0.3, weight)), 2)
 
 
@@ -139,7 +139,7 @@ def _quiet_stage(
         confidence = 0.95 if len(seen) > 1 else 0.6
         return replace(base, configuration="switch", role=switch[0], confidence=confidence, evidence=switch[1])
     label, why = bias_label(scene, name, region)
-    weight = float(np.median(part.weight)) if part is not None else 0.0
+    weight = part.typical if part is not None else 0.0
     confidence = 0.9 if weight < BIAS_BELOW else 0.5
     evidence = (why,) if part is None else (why, f"participation in the signal paths {weight:.2f}")
     reason = why if label == "unclassified" else ""

@@ -20,6 +20,11 @@ class Part:
     weight: NDArray[np.float64]
     path: Path
 
+    @property
+    def typical(self) -> float:
+        """The middle one of the weights (an odd number of frequencies)."""
+        return float(np.sort(self.weight)[len(self.weight) // 2])
+
 
 def participation(scene: Scene, device: str) -> Part | None:
     """The strongest path of a device; None where no path exists or none could be computed."""
