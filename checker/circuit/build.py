@@ -36,6 +36,7 @@ from checker.circuit.others import (
 from checker.circuit.parts import Kind, classify
 from checker.circuit.ports import add_ports
 from checker.circuit.rails import add_rails
+from checker.circuit.supplies import find_unsupplied
 from checker.circuit.types import Circuit
 from checker.circuit.values import written_value
 from checker.constants import DEFAULT_AMBIENT_C, ZERO_CELSIUS_K
@@ -96,9 +97,11 @@ def build_circuit(netlist: Netlist, intent: Intent) -> Circuit:
     add_rails(draft)
     add_ports(draft)
     add_drives(draft)
-    settle(draft)
-    if not ground.found:
+    if ground.found:
+        find_unsupplied(draft)
+    else:
         _no_ground(draft)
+    settle(draft)
     return assemble(draft, _temperature_k(netlist, intent))
 
 

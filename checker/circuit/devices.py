@@ -180,11 +180,12 @@ def _place(
         rth_kpw=math.nan if ratings.rth_ja_kpw is None else ratings.rth_ja_kpw,
     )
     draft.place(kind, name, device)
+    used = set(device.nets)
     gain_min, gain_max = _gain(draft, name, known, parameters.values)
     draft.facts[name] = PartFact(
         ref=name,
         kind="bipolar" if known.kind in BIPOLAR else "diode",
-        terminals={letter: draft.net(net) for letter, net in unit.nets.items()},
+        terminals={letter: draft.net(net) for letter, net in unit.nets.items() if draft.net(net) in used},
         origin=part.origin,
         card=known.card,
         model_source=known.source,

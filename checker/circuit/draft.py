@@ -127,10 +127,13 @@ class Draft:
     """Nets that are supplies by name, of unknown voltage."""
     ports: list[DraftPort] = field(default_factory=list)
     driven: dict[str, str] = field(default_factory=dict)
-    """Pin named by a state ("U1.7") -> net."""
+    """Pin as a state names it ("U1.7", "U1.OUT") -> net."""
+    driven_pins: set[tuple[str, str]] = field(default_factory=set)
+    """The same pins as (part, number)."""
     lines: dict[str, float | None] = field(default_factory=dict)
     """Net at an end of a lossless line -> its characteristic impedance [ohm]."""
     coaxial_parts: list[Part] = field(default_factory=list)
+    plain_connectors: list[Part] = field(default_factory=list)
     ends: dict[str, list[tuple[Table, str]]] = field(default_factory=dict)
     device_ends: Counter[str] = field(default_factory=Counter)
     touches: Counter[str] = field(default_factory=Counter)
@@ -154,7 +157,7 @@ class Draft:
         """Add an ideal source first - second = `volts` [V]; False where the nets are tied already.
 
         A second source that agrees with the first would leave their shares of current undetermined: it is
-        left out; one that disagrees blocks its nets.
+        left out; one that disagrees is left out too and listed as a datum that is missing.
         """
         a, b = self.net(first), self.net(second)
         standing = 0.0 if a == b else self.ties.difference(a, b)

@@ -42,8 +42,10 @@ def add_drives(draft: Draft) -> None:
             ref, pin = split_label(label)
             _, found = find_pin(draft, ref, pin, state.origin, what)
             draft.driven[label] = draft.net(found.net)
+            draft.driven_pins.add((ref, found.number))
         for net in state.absent:
             find_net(draft, net, state.origin, what)
+            draft.notes.add("states", "an absent rail is taken as 0 V from its own source, not as open")
     attached = {port.net for port in draft.ports if port.emf.startswith("port:")}
     for label in natural(draft.driven):
         _add_drive(draft, label, draft.driven[label], attached)

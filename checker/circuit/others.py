@@ -53,6 +53,7 @@ def add_open(draft: Draft, part: Part) -> None:
 def add_connector(draft: Draft, part: Part) -> None:
     """A connector without a defined impedance: its pins are open, noted where they reach elements."""
     draft.facts[part.ref] = bare_fact(draft, part, "connector")
+    draft.plain_connectors.append(part)
     _pins(draft, part, "connector", "", "")
 
 
@@ -131,7 +132,7 @@ def settle(draft: Draft) -> None:
 
 def _settle_pin(draft: Draft, pin: LoosePin, conducts: bool) -> None:
     """One pin on a net of unknown voltage that has elements."""
-    if f"{pin.part}.{pin.pin}" in draft.driven:
+    if (pin.part, pin.pin) in draft.driven_pins:
         return
     if pin.kind == "connector":
         draft.notes.add("connectors", "pins of connectors taken as open", pin.part)

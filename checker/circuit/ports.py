@@ -30,6 +30,7 @@ def add_ports(draft: Draft) -> None:
     else:
         _from_sources(draft)
         _from_connectors(draft)
+        _from_plain_connectors(draft)
         _from_loads(draft)
         _from_names(draft)
     draft.ports.sort(key=lambda port: natural_key(port.name))
@@ -197,6 +198,38 @@ def _connector(draft: Draft, part: Part, net: str) -> None:
 
 def _near(ohm: float, nominal_ohm: float) -> bool:
     return abs(ohm - nominal_ohm) <= _EQUAL_OHM * nominal_ohm
+
+
+def _from_plain_connectors(draft: Draft) -> None:
+    """Pins of other connectors that a capacitor joins to the board, or whose names tell a direction."""
+    for part in sorted(draft.plain_connectors, key=lambda entry: natural_key(entry.ref)):
+        for net in natural({draft.net(pin.net) for pin in part.pins}):
+            taken = {port.net for port in draft.ports}
+            if net in taken or not draft.ends.get(net) or draft.known_volts(net) is not None:
+                continue
+            named = role_of_net(net) or (role_by_name(part.value, part.ref) if _is_coupled(draft, net) else None)
+            if named is None and not _is_coupled(draft, net):
+                continue
+            name = part.ref if all(port.name != part.ref for port in draft.ports) else f"{part.ref}.{net}"
+            load = existing_load(draft, net) if named != "input" else ()
+            draft.notes.add("ports", f"{part.ref} on {net} taken as {_article(named)} port")
+            draft.ports.append(DraftPort(name=name, net=net, role=named, load=load, part=part.ref))
+
+
+def _article(role: PortRole | None) -> str:
+    return f"an {role}" if role else "an input or output"
+
+
+def _is_coupled(draft: Draft, net: str) -> bool:
+    """Whether only capacitors join a net to the rest of the board, besides resistors to ground."""
+    on = draft.elements_on(net)
+    through = [
+        name for table, name in on if table == "capacitors" and draft.capacitors[name].other(net) != draft.ground
+    ]
+    direct = [
+        name for table, name in on if table != "capacitors" and draft.table(table)[name].other(net) != draft.ground
+    ]
+    return bool(through) and not direct and not draft.device_pins(net) and net not in draft.foreign
 
 
 def _from_loads(draft: Draft) -> None:
