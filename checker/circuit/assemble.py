@@ -31,9 +31,8 @@ def assemble(draft: Draft, temperature_k: float) -> Circuit:
     voltages = _branches(draft.voltages, node)
     resistors = _branches(draft.resistors, node)
     inductors = _branches(draft.inductors, node)
-    rails = tuple(
-        replace(rail, element=_index(voltages, draft.rail_elements.get(rail.net, ""))) for rail in draft.rails
-    )
+    sources, ohms = _places(voltages), _places(resistors)
+    rails = tuple(replace(rail, element=sources.get(draft.rail_elements.get(rail.net, ""), -1)) for rail in draft.rails)
     return Circuit(
         nets=nets,
         resistors=resistors,
@@ -47,7 +46,7 @@ def assemble(draft: Draft, temperature_k: float) -> Circuit:
         temperature_k=frozen(np.array([temperature_k])),
         scenarios=(NOMINAL,),
         rails=rails,
-        ports=tuple(_port(port, node, voltages, resistors) for port in draft.ports if port.net in node),
+        ports=tuple(_port(port, node, sources, ohms) for port in draft.ports if port.net in node),
         parts={ref: draft.facts[ref] for ref in natural(draft.facts)},
         unknowns=tuple(
             sorted(
@@ -108,19 +107,19 @@ def _column(values: list[float]) -> FloatArray:
     return frozen(np.array(values, dtype=np.float64).reshape(1, len(values)))
 
 
-def _index(branches: Branches, name: str) -> int:
-    return branches.names.index(name) if name in branches.names else -1
+def _places(branches: Branches) -> dict[str, int]:
+    return {name: place for place, name in enumerate(branches.names)}
 
 
-def _port(port: DraftPort, node: Mapping[str, int], voltages: Branches, resistors: Branches) -> Port:
+def _port(port: DraftPort, node: Mapping[str, int], voltages: Mapping[str, int], resistors: Mapping[str, int]) -> Port:
     return Port(
         name=port.name,
         net=port.net,
         node=node[port.net],
         role=port.role,
         reference_ohm=port.reference_ohm,
-        emf=_index(voltages, port.emf),
-        series=_index(resistors, port.series),
+        emf=voltages.get(port.emf, -1),
+        series=resistors.get(port.series, -1),
         load=port.load,
         level_v=port.level_v,
         band_hz=port.band_hz,

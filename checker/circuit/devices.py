@@ -125,6 +125,8 @@ def _lacking(draft: Draft, part: Part, known: Identity | None) -> tuple[str, str
 
 def _terminals(draft: Draft, part: Part, kind: str, known: Identity) -> tuple[Unit, ...]:
     if draft.netlist.format == "spice":
+        if part.letter.upper() == "X":
+            draft.notes.add("pins", f"subcircuit taken as a {kind} with its pins in that element's order", part.ref)
         return spice_terminals(part, kind)
     return kicad_terminals(part, kind, known.card, draft.notes)
 

@@ -47,7 +47,7 @@ def add_voltage(draft: Draft, part: Part) -> None:
     """An independent voltage source; one with an AC part or a waveform carries signal."""
     ends = two_ends(part)
     source = part.source
-    volts = source.dc if source is not None else part.number
+    volts = source.dc if source is not None else _plain_number(part, "V")
     if source is not None and volts is None:
         volts = source.rest or 0.0
     if ends is None or volts is None:
@@ -64,7 +64,7 @@ def add_current(draft: Draft, part: Part) -> None:
     """An independent current source, current from its first pin through itself to its second."""
     ends = two_ends(part)
     source = part.source
-    amps = source.dc if source is not None else part.number
+    amps = source.dc if source is not None else _plain_number(part, "A")
     if source is not None and amps is None:
         amps = source.rest or 0.0
     draft.facts[part.ref] = bare_fact(draft, part, "source")
@@ -74,6 +74,16 @@ def add_current(draft: Draft, part: Part) -> None:
     draft.wire("currents", part.ref, *ends, amps)
     if source is not None and (source.ac is not None or source.waveform):
         draft.signals.add(part.ref)
+
+
+def _plain_number(part: Part, unit: str) -> float | None:
+    """A value that is a number alone, or schematic text such as "9V"."""
+    if part.number is not None:
+        return part.number
+    try:
+        return parse_engineering(part.value, unit).si
+    except NotAQuantity:
+        return None
 
 
 def add_coupling(draft: Draft, part: Part) -> None:
@@ -145,10 +155,7 @@ def add_battery(draft: Draft, part: Part) -> None:
     """A battery whose value text states volts; pin 1 is its positive pole."""
     draft.facts[part.ref] = bare_fact(draft, part, "source")
     poles = sorted(part.pins, key=lambda pin: pin.number.strip("+") != "1" and not pin.function.startswith("+"))
-    try:
-        volts = parse_engineering(part.value, "V").si
-    except NotAQuantity:
-        volts = None
+    volts = _plain_number(part, "V")
     if volts is None or len(poles) != 2:
         supply = 'a value such as "9V", or its net under [rails]'
         draft.loose(part.ref, [pin.net for pin in part.pins], f"volts of {part.ref}", supply)

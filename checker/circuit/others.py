@@ -126,7 +126,7 @@ def settle(draft: Draft) -> None:
             )
         )
     for pin in draft.loose_pins:
-        if pin.net in present - draft.nameless and draft.known_volts(pin.net) is None:
+        if pin.net in present and pin.net not in draft.nameless and draft.known_volts(pin.net) is None:
             _settle_pin(draft, pin, pin.net in conducting)
 
 

@@ -99,6 +99,8 @@ _SYMBOLS: Final[tuple[tuple[Kind, str], ...]] = (
         "inductor",
         r"L(?:[-_](?:SMALL|CORE\w*|IRON\w*|FERRITE\w*|US|DEVICE|\d+)\w*)*|IND(?:UCTOR)?(?:_SMALL|_IRON\w*)?|CHOKE",
     ),
+    ("voltage", r"V(?:SOURCE|DC|AC|SIN|PULSE|PWL)"),
+    ("current", r"I(?:SOURCE|DC|AC|SIN|PULSE|PWL)"),
     ("battery", r"BATTERY\w*|BAT"),
     ("diode", r"(?:IR_?)?LED(?:[-_](?:SMALL|ALT|FILLED|US|PAD|DEVICE|\d+)\w*)*|LD271"),
     (

@@ -27,6 +27,7 @@ _WORDS: Final = {
     "SOURCE": "S",
 }
 _FUNCTION: Final = re.compile(r"([A-Z]+?)[_ ]?(\d*)")
+_COMPOUND: Final = re.compile(r"(?:[AK]\d){2}")
 _SUFFIX: Final = re.compile(r"_([BCES]{3,4})$", re.IGNORECASE)
 _ORDER: Final = {"bipolar": "CBE", "diode": "AK"}
 """Terminal order of SPICE elements."""
@@ -54,7 +55,7 @@ def kicad_terminals(part: Part, kind: str, card: Card | None, notes: Notes) -> t
     `kind` is "bipolar" or "diode". A disagreement between symbol and card about the pads is noted.
     """
     wanted = _WANTED[kind]
-    units = _by_function(part, wanted) or _by_number(part, wanted)
+    units = () if kind == "diode" and len(part.pins) > 2 else _by_function(part, wanted) or _by_number(part, wanted)
     by_card = _pads_of_card(part, card, notes) if card is not None else None
     if units:
         _compare(part, units, by_card, notes)
@@ -78,9 +79,15 @@ def _pads_of_card(part: Part, card: Card, notes: Notes) -> Mapping[str, str] | N
     return pads
 
 
+def terminals_of(text: str) -> list[tuple[str, str]]:
+    """Every (terminal letter, unit) that a pad serves: "K1A2" is a cathode and an anode."""
+    if _COMPOUND.fullmatch(text):
+        return [(letter, unit) for letter, unit in re.findall(r"([AK])(\d)", text)]
+    return [letter_of(text)]
+
+
 def letter_of(function: str) -> tuple[str, str]:
-    """(terminal letter, unit number as text) of a pin function: "B1" is ("B", "1"), "Emitter" is ("E",
-    "")."""
+    """(terminal letter, unit number as text) of a pin function: "B1" is ("B", "1"), "Emitter" ("E", "")."""
     found = _FUNCTION.fullmatch(function.upper().strip("~ "))
     if found is None:
         return "", ""
@@ -128,8 +135,8 @@ def _from_pads(part: Part, letters: Mapping[str, str] | None, wanted: frozenset[
         return ()
     units: dict[str, dict[str, set[str]]] = {}
     for pin in part.pins:
-        letter, unit = letter_of(letters.get(pin.number, ""))
-        units.setdefault(unit, {}).setdefault(letter, set()).add(pin.net)
+        for letter, unit in terminals_of(letters.get(pin.number, "")):
+            units.setdefault(unit, {}).setdefault(letter, set()).add(pin.net)
     return _units(units, wanted)
 
 

@@ -202,18 +202,22 @@ def _near(ohm: float, nominal_ohm: float) -> bool:
 
 def _from_plain_connectors(draft: Draft) -> None:
     """Pins of other connectors that a capacitor joins to the board, or whose names tell a direction."""
+    taken = {port.net for port in draft.ports}
     for part in sorted(draft.plain_connectors, key=lambda entry: natural_key(entry.ref)):
-        for net in natural({draft.net(pin.net) for pin in part.pins}):
-            taken = {port.net for port in draft.ports}
-            if net in taken or not draft.ends.get(net) or draft.known_volts(net) is not None:
+        first = True
+        for net in natural({draft.net(pin.net) for pin in part.pins} - taken):
+            if not draft.ends.get(net) or draft.known_volts(net) is not None:
                 continue
-            named = role_of_net(net) or (role_by_name(part.value, part.ref) if _is_coupled(draft, net) else None)
-            if named is None and not _is_coupled(draft, net):
+            coupled = _is_coupled(draft, net)
+            role = role_of_net(net) or (role_by_name(part.value, part.ref) if coupled else None)
+            if role is None and not coupled:
                 continue
-            name = part.ref if all(port.name != part.ref for port in draft.ports) else f"{part.ref}.{net}"
-            load = existing_load(draft, net) if named != "input" else ()
-            draft.notes.add("ports", f"{part.ref} on {net} taken as {_article(named)} port")
-            draft.ports.append(DraftPort(name=name, net=net, role=named, load=load, part=part.ref))
+            load = existing_load(draft, net) if role != "input" else ()
+            draft.notes.add("ports", f"{part.ref} on {net} taken as {_article(role)} port")
+            name = part.ref if first else f"{part.ref}.{net}"
+            draft.ports.append(DraftPort(name=name, net=net, role=role, load=load, part=part.ref))
+            taken.add(net)
+            first = False
 
 
 def _article(role: PortRole | None) -> str:
@@ -254,8 +258,8 @@ def _from_names(draft: Draft) -> None:
     for role in roles:
         if any(port.role == role for port in draft.ports):
             continue
+        taken = {port.net for port in draft.ports}
         for net in natural(present & draft.netlist.nets.keys()):
-            taken = {port.net for port in draft.ports}
             if net in taken or draft.known_volts(net) is not None or role_of_net(net) != role:
                 continue
             draft.notes.add("ports", f"{net} taken as an {role} port from its name")

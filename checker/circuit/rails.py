@@ -8,6 +8,7 @@ from typing import Final, Literal
 from checker.circuit.draft import Draft
 from checker.circuit.lookup import find_net
 from checker.circuit.order import last_segment, natural, natural_key
+from checker.circuit.regulators import regulated_nets
 from checker.circuit.types import Rail
 from checker.intent.types import RailIntent
 
@@ -43,6 +44,8 @@ def add_rails(draft: Draft) -> None:
     _from_elements(draft)
     _from_intent(draft)
     _from_names(draft)
+    _from_regulators(draft)
+    _nameless(draft)
     draft.rails.sort(key=lambda rail: natural_key(rail.net))
 
 
@@ -125,9 +128,23 @@ def _from_names(draft: Draft) -> None:
             draft.notes.add("rails", f"{net} taken as {volts:g} V from its name")
             _hold(draft, net, volts)
             _list(draft, net, volts, "net name", None)
-        elif _NAMELESS.fullmatch(last_segment(name)) and not _is_fed(draft, net):
-            supply = f'[rails] "{last_segment(name)}" = "…"'
-            draft.loose("", (net,), f"volts of {net}", supply)
+
+
+def _from_regulators(draft: Draft) -> None:
+    present = draft.present()
+    for net, volts, part in regulated_nets(draft):
+        if net in present and draft.known_volts(net) is None:
+            draft.notes.add("rails", f"{net} taken as {volts:g} V, the output of {part}")
+            _hold(draft, net, volts)
+            _list(draft, net, volts, "element", None)
+
+
+def _nameless(draft: Draft) -> None:
+    """Supplies by name whose volts nothing tells."""
+    for net in natural(draft.present() & draft.netlist.nets.keys()):
+        last = last_segment(draft.netlist.nets[net].name)
+        if draft.known_volts(net) is None and _NAMELESS.fullmatch(last) and not _is_fed(draft, net):
+            draft.loose("", (net,), f"volts of {net}", f'[rails] "{last}" = "…"')
             draft.nameless.add(net)
 
 

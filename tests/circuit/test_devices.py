@@ -288,3 +288,25 @@ def test_a_light_emitting_diode_named_by_its_job() -> None:
     circuit = schematic(kicad_part("D1", "Device:LED", "POWER", {"1": "k|K", "2": "a|A"}))
     assert circuit.diodes.names == ("D1",)
     assert assumed(circuit, "D1", "no card for 'POWER'; generic LED figures used")
+
+
+@pytest.mark.parametrize(
+    ("value", "first", "second"),
+    [("BAV99", ("x", "z"), ("z", "y")), ("BAV70", ("x", "z"), ("y", "z")), ("BAW56", ("z", "x"), ("z", "y"))],
+)
+def test_two_diodes_in_one_case(value: str, first: tuple[str, str], second: tuple[str, str]) -> None:
+    """Pads in SOT-23: BAV99 in series, BAV70 common cathode, BAW56 common anode on pad 3 (common practice)."""
+    part = kicad_part("D1", "my:DUAL", value, {"1": "x", "2": "y", "3": "z"}, footprint=SOT23, description="diode")
+    circuit = schematic(part)
+    assert (nets_of(circuit, "D1.A"), nets_of(circuit, "D1.B")) == (first, second)
+
+
+def test_a_dual_diode_of_unknown_kind_is_not_guessed() -> None:
+    part = kicad_part("D1", "my:DUAL", "odd", {"1": "x|A", "2": "y|K", "3": "z|C"}, description="dual diode")
+    assert "pin order of D1" in [unknown.datum for unknown in schematic(part).unknowns]
+
+
+def test_a_wrapped_transistor_in_spice_text() -> None:
+    circuit = spice(spice_part("X1", "c b 0", model="BC547", letter="X"), spice_part("R1", "c b", 1e3))
+    assert nets_of(circuit, "X1")[:3] == ("c", "b", "0")
+    assert assumed(circuit, "X1", "subcircuit taken as a bipolar")

@@ -4,9 +4,10 @@ import pytest
 from numpy.testing import assert_allclose
 
 from checker.circuit.rails import volts_of_name
+from checker.circuit.regulators import regulated_volts
 from checker.intent.types import Intent, RailIntent
 from checker.trouble import InputTrouble
-from tests.circuit.make import SAID, assumed, ends_of, kicad, resistor, spice, spice_part, value_of, volts
+from tests.circuit.make import SAID, assumed, ends_of, kicad, kicad_part, resistor, spice, spice_part, value_of, volts
 
 
 @pytest.mark.parametrize(
@@ -132,3 +133,34 @@ def test_sources_that_contradict_each_other_are_told() -> None:
 def test_sources_in_parallel_that_agree_are_one() -> None:
     circuit = spice(volts("V1", "a 0", 5.0), volts("V2", "a 0", 5.0), spice_part("R1", "a 0", 1e3))
     assert circuit.voltages.names == ("V1",) and circuit.unknowns == ()
+
+
+@pytest.mark.parametrize(
+    ("value", "description", "expected"),
+    [
+        ("LM7805", "", 5.0),
+        ("MC78L12", "", 12.0),
+        ("LM7915", "", -15.0),
+        ("AMS1117-3.3", "", 3.3),
+        ("AP1117-33", "", 3.3),
+        ("LP2950-5.0_TO92", "", 5.0),
+        ("MCP1700-3302E", "", 3.3),
+        ("TPS77001", "LDO regulator", None),
+        ("LM317", "", None),
+        ("LM358", "", None),
+        ("XC-2.5", "", None),
+    ],
+)
+def test_volts_that_a_regulator_states(value: str, description: str, expected: float | None) -> None:
+    part = kicad_part("U1", "my:REG", value, {"1": "a"}, description=description)
+    assert regulated_volts(part) == expected
+
+
+def test_a_fixed_regulator_makes_a_rail_if_its_common_pin_is_on_ground() -> None:
+    pins = {"1": "raw|VI|power_in", "2": "GND|GND|power_in", "3": "VCC|VO|power_out"}
+    circuit = kicad(kicad_part("U1", "Regulator_Linear:L7805", "L7805", pins), resistor("R1", "VCC", "GND"))
+    assert [(rail.net, rail.volts, rail.source) for rail in circuit.rails] == [("VCC", 5.0, "element")]
+    assert circuit.unknowns == ()
+    assert assumed(circuit, "VCC taken as 5 V, the output of U1 (L7805)")
+    lifted = kicad_part("U1", "Regulator_Linear:L7805", "L7805", pins | {"2": "x|GND|power_in"})
+    assert kicad(lifted, resistor("R1", "VCC", "GND")).rails == ()
