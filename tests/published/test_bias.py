@@ -89,9 +89,7 @@ DIVIDERS = {
 
 @pytest.mark.parametrize("case", DIVIDERS.values(), ids=DIVIDERS.keys())
 def test_divider_bias(case: Divider) -> None:
-    b = divider_stage(
-        vcc=case.vcc, r1=case.r1, r2=case.r2, rc=case.rc, re=case.re, beta=case.beta, ic=case.ic
-    )
+    b = divider_stage(vcc=case.vcc, r1=case.r1, r2=case.r2, rc=case.rc, re=case.re, beta=case.beta, ic=case.ic)
     got = bias(b.circuit()).bipolar
     assert_within(float(got["ic_a"][0, 0]), case.ic, case.rel, f"IC, {case.source}")
     assert_within(float(got["vce_v"][0, 0]), case.vce, case.rel, f"VCE, {case.source}")
@@ -102,9 +100,9 @@ def test_soft_divider_is_far_from_the_shortcut() -> None:
     case = DIVIDERS["D6"]
     shortcut = (case.vcc * case.r2 / (case.r1 + case.r2) - 0.7) / case.re
     assert_within(shortcut, 2.5897e-3, 1e-4)
-    got = bias(
-        divider_stage(vcc=18.0, r1=82e3, r2=22e3, rc=5.6e3, re=1.2e3, beta=50.0, ic=case.ic).circuit()
-    ).bipolar["ic_a"][0, 0]
+    got = bias(divider_stage(vcc=18.0, r1=82e3, r2=22e3, rc=5.6e3, re=1.2e3, beta=50.0, ic=case.ic).circuit()).bipolar[
+        "ic_a"
+    ][0, 0]
     assert 1.30 < shortcut / float(got) < 1.32
 
 
@@ -294,7 +292,5 @@ def test_thevenin_of_the_divider() -> None:
     """D3's intermediate values, Boylestad & Nashelsky 10th ed.: 3545.5 ohm, 2.000 V, IB 6.045 uA; .3 %."""
     assert_within(parallel(39e3, 3.9e3), 3545.5, 1e-4)
     case = DIVIDERS["D3"]
-    got = bias(
-        divider_stage(vcc=22.0, r1=39e3, r2=3.9e3, rc=10e3, re=1.5e3, beta=140.0, ic=case.ic).circuit()
-    ).bipolar
+    got = bias(divider_stage(vcc=22.0, r1=39e3, r2=3.9e3, rc=10e3, re=1.5e3, beta=140.0, ic=case.ic).circuit()).bipolar
     assert_within(float(got["ib_a"][0, 0]), 6.045e-6, 3e-3)

@@ -37,9 +37,7 @@ def test_published_diode_and_resistor() -> None:
     assert_within(current, 1.0848517e-3, 1e-5, K7)
 
 
-@pytest.mark.parametrize(
-    ("v", "current"), [(0.6, 0.22106e-3), (0.7, 1.28754e-3), (0.8, 2.84044e-3), (0.9, 4.55332e-3)]
-)
+@pytest.mark.parametrize(("v", "current"), [(0.6, 0.22106e-3), (0.7, 1.28754e-3), (0.8, 2.84044e-3), (0.9, 4.55332e-3)])
 def test_published_diode_at_another_resistance(v: float, current: float) -> None:
     """Same device with 51.3 ohm; five digits, so half a unit of the last is 2.3e-5."""
     assert_within(_diode_loop(v, 51.3, 25e-15, 1.0, celsius_of(0.0257025))[0], current, 3e-5, K7)
