@@ -21,6 +21,7 @@ from checker.solve.admittance import device_pencils, outer_admittance, transcond
 from checker.solve.counters import COUNTERS
 from checker.solve.operating import OperatingPoint
 from checker.solve.system import signal_system
+from checker.solve.update import updated
 
 FloatArray = NDArray[np.float64]
 ComplexArray = NDArray[np.complex128]
@@ -48,7 +49,7 @@ class Block:
 
 @frozen
 class Response:
-    """`z` complex128 (S, F, u, u): inverse of the system matrix; `y_known` (S, F, u, n_net): coupling from nets.
+    """`z` complex128 (S, F, u, u): inverse of the system matrix `y`; `y_known` (S, F, u, n_net): coupling from nets.
 
     Immutable; `removed`, `shorted`, `opened` return changed copies. `row` (n_net,): unknown of a net, -1 if none.
     `bipolar_y` (S, F, n, 4, 4), `diode_y` (S, F, n, 2, 2): devices at their terminals; `passive_y`: bipolars without gm.
@@ -61,6 +62,7 @@ class Response:
     known: NDArray[np.bool_]
     tree: tuple[tuple[int, int, int, float], ...]
     z: ComplexArray
+    y: ComplexArray
     y_known: ComplexArray
     bipolar_y: ComplexArray
     diode_y: ComplexArray
@@ -162,16 +164,29 @@ class Response:
 
     def shorted(self, part: str) -> Response:
         """The same circuit with a two-terminal part shorted."""
-        a, b = self._two_nodes(part)
-        z = np.abs(self.between(a, b))
-        y = SHORT_FACTOR / np.maximum(np.where(np.isfinite(z), z, 1.0), 1e-12)
-        return self._changed((a, b), y[..., None, None] * np.array([[1.0, -1.0], [-1.0, 1.0]], dtype=complex))
+        return self._tied(*self._two_nodes(part))
 
     def grounded(self, node: int) -> Response:
         """The same circuit with a net shorted to signal ground."""
-        z = np.abs(self.impedance(node))
-        y = SHORT_FACTOR / np.maximum(np.where(np.isfinite(z), z, 1.0), 1e-12)
-        return self._changed((node,), y[..., None, None].astype(complex))
+        return self._tied(node, 0)
+
+    def _tied(self, a: int, b: int) -> Response:
+        """Two nets made one: Z - Z e (e^T Z e)^-1 e^T Z with e = +1 at a, -1 at b; the limit of an infinite link.
+
+        Their coupling to nets of fixed voltage follows a link of `SHORT_FACTOR` times what the nets present.
+        """
+        z_ab = self.between(a, b)
+        size = np.where(np.isfinite(z_ab), np.abs(z_ab), 1.0)
+        y = SHORT_FACTOR / np.maximum(size, 1e-12)
+        if any(self.known[n] and n > 0 for n in (a, b)):
+            return self._changed((a, b), y[..., None, None] * np.array([[1.0, -1.0], [-1.0, 1.0]], dtype=complex))
+        e = np.zeros(self.z.shape[-1])
+        for node, sign in ((a, 1.0), (b, -1.0)):
+            if self.row[node] >= 0:
+                e[self.row[node]] += sign
+        pivot = np.where(z_ab == 0.0, np.inf, z_ab)[..., None, None]
+        z = self.z - (self.z @ e)[..., :, None] * (e @ self.z)[..., None, :] / pivot
+        return replace(self, z=z, y=self.y + y[..., None, None] * np.outer(e, e))
 
     def opened(self, part: str, terminal: int = 0) -> Response:
         """The same circuit with one terminal of a part lifted off its net."""
@@ -191,7 +206,10 @@ class Response:
         # The branch current forced to zero: the limit of an infinite impedance added to its equation.
         pivot = self.z[..., row, row][..., None, None]
         z = self.z - column[..., :, None] * line[..., None, :] / np.where(pivot == 0.0, np.inf, pivot)
-        return replace(self, z=z)
+        y = self.y.copy()
+        y[..., row, :] = 0.0
+        y[..., row, row] = 1.0
+        return replace(self, z=z, y=y)
 
     def _two_nodes(self, part: str) -> tuple[int, int]:
         c = self.circuit
@@ -214,15 +232,13 @@ class Response:
         return self
 
     def _changed(self, nodes: tuple[int, ...], delta: ComplexArray) -> Response:
-        """Add `delta` (S, F, k, k) between `nodes`: Z - Z_D (1 + dY Z_DD)^-1 dY Z_D, and the coupling from nets."""
+        """Add `delta` (S, F, k, k) between `nodes`, and to the coupling from nets of fixed voltage."""
         live = [k for k, node in enumerate(nodes) if self.row[node] >= 0]
         if not live:
             return self
         rows = self.row[[nodes[k] for k in live]]
         inner, merged = _merge(rows, delta[..., live, :][..., :, live])
-        z_d = self.z[..., :, inner]
-        z_dd = z_d[..., inner, :]
-        core = np.linalg.solve(np.eye(len(inner)) + merged @ z_dd, merged @ self.z[..., inner, :])
+        z, y = updated(self.z, self.y, inner, merged)
         y_known = self.y_known
         outside = [k for k, node in enumerate(nodes) if self.known[node] and node > 0]
         if outside:
@@ -230,7 +246,7 @@ class Response:
             for k in outside:
                 for r in live:
                     y_known[..., self.row[nodes[r]], nodes[k]] += delta[..., r, k]
-        return replace(self, z=self.z - z_d @ core, y_known=y_known)
+        return replace(self, z=z, y=y, y_known=y_known)
 
 
 def _merge(rows: IntArray, delta: ComplexArray) -> tuple[IntArray, ComplexArray]:
@@ -267,6 +283,7 @@ def small_signal(point: OperatingPoint, f_hz: FloatArray) -> Response:
         known=system.known,
         tree=system.tree,
         z=system.inverse(y),
+        y=y,
         y_known=y_known,
         bipolar_y=y_b,
         diode_y=y_d,

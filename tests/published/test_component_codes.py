@@ -48,9 +48,7 @@ def test_e24_and_the_series_within_it() -> None:
 
 def test_e24_departs_from_the_powers_at_eight_places() -> None:
     # IEC 60063, from memory: 2.7 3.0 3.3 3.6 3.9 4.3 4.7 8.2.
-    departures = [
-        value for step, value in enumerate(mantissas("E24")) if round(10 ** (step / 24), 1) != value
-    ]
+    departures = [value for step, value in enumerate(mantissas("E24")) if round(10 ** (step / 24), 1) != value]
     assert departures == [2.7, 3.0, 3.3, 3.6, 3.9, 4.3, 4.7, 8.2]
 
 
@@ -104,15 +102,11 @@ def test_tolerance_letters() -> None:
     # IEC 60062, from memory (E, L, P, W with less certainty).
     percent = {"E": 0.005, "L": 0.01, "P": 0.02, "W": 0.05, "B": 0.1, "C": 0.25, "D": 0.5, "F": 1.0, "G": 2.0}
     percent |= {"H": 3.0, "J": 5.0, "K": 10.0, "M": 20.0, "N": 30.0}
-    assert {letter: 100 * value for letter, value in TOLERANCE_LETTERS.items()} == pytest.approx(
-        percent, rel=1e-12
-    )
+    assert {letter: 100 * value for letter, value in TOLERANCE_LETTERS.items()} == pytest.approx(percent, rel=1e-12)
     assert LOPSIDED_LETTERS == {"Q": (-0.1, 0.3), "T": (-0.1, 0.5), "S": (-0.2, 0.5), "Z": (-0.2, 0.8)}
 
 
-@pytest.mark.parametrize(
-    ("letter", "percent"), [("J", 5.0), ("F", 1.0), ("G", 2.0), ("K", 10.0), ("M", 20.0)]
-)
+@pytest.mark.parametrize(("letter", "percent"), [("J", 5.0), ("F", 1.0), ("G", 2.0), ("K", 10.0), ("M", 20.0)])
 def test_tolerance_letters_behind_a_resistance(letter: str, percent: float) -> None:
     # IEC 60062, from memory.
     reading = parse_engineering(f"4K7{letter}", "ohm")
@@ -127,9 +121,7 @@ def test_absolute_tolerance_under_ten_picofarad(letter: str, picofarad: float) -
     assert parse_engineering(f"47p{letter}", "F").tolerance == TOLERANCE_LETTERS[letter]
 
 
-@pytest.mark.parametrize(
-    ("code", "farad"), [("104", 100e-9), ("223", 22e-9), ("474", 470e-9), ("101", 100e-12)]
-)
+@pytest.mark.parametrize(("code", "farad"), [("104", 100e-9), ("223", 22e-9), ("474", 470e-9), ("101", 100e-12)])
 def test_three_digit_capacitor_code(code: str, farad: float) -> None:
     # EIA three-digit code, from memory: two digits and the count of zeros, in picofarad.
     assert parse_engineering(code, "F").si == pytest.approx(farad, rel=1e-15)
