@@ -5,7 +5,7 @@ from __future__ import annotations
 from collections.abc import Iterable
 from typing import Protocol
 
-from checker.circuit.types import Circuit, Scenario
+from checker.circuit.types import Circuit, Port, Scenario
 from checker.judge.guard import guarded
 from checker.judge.outcome import decide, severity, unknown_in
 from checker.judge.subjects import Subject, subjects
@@ -21,6 +21,8 @@ class Examined(Board, Protocol):
     @property
     def circuit(self) -> Circuit: ...
     @property
+    def ports(self) -> tuple[Port, ...]: ...
+    @property
     def scenarios(self) -> tuple[Scenario, ...]: ...
 
 
@@ -29,7 +31,7 @@ def examine(board: Examined, rules: Iterable[AnyRule], limits: Limits) -> Examin
     judged: list[Judged] = []
     unchecked: list[Open] = []
     failures: list[Failure] = []
-    ports = tuple(port.name for port in board.circuit.ports)
+    ports = tuple(port.name for port in board.ports)
     for rule in rules:
         for subject in subjects(board, ports, rule.applies):
             answer = _ask(rule, board, subject, limits)

@@ -9,7 +9,7 @@ and no business of a rule.
 from __future__ import annotations
 
 from collections.abc import Iterable, Mapping
-from dataclasses import dataclass, field
+from dataclasses import dataclass, field, replace
 from typing import ClassVar, Generic, Literal, Protocol, TypeVar
 
 import numpy as np
@@ -43,6 +43,7 @@ __all__ = [
     "TargetIntent",
     "ceiling",
     "flag",
+    "in_percent",
     "levers",
     "require",
     "show",
@@ -274,14 +275,12 @@ def flag(figure: Figure, code: float, quantity: str) -> Figure:
     """1 where a coded figure has that code, 0 where another, nan where unknown; shape as `figure`."""
     values = np.asarray(figure.values, dtype=np.float64)
     hit = np.where(np.isnan(values), np.nan, (values == code).astype(np.float64))
-    return Figure(
-        quantity=quantity,
-        subject=figure.subject,
-        values=hit,
-        unit="",
-        working=figure.working,
-        reason=figure.reason,
-    )
+    return replace(figure, quantity=quantity, values=hit)
+
+
+def in_percent(figure: Figure) -> Figure:
+    """A plain fraction shown as per cent; the values stay a fraction."""
+    return replace(figure, unit="%")
 
 
 def ceiling(whole: Figure, *, share: float = 1.0, less: float = 0.0) -> Bound:

@@ -14,6 +14,7 @@ from checker.rulekit import (
     Rule,
     Stage,
     flag,
+    in_percent,
     levers,
     require,
 )
@@ -145,7 +146,7 @@ class SoftDivider(Rule[Stage]):
         divider = board.resistors_at(subject.id, "base")
         return [
             Evidence(
-                check=require(board.ask("divider_shift", subject.id), "at most", limits["shift"]),
+                check=require(in_percent(board.ask("divider_shift", subject.id)), "at most", limits["shift"]),
                 subject=(subject.id, *divider)[:3],
                 message=f"base current moves the collector current of {subject.id} to {{ic}}, "
                 f"{{value}} from what its "

@@ -9,7 +9,6 @@ import importlib.util
 import re
 from collections.abc import Iterable
 from pathlib import Path
-from typing import NamedTuple
 
 from checker.judge.plugins import BUILTIN, plugins
 from checker.judge.verdict import AnyRule
@@ -21,30 +20,25 @@ _ID = re.compile(r"[a-z][a-z0-9]*(-[a-z0-9]+)*")
 _TOLD = ("id", "summary", "theme", "weight", "bench", "source", "applies")
 
 
-class Rulebook(NamedTuple):
-    """The rules sorted by id, and a caution for each plug-in that could not be used."""
+def load_rules(cautions: list[str] | None = None) -> tuple[AnyRule, ...]:
+    """All rules of this installation, sorted by id.
 
-    rules: tuple[AnyRule, ...]
-    cautions: tuple[str, ...]
-
-
-def load_rules() -> Rulebook:
-    """All rules of this installation.
-
+    A plug-in that cannot be used is left out, with a sentence that names it appended to `cautions`.
     Raises `InputTrouble` where there is none, where the package `rules` is not the one installed beside
     `checker` (it is then somebody else's, and is not imported), or where two rules share an id.
     """
     _stands_beside()
     found = list(_catalogue(BUILTIN))
-    cautions = []
     for name, target in plugins():
         try:
             found += _catalogue(target)
         except Exception as trouble:  # whatever a plug-in raises is its own fault, and named
-            cautions.append(f"rules of plug-in {name} ({target}) not used: {type(trouble).__name__}: {trouble}")
+            if cautions is not None:
+                what = f"{type(trouble).__name__}: {trouble}"
+                cautions.append(f"the rules of plug-in {name} ({target}) are not used: {what}")
     if not found:
         raise InputTrouble("no rules found; install Stageproof into an environment of its own")
-    return Rulebook(_distinct(found), tuple(cautions))
+    return _distinct(found)
 
 
 def _stands_beside() -> None:
