@@ -26,6 +26,9 @@ from checker.stages.types import Recognition, Stage
 from checker.trouble import Trouble
 from checker.words import Terminal
 
+QUANTITY_NAMES = tuple(sorted({name for name, subject in REGISTRY if subject in ("stage", "group", "gain")}))
+"""What a target may name."""
+
 
 class Board:
     """One board with all its scenarios. `ask` answers by quantity and subject, each question once."""

@@ -150,9 +150,7 @@ class Bench:
             resistors=_branches(self._tables["r"], s),
             capacitors=_branches(self._tables["c"], s),
             inductors=_branches(self._tables["l"], s),
-            couplings=Couplings(
-                names=tuple(pairs.names), pair=_nodes(pairs, 2), k=_columns(pairs.values, s)
-            ),
+            couplings=Couplings(names=tuple(pairs.names), pair=_nodes(pairs, 2), k=_columns(pairs.values, s)),
             voltages=_branches(self._tables["v"], s),
             currents=_branches(self._tables["i"], s),
             bipolars=_devices(self._tables["q"], 4, BIPOLAR, s),

@@ -50,8 +50,10 @@ def bipolar_model(row: Mapping[str, Any]) -> dict[str, float]:
     model |= {"nf": 1.0, "nr": 1.0, "eg": 1.11, "xti": 3.0, "fc": FC}
     model["cje"] = _zero_bias(row["cib"], row["vje"], row["mje"])
     model["cjc"] = _zero_bias(row["cob"], row["vjc"], row["mjc"])
-    model["is"] = _saturation_current(row)
-    model["bf"], model["ise"] = _base_current(row, model["is"])
+    leak = row["ileak"]
+    model["bf"] = _ideal_gain(row)
+    model["is"] = _saturation_current(row, model["bf"])
+    model["ise"] = leak / model["bf"] * (model["is"] / leak) ** (1.0 / row["ne"])
     model["tf"] = _transit_time(row, model)
     return model
 
@@ -62,20 +64,24 @@ def _transport_current(row: Mapping[str, Any], ic_a: float, vce_v: float) -> flo
     return float(k * (1.0 + k / row["ikf"]))
 
 
-def _saturation_current(row: Mapping[str, Any]) -> float:
-    ic_a, vbe_v = row["vbe"]
-    ib_a = ic_a / row["gain"][1]
-    junction_v = vbe_v - (ic_a + ib_a) * row["re"] - ib_a * row["rb"]
-    return _transport_current(row, ic_a, _VBE_POINT_VCE_V) * math.exp(-junction_v / VT_V)
+def _base_shape(row: Mapping[str, Any], i_f: float) -> float:
+    """BF times the base current at IF: the ideal part and the recombination, equal where IF = `ileak`."""
+    return float(i_f + row["ileak"] * (i_f / row["ileak"]) ** (1.0 / row["ne"]))
 
 
-def _base_current(row: Mapping[str, Any], is_a: float) -> tuple[float, float]:
-    """BF and ISE: IB = IF/BF + ISE exp(VBE/(NE VT)), both terms equal where IF = `ileak`."""
+def _ideal_gain(row: Mapping[str, Any]) -> float:
+    """BF, by which the gain at its stated point is the typical one."""
     _, typical, _, ic_a, vce_v = row["gain"]
-    i_f, leak, ne = _transport_current(row, ic_a, vce_v), row["ileak"], row["ne"]
-    bf = typical / ic_a * (i_f + leak * (i_f / leak) ** (1.0 / ne))
-    ise = leak / bf * (is_a / leak) ** (1.0 / ne)
-    return bf, ise
+    return float(typical / ic_a * _base_shape(row, _transport_current(row, ic_a, vce_v)))
+
+
+def _saturation_current(row: Mapping[str, Any], bf: float) -> float:
+    """IS, by which VBE at its stated current is the typical one, drops over RB and RE included."""
+    ic_a, vbe_v = row["vbe"]
+    i_f = _transport_current(row, ic_a, _VBE_POINT_VCE_V)
+    ib_a = _base_shape(row, i_f) / bf
+    junction_v = vbe_v - (ic_a + ib_a) * row["re"] - ib_a * row["rb"]
+    return i_f * math.exp(-junction_v / VT_V)
 
 
 def _zero_bias(measured: list[float], potential_v: float, grading: float) -> float:
@@ -95,9 +101,7 @@ def _transit_time(row: Mapping[str, Any], model: Mapping[str, float]) -> float:
     cjc = model["cjc"] * (1.0 + (vce_v - row["vbe"][1]) / model["vjc"]) ** -model["mjc"]
     tf = 1.0 / (2.0 * math.pi * ft_hz) - (cje + cjc) / gm
     if tf <= 0.0:
-        raise ValueError(
-            f"{row['name']}: the junction capacitances leave no room for its transition frequency"
-        )
+        raise ValueError(f"{row['name']}: the junction capacitances leave no room for its transition frequency")
     return float(tf)
 
 

@@ -26,17 +26,22 @@ _ENDINGS: Final = re.compile(
 )
 _MAKERS: Final = re.compile(r"(?:JANTXV|JANTX|JAN|NSV|S)(?=(?:2N|1N|MMBT|BC8)\d?)")
 _CUT: Final = re.compile(r"[^A-Za-z0-9 ._/|-]")
+_ABBREVIATED: Final = re.compile(r"\s*[A-Za-z0-9]{1,2}\s*")
+"""The end of a second name whose head is left out; only the ending E3 has a slash of its own (E3/54)."""
 _POLARITIES: Final = {"NPN": "npn", "PNP": "pnp"}
 
 
 def find_card(value: str) -> Card | None:
     """The card that `value` names, None where that is in doubt.
 
-    Several names ("BC547/BC548") count only if all that are known are of one kind, and a polarity written
-    beside the name must agree with the card.
+    Several names ("BC547/BC548") count only if all that are known are of one kind; "2N3904/6" names two types
+    and none for certain. A polarity written beside the name must agree with the card.
     """
     text = _CUT.split(value[:MAX_NAME].strip(), maxsplit=1)[0].strip()
-    found = [card for card in map(_one, re.split(r"[/|]", text)) if card is not None]
+    names = re.split(r"[/|]", text)
+    found = [card for card in map(_one, names) if card is not None]
+    if any(_ABBREVIATED.fullmatch(name) for name in names[1:]) and not names[0].upper().endswith("E3"):
+        return None
     if not found or any(card.kind != found[0].kind for card in found):
         return None
     said = {kind for word, kind in _POLARITIES.items() if word in value.upper()}
@@ -68,7 +73,7 @@ def _lookup(name: str) -> Card | None:
     known = index()
     maker = _MAKERS.match(name)
     for candidate in (name, name[maker.end() :]) if maker is not None else (name,):
-        for length in range(len(candidate), 2, -1):
+        for length in range(len(candidate), 1, -1):
             family = known.get(candidate[:length])
             if family is not None:
                 card = _with_rest(family, candidate[:length], candidate[length:])

@@ -37,6 +37,8 @@ FloatArray = NDArray[np.float64]
 TERMINALS = 7
 INNER = (("rc", 0, 4), ("rb", 1, 5), ("re", 2, 6))
 C, B, E, SUB, CI, BI, EI = range(7)
+SMALL_Z = 0.01
+"""Below this z of base crowding its series is exact to 1e-9 and the closed form loses 1e-11."""
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)
@@ -151,22 +153,24 @@ def base_resistance(p: Mapping[str, FloatArray], k: Core) -> tuple[FloatArray, F
 
 
 def _crowded(p: Mapping[str, FloatArray], ib: FloatArray, span: FloatArray) -> tuple[FloatArray, FloatArray]:
-    """Current-crowding form: RBM + 3 (RB - RBM)(tan z - z)/(z tan^2 z), and its derivative to IB."""
-    y = np.maximum(ib, 0.0) / np.where(np.isfinite(p["irb"]), p["irb"], 1.0)
-    small = y < 1e-6
-    y_safe = np.where(small, 1e-6, y)
-    a = 144.0 / np.pi**2
-    root = np.sqrt(1.0 + a * y_safe)
-    denominator = 24.0 / np.pi**2 * np.sqrt(y_safe)
-    z = (root - 1.0) / denominator
-    dz_dy = 0.5 * a / root / denominator - 0.5 * z / y_safe
+    """Current-crowding form: RBM + 3 (RB - RBM)(tan z - z)/(z tan^2 z), and its derivative to IB.
+
+    z = 6 sqrt(y)/(1 + sqrt(1 + 144 y/pi^2)), y = IB/IRB. At small z, where tan z - z has no digits left, its series.
+    """
+    crowd = np.isfinite(p["irb"])
+    irb = np.where(crowd, p["irb"], 1.0)
+    y = np.maximum(ib, 0.0) / irb
+    root = np.sqrt(1.0 + 144.0 / np.pi**2 * y)
+    w = 36.0 * y / (1.0 + root) ** 2
+    dw_dy = 36.0 / (1.0 + root) ** 2 * (1.0 - 144.0 / np.pi**2 * y / (root * (1.0 + root)))
+    small = w < SMALL_Z**2
+    z = np.sqrt(np.where(small, SMALL_Z**2, w))
     tan = np.tan(z)
-    shape = (tan - z) / (z * tan**2)
-    sec2 = 1.0 + tan**2
-    d_shape = (sec2 - 1.0) / (z * tan**2) - shape * (1.0 / z + 2.0 * sec2 / tan)
-    value = p["rbm"] + 3.0 * span * np.where(small, 1.0 / 3.0, shape)
-    slope = np.where(small | (ib <= 0.0), 0.0, 3.0 * span * d_shape * dz_dy)
-    return value, slope / np.where(np.isfinite(p["irb"]), p["irb"], 1.0)
+    shape = 3.0 * (tan - z) / (z * tan**2)
+    slope = (3.0 / z - shape * (1.0 / z + 2.0 * (1.0 + tan**2) / tan)) / (2.0 * z)
+    shape = np.where(small, 1.0 - 4.0 / 15.0 * w - 4.0 / 105.0 * w**2, shape)
+    slope = np.where(small, -4.0 / 15.0 - 8.0 / 105.0 * w, slope)
+    return p["rbm"] + span * shape, np.where(ib > 0.0, span * slope * dw_dy / irb, 0.0)
 
 
 def _conductance(r: FloatArray) -> FloatArray:

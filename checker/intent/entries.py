@@ -60,9 +60,7 @@ def state(source: Source, path: KeyPath) -> StateIntent:
             message = f'{name!r} of {title} is not a pin; write the part and the pin, e.g. "U1.7"'
             raise source.trouble(message, *where)
         held[name] = _pin_level(source, where, value, title)
-    return StateIntent(
-        name=read["name"], origin=origin(source, path), pins=held, absent=read.get("absent", ())
-    )
+    return StateIntent(name=read["name"], origin=origin(source, path), pins=held, absent=read.get("absent", ()))
 
 
 def _pin_level(source: Source, path: KeyPath, value: Any, title: str) -> float | str:
@@ -168,9 +166,7 @@ def _map(source: Source, path: KeyPath, raw: Any, title: str) -> dict[str, Any]:
     return raw
 
 
-def _one_way(
-    source: Source, path: KeyPath, read: dict[str, Any], title: str, ways: Sequence[tuple[str, ...]]
-) -> None:
+def _one_way(source: Source, path: KeyPath, read: dict[str, Any], title: str, ways: Sequence[tuple[str, ...]]) -> None:
     """Exactly one of `ways` must be given, and given whole."""
     used = [way for way in ways if any(name in read for name in way)]
     whole = len(used) == 1 and all(name in read for name in used[0])

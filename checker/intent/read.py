@@ -121,9 +121,7 @@ def _limit(source: Source, path: KeyPath, value: Any) -> float | str:
     return float(guarded(source, path, title, lambda: amount(value, "")))
 
 
-def _each(
-    source: Source, name: str, read: Callable[[Source, KeyPath], _Entry], unique: str = ""
-) -> tuple[_Entry, ...]:
+def _each(source: Source, name: str, read: Callable[[Source, KeyPath], _Entry], unique: str = "") -> tuple[_Entry, ...]:
     """The tables of a list; no two may share the value of `unique`."""
     found: list[_Entry] = []
     seen: dict[str, int] = {}

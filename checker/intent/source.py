@@ -18,8 +18,8 @@ MAX_BYTES: Final = 1_000_000
 """An intent file is written by hand; a megabyte is some twenty thousand lines."""
 MAX_LINE: Final = 2_000
 """A longer line is no handwriting."""
-MAX_DOTS: Final = 100
-"""Dots in one line: the TOML reader takes time quadratic in the parts of a dotted key."""
+MAX_DOTTED: Final = 16
+"""Parts of one dotted key: the TOML reader takes time quadratic in them, and ours have four."""
 
 KeyPath = tuple[str | int, ...]
 """Keys from the root of the file; a number counts the tables of a list from 0."""
@@ -29,6 +29,8 @@ _KEY: Final = rf"{_PART}(?:[ \t]*\.[ \t]*{_PART})*"
 _HEADER: Final = re.compile(rf"[ \t]*(\[\[?)[ \t]*({_KEY})[ \t]*\]")
 _ENTRY: Final = re.compile(rf"[ \t]*({_KEY})[ \t]*=")
 _SPLIT: Final = re.compile(_PART)
+_SHORT: Final = r"(?:[A-Za-z0-9_-]{1,99}|\"(?:[^\"\\]|\\.){0,99}\"|'[^']{0,99}')"  # longer ones: few a line
+_TOO_DOTTED: Final = re.compile(rf"(?<![A-Za-z0-9_-])(?:{_SHORT}[ \t]*\.[ \t]*){{{MAX_DOTTED}}}")
 _LONG_TEXT: Final = re.compile(r'"""|\'\'\'')
 
 
@@ -80,19 +82,15 @@ def _text(path: Path, file: str) -> str:
         reason = error.strerror or "not readable"
         raise InputTrouble(f"cannot read the intent file: {reason}", file=file) from None
     if len(raw) > MAX_BYTES:
-        raise InputTrouble(
-            f"the intent file is larger than {MAX_BYTES} bytes; is it the right file?", file=file
-        )
+        raise InputTrouble(f"the intent file is larger than {MAX_BYTES} bytes; is it the right file?", file=file)
     try:
         text = raw.decode("utf-8-sig")
     except UnicodeDecodeError as error:
         line = raw.count(b"\n", 0, error.start) + 1
-        raise InputTrouble(
-            "the intent file is not UTF-8 text; save it as UTF-8", file=file, line=line
-        ) from None
+        raise InputTrouble("the intent file is not UTF-8 text; save it as UTF-8", file=file, line=line) from None
     for number, written in enumerate(text.split("\n"), start=1):
-        if len(written) > MAX_LINE or written.count(".") > MAX_DOTS:
-            message = f"a line may have {MAX_LINE} characters and {MAX_DOTS} dots; break it up"
+        if len(written) > MAX_LINE or _TOO_DOTTED.search(written):
+            message = f"a line may have {MAX_LINE} characters, a dotted name {MAX_DOTTED} parts; break it up"
             raise InputTrouble(message, file=file, line=number)
     return text
 

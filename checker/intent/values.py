@@ -22,7 +22,6 @@ from checker.trouble import NotAQuantity
 
 ABSOLUTE_ZERO_C: Final = -273.15
 
-_DBM: Final = re.compile(r"([+-]?\d+(?:\.\d*)?)\s*dBm", re.IGNORECASE)
 _LEVEL: Final = re.compile(r"(.*V)\s*(pp|pk-pk|p-p|pk|p|rms)?", re.IGNORECASE)
 _PEAK_PER_UNIT: Final = {"pp": 0.5, "pk-pk": 0.5, "p-p": 0.5, "pk": 1.0, "p": 1.0, "rms": math.sqrt(2)}
 
@@ -48,7 +47,8 @@ def amount(value: Any, unit: str) -> float:
 
 def fraction(value: Any) -> float:
     """A tolerance from 0 to 1. Raises BadValueError."""
-    number = amount(value, "%") if isinstance(value, str) else amount(value, "")
+    percent = isinstance(value, str) and value.rstrip().endswith(("%", "percent"))
+    number = amount(value, "%" if percent else "")
     if not 0.0 <= number <= 1.0:
         raise BadValueError(f'expected a fraction from 0 to 1, e.g. 0.05 or "5 %", got {shown(value)}')
     return number
@@ -63,11 +63,10 @@ def level(value: Any, impedance_ohm: float | None) -> float:
     wanted = 'expected a level with its unit, e.g. "-30 dBm", "10 mV" (r.m.s.), "10 mVpp" or "10 mVpk"'
     if not isinstance(value, str):
         raise BadValueError(f"{wanted}, got {shown(value)}")
-    power = _DBM.fullmatch(value.strip())
-    if power is not None:
+    if value.strip().lower().endswith("dbm"):
         if impedance_ohm is None:
             raise BadValueError(f"{shown(value)} is a power, and the port has no impedance; add one")
-        peak = 2.0 * math.sqrt(2.0 * _dbm_w(power[1]) * impedance_ohm)
+        peak = 2.0 * math.sqrt(2.0 * _dbm_w(value) * impedance_ohm)
     else:
         volts = _LEVEL.fullmatch(value.strip())
         if volts is None:
@@ -78,9 +77,9 @@ def level(value: Any, impedance_ohm: float | None) -> float:
     return peak
 
 
-def _dbm_w(text: str) -> float:
+def _dbm_w(value: str) -> float:
     try:
-        return float(1e-3 * 10.0 ** (float(text) / 10.0))
+        return float(1e-3 * 10.0 ** (_parsed(value, "dBm") / 10.0))
     except OverflowError:
         return math.inf
 
@@ -142,20 +141,9 @@ def _float(value: int | float) -> float:
 
 
 def _parsed(value: str, unit: str) -> float:
-    if unit in ("dB", "K/W"):
-        return _plain(value, unit)
     try:
         return parse_with_unit(value, unit)
     except NotAQuantity:
-        raise BadValueError(f"expected {_expected(unit)}, got {shown(value)}") from None
-
-
-def _plain(value: str, unit: str) -> float:
-    """Units without prefixes."""
-    body = value.strip().removesuffix(unit).strip()
-    try:
-        return float(body)
-    except ValueError:
         raise BadValueError(f"expected {_expected(unit)}, got {shown(value)}") from None
 
 
@@ -171,6 +159,7 @@ _EXAMPLES: Final = {
     "S": '"40 mS"',
     "%": '"5 %"',
     "dB": '"20 dB"',
+    "dBm": '"-30 dBm"',
     "K/W": '"200 K/W"',
 }
 

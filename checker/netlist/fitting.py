@@ -19,12 +19,15 @@ _BARE_NO = ("0", "n", "no", "false")
 
 def is_left_out(value: str, fields: Mapping[str, str]) -> bool:
     """True where the value says so ("DNP", "10k DNF"), a field of that name is set (a property without value
-    counts as set), or a field such as `Populate` says no."""
+    counts as set), a field such as `Populate` says no, or any field (a note) holds nothing but such a
+    word."""
     if _WORDS.search(value):
         return True
     for key, text in fields.items():
         name = re.sub(r"[\s_-]", "", key).lower()
         word = text.strip().lower()
+        if _WORDS.fullmatch(word):
+            return True
         if name in _FIELDS and (word not in _NO or (word == "" and key == "dnp")):
             return True
         if name in _FITTED_FIELDS and (word in _BARE_NO or _WORDS.search(text)):

@@ -14,6 +14,7 @@ from checker.netlist.types import Netlist
 from checker.trouble import InputTrouble
 
 _EXPORT = re.compile(r"\(\s*export[\s()]")
+_S_EXPRESSION = re.compile(r"\(\s*[\w{]+[\s({]")
 
 
 def read_netlist(
@@ -34,7 +35,7 @@ def read_netlist(
         raise InputTrouble("is empty; expected a netlist", file=name)
     sha256 = hashlib.sha256(data).hexdigest()
     start = text.lstrip()
-    if not start.startswith("("):
+    if not _S_EXPRESSION.match(start):
         return read_spice(
             text,
             name=name,

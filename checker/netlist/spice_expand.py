@@ -8,6 +8,8 @@ from dataclasses import dataclass, replace
 
 from checker.netlist.limits import ReadLimits, over
 from checker.netlist.spice_deck import Deck, Definition, Element
+from checker.netlist.spice_expression import TooMuch
+from checker.netlist.spice_lines import Card
 from checker.netlist.spice_model import model_name, read_model
 from checker.netlist.spice_parts import part_of
 from checker.netlist.spice_scope import Scope
@@ -54,6 +56,8 @@ class Expansion:
         self.remarks: list[Remark] = []
         self.expanded = 0
         self._spelling: dict[str, str] = {}
+        self._card: Card | None = None
+        """The card at work, for the message of an exceeded limit."""
         self._said: set[tuple[str, str, int]] = set()
 
     def run(self) -> None:
@@ -71,17 +75,27 @@ class Expansion:
             note="",
             models={},
         )
-        self.settle(frame)
-        for name in root.models:
-            self.model(frame, name)
-        self.fill(frame)
+        try:
+            self.settle(frame)
+            for name, card in root.models.items():
+                self._card = card
+                self.model(frame, name)
+            self.fill(frame)
+        except TooMuch as error:
+            bound = self.limits.steps if error.limit == "steps" else self.limits.depth
+            file, line = (self._card.file, self._card.line) if self._card else ("", 0)
+            over(error.limit, bound, "an expression", file=file, line=line)
 
     def settle(self, frame: Frame) -> None:
-        """Evaluate the parameters of a frame; those that do not compute are named once."""
-        for name, reason in frame.scope.settle().items():
-            card = frame.definition.param_cards.get(name)
-            if card is not None:
-                self.say(card.remark(f"the parameter {name[:40]} is unknown: {reason}"))
+        """Evaluate the parameters of a frame in their order, so that long chains are short when used; those
+        that do not compute are named once."""
+        for name in frame.scope.names():
+            card = self._card = frame.definition.param_cards.get(name, frame.definition.card)
+            try:
+                frame.scope.value(name)
+            except NotAQuantity as error:
+                if card is not None:
+                    self.say(card.remark(f"the parameter {name[:40]} is unknown: {error}"))
 
     def say(self, remark: Remark) -> None:
         """A remark, once a place however often the subcircuit is used."""
@@ -92,6 +106,7 @@ class Expansion:
 
     def fill(self, frame: Frame) -> None:
         for element in frame.definition.elements:
+            self._card = element.card
             self.expanded += 1
             if self.expanded > self.limits.expanded:
                 card = element.card
@@ -244,8 +259,9 @@ class _At:
     def number(self, word: str) -> float:
         return self._frame.scope.number(word)
 
-    def model(self, name: str) -> str | None:
-        return self._expansion.model(self._frame, name)
+    def model(self, name: str) -> tuple[str, str] | None:
+        key = self._expansion.model(self._frame, name)
+        return None if key is None else (key, self._expansion.models[key.lower()].kind)
 
     def multiplier(self) -> float:
         return self._frame.multiplier

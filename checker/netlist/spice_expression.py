@@ -8,14 +8,14 @@ import re
 from collections.abc import Callable
 
 from checker.quantity.spice_number import parse_spice_number
-from checker.trouble import NotAQuantity
+from checker.trouble import NotAQuantity, Trouble
 
 Lookup = Callable[[str, int], float]
 """Value of a parameter by lower-case name, asked for at a level of nesting; raises `NotAQuantity` for
 none."""
 
 _TOKEN = re.compile(
-    r"\s*(?:(?P<number>(?:\d+\.?\d*|\.\d+)(?:[eE][+-]?\d+)?[A-Za-zµμ%]*\d*)"
+    r"\s*(?:(?P<number>(?:\d+\.?\d*|\.\d+)(?:[eE][+-]?\d+)?[A-Za-zµμ]*\d*)"
     r"|(?P<name>[A-Za-z_][\w.#]*)|(?P<op>\*\*|<=|>=|==|!=|&&|\|\||[-+*/^()<>?:,!&|~%]))"
 )
 _BLANK = re.compile(r"\s*\Z")
@@ -64,7 +64,7 @@ _FUNCTIONS: dict[str, tuple[int, Callable[..., float]]] = {
 """Lower-case name to number of arguments and function; `log` is natural, as `ln`."""
 
 
-class TooMuch(NotAQuantity):
+class TooMuch(Trouble):
     """An expression that exceeds the steps or the depth allowed; `limit` names which."""
 
     def __init__(self, limit: str) -> None:
@@ -160,8 +160,6 @@ class _Parser:
     def name(self, name: str, level: int) -> float:
         try:
             return self.lookup(name, level)
-        except TooMuch:
-            raise
         except NotAQuantity:
             if name in _CONSTANTS:
                 return _CONSTANTS[name]

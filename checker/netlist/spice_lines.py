@@ -39,12 +39,15 @@ def cards_of(text: str, *, file: str, first_line: int = 1) -> tuple[list[Card], 
     first line of `text` in the file."""
     pieces: list[tuple[int, list[str]]] = []
     remarks: list[Remark] = []
-    control = 0
+    control = ended = 0
     for number, line in enumerate(text.split("\n"), start=first_line):
         bare = without_comment(line)
         if not bare:
             continue
         word = bare.split(None, 1)[0].lower()
+        if ended:
+            remarks.append(_remark(f"what follows the .end of line {ended} is not read", file, number))
+            break
         if control:
             control = 0 if word == ".endc" else control
         elif word == ".control":
@@ -53,7 +56,7 @@ def cards_of(text: str, *, file: str, first_line: int = 1) -> tuple[list[Card], 
                 _remark("a control block is passed over: it holds commands, no parts", file, number)
             )
         elif word == ".end":
-            break
+            ended = number
         elif bare[0] != "+":
             pieces.append((number, [bare]))
         elif pieces:

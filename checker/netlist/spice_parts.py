@@ -14,6 +14,17 @@ from checker.quantity.value import Origin
 from checker.trouble import NotAQuantity
 
 _PLAIN_NUMBER = re.compile(r"(\d+\.?\d*|\.\d+)(e[+-]?\d+)?", re.IGNORECASE)
+_KINDS = {
+    "R": {"r", "res"},
+    "C": {"c", "cap"},
+    "L": {"l", "ind"},
+    "D": {"d"},
+    "Q": {"npn", "pnp", "lpnp", "qnpn", "qpnp"},
+    "J": {"njf", "pjf"},
+    "M": {"nmos", "pmos", "vdmos"},
+}
+"""Kinds of model that an element letter takes: a node may bear the name of a model of another kind."""
+_WORD = re.compile(r"[A-Za-z_][\w.-]*")
 _NODE_COUNT = {"E": 4, "G": 4, "S": 4, "T": 4, "O": 4, "Q": 3, "J": 3, "Z": 3, "M": 4, "K": 0}
 """How many words after the name are nodes, where the line itself leaves it open; 2 for other letters."""
 _BEHAVIOURAL = frozenset({"poly", "value", "vol", "cur", "table", "laplace", "freq", "foster", "delay"})
@@ -34,8 +45,8 @@ class Place(Protocol):
     def number(self, word: str) -> float:
         """Value of a word there. Raises `NotAQuantity`."""
 
-    def model(self, name: str) -> str | None:
-        """Key text of the model of that name in force there, None for none."""
+    def model(self, name: str) -> tuple[str, str] | None:
+        """Key text and kind of the model of that name in force there, None for none."""
 
     def multiplier(self) -> float:
         """How many of the enclosing instances are in parallel."""
@@ -56,7 +67,10 @@ def _unknown(element: Element, place: Place, reason: str, count: int | None = No
     if element.letter != "K" and len(words) < 2:
         return None
     nodes = words[: min(wanted, len(words))]
-    return _part(element, place, nodes, value=" ".join(words[len(nodes) :]), unknown=reason, params={})
+    # A coupling that is not understood still touches its inductors.
+    controls = tuple(place.ref(word) for word in words[:-1]) if element.letter == "K" else ()
+    value = " ".join(words[len(nodes) :])
+    return _part(element, place, nodes, value=value, unknown=reason, params={}, controls=controls)
 
 
 def _part(
@@ -83,13 +97,14 @@ def _part(
 
 
 def _params(element: Element, place: Place) -> dict[str, float]:
-    """Pairs that are numbers; a pair that does not compute is named by the exception."""
+    """Pairs that are numbers. A plain word (a maker's name) is left out; what should compute and does not is
+    named by the exception."""
     params: dict[str, float] = {}
     for key, text in element.words.named.items():
         try:
             params[key] = place.number(text)
         except NotAQuantity as error:
-            if text[:1] in "{'":
+            if not _WORD.fullmatch(text):
                 raise NotAQuantity(f"{key}: {error}") from error
     for key, texts in element.words.groups.items():
         for index, text in enumerate(texts, start=2):
@@ -118,8 +133,9 @@ def _passive(element: Element, place: Place) -> Part:
     rest = element.words.positional[3:]
     named = element.words.named
     key = next((key for key in (element.letter.lower(), "value", "val") if key in named), "")
-    model = next((place.model(word) for word in rest[:2] if place.model(word)), None) or ""
-    words = [word for word in rest if not (model and place.model(word))]
+    at = next((index for index, word in enumerate(rest[:2]) if _model(word, element, place)), None)
+    model = "" if at is None else _model(rest[at], element, place) or ""
+    words = [word for index, word in enumerate(rest) if index != at]
     if not words and not key and not model:
         raise NotAQuantity("no value is written")
     number = place.number(words[0] if words else named[key]) if words or key else None
@@ -152,10 +168,10 @@ def _device(least: int, most: int, what: str) -> Callable[[Element, Place], Part
 
     def build(element: Element, place: Place) -> Part:
         words = [word for word in element.words.positional[1:] if word.lower() not in ("off", "on")]
-        at = _model_position(words, least, most, place)
+        at = _model_position(words, least, most, element, place)
         if at is None:
             raise NotAQuantity(f"too few words: expected {what} and a model")
-        named = place.model(words[at])
+        named = _model(words[at], element, place)
         params = _params(element, place)
         if len(words) > at + 1:
             params.setdefault("area", place.number(words[at + 1]))
@@ -167,11 +183,17 @@ def _device(least: int, most: int, what: str) -> Callable[[Element, Place], Part
     return build
 
 
-def _model_position(words: list[str], least: int, most: int, place: Place) -> int | None:
+def _model(word: str, element: Element, place: Place) -> str | None:
+    """Key text of the model a word names, where its kind fits the element."""
+    found = place.model(word)
+    return found[0] if found and found[1] in _KINDS[element.letter] else None
+
+
+def _model_position(words: list[str], least: int, most: int, element: Element, place: Place) -> int | None:
     """Which word is the model: the first that names one in force, else the last but an area factor behind
     it."""
     for index in range(least, min(most, len(words) - 1) + 1):
-        if place.model(words[index]):
+        if _model(words[index], element, place):
             return index
     last = len(words) - 1
     if last > least and _PLAIN_NUMBER.fullmatch(words[last]) and not _PLAIN_NUMBER.fullmatch(words[last - 1]):
@@ -184,7 +206,7 @@ def _controlled(by_nodes: bool) -> Callable[[Element, Place], Part | None]:
     understood."""
 
     def build(element: Element, place: Place) -> Part | None:
-        words = element.words.positional[1:]
+        words = _without_polynomial(element.words.positional[1:])
         if any(word.lower() in _BEHAVIOURAL for word in (*words[2:3], *element.words.named)):
             return _unknown(element, place, "a controlled source that is not linear is not modelled", count=2)
         if len(words) != (5 if by_nodes else 4):
@@ -198,6 +220,15 @@ def _controlled(by_nodes: bool) -> Callable[[Element, Place], Part | None]:
     return build
 
 
+def _without_polynomial(words: tuple[str, ...]) -> tuple[str, ...]:
+    """`a b POLY(1) c d 0 g` is linear: the same as `a b c d g` (for F and H, `a b POLY(1) v 0 g`)."""
+    if len(words) in (7, 8) and words[2].lower() == "poly" and words[3] == "1":
+        offset = words[-2]
+        if _PLAIN_NUMBER.fullmatch(offset) and float(offset) == 0:
+            return (*words[:2], *words[4:-2], words[-1])
+    return words
+
+
 def _coupling(element: Element, place: Place) -> Part:
     words = element.words.positional[1:]
     if len(words) < 3:
@@ -209,6 +240,8 @@ def _coupling(element: Element, place: Place) -> Part:
 def _line(element: Element, place: Place) -> Part:
     """T: a lossless line, four nodes and its impedance and delay as pairs."""
     nodes = _nodes(element, 4, "expected four nodes")
+    if "z0" not in element.words.named and "zo" not in element.words.named:
+        raise NotAQuantity("no impedance Z0 is written")
     return _part(element, place, nodes, value=" ".join(element.words.positional[5:]))
 
 

@@ -9,9 +9,9 @@ from checker.netlist.limits import ReadLimits
 from checker.netlist.spice_cards import CardReader
 from checker.netlist.spice_deck import Deck, Definition
 from checker.netlist.spice_expand import GROUND, Expansion
-from checker.netlist.spice_expression import TooMuch
 from checker.netlist.spice_includes import Folders
 from checker.netlist.spice_lines import cards_of, without_comment
+from checker.netlist.spice_pads import without_guesses
 from checker.netlist.spice_title import is_element, title_of
 from checker.netlist.types import Netlist, Remark
 from checker.quantity.value import Origin
@@ -34,12 +34,9 @@ def read_spice(
     """
     deck = _declared(text, name, path, include_dirs, limits, size)
     expansion = Expansion(deck, limits)
-    try:
-        expansion.run()
-    except TooMuch as error:
-        raise InputTrouble(str(error), file=name) from error
+    expansion.run()
     understood = sum(not part.unknown for part in expansion.parts)
-    if not deck.directives and 2 * understood <= len(expansion.parts):
+    if not deck.directives and (2 * understood < len(expansion.parts) or not expansion.parts):
         raise InputTrouble(
             "neither a SPICE-style netlist nor a KiCad export: hardly a line reads as an element; "
             "give the netlist that the schematic editor exports",
@@ -50,7 +47,7 @@ def read_spice(
         format="spice",
         sha256=sha256,
         title=deck.title,
-        parts=tuple(expansion.parts),
+        parts=tuple(without_guesses(expansion.parts, expansion.models)),
         nets=expansion.nets,
         models=expansion.models,
         temperature_c=deck.temperature_c,

@@ -32,6 +32,10 @@ class Scope:
             or (self._outer is not None and self._outer.knows(name))
         )
 
+    def names(self) -> tuple[str, ...]:
+        """Names given a text on this level, in their order."""
+        return tuple(self._texts)
+
     def give(self, name: str, value: float) -> None:
         """Set a value that overrides the text of that name."""
         self._values[name] = value
@@ -56,17 +60,6 @@ class Scope:
             self._open.pop()
         return self._values[name]
 
-    def settle(self) -> dict[str, str]:
-        """Evaluate all parameters of this level in their order, so that long chains are short when used; the
-        reasons of those that do not compute, by name."""
-        reasons = {}
-        for name in self._texts:
-            try:
-                self.value(name)
-            except NotAQuantity as error:
-                reasons[name] = str(error)
-        return reasons
-
     def number(self, word: str, level: int = 0) -> float:
         """Value of a word: number, parameter name, or expression with or without braces. Raises
         `NotAQuantity`."""
@@ -78,10 +71,13 @@ class Scope:
             return self.value(text.lower(), level)
         try:
             return parse_spice_number(text)
-        except NotAQuantity:
-            if _OPERATOR.search(text):
+        except NotAQuantity as error:
+            if not _OPERATOR.search(text):
+                raise
+            try:
                 return self._evaluate(text, level)
-            raise
+            except NotAQuantity:
+                raise error from None
 
     def _evaluate(self, text: str, level: int) -> float:
         return evaluate(text, self.value, steps=self._limits.steps, depth=self._limits.depth, level=level)

@@ -32,12 +32,12 @@ def read_source(words: Sequence[str], named: Mapping[str, str], number: Number, 
     `amperes`: a current source, where `5A` means five amperes and not five atto. A waveform ends at the next
     keyword, bracket or not.
     """
-    reader = _Reader(words, lambda word: number(_AMPERES.sub(r"\1", word) if amperes else word))
+    reader = _Reader(words, (lambda word: number(_without_ampere(word))) if amperes else number)
     reader.read()
     if "dc" in named:
         reader.dc = reader.number(named["dc"])
     if "ac" in named:
-        reader.ac = _magnitude(named["ac"], reader.number)
+        reader.ac = reader.number(named["ac"])
     index = _REST_INDEX.get(reader.waveform)
     rest = reader.shape[index] if index is not None and index < len(reader.shape) else None
     return Source(
@@ -50,13 +50,9 @@ def read_source(words: Sequence[str], named: Mapping[str, str], number: Number, 
     )
 
 
-def _magnitude(word: str, number: Number) -> float:
-    try:
-        return number(word)
-    except NotAQuantity:
-        if word.lower() in _WAVEFORMS:
-            return 1.0
-        raise
+def _without_ampere(word: str) -> str:
+    found = _AMPERES.fullmatch(word)
+    return found[1] if found else word
 
 
 class _Reader:

@@ -5,8 +5,18 @@ from __future__ import annotations
 import re
 from dataclasses import dataclass
 
-_TOKEN = re.compile(r"\{[^{}]*\}|'[^']*'|\"[^\"]*\"|[=(),]|[^\s=(),{}'\"][^\s=(),{}]*|\S")
-_COMMA_NUMBER = re.compile(r"(?<=\s)\d+,\d+(?=[A-Za-zµμΩ]|\s|$)")
+_PIECE = re.compile(
+    r"\{[^{}]*\}|'[^']*'|\"[^\"]*\"|[=(),]"
+    # A word may hold a group in braces (`~{RST}`), or a bracket after a hyphen (`Net-(Q1-Pad2)`).
+    r"|[^\s=(),{}'\"](?:[^\s=(),{}]|\{[^{}\s]*\}|(?<=-)\([^\s()]*\))*"
+    r"|\S"
+)
+_REST = re.compile(r"[^\s=(),{}]*")
+_VALUE_RUN = re.compile(r"[^\s(),{}'\"=]*")
+_BLANKS = re.compile(r"\s*")
+_COMMA_NUMBER = re.compile(r"\d+,\d+(?=[A-Za-zµμΩ]|\s|$)")
+_COMMA_FROM = 3
+"""A decimal comma is looked for only behind the name and two nodes, where commas may part nodes."""
 _NAME = re.compile(r"[A-Za-z_][\w.]*")
 _ASSIGNMENT = re.compile(r"\{[^{}]*\}|'[^']*'|\"[^\"]*\"|(?<![\w.])([A-Za-z_][\w.]*)\s*=(?!=)")
 
@@ -23,40 +33,65 @@ class Words:
 
 def split_words(text: str, *, decimal_comma: bool = False) -> Words:
     """Split a card. With `decimal_comma`, a lone `4,7uH` from the fourth word on stays one word."""
-    pieces = _tokens(text, decimal_comma)
     positional: list[str] = []
     named: dict[str, str] = {}
     groups: dict[str, tuple[str, ...]] = {}
-    index = 0
-    while index < len(pieces):
-        piece = pieces[index]
-        index += 1
-        if piece == "=" and positional and index < len(pieces):
+    at = 0
+    while found := _PIECE.search(text, at):
+        piece = found.group()
+        at = found.end()
+        if piece == "=" and positional:
             key = positional.pop().lower()
-            index += pieces[index] == "("
-            named[key] = pieces[index] if index < len(pieces) else ""
-            index += 1
-            more = []
-            while index + 1 < len(pieces) and pieces[index] == ",":
-                more.append(pieces[index + 1])
-                index += 2
+            named[key], at = _value(text, at)
+            more, at = _more_values(text, at)
             if more:
-                groups[key] = tuple(more)
+                groups[key] = more
+        elif (
+            decimal_comma
+            and len(positional) >= _COMMA_FROM
+            and (comma := _COMMA_NUMBER.match(text, found.start()))
+        ):
+            at = _end(_REST, text, comma.end())
+            positional.append(text[found.start() : at])
         elif piece not in "=(),":
             positional.append(piece)
-    return Words(
-        positional=tuple(word for word in positional if word.lower() != "params:"), named=named, groups=groups
-    )
+    kept = tuple(word for word in positional if word.lower() != "params:")
+    return Words(positional=kept, named=named, groups=groups)
 
 
-def _tokens(text: str, decimal_comma: bool) -> list[str]:
-    if decimal_comma and "," in text:
-        head = text.split(None, 3)
-        if len(head) == 4 and "," in head[3]:
-            kept = _COMMA_NUMBER.sub(lambda found: found.group().replace(",", "\x1f"), " " + head[3])
-            pieces = [*head[:3], *_TOKEN.findall(kept)]
-            return [piece.replace("\x1f", ",") for piece in pieces]
-    return _TOKEN.findall(text)
+def _value(text: str, at: int) -> tuple[str, int]:
+    """The value behind an equals sign: a quoted or braced text, or all up to a blank, comma or closing
+    bracket that belongs to no bracket of its own; and where it ends."""
+    start = _end(_BLANKS, text, at)
+    opened = text[start : start + 1]
+    if opened and opened in "{'\"":
+        end = text.find({"{": "}"}.get(opened, opened), start + 1)
+        return (text[start : end + 1], end + 1) if end >= 0 else (text[start:].rstrip(), len(text))
+    depth, end = 0, start
+    while True:
+        end = _end(_VALUE_RUN, text, end)
+        mark = text[end : end + 1]
+        if mark == "(":
+            depth += 1
+        elif mark == ")" and depth:
+            depth -= 1
+        elif not (mark and depth and mark != "="):
+            return text[start:end], end
+        end += 1
+
+
+def _end(pattern: re.Pattern[str], text: str, at: int) -> int:
+    """Where a pattern that always matches ends."""
+    found = pattern.match(text, at)
+    return found.end() if found else at
+
+
+def _more_values(text: str, at: int) -> tuple[tuple[str, ...], int]:
+    values = []
+    while text[at : at + 1] == ",":
+        value, at = _value(text, at + 1)
+        values.append(value)
+    return tuple(values), at
 
 
 def split_assignments(text: str) -> list[tuple[str, str]]:

@@ -54,7 +54,25 @@ def _decoded(data: bytes, name: str) -> str:
             return data.decode("utf-16")
         except UnicodeDecodeError as error:
             raise InputTrouble("marked as UTF-16 but broken; save it as UTF-8", file=name) from error
+    if unmarked := _unmarked_utf16(data):
+        return unmarked
     try:
         return data.decode("utf-8-sig")
     except UnicodeDecodeError:
         return data.decode("latin-1")
+
+
+def _unmarked_utf16(data: bytes) -> str:
+    """Text of UTF-16 without its mark: Latin letters then leave every second byte zero. Empty where it is
+    not."""
+    sample = data[:512]
+    for encoding, zeros, others in (
+        ("utf-16-le", sample[1::2], sample[::2]),
+        ("utf-16-be", sample[::2], sample[1::2]),
+    ):
+        if len(sample) >= 4 and zeros.count(0) > 0.9 * len(zeros) and 0 not in others:
+            try:
+                return data.decode(encoding)
+            except UnicodeDecodeError:
+                return ""
+    return ""

@@ -144,7 +144,7 @@ def _exponent(prefix: str, unit: str, text: str) -> int:
         return 6
     if unit == "ohm" and prefix in ("u", "U", "n", "N", "p", "P", "f"):
         raise _refusal(text, unit, f"the prefix {prefix} belongs to another kind of part")
-    if unit in _NEEDS_PREFIX and prefix in ("M", "K", "G", "T"):
+    if unit in _NEEDS_PREFIX and prefix in ("M", "K", "k", "G", "T"):
         raise _refusal(text, unit, f"the prefix {prefix} would make it absurdly large")
     return EXPONENTS[prefix if prefix in EXPONENTS else prefix.lower()]
 

@@ -169,8 +169,8 @@ class _Helper:
     scale: Callable[[float], float]
 
 
-BY_CONDUCTANCE = _Helper(gmin=lambda t: 10.0 ** (-2.0 - 11.0 * t) if t < 1.0 else 0.0, scale=lambda t: 1.0)
-BY_SOURCES = _Helper(gmin=lambda t: 0.0, scale=lambda t: t)
+BY_CONDUCTANCE = _Helper(gmin=lambda t: 10.0 ** (-2.0 - 11.0 * t) if t < 1.0 else 0.0, scale=lambda _t: 1.0)
+BY_SOURCES = _Helper(gmin=lambda _t: 0.0, scale=lambda t: t)
 
 
 def _continue(assembler: Assembler, x: FloatArray, done: BoolArray, helper: _Helper) -> tuple[FloatArray, BoolArray]:

@@ -1,0 +1,160 @@
+"""The order of the steps, from a netlist's path to a finished report."""
+
+from __future__ import annotations
+
+import datetime
+from dataclasses import dataclass, replace
+from pathlib import Path
+
+from checker import __version__
+from checker.board import QUANTITY_NAMES, Board
+from checker.constants import ZERO_CELSIUS_K
+from checker.examine import examine
+from checker.intent.checks import check_quantity
+from checker.intent.find import find_intent
+from checker.intent.read import read_intent
+from checker.intent.starter import starter_text
+from checker.intent.types import Intent
+from checker.judge.accept import sort_accepted
+from checker.judge.discover import Rulebook, load_rules
+from checker.judge.finding import to_findings, to_unchecked
+from checker.judge.limits import limit_values, resolve_limits
+from checker.judge.verdict import Examination, Limits
+from checker.netlist.read import read_netlist
+from checker.record import (
+    Checked,
+    Conditions,
+    Finding,
+    Report,
+    SourceFile,
+    Stage,
+    Tool,
+    Unchecked,
+    WorkingLine,
+    in_order,
+)
+from checker.remedy.search import propose
+from checker.setup import Setup, set_up
+from checker.summary.ledger import Ledger
+from checker.summary.stages import group_records, stage_records
+from checker.summary.surroundings import cautions, gains, islands, nets, ports, rails
+
+MOST_REMEDIES = 24
+"""Findings for which a remedy is sought, worst first: each costs a few stacked solves."""
+
+
+@dataclass(frozen=True, slots=True, kw_only=True)
+class Outcome:
+    """What a check leaves: the report, the workings behind its figures, and whether something internal failed."""
+
+    report: Report
+    workings: tuple[WorkingLine, ...]
+    incomplete: bool
+
+
+def check_board(netlist_path: Path, intent_path: Path | None, *, today: datetime.date | None = None) -> Outcome:
+    """Read, solve, recognise, judge, mend and report one board.
+
+    `intent_path` None: the file beside the netlist, if any. `today` decides which acceptances still hold (default:
+    the clock). Raises InputTrouble for unusable input.
+    """
+    rulebook = load_rules()
+    setup = ready(netlist_path, intent_path)
+    limits = resolve_limits(rulebook.rules, setup.intent)
+    check_quantity(setup.intent, QUANTITY_NAMES)
+    board = setup.board(setup.scenarios)
+    examination = examine(board, rulebook.rules, limits)
+    findings = _mended(setup, board, rulebook, limits, examination)
+    day = today or datetime.datetime.now(tz=datetime.UTC).date()
+    accepted = sort_accepted(findings, setup.intent, rulebook.rules, day)
+    ledger = Ledger(board)
+    stages = stage_records(setup, ledger)
+    faults = tuple(str(failure) for failure in examination.failures)
+    report = Report(
+        tool=Tool(version=__version__),
+        netlist=SourceFile(path=setup.netlist.path, format=setup.netlist.format, sha256=setup.netlist.sha256),
+        conditions=_conditions(setup, limits),
+        checked=Checked(stages=sum(_counts(stage) for stage in stages), of=len(stages)),
+        incomplete=bool(faults),
+        faults=faults,
+        assumptions=(*setup.circuit.assumptions, *setup.recognition.assumptions, *_remarks(setup)),
+        cautions=(*cautions(setup), *rulebook.cautions, *accepted.cautions),
+        rails=rails(setup),
+        nets=nets(setup, ledger),
+        islands=islands(setup, ledger),
+        stages=stages,
+        groups=group_records(setup, ledger),
+        ports=ports(setup, ledger),
+        gains=gains(setup, ledger),
+        findings=accepted.open,
+        accepted=accepted.accepted,
+        unchecked=(*_unknowns(setup), *_unsolved(stages), *to_unchecked(examination)),
+        unavailable=ledger.unavailable,
+    )
+    return Outcome(report=in_order(report), workings=tuple(ledger.workings), incomplete=bool(faults))
+
+
+def ready(netlist_path: Path, intent_path: Path | None) -> Setup:
+    """Read both files and set the board up."""
+    netlist = read_netlist(netlist_path)
+    where = intent_path or find_intent(netlist_path)
+    return set_up(netlist, read_intent(where) if where is not None else Intent())
+
+
+def starter_intent(netlist_path: Path) -> str:
+    """A starter intent file from what the netlist shows."""
+    setup = set_up(read_netlist(netlist_path), Intent())
+    lines = [(rail.net, float(rail.volts)) for rail in setup.circuit.rails if rail.source != "element"]
+    missing = [(u.nets[0], None) for u in setup.circuit.unknowns if u.datum.startswith("volts") and u.nets]
+    found = [(p.name, p.net, p.role or "input", p.reference_ohm) for p in setup.ports]
+    return starter_text([*lines, *missing], found, setup.circuit.band_hz)
+
+
+def _conditions(setup: Setup, limits: Limits) -> Conditions:
+    return Conditions(
+        temperature_c=round(float(setup.circuit.temperature_k[0]) - ZERO_CELSIUS_K, 6),
+        band_hz=setup.circuit.band_hz,
+        f0_hz=setup.f0_hz,
+        limits=limit_values(limits),
+        intent=setup.intent.path or None,
+    )
+
+
+def _mended(
+    setup: Setup, board: Board, rulebook: Rulebook, limits: Limits, examination: Examination
+) -> tuple[Finding, ...]:
+    """Findings with a remedy where one was found and proved; effects of another finding get none of their own."""
+    pairs = to_findings(examination, setup.circuit)
+    order = sorted(range(len(pairs)), key=lambda k: (pairs[k][1].severity != "must-fix", k))
+    sought = {k for k in order if pairs[k][1].caused_by is None and pairs[k][0].evidence.levers}
+    chosen = set(sorted(sought, key=order.index)[:MOST_REMEDIES])
+    out = []
+    for k, (verdict, finding) in enumerate(pairs):
+        remedy = propose(verdict, board, rulebook.rules, limits, setup.board) if k in chosen else None
+        out.append(finding if remedy is None else replace(finding, remedy=remedy))
+    return tuple(out)
+
+
+def _counts(stage: Stage) -> bool:
+    """A stage counts as checked if it has a certified operating point."""
+    return stage.bias is not None
+
+
+def _unknowns(setup: Setup) -> list[Unchecked]:
+    """Parts and nets that cannot be solved with."""
+    return [Unchecked(subject=u.ref, rule="", datum=u.datum, supply=u.supply) for u in setup.circuit.unknowns]
+
+
+def _unsolved(stages: tuple[Stage, ...]) -> list[Unchecked]:
+    """Stages without an operating point."""
+    return [
+        Unchecked(subject=s.id, rule="", datum="operating point", supply=s.reason) for s in stages if s.bias is None
+    ]
+
+
+def _remarks(setup: Setup) -> tuple[str, ...]:
+    """What the reader could not use or passed over on purpose."""
+    return tuple(
+        f"{remark.origin.file}:{remark.origin.line}: {remark.text}" if remark.origin.line else remark.text
+        for remark in setup.netlist.remarks
+    )

@@ -1,0 +1,94 @@
+"""Natural frequencies of the linearised circuit: is the operating point one that the board would stay at?
+
+Generalised eigenvalues of (G + s C) x = 0 by shift and invert: with A = (G + sigma C)^-1 C an eigenvalue lambda of A is
+a pole at s = sigma - 1/lambda. One shift sees poles of its own order of magnitude exactly and very fast or slow ones
+not at all, so shifts stand four decades apart and each answers for its neighbourhood.
+"""
+
+from __future__ import annotations
+
+import numpy as np
+from numpy.typing import NDArray
+
+from checker.solve.admittance import device_pencils
+from checker.solve.operating import OperatingPoint
+
+FloatArray = NDArray[np.float64]
+ComplexArray = NDArray[np.complex128]
+
+SHIFTS = (1e0, 1e3, 1e6, 1e9, 1e12)
+REACH = 3e4
+"""A shift answers for poles within this factor of it."""
+MARGIN = 1e-6
+"""A pole counts as growing if its real part is more than this part of its magnitude: under it is arithmetic."""
+
+
+def growing_poles(point: OperatingPoint, without: str = "") -> ComplexArray:
+    """Poles of scenario 0 with positive real part [rad/s]; `without`: a bipolar whose pencil is left out.
+
+    Devices without bias are left out: their islands have no figures anyway.
+    """
+    g, c = _pencil(point, without)
+    live = np.flatnonzero(np.abs(g).sum(axis=1) + np.abs(c).sum(axis=1) > 0.0)
+    g, c = g[np.ix_(live, live)], c[np.ix_(live, live)]
+    if not len(live) or not np.any(c):
+        return np.zeros(0, dtype=complex)
+    found: list[complex] = []
+    for shift in SHIFTS:
+        try:
+            eigen = np.linalg.eigvals(np.linalg.solve(g + shift * c, c))
+        except np.linalg.LinAlgError:
+            continue
+        eigen = eigen[np.abs(eigen) > 1e-12 * np.abs(eigen).max(initial=0.0)]
+        poles = shift - 1.0 / eigen[np.abs(eigen) > 0.0]
+        near = (np.abs(poles) < shift * REACH) & (np.abs(poles) > shift / REACH)
+        for pole in poles[near & (poles.real > MARGIN * np.abs(poles))].tolist():
+            if all(abs(pole - other) > 1e-3 * abs(pole) for other in found):
+                found.append(pole)
+    return np.array(sorted(found, key=lambda s: (s.real, s.imag)), dtype=complex)
+
+
+def _pencil(point: OperatingPoint, without: str) -> tuple[FloatArray, FloatArray]:
+    """G and C (u, u) of scenario 0: free nodes, inner nodes, floating sources and inductors."""
+    c, plan = point.circuit, point.plan
+    in_tree = {step.source for step in plan.known}
+    floating = [j for j in range(len(c.voltages.names)) if j not in in_tree]
+    n = plan.n_nodes
+    size = n + len(floating) + len(c.inductors.names)
+    g, cap = np.zeros((size, size)), np.zeros((size, size))
+    for matrix, table, value in (
+        (g, c.resistors.nodes, 1.0 / c.resistors.value[0]),
+        (cap, c.capacitors.nodes, c.capacitors.value[0]),
+    ):
+        for (a, b), y in zip(table.tolist(), value.tolist(), strict=True):
+            matrix[a, a] += y
+            matrix[b, b] += y
+            matrix[a, b] -= y
+            matrix[b, a] -= y
+    (g_b, c_b), (g_d, c_d) = device_pencils(point)
+    for placed, dg, dc in ((plan.bipolars, g_b, c_b), (plan.diodes, g_d, c_d)):
+        for j, nodes in enumerate(placed.nodes):
+            if placed.table.names[j] != without and np.isfinite(dg[0, j]).all():
+                np.add.at(g, np.ix_(nodes, nodes), dg[0, j])
+                np.add.at(cap, np.ix_(nodes, nodes), dc[0, j])
+    _branches(point, floating, g, cap, n)
+    fixed = np.flatnonzero(plan.is_known)
+    free = np.setdiff1d(np.arange(size), fixed)
+    return g[np.ix_(free, free)], cap[np.ix_(free, free)]
+
+
+def _branches(point: OperatingPoint, floating: list[int], g: FloatArray, cap: FloatArray, n: int) -> None:
+    c = point.circuit
+    first = n + len(floating)
+    ends = [c.voltages.nodes[j].tolist() for j in floating] + c.inductors.nodes.tolist()
+    for row, (a, b) in enumerate(ends, start=n):
+        g[a, row] += 1.0
+        g[b, row] -= 1.0
+        g[row, a] += 1.0
+        g[row, b] -= 1.0
+    for j, henry in enumerate(c.inductors.value[0].tolist()):
+        cap[first + j, first + j] -= henry
+    for j, (p, q) in enumerate(c.couplings.pair.tolist()):
+        mutual = c.couplings.k[0, j] * np.sqrt(c.inductors.value[0, p] * c.inductors.value[0, q])
+        cap[first + p, first + q] -= mutual
+        cap[first + q, first + p] -= mutual

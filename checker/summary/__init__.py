@@ -1,0 +1,1 @@
+"""From figures to the report's records: every null gets its reason here."""

@@ -1,0 +1,239 @@
+"""Stages and groups as the report lists them."""
+
+from __future__ import annotations
+
+import math
+
+from checker.circuit.types import PartFact
+from checker.quantity.figure import Figure
+from checker.record import (
+    Bias,
+    CardUsed,
+    Connection,
+    Group,
+    Location,
+    SmallSignal,
+    Specs,
+    Stage,
+    StageLink,
+    TerminalFigures,
+    Thumb,
+)
+from checker.setup import Setup
+from checker.stages import types as found
+from checker.stages.direction import TERMINALS
+from checker.summary.ledger import LATER, MIDDLE, Ledger
+from checker.words import Terminal
+
+AGREES = 0.15
+"""Hand formula and solver count as agreeing within this: what a hand calculation leaves out on purpose."""
+COMPARED_AT_TERMINALS = ("voltage_gain",)
+
+
+def stage_records(setup: Setup, ledger: Ledger) -> tuple[Stage, ...]:
+    """All stages, and every transistor that could not be solved as an unclassified one."""
+    solved = [_stage(setup, ledger, stage) for stage in setup.recognition.stages]
+    known = {stage.device for stage in setup.recognition.stages}
+    lost = [
+        _lost(setup, ledger, ref, fact)
+        for ref, fact in setup.circuit.parts.items()
+        if fact.kind in ("bipolar", "fet") and ref not in known
+    ]
+    return tuple(solved + lost)
+
+
+def _lost(setup: Setup, ledger: Ledger, ref: str, fact: PartFact) -> Stage:
+    datum = next((u.datum for u in setup.circuit.unknowns if u.ref == ref), "its model")
+    reason = f"not solved: {datum}"
+    ledger.missing(reason, "stages", ref)
+    return Stage(
+        id=ref,
+        device=ref,
+        configuration="unclassified",
+        role="bias",
+        confidence=0.0,
+        reason=reason,
+        location=_location(fact),
+    )
+
+
+def _location(fact: PartFact | None) -> Location | None:
+    if fact is None or not fact.origin.file:
+        return None
+    return Location(file=fact.origin.file, line=fact.origin.line, sheet=fact.origin.sheet)
+
+
+def _stage(setup: Setup, ledger: Ledger, stage: found.Stage) -> Stage:
+    fact = setup.circuit.parts.get(stage.device)
+    nets = setup.circuit.nets
+    return Stage(
+        id=stage.id,
+        device=stage.device,
+        configuration=stage.configuration,
+        role=stage.role,
+        confidence=stage.confidence,
+        reason=stage.reason,
+        groups=stage.groups,
+        entry=_connection(setup, stage.device, stage.entry),
+        exit=_connection(setup, stage.device, stage.exit),
+        input_ref=nets[stage.input_link.stage_node] if stage.input_link else None,
+        output_ref=nets[stage.output_link.stage_node] if stage.output_link else None,
+        links=tuple(
+            StageLink(
+                side=side,
+                kind=link.kind,
+                part=link.part or None,
+                net=nets[link.stage_node],
+                far_net=nets[link.far_node],
+                other=link.other or None,
+            )
+            for side, link in (("input", stage.input_link), ("output", stage.output_link))
+            if link is not None
+        ),
+        location=_location(fact),
+        card=_card(fact),
+        bias=_bias(setup, ledger, stage),
+        small_signal=_small(ledger, stage),
+        specs=_specs(ledger, "stages", stage.id),
+        terminal=_terminal(ledger, stage.id),
+        rule_of_thumb=_thumbs(ledger, stage),
+        evidence=stage.evidence,
+    )
+
+
+def _connection(setup: Setup, device: str, terminal: Terminal | None) -> Connection | None:
+    if terminal is None:
+        return None
+    row = setup.circuit.bipolars.nodes[setup.circuit.bipolars.names.index(device)]
+    return Connection(terminal=terminal, net=setup.circuit.nets[int(row[TERMINALS.index(terminal)])])
+
+
+def _card(fact: PartFact | None) -> CardUsed | None:
+    if fact is None:
+        return None
+    if fact.card is None:
+        return CardUsed(name=fact.model_source, source="the netlist", assumed=False) if fact.model_source else None
+    return CardUsed(name=fact.card.name, source=fact.model_source or fact.card.source, assumed=fact.card.assumed)
+
+
+def _bias(setup: Setup, ledger: Ledger, stage: found.Stage) -> Bias | None:
+    if not math.isfinite(setup.point.bipolar["ic_a"][0, stage.index]):
+        ledger.missing(stage.reason or "no certified operating point", "stages", stage.id, "bias")
+        return None
+    return _own_bias(ledger, stage)
+
+
+def _own_bias(ledger: Ledger, stage: found.Stage) -> Bias:
+    keys = ("ic_a", "ib_a", "vce_v", "vbe_v", "headroom_v", "power_w", "tj_c")
+    values = {key: ledger.real(key, stage.id, "stages", stage.id, "bias", key) for key in keys}
+    polarity = _sign(ledger, stage)
+    for key in ("ic_a", "ib_a"):
+        current = values[key]
+        values[key] = None if current is None else polarity * current
+    return Bias(region=ledger.board.region_words(stage.id) or None, **values)
+
+
+def _sign(ledger: Ledger, stage: found.Stage) -> float:
+    return float(ledger.board.circuit.bipolars.polarity[stage.index])
+
+
+def _small(ledger: Ledger, stage: found.Stage) -> SmallSignal:
+    keys = ("gm_s", "re_ohm", "rpi_ohm", "ro_ohm", "ft_hz")
+    return SmallSignal(
+        **{key: ledger.real(key, stage.id, "stages", stage.id, "small_signal", key) for key in keys}
+    )
+
+
+def _specs(ledger: Ledger, kind: str, subject: str) -> Specs:
+    path = (kind, subject, "specs")
+    for key in ("clip_up_v", "clip_down_v", "swing_vpp", "noise_figure_db"):
+        ledger.missing(LATER, *path, key)
+    return Specs(
+        **{
+            key: ledger.complex(key, subject, *path, key)
+            for key in ("voltage_gain", "current_gain", "input_impedance_ohm", "output_impedance_ohm")
+        },
+        **{
+            key: ledger.real(key, subject, *path, key)
+            for key in (
+                "voltage_gain_db",
+                "power_gain_db",
+                "low_corner_hz",
+                "high_corner_hz",
+                "droop_low_db",
+                "droop_high_db",
+            )
+        },
+    )
+
+
+def _terminal(ledger: Ledger, subject: str) -> TerminalFigures:
+    return TerminalFigures(
+        **{
+            key: ledger.complex(f"terminal_{key}", subject, "stages", subject, "terminal", key)
+            for key in ("voltage_gain", "input_impedance_ohm", "output_impedance_ohm")
+        }
+    )
+
+
+def _thumbs(ledger: Ledger, stage: found.Stage) -> dict[str, Thumb]:
+    out = {}
+    for key, hand in ledger.board.rule_of_thumb(stage.id).items():
+        name = f"terminal_{key}" if key in COMPARED_AT_TERMINALS else key
+        out[key] = _thumb(ledger, stage, key, hand, ledger.board.ask(name, stage.id))
+    return out
+
+
+def _thumb(ledger: Ledger, stage: found.Stage, key: str, hand: Figure, exact: Figure) -> Thumb:
+    value = abs(float(hand.values[0, 0]))
+    true = abs(complex(exact.values[0, MIDDLE]))
+    ledger.note(hand, complex(hand.values[0, 0]))
+    if not math.isfinite(true) or true == 0.0:
+        ledger.missing("the exact figure is not available", "stages", stage.id, "rule_of_thumb", key)
+        return Thumb(value=value, exact=None, deviation=None, agrees=None, formula=hand.working.formula)
+    deviation = (value - true) / true
+    agrees = abs(deviation) <= AGREES
+    note = "" if agrees else _why_not(ledger, stage, exact)
+    return Thumb(
+        value=value, exact=true, deviation=deviation, agrees=agrees, formula=hand.working.formula, note=note
+    )
+
+
+def _why_not(ledger: Ledger, stage: found.Stage, exact: Figure) -> str:
+    """What the hand formula leaves out and the solver does not."""
+    f0 = ledger.board.bench.f0_hz
+    ft = ledger.board.ask("ft_hz", stage.id).values[0, 0]
+    if math.isfinite(ft) and f0 > ft / 50.0:
+        return "the formula knows no charges; they count at this frequency"
+    value = complex(exact.values[0, MIDDLE])
+    if abs(value.imag) > 0.3 * abs(value):
+        return "reactive at this frequency; the formula is for mid-band"
+    return "the formula leaves out ro, lead resistances and parts beyond the nearest ones"
+
+
+def group_records(setup: Setup, ledger: Ledger) -> tuple[Group, ...]:
+    """All groups."""
+    out = []
+    for group in setup.recognition.groups:
+        ledger.missing("terminal figures are given for single devices", "groups", group.id, "terminal")
+        out.append(
+            Group(
+                id=group.id,
+                configuration=group.configuration,
+                devices=group.devices,
+                entry=_outer(setup, group.entry),
+                exit=_outer(setup, group.exit),
+                specs=_specs(ledger, "groups", group.id),
+                evidence=group.evidence,
+            )
+        )
+    return tuple(out)
+
+
+def _outer(setup: Setup, where: tuple[str, Terminal] | None) -> Connection | None:
+    if where is None:
+        return None
+    connection = _connection(setup, *where)
+    return None if connection is None else Connection(
+        terminal=connection.terminal, net=connection.net, device=where[0]
+    )
