@@ -9,6 +9,7 @@ import importlib.util
 import re
 from collections.abc import Iterable
 from pathlib import Path
+from typing import NamedTuple
 
 from checker.judge.plugins import BUILTIN, plugins
 from checker.judge.verdict import AnyRule
@@ -20,25 +21,31 @@ _ID = re.compile(r"[a-z][a-z0-9]*(-[a-z0-9]+)*")
 _TOLD = ("id", "summary", "theme", "weight", "bench", "source", "applies")
 
 
-def load_rules(cautions: list[str] | None = None) -> tuple[AnyRule, ...]:
-    """All rules of this installation, sorted by id.
+class Rulebook(NamedTuple):
+    """The rules sorted by id, and a caution for each plug-in that could not be used."""
 
-    A plug-in that cannot be used is left out, with a sentence that names it appended to `cautions`.
+    rules: tuple[AnyRule, ...]
+    cautions: tuple[str, ...]
+
+
+def load_rules() -> Rulebook:
+    """All rules of this installation.
+
     Raises `InputTrouble` where there is none, where the package `rules` is not the one installed beside
     `checker` (it is then somebody else's, and is not imported), or where two rules share an id.
     """
     _stands_beside()
     found = list(_catalogue(BUILTIN))
+    cautions = []
     for name, target in plugins():
         try:
             found += _catalogue(target)
         except Exception as trouble:  # whatever a plug-in raises is its own fault, and named
-            if cautions is not None:
-                what = f"{type(trouble).__name__}: {trouble}"
-                cautions.append(f"the rules of plug-in {name} ({target}) are not used: {what}")
+            what = f"{type(trouble).__name__}: {trouble}"
+            cautions.append(f"the rules of plug-in {name} ({target}) are not used: {what}")
     if not found:
         raise InputTrouble("no rules found; install Stageproof into an environment of its own")
-    return _distinct(found)
+    return Rulebook(_distinct(found), tuple(cautions))
 
 
 def _stands_beside() -> None:
