@@ -28,6 +28,8 @@ _MAKERS: Final = re.compile(r"(?:JANTXV|JANTX|JAN|NSV|S)(?=(?:2N|1N|MMBT|BC8)\d?
 _CUT: Final = re.compile(r"[^A-Za-z0-9 ._/|-]")
 _ABBREVIATED: Final = re.compile(r"\s*[A-Za-z0-9]{1,2}\s*")
 """The end of a second name whose head is left out; only the ending E3 has a slash of its own (E3/54)."""
+_LETTER_I: Final = re.compile(r"^\s*[Ii][Nn](?=\d{3})")
+"""IN4148 for 1N4148: a common slip."""
 _POLARITIES: Final = {"NPN": "npn", "PNP": "pnp"}
 
 
@@ -62,6 +64,7 @@ def all_names() -> tuple[str, ...]:
 
 
 def _one(text: str) -> Card | None:
+    text = _LETTER_I.sub("1N", text)
     words = text.replace("_", " ").split()
     if not words:
         return None

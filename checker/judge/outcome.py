@@ -45,12 +45,13 @@ def severity(outcome: Outcome, weight: Severity) -> Severity:
 
 
 def unknown_in(check: Check, scenarios: tuple[Scenario, ...], *, always: bool) -> tuple[str, ...]:
-    """Names of the scenarios of the board itself in which the check is unknown; only the nominal one where that is.
-
-    A figure that is known at nominal and nowhere else is one that is given at nominal alone; that is no gap.
+    """Names of the scenarios of the board itself in which the check is unknown; only the nominal one where
+    that is, or where the figure is of the nominal alone.
     """
-    if not check.applies or not (check.unknown[0] or np.any(~check.unknown[1:])):
+    if not check.applies:
         return ()
+    if check.figure.nominal_only:
+        return (scenarios[0].name,) if check.unknown[0] else ()
     kinds = {"nominal", "corner", "state"} if always else {"nominal", "corner"}
     names = tuple(s.name for s, nan in zip(scenarios, check.unknown, strict=True) if nan and s.kind in kinds)
     return names[:1] if check.unknown[0] else names

@@ -13,7 +13,7 @@ from checker.constants import CORNER_HIGH_HZ, CORNER_LOW_HZ, CORNER_REL
 from checker.measure.bench import Bench, FloatArray
 from checker.measure.chain import transfer
 from checker.measure.links import Outer, outer_of
-from checker.measure.make import figure, missing
+from checker.measure.make import figure, missing, nominal
 from checker.measure.registry import Subject, quantity
 from checker.quantity.figure import Figure
 
@@ -89,13 +89,12 @@ def _corner(name: str, which: int, meaning: str, subject: Subject) -> None:
         if isinstance(outer, str):
             return missing(name, ident, bench.size, "Hz", outer)
         found = _stage_corners(bench, ident, outer)
-        values = np.full(bench.size, np.nan)
-        values[0] = found[which]
         reason = "" if np.isfinite(found[which]) else "no crossing of -3 dB between 1 mHz and 100 GHz"
-        return figure(
+        return nominal(
             name,
             ident,
-            values,
+            found[which],
+            bench.size,
             "Hz",
             formula="|T(f)| = |T|ref/sqrt 2, first crossing walking outward",
             numbers=(("|T|ref", found[2], "1"), ("at", found[3], "Hz")),

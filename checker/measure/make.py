@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+from dataclasses import replace
+
 import numpy as np
 from numpy.typing import NDArray
 
@@ -31,6 +33,25 @@ def figure(
         working=Working(formula=formula, numbers=numbers, source=source),
         reason=reason,
     )
+
+
+def nominal(
+    name: str,
+    subject: str,
+    value: float,
+    size: int,
+    unit: str,
+    *,
+    formula: str = "",
+    numbers: tuple[tuple[str, float, str], ...] = (),
+    source: str = "",
+    reason: str = "",
+) -> Figure:
+    """A real figure of scenario 0 alone, nan elsewhere on the axis of `size` scenarios."""
+    values = np.full(size, np.nan)
+    values[0] = value
+    written = figure(name, subject, values, unit, formula=formula, numbers=numbers, source=source, reason=reason)
+    return replace(written, nominal_only=True)
 
 
 def missing(name: str, subject: str, size: int, unit: str, reason: str) -> Figure:

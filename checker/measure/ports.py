@@ -8,7 +8,7 @@ from checker.circuit.types import Port
 from checker.measure.bench import Bench, FloatArray
 from checker.measure.corners import band_grid_hz, corners, grid_hz
 from checker.measure.links import load_current, port_current
-from checker.measure.make import db, figure, missing
+from checker.measure.make import db, figure, missing, nominal
 from checker.measure.match import mismatch_loss_db, return_loss_db
 from checker.measure.registry import quantity
 from checker.quantity.figure import ComplexArray, Figure
@@ -153,10 +153,9 @@ def _corner(name: str, which: int, meaning: str) -> None:
     @quantity(name, "Hz", "gain", meaning)
     def measure(bench: Bench, subject: str) -> Figure:
         found = _port_corners(bench, subject)[which]
-        values = np.full(bench.size, np.nan)
-        values[0] = found
         reason = "" if np.isfinite(found) else "no crossing of -3 dB between 1 mHz and 100 GHz"
-        return figure(name, subject, values, "Hz", formula="e.m.f. gain 3 dB under its best in the band", reason=reason)
+        formula = "e.m.f. gain 3 dB under its best in the band"
+        return nominal(name, subject, found, bench.size, "Hz", formula=formula, reason=reason)
 
 
 _corner("low_corner_hz", 0, "lower -3 dB corner of the e.m.f. gain")

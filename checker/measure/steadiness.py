@@ -11,11 +11,12 @@ from checker.circuit.changes import with_changes
 from checker.circuit.types import Change, Circuit, Scenario
 from checker.measure.bench import Bench, FloatArray
 from checker.measure.bias import require_bias
-from checker.measure.make import figure, first, missing
+from checker.measure.make import figure, first, missing, nominal
 from checker.measure.registry import quantity
 from checker.measure.single import nominal_circuit
 from checker.quantity.figure import Figure
 from checker.solve.operating import operating_point
+from checker.stages.wiring import resistors_on
 
 NO_BASE_CURRENT = 1e9
 """Factor on the forward current gain that stands for a base current of zero."""
@@ -75,13 +76,12 @@ def gain_spread_ratio(bench: Bench, stage: str) -> Figure:
     require_bias(bench, stage)
     index = bench.stage(stage).index
     low, high = _stacked(bench)["low"][index], _stacked(bench)["high"][index]
-    values = np.full(bench.size, np.nan)
-    values[0] = max(high, low) / min(high, low)
     bf = gain_limits(bench.circuit, stage)
-    return figure(
+    return nominal(
         "gain_spread_ratio",
         stage,
-        values,
+        max(high, low) / min(high, low),
+        bench.size,
         "1",
         formula="IC at highest gain / IC at lowest gain",
         numbers=(("IC high", high, "A"), ("IC low", low, "A"), ("BF low", bf[0], "1"), ("BF high", bf[1], "1")),
@@ -98,12 +98,11 @@ def divider_shift(bench: Bench, stage: str) -> Figure:
     index = bench.stage(stage).index
     ideal = _stacked(bench)["none"][index]
     ic = np.abs(bench.point.bipolar["ic_a"][:, index])
-    values = np.full(bench.size, np.nan)
-    values[0] = abs(ic[0] / ideal - 1.0)
-    return figure(
+    return nominal(
         "divider_shift",
         stage,
-        values,
+        float(abs(ic[0] / ideal - 1.0)),
+        bench.size,
         "1",
         formula="|IC/IC(IB = 0) - 1|",
         numbers=(("IC", first(ic), "A"), ("IC(IB = 0)", float(ideal), "A")),
@@ -112,30 +111,23 @@ def divider_shift(bench: Bench, stage: str) -> Figure:
 
 
 def base_feeds(bench: Bench, stage: str) -> tuple[str, ...]:
-    """Resistors that join the base net, through at most one more resistor, to nets of known voltage; sorted."""
+    """Resistors that lead from the base net, or from a net one series resistor away, to a supply; sorted.
+
+    A supply is a net of known voltage, or a net behind a resistor from one with a capacitor to ground (a filter).
+    """
     c = bench.circuit
-    known = bench.point.plan.is_known
-    device = bench.stage(stage).index
-    base = int(c.bipolars.nodes[device, 1])
-    near = {base}
-    found: set[str] = set()
-    for _ in range(2):
-        for name, (a, b) in zip(c.resistors.names, c.resistors.nodes.tolist(), strict=True):
-            for here, there in ((a, b), (b, a)):
-                if here in near and known[there]:
-                    found.add(name)
-        near |= {
-            there
-            for a, b in c.resistors.nodes.tolist()
-            for here, there in ((a, b), (b, a))
-            if here == base and not known[there] and not _device_net(c, there, device)
-        }
-    return tuple(sorted(found))
+    base = int(c.bipolars.nodes[bench.stage(stage).index, 1])
+    supplies = _supplies(bench)
+    taken = set(c.bipolars.nodes.ravel().tolist())
+    near = {base} | {far for _, far in resistors_on(c, base) if far not in taken and far not in supplies}
+    return tuple(sorted({name for node in near for name, far in resistors_on(c, node) if far in supplies}))
 
 
-def _device_net(c: Circuit, node: int, device: int) -> bool:
-    """A net that a transistor's collector or emitter drives is no divider."""
-    return bool((c.bipolars.nodes[:, [0, 2]] == node).any()) or node in c.bipolars.nodes[device].tolist()
+def _supplies(bench: Bench) -> set[int]:
+    c = bench.circuit
+    known = set(np.flatnonzero(bench.point.plan.is_known).tolist())
+    held = {x for a, b in c.capacitors.nodes.tolist() for x, far in ((a, b), (b, a)) if far in known}
+    return known | {node for node in held if any(far in known for _, far in resistors_on(c, node))}
 
 
 @quantity("base_dc_path", "1", "stage", "1 where direct base current has a path other than the device's own junctions")

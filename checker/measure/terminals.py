@@ -76,9 +76,9 @@ def terminal_output(bench: Bench, stage: str) -> Figure:
 
 @dataclass(frozen=True, slots=True, kw_only=True)
 class Around:
-    """What stands around a device at f0, nominal, in ohm: `emitter`, `base` nets with the device out; `base_alone` with
-    the input link open too; `collector_alone` with the output link open; `rc` collector in place; `load` beyond the
-    output link; `drive` what the base sees upstream."""
+    """What stands around a device at f0, nominal, in ohm, with the device out: at the `emitter`, at the `base` (upstream
+    source in place), at the base with the input link open too (`base_alone`), at the exit in place (`exit_loaded`) and
+    with the output link open (`exit_alone`); `load`: what the output link feeds."""
 
     emitter: float
     base: float
@@ -93,7 +93,8 @@ def around(bench: Bench, outer: Outer) -> Around:
     response = bench.nominal_response(bench.edges_hz)
     device = outer.entry[0]
     out = response.removed([device])
-    alone_in = cut_input(response, outer).removed([device]) if outer.input_link.kind != "direct" else out
+    direct = outer.input_link.kind == "direct"
+    alone_in = cut_input(response, outer).removed([device]) if not direct else out
     alone_out = cut_output(bench, response, outer).removed([device])
     emitter, base = (terminal_net(bench.circuit, (device, t)) for t in ("emitter", "base"))  # type: ignore[arg-type]
     leaving = terminal_net(bench.circuit, outer.exit)
@@ -104,7 +105,8 @@ def around(bench: Bench, outer: Outer) -> Around:
     return Around(
         emitter=_size(alone_in if entered == "emitter" else out, emitter),
         base=_size(out, base),
-        base_alone=_size(alone_in, base),
+        # On a direct link every part on the net belongs to the driving stage: nothing of the base's own is left.
+        base_alone=np.inf if direct else _size(alone_in, base),
         exit_alone=_size(alone_out, leaving),
         exit_loaded=_size(out, leaving),
         load=float(load),

@@ -25,7 +25,8 @@ class Figure:
     """`values`: float64 or complex128, (S, F); axis 0 is the scenario (0 nominal), axis 1 is `f_hz`.
 
     A figure without a frequency has F = 1 and `f_hz` None. `nan` marks what could not be computed there;
-    `reason` then says why.
+    `reason` then says why. `nominal_only`: the question itself spans the corners (a gain spread) or costs a sweep (a
+    band corner), so it is answered for scenario 0 and the rest of axis 0 is `nan` without being unknown.
     """
 
     quantity: str
@@ -35,6 +36,7 @@ class Figure:
     f_hz: FloatArray | None = None
     working: Working = field(default_factory=lambda: Working(formula=""))
     reason: str = ""
+    nominal_only: bool = False
 
     @property
     def nominal(self) -> complex | float:

@@ -14,7 +14,7 @@ from checker.examine import Examined, examine
 from checker.judge.outcome import severity
 from checker.judge.verdict import AnyRule, Examination, Judged, Limits, Verdict
 from checker.record.finding import Remedy
-from checker.remedy.candidates import Trial, size, trials
+from checker.remedy.candidates import Trial, finer, size, trials
 from checker.remedy.effects import changes_of, effects_of
 from checker.remedy.stack import all_over, laid_over
 from checker.words import SEVERITIES, Severity
@@ -31,26 +31,43 @@ ones.
 def propose(
     verdict: Verdict, board: Examined, rules: Iterable[AnyRule], limits: Limits, rebuild: Rebuild
 ) -> Remedy | None:
-    """The smallest change to standard values that clears the finding in every scenario of `board` and
-    brings up no other of its weight or worse; None where no trial does.
+    """The smallest change to standard values that clears the finding in every scenario of `board` and brings up no
+    other of its weight or worse; None where no trial does.
 
-    Fewer parts first, then the smaller sum of |ln(new/old)|. At most `candidates.MOST` trials in one stack,
-    then at most two stacks of the survivors over all scenarios of `board`.
+    Fewer parts first, then the smaller sum of |ln(new/old)|. One stack of at most `candidates.MOST` trials judged by
+    the finding's own rule, one of those that cleared it and of the values between, judged by all rules, then at most
+    two of the survivors over all scenarios of `board`.
     """
     every = tuple(rules)
-    condition = board.scenarios[verdict.worst]
-    conditions = (board.scenarios[0],) if verdict.worst == 0 else (board.scenarios[0], condition)
     tried = trials(board.circuit, verdict.evidence.levers)
-    if not tried:
-        return None
-    first = rebuild((*conditions, *all_over(condition, tried)))
-    good = _cleared(examine(first, every, limits), verdict, len(conditions) - 1)[len(conditions) :]
-    ranked = sorted((t for t, ok in zip(tried, good, strict=True) if ok), key=lambda t: _rank(t, board))
+    cleared = _clearing(tried, verdict, board, (verdict.rule,), limits, rebuild)
+    again = [trial for trial, ok in zip(tried, cleared, strict=True) if ok]
+    again += finer(board.circuit, tried, cleared)
+    clean = _clearing(again, verdict, board, every, limits, rebuild)
+    ranked = sorted((t for t, ok in zip(again, clean, strict=True) if ok), key=lambda t: _rank(t, board))
     for chosen in _rounds(ranked):
         proved = _verify(chosen, verdict, board, every, limits, rebuild)
         if proved is not None:
             return proved
     return None
+
+
+def _clearing(
+    tried: Sequence[Trial],
+    verdict: Verdict,
+    board: Examined,
+    rules: Sequence[AnyRule],
+    limits: Limits,
+    rebuild: Rebuild,
+) -> list[bool]:
+    """Which trials clear the finding, in the scenario in which it is worst, without a new one as heavy of `rules`."""
+    if not tried:
+        return []
+    nominal, condition = board.scenarios[0], board.scenarios[verdict.worst]
+    conditions = (nominal,) if verdict.worst == 0 else (nominal, condition)
+    stack = rebuild((*conditions, *all_over(condition, tried)))
+    good = _cleared(examine(stack, rules, limits), verdict, len(conditions) - 1)
+    return [bool(ok) for ok in good[len(conditions) :]]
 
 
 def _rank(trial: Trial, board: Examined) -> tuple[int, float, tuple[str, ...]]:

@@ -50,6 +50,8 @@ KINDS: tuple[CardKind, ...] = ("npn", "pnp", "diode", "zener", "led", "njf", "pj
         ("C1815", "2SC1815", "npn"),
         ("SS9018GBU", "S9018G", "npn"),
         ("1N4148W-7-F", "1N4148W", "diode"),
+        ("IN4148", "1N4148", "diode"),
+        ("green", "LED-GREEN", "led"),
         ("1N4007-T", "1N4007", "diode"),
         ("1N4001-E3/54", "1N4001", "diode"),
         ("BZX84C5V1", "BZX84-C5V1", "zener"),
