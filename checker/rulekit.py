@@ -229,7 +229,7 @@ class Evidence:
     `subject`: at most three parts, the faulty one first. `message` may hold {value}, {limit}, {frequency}
     and the names in `figures`; they are filled in from the worst scenario. `measured`: the figure to report
     where the one judged is only a yes or no. `effect`: what one sees on the bench, where the rule's own
-    sentence is too general.
+    sentence is too general. `in_step`: the levers are of use only by one factor, as the arms of a divider.
     """
 
     check: Check
@@ -237,6 +237,7 @@ class Evidence:
     message: str
     effect: str = ""
     levers: tuple[Lever, ...] = ()
+    in_step: bool = False
     figures: Mapping[str, Figure] = field(default_factory=dict)
     measured: Figure | None = None
 

@@ -5,7 +5,7 @@ ratio.
 from __future__ import annotations
 
 import math
-from collections.abc import Iterator, Sequence
+from collections.abc import Iterable, Iterator, Sequence
 from itertools import combinations
 
 from checker.circuit.types import Branches, Change, Circuit
@@ -18,27 +18,36 @@ _NEAR = {"r_ohm": "E24", "c_f": "E12", "l_h": "E12"}
 _FAR = "E6"
 _ALONE = 4
 """Levers, from the first, that are tried alone."""
-_STEPS = 8
-"""Values on either side: one of the near series, the others of the far one, sixteenfold in all."""
+_STEPS = 10
+"""Values on either side: one of the near series, the others of the far one, thirtyfold in all."""
 _PAIRED = 3
 """Levers, from the first, that are tried in pairs."""
-_FACTORS = (1.5, 2.2, 3.3, 4.7, 10.0)
+_FACTORS = (2.2, 4.7)
 
 Trial = tuple[Change, ...]
 
 
-def trials(circuit: Circuit, levers: Sequence[Lever]) -> tuple[Trial, ...]:
-    """Changes to try, at most `MOST`; levers on parts that the circuit does not hold as such are passed over."""
+def trials(circuit: Circuit, levers: Sequence[Lever], *, in_step: bool = False) -> tuple[Trial, ...]:
+    """Changes to try, at most `MOST`; levers on parts that the circuit does not hold as such are passed over.
+
+    `in_step`: all levers by one factor and nothing else.
+    """
     found = ((lever, drawn(circuit, lever.part, lever.property)) for lever in levers)
     usable = [(lever, value) for lever, value in found if value is not None]
+    if in_step:
+        factors = (mantissa * decade for decade in (1.0, 10.0) for mantissa in mantissas("E12"))
+        return tuple(dict.fromkeys(_together(usable, factors)))
     singles = [(change,) for lever, value in usable[:_ALONE] for change in _single(lever, value)]
-    pairs = [pair for one, two in combinations(usable[:_PAIRED], 2) for pair in _pair(one, two)]
+    pairs = [pair for one, two in combinations(usable[:_PAIRED], 2) for pair in _together((one, two), _FACTORS)]
     return tuple(dict.fromkeys((*singles, *pairs)))[:MOST]
 
 
 def finer(circuit: Circuit, tried: Sequence[Trial], cleared: Sequence[bool]) -> tuple[Trial, ...]:
     """Near-series values around the step in which each lever first cleared the finding, either way; at most `MOST`."""
     found: list[Trial] = []
+    if in_step:
+        factors = (mantissa * decade for decade in (1.0, 10.0) for mantissa in mantissas("E12"))
+        return tuple(dict.fromkeys(_together(usable, factors)))
     singles = [(trial[0], ok) for trial, ok in zip(tried, cleared, strict=True) if len(trial) == 1]
     for part in dict.fromkeys(change.part for change, _ in singles):
         ladder = sorted((change.value, ok) for change, ok in singles if change.part == part)
@@ -100,18 +109,15 @@ def _ladder(value: float, series: str, *, up: bool) -> Iterator[float]:
     yield from beyond if up else beyond[::-1]
 
 
-def _pair(one: tuple[Lever, float], two: tuple[Lever, float]) -> Iterator[Trial]:
-    """Both parts by one factor, to the nearest standard value: what a divider needs to become stiffer."""
-    ways = {one[0].direction, two[0].direction}
-    for factor in _FACTORS:
+def _together(parts: Sequence[tuple[Lever, float]], factors: Iterable[float]) -> Iterator[Trial]:
+    """All parts by one factor, to the nearest standard values: what a divider needs to become stiffer."""
+    ways = {lever.direction for lever, _ in parts}
+    for factor in factors:
         for up in (True, False):
-            if ways <= {"any", "up" if up else "down"}:
+            if parts and factor > 1.0 and ways <= {"any", "up" if up else "down"}:
                 scale = factor if up else 1.0 / factor
-                yield tuple(
-                    Change(
-                        part=lever.part,
-                        property=lever.property,
-                        value=nearest(value * scale, _NEAR[lever.property]),
-                    )
-                    for lever, value in (one, two)
-                )
+                yield tuple(_scaled(lever, value * scale) for lever, value in parts)
+
+
+def _scaled(lever: Lever, value: float) -> Change:
+    return Change(part=lever.part, property=lever.property, value=nearest(value, _NEAR[lever.property]))
