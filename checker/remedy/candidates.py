@@ -45,9 +45,6 @@ def trials(circuit: Circuit, levers: Sequence[Lever], *, in_step: bool = False) 
 def finer(circuit: Circuit, tried: Sequence[Trial], cleared: Sequence[bool]) -> tuple[Trial, ...]:
     """Near-series values around the step in which each lever first cleared the finding, either way; at most `MOST`."""
     found: list[Trial] = []
-    if in_step:
-        factors = (mantissa * decade for decade in (1.0, 10.0) for mantissa in mantissas("E12"))
-        return tuple(dict.fromkeys(_together(usable, factors)))
     singles = [(trial[0], ok) for trial, ok in zip(tried, cleared, strict=True) if len(trial) == 1]
     for part in dict.fromkeys(change.part for change, _ in singles):
         ladder = sorted((change.value, ok) for change, ok in singles if change.part == part)
