@@ -5,7 +5,7 @@ from __future__ import annotations
 from collections.abc import Iterable
 from typing import Protocol
 
-from checker.circuit.types import Circuit, Scenario
+from checker.circuit.types import Circuit, Port, Scenario
 from checker.judge.guard import guarded
 from checker.judge.outcome import decide, severity, unknown_in
 from checker.judge.subjects import Subject, subjects
@@ -21,17 +21,26 @@ class Examined(Board, Protocol):
     @property
     def circuit(self) -> Circuit: ...
     @property
+    def ports(self) -> tuple[Port, ...]: ...
+    @property
     def scenarios(self) -> tuple[Scenario, ...]: ...
 
 
-def examine(board: Examined, rules: Iterable[AnyRule], limits: Limits) -> Examination:
-    """Show every rule its subjects and decide what comes back, in the order of rules and subjects."""
+def examine(
+    board: Examined, rules: Iterable[AnyRule], limits: Limits, about: frozenset[str] = frozenset()
+) -> Examination:
+    """Show every rule its subjects and decide what comes back, in the order of rules and subjects.
+
+    `about`: only subjects that concern one of these stages; empty for all.
+    """
     judged: list[Judged] = []
     unchecked: list[Open] = []
     failures: list[Failure] = []
-    ports = tuple(port.name for port in board.circuit.ports)
+    ports = tuple(port.name for port in board.ports)
     for rule in rules:
         for subject in subjects(board, ports, rule.applies):
+            if about and not about & set(subject.stages):
+                continue
             answer = _ask(rule, board, subject, limits)
             if isinstance(answer, Open):
                 unchecked.append(answer)

@@ -9,7 +9,7 @@ and no business of a rule.
 from __future__ import annotations
 
 from collections.abc import Iterable, Mapping
-from dataclasses import field
+from dataclasses import field, replace
 from typing import ClassVar, Generic, Literal, Protocol, TypeVar
 
 import numpy as np
@@ -44,6 +44,7 @@ __all__ = [
     "TargetIntent",
     "ceiling",
     "flag",
+    "in_percent",
     "levers",
     "require",
     "show",
@@ -229,7 +230,7 @@ class Evidence:
     `subject`: at most three parts, the faulty one first. `message` may hold {value}, {limit}, {frequency}
     and the names in `figures`; they are filled in from the worst scenario. `measured`: the figure to report
     where the one judged is only a yes or no. `effect`: what one sees on the bench, where the rule's own
-    sentence is too general.
+    sentence is too general. `in_step`: the levers are of use only by one factor, as the arms of a divider.
     """
 
     check: Check
@@ -237,6 +238,7 @@ class Evidence:
     message: str
     effect: str = ""
     levers: tuple[Lever, ...] = ()
+    in_step: bool = False
     figures: Mapping[str, Figure] = field(default_factory=dict)
     measured: Figure | None = None
 
@@ -275,14 +277,12 @@ def flag(figure: Figure, code: float, quantity: str) -> Figure:
     """1 where a coded figure has that code, 0 where another, nan where unknown; shape as `figure`."""
     values = np.asarray(figure.values, dtype=np.float64)
     hit = np.where(np.isnan(values), np.nan, (values == code).astype(np.float64))
-    return Figure(
-        quantity=quantity,
-        subject=figure.subject,
-        values=hit,
-        unit="",
-        working=figure.working,
-        reason=figure.reason,
-    )
+    return replace(figure, quantity=quantity, values=hit)
+
+
+def in_percent(figure: Figure) -> Figure:
+    """A plain fraction shown as per cent; the values stay a fraction."""
+    return replace(figure, unit="%")
 
 
 def ceiling(whole: Figure, *, share: float = 1.0, less: float = 0.0) -> Bound:

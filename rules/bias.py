@@ -14,6 +14,7 @@ from checker.rulekit import (
     Rule,
     Stage,
     flag,
+    in_percent,
     levers,
     require,
 )
@@ -22,10 +23,15 @@ _NO = Bound.at(0.0, "", "definition of the regions of operation")
 _YES = Bound.at(1.0, "", "Kirchhoff's current law")
 
 
-def _rests(board: Board, stage: Stage, code: float, name: str, message: str) -> list[Evidence]:
-    """That the stage does not rest in the region of that code; VCE is what the report shows."""
+def _rests(
+    board: Board, stage: Stage, code: float, name: str, message: str, first: tuple[str, ...] = ()
+) -> list[Evidence]:
+    """That the stage does not rest in the region of that code; VCE is what the report shows.
+
+    `first`: resistors that set the region before those of the bias do.
+    """
     vce = board.ask("vce_v", stage.id)
-    turn = (*board.resistors_at(stage.id, "collector"), *board.bias_parts(stage.id))
+    turn = (*first, *board.bias_parts(stage.id))
     return [
         Evidence(
             check=require(flag(board.ask("region_code", stage.id), code, name), "equals", _NO),
@@ -57,7 +63,7 @@ class SaturatedAtRest(Rule[Stage]):
     def judge(self, board: Board, subject: Stage, limits: Mapping[str, Bound]) -> Iterable[Evidence]:
         """One check of the region."""
         message = f"{subject.id} rests in saturation: VCE {{vce}} at IC {{ic}}"
-        return _rests(board, subject, 1, "saturated", message)
+        return _rests(board, subject, 1, "saturated", message, board.resistors_at(subject.id, "collector"))
 
 
 class CutOffAtRest(Rule[Stage]):
@@ -145,13 +151,14 @@ class SoftDivider(Rule[Stage]):
         divider = board.resistors_at(subject.id, "base")
         return [
             Evidence(
-                check=require(board.ask("divider_shift", subject.id), "at most", limits["shift"]),
+                check=require(in_percent(board.ask("divider_shift", subject.id)), "at most", limits["shift"]),
                 subject=(subject.id, *divider)[:3],
                 message=f"base current moves the collector current of {subject.id} to {{ic}}, "
                 f"{{value}} from what its "
                 "divider alone would set; at most {limit} wanted",
                 figures={"ic": board.ask("ic_a", subject.id)},
                 levers=levers(divider, "down"),
+                in_step=True,
             )
         ]
 

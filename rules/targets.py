@@ -34,7 +34,7 @@ class TargetMissed(Rule[TargetIntent]):
             Evidence(
                 check=require(figure, relation, bound),
                 subject=(stages if subject.stage or subject.group else (subject.source, subject.to))[:3],
-                message=f"{subject.quantity} of {name} is {{value}}, {relation} {{limit}} wanted",
+                message=f"{subject.quantity} of {name} is {{value}}, wanted {relation} {{limit}}",
                 levers=levers(_resistors(board, stages)),
             )
         ]

@@ -17,5 +17,5 @@ def command(width: int | None, colour: str) -> int:
     from checker.judge.discover import load_rules
     from checker.report.catalogue import render_rules
 
-    deliver(render_rules(load_rules(), width=columns(width), colour=coloured(colour, None)), None)
+    deliver(render_rules(load_rules().rules, width=columns(width), colour=coloured(colour, None)), None)
     return CLEAN

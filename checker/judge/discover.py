@@ -41,7 +41,8 @@ def load_rules() -> Rulebook:
         try:
             found += _catalogue(target)
         except Exception as trouble:  # whatever a plug-in raises is its own fault, and named
-            cautions.append(f"rules of plug-in {name} ({target}) not used: {type(trouble).__name__}: {trouble}")
+            what = f"{type(trouble).__name__}: {trouble}"
+            cautions.append(f"the rules of plug-in {name} ({target}) are not used: {what}")
     if not found:
         raise InputTrouble("no rules found; install Stageproof into an environment of its own")
     return Rulebook(_distinct(found), tuple(cautions))

@@ -8,7 +8,7 @@ from dataclasses import replace
 import numpy as np
 
 from checker.circuit.changes import with_changes
-from checker.circuit.types import Change, Circuit, Scenario
+from checker.circuit.types import Change, Circuit, IntArray, Scenario
 from checker.measure.bench import Bench, FloatArray
 from checker.measure.bias import require_bias
 from checker.measure.make import figure, first, missing, nominal
@@ -50,11 +50,41 @@ def _stacked(bench: Bench) -> Mapping[str, FloatArray]:
 
 def _without_leakage(stack: Circuit, count: int) -> Circuit:
     """Take the base leakage out too, in the scenarios that stand for no base current."""
+    return _leakless(stack, 3 + 3 * np.arange(count), np.arange(count))
+
+
+def _leakless(stack: Circuit, rows: IntArray, devices: IntArray) -> Circuit:
     params = dict(stack.bipolars.params)
     leak = np.array(params["ise"])
-    leak[3 + 3 * np.arange(count), np.arange(count)] = 0.0
+    leak[rows, devices] = 0.0
     params["ise"] = leak
     return replace(stack, bipolars=replace(stack.bipolars, params=params))
+
+
+def _answered(bench: Bench, stage: str) -> tuple[FloatArray, FloatArray, FloatArray]:
+    """IC of one device at lowest and highest gain and without base current, each (S,): for the nominal and for the
+    scenarios that are remedy candidates, else nan, since each costs three solutions a device."""
+    index = bench.stage(stage).index
+    out = np.full((3, bench.size), np.nan)
+    out[:, 0] = [_stacked(bench)[word][index] for word in ("low", "high", "none")]
+    rows = [k for k, scenario in enumerate(bench.scenarios) if scenario.kind == "candidate"]
+    if rows:
+        out[:, rows] = _tried(bench, stage, rows)
+    return out[0], out[1], out[2]
+
+
+def _tried(bench: Bench, stage: str, rows: list[int]) -> FloatArray:
+    """The same three currents in some scenarios, (3, n)."""
+    circuit = nominal_circuit(bench.circuit)
+    index = bench.stage(stage).index
+    low, high = gain_limits(circuit, stage)
+    gains = [Change(part=stage, property="bf", value=bf) for bf in (low, high, high * NO_BASE_CURRENT)]
+    tried = [bench.scenarios[k] for k in rows]
+    scenarios = [replace(each, changes=(*each.changes, gain)) for each in tried for gain in gains]
+    stack = with_changes(circuit, [Scenario(name="nominal"), *scenarios])
+    none = 3 + 3 * np.arange(len(rows))
+    point = operating_point(_leakless(stack, none, np.full(len(rows), index)), near=bench.nominal_point)
+    return np.abs(point.bipolar["ic_a"][1:, index]).reshape(-1, 3).T
 
 
 def gain_limits(circuit: Circuit, device: str) -> tuple[float, float]:
@@ -74,19 +104,23 @@ def gain_limits(circuit: Circuit, device: str) -> tuple[float, float]:
 def gain_spread_ratio(bench: Bench, stage: str) -> Figure:
     """Each device moved alone, at the nominal temperature."""
     require_bias(bench, stage)
-    index = bench.stage(stage).index
-    low, high = _stacked(bench)["low"][index], _stacked(bench)["high"][index]
+    low, high, _ = _answered(bench, stage)
+    ratio = np.maximum(high, low) / np.minimum(high, low)
     bf = gain_limits(bench.circuit, stage)
-    return nominal(
+    made = nominal(
         "gain_spread_ratio",
         stage,
-        max(high, low) / min(high, low),
+        first(ratio),
         bench.size,
         "1",
         formula="IC at highest gain / IC at lowest gain",
-        numbers=(("IC high", high, "A"), ("IC low", low, "A"), ("BF low", bf[0], "1"), ("BF high", bf[1], "1")),
+        numbers=(
+            *(("IC high", first(high), "A"), ("IC low", first(low), "A")),
+            *(("BF low", bf[0], "1"), ("BF high", bf[1], "1")),
+        ),
         source="stacked solve over the part's gain range",
     )
+    return replace(made, values=ratio[:, None])
 
 
 @quantity("divider_shift", "1", "stage", "collector current against that of the same circuit without base current")
@@ -95,19 +129,20 @@ def divider_shift(bench: Bench, stage: str) -> Figure:
     require_bias(bench, stage)
     if len(base_feeds(bench, stage)) < 2:
         return missing("divider_shift", stage, bench.size, "1", "not applicable: no divider feeds the base")
-    index = bench.stage(stage).index
-    ideal = _stacked(bench)["none"][index]
-    ic = np.abs(bench.point.bipolar["ic_a"][:, index])
-    return nominal(
+    _, _, ideal = _answered(bench, stage)
+    ic = np.abs(bench.point.bipolar["ic_a"][:, bench.stage(stage).index])
+    shift = np.abs(ic / ideal - 1.0)
+    made = nominal(
         "divider_shift",
         stage,
-        float(abs(ic[0] / ideal - 1.0)),
+        first(shift),
         bench.size,
         "1",
         formula="|IC/IC(IB = 0) - 1|",
-        numbers=(("IC", first(ic), "A"), ("IC(IB = 0)", float(ideal), "A")),
+        numbers=(("IC", first(ic), "A"), ("IC(IB = 0)", first(ideal), "A")),
         source="stacked solve with and without base current",
     )
+    return replace(made, values=shift[:, None])
 
 
 def base_feeds(bench: Bench, stage: str) -> tuple[str, ...]:

@@ -5,11 +5,13 @@ after.
 from __future__ import annotations
 
 import math
+from typing import TypeGuard
 
 import numpy as np
 
 from checker.circuit.types import Circuit
 from checker.examine import Examined
+from checker.judge.message import plain_unit
 from checker.judge.verdict import Verdict
 from checker.quantity.figure import Figure
 from checker.record.finding import Change, Effect
@@ -38,20 +40,19 @@ def changes_of(trial: Trial, circuit: Circuit) -> tuple[Change, ...]:
     )
 
 
-def effects_of(board: Examined, verdict: Verdict, start: int) -> tuple[Effect, ...]:
-    """Before and after: the judged quantity where it was worst, the main figures of its first stage at
-    nominal.
+def effects_of(verdict: Verdict, nominal: Examined, stack: Examined, start: int) -> tuple[Effect, ...]:
+    """Before and after: the judged quantity where it was worst, the main figures of its first stage at nominal.
 
-    `board` holds the scenarios as drawn from 0, the same with the change from `start`.
+    `nominal`: the nominal as drawn, then with the change. `stack`: the board's scenarios as drawn from 0, the same with
+    the change from `start`.
     """
     evidence = verdict.evidence
     judged = evidence.check.figure if evidence.measured is None else evidence.measured
     relation = evidence.check.relation
-    rows = (verdict.worst, start + verdict.worst)
+    board, rows = (nominal, (0, 1)) if verdict.worst == 0 else (stack, (verdict.worst, start + verdict.worst))
     first = _effect(board, judged.quantity, judged.subject, rows, relation)
-    stage = verdict.stages[:1]
-    main = (_effect(board, name, each, (0, start), relation) for each in stage for name in MAIN)
-    felt = (each for each in main if _felt(each) and each != first)
+    main = (_effect(nominal, name, each, (0, 1), relation) for each in verdict.stages[:1] for name in MAIN)
+    felt = (each for each in main if _felt(each) and (first is None or each.quantity != first.quantity))
     return tuple(each for each in (first, *felt) if each is not None)
 
 
@@ -62,7 +63,7 @@ def _effect(board: Examined, quantity: str, subject: str, rows: tuple[int, int],
     except (CannotTell, Unsolved):
         return None
     before, after = (_worst(figure, row, relation) for row in rows)
-    return Effect(quantity=quantity, before=before, after=after, unit=figure.unit, subject=subject)
+    return Effect(quantity=quantity, before=before, after=after, unit=plain_unit(figure.unit), subject=subject)
 
 
 def _worst(figure: Figure, row: int, relation: Relation) -> float | None:
@@ -74,7 +75,7 @@ def _worst(figure: Figure, row: int, relation: Relation) -> float | None:
     return as_written(float(known.max() if relation == "at most" else known.min()), figure.unit)
 
 
-def _felt(effect: Effect | None) -> bool:
+def _felt(effect: Effect | None) -> TypeGuard[Effect]:
     if effect is None or effect.before is None or effect.after is None:
         return False
     return not math.isclose(effect.before, effect.after, rel_tol=_FELT)

@@ -1,150 +1,123 @@
-"""A change that mends a finding, tried before it is proposed: candidates in one solve, the best over all
-conditions.
-"""
+"""A change that mends a finding, tried before it is proposed: many in one solve, the best over all conditions."""
 
 from __future__ import annotations
 
-from collections.abc import Callable, Iterable, Sequence
-
-import numpy as np
-from numpy.typing import NDArray
+from collections.abc import Callable, Iterable, Iterator, Sequence
+from dataclasses import dataclass
 
 from checker.circuit.types import Scenario
 from checker.examine import Examined, examine
-from checker.judge.outcome import severity
-from checker.judge.verdict import AnyRule, Examination, Judged, Limits, Verdict
+from checker.judge.verdict import AnyRule, Limits, Verdict
 from checker.record.finding import Remedy
-from checker.remedy.candidates import Trial, size, trials
+from checker.remedy.candidates import Trial, finer, size, trials
+from checker.remedy.compare import cleared, judged_at, lighter
 from checker.remedy.effects import changes_of, effects_of
-from checker.remedy.stack import all_over, laid_over
-from checker.words import SEVERITIES, Severity
+from checker.remedy.stack import Kind, all_over, laid_over
 
 Rebuild = Callable[[Sequence[Scenario]], Examined]
 """A board of the same circuit over other scenarios; the first is always the nominal one."""
 
 _VERIFIED = (6, 12)
-"""Trials that are taken through all conditions: the smallest first; if none holds, some of the larger
-ones.
-"""
+"""Trials that are taken through all conditions: the smallest first; if none holds, some of the larger ones."""
+
+
+@dataclass(frozen=True, slots=True, kw_only=True)
+class _Case:
+    """What stays the same throughout the search for one finding."""
+
+    verdict: Verdict
+    board: Examined
+    rules: tuple[AnyRule, ...]
+    limits: Limits
+    rebuild: Rebuild
 
 
 def propose(
     verdict: Verdict, board: Examined, rules: Iterable[AnyRule], limits: Limits, rebuild: Rebuild
 ) -> Remedy | None:
-    """The smallest change to standard values that clears the finding in every scenario of `board` and
-    brings up no other of its weight or worse; None where no trial does.
+    """The smallest change to standard values that clears the finding in every scenario of `board` and brings up no
+    other of its weight or worse; None where no trial does.
 
-    Fewer parts first, then the smaller sum of |ln(new/old)|. At most `candidates.MOST` trials in one stack,
-    then at most two stacks of the survivors over all scenarios of `board`.
+    Fewer parts first, then the smaller sum of |ln(new/old)|. One stack of at most `candidates.MOST` trials is judged by
+    the finding's own rule; those that clear it, and the values between, by all rules; the smallest of these over all
+    scenarios of `board`; the chosen one once more for the figures that are given at nominal alone.
     """
-    every = tuple(rules)
-    condition = board.scenarios[verdict.worst]
-    conditions = (board.scenarios[0],) if verdict.worst == 0 else (board.scenarios[0], condition)
-    tried = trials(board.circuit, verdict.evidence.levers)
-    if not tried:
-        return None
-    first = rebuild((*conditions, *all_over(condition, tried)))
-    good = _cleared(examine(first, every, limits), verdict, len(conditions) - 1)[len(conditions) :]
-    ranked = sorted((t for t, ok in zip(tried, good, strict=True) if ok), key=lambda t: _rank(t, board))
+    case = _Case(verdict=verdict, board=board, rules=tuple(rules), limits=limits, rebuild=rebuild)
+    tried = trials(board.circuit, verdict.evidence.levers, in_step=verdict.evidence.in_step)
+    ranked = _worth_proving(case, tried) if tried else []
     for chosen in _rounds(ranked):
-        proved = _verify(chosen, verdict, board, every, limits, rebuild)
+        proved = _prove(case, chosen)
         if proved is not None:
             return proved
     return None
 
 
-def _rank(trial: Trial, board: Examined) -> tuple[int, float, tuple[str, ...]]:
-    return len(trial), size(trial, board.circuit), tuple(change.part for change in trial)
+def _worth_proving(case: _Case, tried: Sequence[Trial]) -> list[Trial]:
+    """Trials, and values between them, that hold where the finding is worst; the smallest change first."""
+    clear = _clearing(case, tried, own=True)
+    again = [trial for trial, ok in zip(tried, clear, strict=True) if ok]
+    again += finer(case.board.circuit, tried, clear)
+    clean = _clearing(case, again, own=False) if again else []
+    holding = (trial for trial, ok in zip(again, clean, strict=True) if ok)
+    return sorted(holding, key=lambda trial: _rank(case, trial))
 
 
-def _rounds(ranked: Sequence[Trial]) -> Iterable[Sequence[Trial]]:
+def _clearing(case: _Case, tried: Sequence[Trial], *, own: bool) -> list[bool]:
+    """Which trials clear the finding in the scenario in which it is worst; by its `own` rule and stages, or by all
+    rules, of which none as heavy may be new."""
+    nominal, condition = case.board.scenarios[0], case.board.scenarios[case.verdict.worst]
+    conditions = (nominal,) if case.verdict.worst == 0 else (nominal, condition)
+    kind: Kind = "candidate" if own else "sample"
+    stack = case.rebuild((*conditions, *all_over(condition, tried, kind)))
+    rules = (case.verdict.rule,) if own else case.rules
+    about = frozenset(case.verdict.stages) if own else frozenset()
+    examination = examine(stack, rules, case.limits, about)
+    good = cleared(examination, case.verdict, len(conditions) - 1)
+    places = range(len(conditions), len(good))
+    return [bool(good[i]) and (not own or judged_at(examination, case.verdict, i)) for i in places]
+
+
+def _rank(case: _Case, trial: Trial) -> tuple[int, float, tuple[str, ...]]:
+    return len(trial), size(trial, case.board.circuit), tuple(change.part for change in trial)
+
+
+def _rounds(ranked: Sequence[Trial]) -> Iterator[Sequence[Trial]]:
     """The smallest changes, then a sample of the others in order."""
     few, more = _VERIFIED
-    yield from (ranked[:few],) if ranked else ()
+    if ranked:
+        yield ranked[:few]
     rest = ranked[few:]
-    yield from (rest[:: -(-len(rest) // more)],) if rest else ()
+    if rest:
+        yield rest[:: -(-len(rest) // more)]
 
 
-def _verify(
-    chosen: Sequence[Trial],
-    verdict: Verdict,
-    board: Examined,
-    rules: Sequence[AnyRule],
-    limits: Limits,
-    rebuild: Rebuild,
-) -> Remedy | None:
-    """The first of the trials that holds in all scenarios of the board, each compared with the same one
-    unchanged.
-    """
-    as_drawn = board.scenarios
-    changed = [laid_over(each, trial, each.name) for trial in chosen for each in as_drawn]
-    second = rebuild((*as_drawn, *changed))
-    examination = examine(second, rules, limits)
-    count = len(as_drawn)
-    lighter = [_lighter(examination, verdict, count, count * (n + 1)) for n in range(len(chosen))]
-    holding = [number for number, new in enumerate(lighter) if new is not None]
-    if not holding:
-        return None
-    best = min(holding, key=lambda number: (lighter[number], number))
-    return Remedy(
-        changes=changes_of(chosen[best], board.circuit),
-        effects=effects_of(second, verdict, count * (best + 1)),
-        verified_over=tuple(scenario.name for scenario in as_drawn),
-    )
+def _prove(case: _Case, chosen: Sequence[Trial]) -> Remedy | None:
+    """The first of the trials that holds in all scenarios of the board, each compared with the same one unchanged, and
+    brings up the fewest lighter findings."""
+    drawn = case.board.scenarios
+    changed = [laid_over(each, trial, each.name, "sample") for trial in chosen for each in drawn]
+    stack = case.rebuild((*drawn, *changed))
+    examination = examine(stack, case.rules, case.limits)
+    starts = [len(drawn) * (number + 1) for number in range(len(chosen))]
+    new = {start: lighter(examination, case.verdict, len(drawn), start) for start in starts}
+    holding = sorted((count, start) for start, count in new.items() if count is not None)
+    for _, start in holding:
+        trial = chosen[start // len(drawn) - 1]
+        nominal = _at_nominal(case, trial)
+        if nominal is not None:
+            return Remedy(
+                changes=changes_of(trial, case.board.circuit),
+                effects=effects_of(case.verdict, nominal, stack, start),
+                verified_over=tuple(scenario.name for scenario in drawn),
+            )
+    return None
 
 
-def _key(owner: Verdict | Judged) -> tuple[str, ...]:
-    """What makes a piece of evidence the same one on another board of the same circuit."""
-    figure = owner.evidence.check.figure
-    return (owner.rule.id, figure.quantity, figure.subject, *owner.evidence.subject[:1])
-
-
-def _bad(judged: Judged) -> NDArray[np.bool_]:
-    """bool (S,): failed, or no longer known."""
-    return judged.evidence.check.failed | judged.evidence.check.unknown
-
-
-def _cleared(examination: Examination, verdict: Verdict, base: int) -> NDArray[np.bool_]:
-    """bool (S,): scenarios without the finding and with nothing as heavy that scenario `base` has not."""
-    same = [each for each in examination.judged if _key(each) == _key(verdict)]
-    good = np.full(len(examination.scenarios), bool(same) and not examination.failures)
-    for each in examination.judged:
-        bad = _bad(each)
-        if each in same:
-            good &= ~bad
-        elif each.evidence.check.applies and _as_heavy(each.rule.weight, verdict):
-            good &= bad[base] | ~bad
-    return good
-
-
-def _lighter(examination: Examination, verdict: Verdict, count: int, start: int) -> int | None:
-    """New findings lighter than this one in the `count` scenarios from `start`, against the first `count`;
-    None where the finding is still there or one of its weight is new.
-    """
-    if examination.failures:
-        return None
-    scenarios, new_ones, found = examination.scenarios[:count], 0, False
-    for each in examination.judged:
-        if not each.evidence.check.applies:
-            continue
-        asked = np.array([each.rule.always or scenario.kind != "state" for scenario in scenarios])
-        before, after = _bad(each)[:count], _bad(each)[start : start + count] & asked
-        if _key(each) == _key(verdict):
-            found = True
-            if np.any(after):
-                return None
-        elif np.any(new := after & ~before):
-            new_ones += 1
-            if _as_heavy(_weight_of(new, each, scenarios), verdict):
-                return None
-    return new_ones if found else None
-
-
-def _weight_of(new: NDArray[np.bool_], judged: Judged, scenarios: Sequence[Scenario]) -> Severity:
-    """A fault of corners alone is only a possible one."""
-    certain = any(bad and scenario.kind in ("nominal", "state") for bad, scenario in zip(new, scenarios, strict=True))
-    return severity("violates" if certain else "may-violate", judged.rule.weight)
-
-
-def _as_heavy(weight: Severity, verdict: Verdict) -> bool:
-    return SEVERITIES.index(weight) <= SEVERITIES.index(verdict.severity)
+def _at_nominal(case: _Case, trial: Trial) -> Examined | None:
+    """The nominal as drawn and with the change, where all rules hold, those figures included that the board answers for
+    a candidate alone; else None."""
+    nominal = case.board.scenarios[0]
+    board = case.rebuild((nominal, laid_over(nominal, trial, "trial", "candidate")))
+    examination = examine(board, case.rules, case.limits)
+    holds = bool(cleared(examination, case.verdict, 0)[1]) and judged_at(examination, case.verdict, 1)
+    return board if holds else None
