@@ -51,12 +51,12 @@ def _kept(bench: Bench, key: str) -> FloatArray:
     return value
 
 
-@quantity("region_code", "1", "stage", "0 active, 1 saturated, 2 cut-off, 3 reverse-active")
+@quantity("region_code", "", "stage", "0 active, 1 saturated, 2 cut-off, 3 reverse-active")
 def region_code(bench: Bench, stage: str) -> Figure:
     """Region as an index into `REGIONS`, so that it can be compared over scenarios."""
     require_bias(bench, stage)
     codes = _kept(bench, "regions")[:, bench.stage(stage).index]
-    return figure("region_code", stage, codes, "1", formula="see the region's definition", source="docs/figures.md")
+    return figure("region_code", stage, codes, "", formula="see the region's definition", source="docs/figures.md")
 
 
 def region_words(bench: Bench, stage: str, scenario: int) -> str:
@@ -70,9 +70,7 @@ def headroom(bench: Bench, stage: str) -> Figure:
     """VBC at the edge of saturation minus VBC."""
     require_bias(bench, stage)
     values = _kept(bench, "headroom")[:, bench.stage(stage).index]
-    return figure(
-        "headroom_v", stage, values, "V", formula="VBC where IC/IB is 0.9 of its value at VBC = 0, minus VBC"
-    )
+    return figure("headroom_v", stage, values, "V", formula="VBC where IC/IB is 0.9 of its value at VBC = 0, minus VBC")
 
 
 @quantity("tj_c", "degC", "stage", "junction temperature of the self-heated solution")

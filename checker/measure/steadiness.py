@@ -17,6 +17,7 @@ from checker.measure.single import nominal_circuit
 from checker.quantity.figure import Figure
 from checker.solve.operating import operating_point
 from checker.stages.wiring import resistors_on
+from checker.trouble import CannotTell
 
 NO_BASE_CURRENT = 1e9
 """Factor on the forward current gain that stands for a base current of zero."""
@@ -100,7 +101,7 @@ def gain_limits(circuit: Circuit, device: str) -> tuple[float, float]:
     return bf * fact.gain_min / typical, bf * fact.gain_max / typical
 
 
-@quantity("gain_spread_ratio", "1", "stage", "collector current at the highest over the lowest current gain of the part")
+@quantity("gain_spread_ratio", "", "stage", "collector current at the highest over the lowest current gain of the part")
 def gain_spread_ratio(bench: Bench, stage: str) -> Figure:
     """Each device moved alone, at the nominal temperature."""
     require_bias(bench, stage)
@@ -112,23 +113,23 @@ def gain_spread_ratio(bench: Bench, stage: str) -> Figure:
         stage,
         first(ratio),
         bench.size,
-        "1",
+        "",
         formula="IC at highest gain / IC at lowest gain",
         numbers=(
             *(("IC high", first(high), "A"), ("IC low", first(low), "A")),
-            *(("BF low", bf[0], "1"), ("BF high", bf[1], "1")),
+            *(("BF low", bf[0], ""), ("BF high", bf[1], "")),
         ),
         source="stacked solve over the part's gain range",
     )
     return replace(made, values=ratio[:, None])
 
 
-@quantity("divider_shift", "1", "stage", "collector current against that of the same circuit without base current")
+@quantity("divider_shift", "%", "stage", "collector current against that of the same circuit without base current")
 def divider_shift(bench: Bench, stage: str) -> Figure:
     """|IC/IC(IB = 0) - 1| where a divider feeds the base; at nominal gain (scenario 0)."""
     require_bias(bench, stage)
     if len(base_feeds(bench, stage)) < 2:
-        return missing("divider_shift", stage, bench.size, "1", "not applicable: no divider feeds the base")
+        return missing("divider_shift", stage, bench.size, "%", "not applicable: no divider feeds the base")
     _, _, ideal = _answered(bench, stage)
     ic = np.abs(bench.point.bipolar["ic_a"][:, bench.stage(stage).index])
     shift = np.abs(ic / ideal - 1.0)
@@ -137,7 +138,7 @@ def divider_shift(bench: Bench, stage: str) -> Figure:
         stage,
         first(shift),
         bench.size,
-        "1",
+        "%",
         formula="|IC/IC(IB = 0) - 1|",
         numbers=(("IC", first(ic), "A"), ("IC(IB = 0)", first(ideal), "A")),
         source="stacked solve with and without base current",
@@ -165,7 +166,7 @@ def _supplies(bench: Bench) -> set[int]:
     return known | {node for node in held if any(far in known for _, far in resistors_on(c, node))}
 
 
-@quantity("base_dc_path", "1", "stage", "1 where direct base current has a path other than the device's own junctions")
+@quantity("base_dc_path", "", "stage", "1 where direct base current has a path other than the device's own junctions")
 def base_dc_path(bench: Bench, stage: str) -> Figure:
     """Structure alone: resistors, coils, sources, diodes and other devices lead from the base to a known net."""
     c, plan = bench.circuit, bench.point.plan
@@ -179,5 +180,22 @@ def base_dc_path(bench: Bench, stage: str) -> Figure:
         reached |= more
         growing = bool(more)
     found = bool(plan.is_known[list(reached)].any()) or bool((c.currents.nodes == start).any())
+    if not found:
+        _maybe_fed(bench, stage, reached)
     values = np.full(bench.size, 1.0 if found else 0.0)
-    return figure("base_dc_path", stage, values, "1", formula="a chain of conducting parts from the base to a supply")
+    return figure("base_dc_path", stage, values, "", formula="a chain of conducting parts from the base to a supply")
+
+
+def _maybe_fed(bench: Bench, stage: str, reached: set[int]) -> None:
+    """Raises CannotTell where a connector or a part without a model touches the base's nets and may feed it."""
+    nets = {bench.circuit.nets[node] for node in reached}
+    for unknown in bench.circuit.unknowns:
+        if nets & set(unknown.nets):
+            raise CannotTell(f"what {unknown.ref} does at pin {unknown.pin} for the base of {stage}", unknown.supply)
+    for ref, fact in bench.facts.items():
+        if fact.kind not in ("connector", "unmodelled"):
+            continue
+        for pin, net in fact.terminals.items():
+            if net in nets:
+                supply = f'[[port]] part = "{ref}", pin = "{pin}", or a [[state]] that drives it'
+                raise CannotTell(f"what {ref} pin {pin} feeds to the base of {stage}", supply)

@@ -159,6 +159,7 @@ def _no_bias(scene: Scene, name: str) -> str:
 
 def _name_others(stage: Stage, stages: list[Stage]) -> Stage:
     """Fill in what stands at the far end of a coupling element: the stage that shares it, else the port."""
+
     def named(link: Link | None, side: str, port: str) -> Link | None:
         if link is None or link.other:
             return link
