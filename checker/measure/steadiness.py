@@ -11,13 +11,13 @@ from checker.circuit.changes import with_changes
 from checker.circuit.types import Change, Circuit, IntArray, Scenario
 from checker.measure.bench import Bench, FloatArray
 from checker.measure.bias import require_bias
+from checker.measure.feeds import base_reach, require_not_fed
 from checker.measure.make import figure, first, missing, nominal
 from checker.measure.registry import quantity
 from checker.measure.single import nominal_circuit
 from checker.quantity.figure import Figure
 from checker.solve.operating import operating_point
 from checker.stages.wiring import resistors_on
-from checker.trouble import CannotTell
 
 NO_BASE_CURRENT = 1e9
 """Factor on the forward current gain that stands for a base current of zero."""
@@ -168,34 +168,18 @@ def _supplies(bench: Bench) -> set[int]:
 
 @quantity("base_dc_path", "", "stage", "1 where direct base current has a path other than the device's own junctions")
 def base_dc_path(bench: Bench, stage: str) -> Figure:
-    """Structure alone: resistors, coils, sources, diodes and other devices lead from the base to a known net."""
-    c, plan = bench.circuit, bench.point.plan
-    index = bench.stage(stage).index
-    start = int(c.bipolars.nodes[index, 1])
-    joins = [row for t in (c.resistors, c.inductors, c.voltages, c.diodes) for row in t.nodes.tolist()]
-    joins += [row[:3] for j, row in enumerate(c.bipolars.nodes.tolist()) if j != index]
-    reached, growing = {start}, True
-    while growing:
-        more = {x for row in joins if reached & set(row) for x in row} - reached
-        reached |= more
-        growing = bool(more)
-    found = bool(plan.is_known[list(reached)].any()) or bool((c.currents.nodes == start).any())
+    """Structure alone: resistors, coils, sources, diodes and other devices lead from the base to a known net.
+
+    Raises CannotTell where nothing does but a connector or a part without a model may.
+    """
+    reached = base_reach(bench, stage)
+    found = bool(bench.point.plan.is_known[list(reached)].any()) or bool(_current_fed(bench, reached))
     if not found:
-        _maybe_fed(bench, stage, reached)
+        require_not_fed(bench, stage, reached)
     values = np.full(bench.size, 1.0 if found else 0.0)
     return figure("base_dc_path", stage, values, "", formula="a chain of conducting parts from the base to a supply")
 
 
-def _maybe_fed(bench: Bench, stage: str, reached: set[int]) -> None:
-    """Raises CannotTell where a connector or a part without a model touches the base's nets and may feed it."""
-    nets = {bench.circuit.nets[node] for node in reached}
-    for unknown in bench.circuit.unknowns:
-        if nets & set(unknown.nets):
-            raise CannotTell(f"what {unknown.ref} does at pin {unknown.pin} for the base of {stage}", unknown.supply)
-    for ref, fact in bench.facts.items():
-        if fact.kind not in ("connector", "unmodelled"):
-            continue
-        for pin, net in fact.terminals.items():
-            if net in nets:
-                supply = f'[[port]] part = "{ref}", pin = "{pin}", or a [[state]] that drives it'
-                raise CannotTell(f"what {ref} pin {pin} feeds to the base of {stage}", supply)
+def _current_fed(bench: Bench, reached: set[int]) -> bool:
+    """Whether a current source ends on one of these nets."""
+    return any(node in reached for node in bench.circuit.currents.nodes.ravel().tolist())
