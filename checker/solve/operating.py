@@ -79,7 +79,7 @@ def operating_point(
     quick: bool = False,
     refuse: Mapping[int, str] | None = None,
 ) -> OperatingPoint:
-    """Solve and certify. `near`: a solution of the same topology to start from (its scenario 0 is used).
+    """Solve and certify. `near`: a solution of the same topology to start from (scenario by scenario where both have as many, else from its scenario 0).
 
     `rise_k`: junction temperature rise over ambient of bipolars and diodes, each (S, n) [K]. `x0` (S, U): start there.
     `quick`: give up early on what does not converge, for trials. `refuse`: islands (by place in the plan) that are no
@@ -92,6 +92,8 @@ def operating_point(
     t_b = np.broadcast_to(ambient + rise_b, (circuit.size, len(circuit.bipolars.names))).copy()
     t_d = np.broadcast_to(ambient + rise_d, (circuit.size, len(circuit.diodes.names))).copy()
     assembler = Assembler(circuit, plan, t_b, t_d)
+    if x0 is None and near is not None and near.solved.x.shape[0] == circuit.size and near.solved.done.all():
+        x0 = near.solved.x
     if x0 is None and near is not None and near.solved.done[0].all():
         x0 = np.repeat(near.solved.x[:1], circuit.size, axis=0)
     solved = solve(assembler, x0, quick=quick)
