@@ -91,7 +91,7 @@ def check_board(netlist_path: Path, intent_path: Path | None, *, today: datetime
         unchecked=(*_unknowns(setup), *_unsolved(stages), *_judged_apart(stages, to_unchecked(examination))),
         unavailable=ledger.unavailable,
     )
-    return Outcome(report=in_order(report), workings=tuple(ledger.workings), incomplete=bool(faults))
+    return Outcome(report=in_order(report), workings=ledger.workings, incomplete=bool(faults))
 
 
 def ready(netlist_path: Path, intent_path: Path | None) -> Setup:

@@ -21,7 +21,7 @@ ComplexArray = NDArray[np.complex128]
 IntArray = NDArray[np.int64]
 
 LARGEST_LOSS = 1e6
-"""Condition of the small matrix beyond which an update is not trusted: at 1e6 it leaves ten digits."""
+"""Growth through the small matrix's inverse beyond which an update is not trusted: at 1e6 it leaves ten digits."""
 SINGULAR = 1e15
 """Condition (rows scaled) at which a part of the circuit counts as floating."""
 
@@ -32,17 +32,25 @@ def updated(z: ComplexArray, y: ComplexArray, at: IntArray, delta: ComplexArray)
     y[..., at[:, None], at[None, :]] += delta
     z_d = z[..., :, at]
     small = np.eye(len(at)) + delta @ z_d[..., at, :]
-    known = np.isfinite(small).all(axis=(-1, -2))
-    weak = known & ~(_condition(small, known) <= LARGEST_LOSS)
-    small = np.where(weak[..., None, None], np.eye(len(at)), small)
-    new = z - z_d @ np.linalg.solve(small, delta @ z[..., at, :])
+    back, weak = _back(small)
+    new = z - z_d @ (back @ (delta @ z[..., at, :]))
     if weak.any():
         new[weak] = inverse_by_parts(y[weak])
     return new, y
 
 
-def _condition(a: ComplexArray, known: NDArray[np.bool_]) -> NDArray[np.float64]:
-    return np.asarray(np.linalg.cond(np.where(known[..., None, None], a, np.eye(a.shape[-1]))), dtype=float)
+def _back(small: ComplexArray) -> tuple[ComplexArray, NDArray[np.bool_]]:
+    """Inverse of the small matrices, and where it loses too many digits: |inverse| against a matrix of size one, so
+    that a single number near zero counts as well. Where it does, the identity stands in; nan stays nan."""
+    size = small.shape[-1]
+    known = np.isfinite(small).all(axis=(-1, -2))
+    singular = known & (np.abs(np.linalg.det(np.where(known[..., None, None], small, np.eye(size)))) == 0.0)
+    safe = np.where((known & ~singular)[..., None, None], small, np.eye(size))
+    back = np.linalg.inv(safe)
+    loss = np.maximum(np.abs(safe).sum(axis=-1).max(axis=-1), 1.0) * np.abs(back).sum(axis=-1).max(axis=-1)
+    weak = singular | (known & ~(loss <= LARGEST_LOSS))
+    back = np.where(weak[..., None, None], np.eye(size), back)
+    return np.where(known[..., None, None], back, np.nan), weak
 
 
 def inverse_by_parts(y: ComplexArray) -> ComplexArray:
