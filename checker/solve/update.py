@@ -1,9 +1,9 @@
 """Low-rank changes of an inverse, and what is done where such a change would lose its digits.
 
 Z' = Z - Z_D (1 + dY Z_DD)^-1 dY Z_D. Opening a link that holds two nets together (a coupling capacitor far above its
-corner) makes 1 + dY Z_DD nearly singular and a difference of large numbers besides. Where that costs more digits than we can
-spare, those frequencies are inverted afresh, part by unconnected part, so that a net that the change leaves floating
-reads nan and harms no other.
+corner) makes 1 + dY Z_DD nearly singular, and a difference of large numbers besides. Where that costs more digits
+than can be spared, those frequencies are inverted afresh, part by unconnected part, so that a net that the change
+leaves floating reads nan and harms no other.
 
 Source of the update: Sherman-Morrison-Woodbury identity; Golub and Van Loan, *Matrix Computations*, section 2.1
 (from memory).
@@ -75,7 +75,8 @@ def _inverse(a: ComplexArray) -> ComplexArray:
     finite = np.isfinite(a).all(axis=(-1, -2), keepdims=True)
     safe = np.where(finite, a, 0.0)
     rows = np.abs(safe).max(axis=-1, keepdims=True)
-    scaled = safe / np.where(rows == 0.0, 1.0, rows)
+    rows = np.where(rows == 0.0, 1.0, rows)
+    scaled = safe / rows
     good = np.asarray(np.linalg.cond(scaled) <= SINGULAR, dtype=bool)[:, None, None]
-    inverse = np.linalg.inv(np.where(good, scaled, np.eye(a.shape[-1]))) / np.where(rows == 0.0, 1.0, rows).swapaxes(-1, -2)
+    inverse = np.linalg.inv(np.where(good, scaled, np.eye(a.shape[-1]))) / rows.swapaxes(-1, -2)
     return np.asarray(np.where(good, inverse, np.nan), dtype=complex)

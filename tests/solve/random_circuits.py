@@ -48,9 +48,7 @@ def scaled(given: dict[str, float], ohm: float) -> dict[str, float]:
 
 def ohms() -> st.SearchStrategy[float]:
     """100 ohm to 1 Mohm, two digits."""
-    return st.builds(
-        lambda m, e: m * 10.0**e, st.integers(10, 99).map(lambda m: m / 10.0), st.integers(2, 5)
-    )
+    return st.builds(lambda m, e: m * 10.0**e, st.integers(10, 99).map(lambda m: m / 10.0), st.integers(2, 5))
 
 
 @st.composite

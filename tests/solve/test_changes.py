@@ -101,9 +101,10 @@ class Anew:
         """One terminal of a part left open: Schur complement over it."""
         nodes, y = self.blocks.pop(name)
         rest = [k for k in range(len(nodes)) if k != terminal]
-        left = y[:, rest][:, :, rest] - y[:, rest, terminal, None] * y[:, None, terminal, rest] / y[
-            :, terminal, terminal, None, None
-        ]
+        left = (
+            y[:, rest][:, :, rest]
+            - y[:, rest, terminal, None] * y[:, None, terminal, rest] / y[:, terminal, terminal, None, None]
+        )
         self.blocks[name] = ([nodes[k] for k in rest], left)
         return self
 

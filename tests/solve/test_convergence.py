@@ -241,3 +241,56 @@ def test_self_heating_closes_its_loop() -> None:
     assert rise > 20.0
     np.testing.assert_allclose(rise, hot.bipolar["power_w"][0, 0] * 200.0, atol=0.05)
     assert hot.bipolar["ic_a"][0, 0] > cold.bipolar["ic_a"][0, 0]
+
+
+# --- once found wrong ------------------------------------------------------------------------------------------
+
+
+def test_grounded_base_does_not_part_collector_from_emitter() -> None:
+    """With its base at a known voltage a transistor's other nets were once islands of their own."""
+    b = Bench(27.0)
+    b.v("VP", "vp", "0", 12.0)
+    b.v("VN", "vn", "0", -12.0)
+    b.r("RC", "vp", "c", 2.2e3)
+    b.r("RE", "e", "vn", 5.6e3)
+    b.q("Q1", "c", "0", "e", **NPN)
+    point = _certified(b)
+    assert len(point.islands) == 1
+    np.testing.assert_allclose(point.bipolar["ic_a"], 2.0e-3, rtol=0.02)
+
+
+def test_transistor_that_is_off_is_certified() -> None:
+    """Leakage behind 0.9 ohm at 12 V cannot balance better than doubles at 12 V allow; that is no failure."""
+    b = Bench(27.0)
+    b.v("VCC", "vcc", "0", 12.0)
+    b.r("RB", "b", "0", 4.7e3)
+    b.r("RC", "vcc", "c", 1e3)
+    b.q("Q1", "c", "b", "0", **NPN)
+    point = _certified(b)
+    assert 0.0 < point.bipolar["ic_a"][0, 0] < 1e-11
+
+
+def test_transistor_without_any_supply_is_certified() -> None:
+    """All currents are zero; a balance of 1e-23 A against nothing is no failure."""
+    b = Bench(27.0)
+    b.v("VCC", "vcc", "0", 12.0)
+    for j in range(3):
+        b.r(f"R{j}", f"n{j}", "0", 100.0)
+    b.r("R3", "n0", "n2", 50.0)
+    b.q("Q1", "n0", "n1", "n2", **NPN)
+    np.testing.assert_allclose(_certified(b).bipolar["ic_a"], 0.0, atol=1e-20)
+
+
+def test_base_current_crowding_is_smooth_at_small_currents() -> None:
+    """IRB form once jumped by 2e-6 of RB where its series takes over; here across that place in 1 % steps."""
+    from checker.devices import bipolar
+    from tests.devices.evaluated import bipolar_params
+
+    rows = 400
+    p = bipolar_params(PNP, rows)
+    k = bipolar.core(p, np.linspace(0.30, 0.50, rows)[:, None], np.full((rows, 1), -5.0))
+    r, slope, _ = bipolar.base_resistance(p, k)
+    step = np.diff(r[:, 0])
+    predicted = 0.5 * (slope[1:, 0] + slope[:-1, 0]) * (0.20 / (rows - 1))
+    # Trapezoid over 0.5 mV of a curve bent on the scale of VT: 3e-5 of each step.
+    np.testing.assert_allclose(step, predicted, rtol=1e-3, atol=1e-11)
