@@ -222,7 +222,7 @@ def test_helpers_reach_the_same_answer_as_the_plain_start() -> None:
         count = sum(g[1] for g in point.plan.groups)
         none = np.zeros((1, count), dtype=bool)
         for helper in (newton.BY_CONDUCTANCE, newton.BY_SOURCES):
-            x, reached = newton._continue(a, np.zeros((1, point.plan.n_unknown)), none, helper)
+            x, reached = newton.follow(a, np.zeros((1, point.plan.n_unknown)), none, helper)
             assert reached.all(), make.__name__
             np.testing.assert_allclose(x, point.solved.x, rtol=1e-7, atol=1e-9, err_msg=make.__name__)
 
