@@ -51,16 +51,14 @@ def _finding(verdict: Verdict, circuit: Circuit, mark: str, root: str | None) ->
         scenario=verdict.name,
         frequency_hz=frequency_hz(evidence.check, worst),
         measured=_measured(verdict),
-        limit=None if evidence.measured is not None else _limit(verdict),
+        limit=_limit(verdict),
         caused_by=root,
         location=_location(evidence.subject, circuit),
     )
 
 
 def _measured(verdict: Verdict) -> Measured:
-    evidence, worst = verdict.evidence, verdict.worst
-    figure = evidence.check.figure if evidence.measured is None else evidence.measured
-    value = value_at(evidence.check, worst) if evidence.measured is None else float(figure.values[worst, 0].real)
+    figure, value = verdict.evidence.check.figure, value_at(verdict.evidence.check, verdict.worst)
     return Measured(
         quantity=figure.quantity,
         value=as_written(value, figure.unit) if math.isfinite(value) else None,

@@ -17,6 +17,7 @@ from checker.measure.single import nominal_circuit
 from checker.quantity.figure import Figure
 from checker.solve.operating import operating_point
 from checker.stages.wiring import resistors_on
+from checker.trouble import CannotTell
 
 NO_BASE_CURRENT = 1e9
 """Factor on the forward current gain that stands for a base current of zero."""
@@ -179,5 +180,18 @@ def base_dc_path(bench: Bench, stage: str) -> Figure:
         reached |= more
         growing = bool(more)
     found = bool(plan.is_known[list(reached)].any()) or bool((c.currents.nodes == start).any())
+    if not found and (drivers := _drivers(c, reached)):
+        raise CannotTell(
+            datum=f"whether {', '.join(drivers[:3])} feeds the base of {stage}",
+            supply=f'[[part]] ref = "{drivers[0]}" with a card or a resistance, or a [rails] entry for its net',
+        )
     values = np.full(bench.size, 1.0 if found else 0.0)
     return figure("base_dc_path", stage, values, "1", formula="a chain of conducting parts from the base to a supply")
+
+
+def _drivers(c: Circuit, reached: set[int]) -> tuple[str, ...]:
+    """Parts without a model, connectors and the like on these nets: what they do there is not known."""
+    nets = {c.nets[node] for node in reached}
+    silent = ("resistor", "capacitor", "inductor", "diode", "bipolar")
+    refs = {ref for ref, fact in c.parts.items() if fact.kind not in silent and nets & set(fact.terminals.values())}
+    return tuple(sorted(refs | {unknown.ref for unknown in c.unknowns if nets & set(unknown.nets)}))

@@ -47,8 +47,7 @@ def effects_of(verdict: Verdict, nominal: Examined, stack: Examined, start: int)
     the change from `start`.
     """
     evidence = verdict.evidence
-    judged = evidence.check.figure if evidence.measured is None else evidence.measured
-    relation = evidence.check.relation
+    judged, relation = evidence.check.figure, evidence.check.relation
     board, rows = (nominal, (0, 1)) if verdict.worst == 0 else (stack, (verdict.worst, start + verdict.worst))
     first = _effect(board, judged.quantity, judged.subject, rows, relation)
     main = (_effect(nominal, name, each, (0, 1), relation) for each in verdict.stages[:1] for name in MAIN)
