@@ -89,7 +89,7 @@ def check_board(netlist_path: Path, intent_path: Path | None, *, today: datetime
         gains=gains(setup, ledger),
         findings=accepted.open,
         accepted=accepted.accepted,
-        unchecked=(*_unknowns(setup), *_unsolved(stages), *to_unchecked(examination)),
+        unchecked=(*_unknowns(setup), *_unsolved(stages), *_judged_apart(stages, to_unchecked(examination))),
         unavailable=ledger.unavailable,
     )
     return Outcome(report=in_order(report), workings=tuple(ledger.workings), incomplete=bool(faults))
@@ -144,6 +144,12 @@ def _counts(stage: Stage) -> bool:
 def _unknowns(setup: Setup) -> list[Unchecked]:
     """Parts and nets that cannot be solved with."""
     return [Unchecked(subject=u.ref, rule="", datum=u.datum, supply=u.supply) for u in setup.circuit.unknowns]
+
+
+def _judged_apart(stages: tuple[Stage, ...], gaps: tuple[Unchecked, ...]) -> list[Unchecked]:
+    """Gaps of rules, but for stages without an operating point: there one line stands for all rules."""
+    lost = {stage.id for stage in stages if stage.bias is None}
+    return [gap for gap in gaps if gap.subject not in lost]
 
 
 def _unsolved(stages: tuple[Stage, ...]) -> list[Unchecked]:

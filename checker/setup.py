@@ -17,6 +17,7 @@ from checker.shape import frozen
 from checker.solve.operating import OperatingPoint, operating_point
 from checker.solve.poles import growing_poles
 from checker.solve.response import small_signal
+from checker.solve.states import searched, settled
 from checker.spread.corners import corner_scenarios
 from checker.spread.influence import Influence, influence
 from checker.stages.ports import directed, wide_grid_hz, widest_band
@@ -45,9 +46,10 @@ class Setup:
     def board(self, scenarios: Sequence[Scenario]) -> Board:
         """A board over these scenarios (nominal first); stages and links stay those of the nominal."""
         circuit = with_changes(self.circuit, tuple(scenarios))
+        trials = any(scenario.kind == "candidate" for scenario in scenarios)
         bench = Bench(
             circuit=circuit,
-            point=operating_point(circuit, near=self.point),
+            point=operating_point(circuit, near=self.point, quick=trials),
             recognition=self.recognition,
             ports=self.ports,
             band_hz=self.circuit.band_hz,
@@ -60,11 +62,19 @@ class Setup:
 def set_up(netlist: Netlist, intent: Intent) -> Setup:
     """Build the circuit, solve its nominal, find the stages, and choose the scenarios."""
     circuit = build_circuit(netlist, intent)
-    point = operating_point(circuit)
+    point = searched(operating_point(circuit))
+    growing = growing_poles(point)
+    point = settled(point, growing)
     ports, words = _directed(circuit, point)
     f0, f_look, band_words = _frequencies(circuit, point, ports)
     states = state_scenarios(circuit, intent)
-    recognition = recognise(point, small_signal(point, f_look), ports, _state_regions(circuit, point, states))
+    recognition = recognise(
+        point,
+        small_signal(point, f_look),
+        ports,
+        _state_regions(circuit, point, states),
+        oscillating=_oscillating(point, growing),
+    )
     moves = influence(point)
     return Setup(
         netlist=netlist,
@@ -81,8 +91,22 @@ def set_up(netlist: Netlist, intent: Intent) -> Setup:
         f0_hz=f0,
         influence=moves,
         scenarios=(*corner_scenarios(circuit, intent.ambient, moves), *states),
-        growing=bool(len(growing_poles(point))),
+        growing=bool(len(growing)),
     )
+
+
+def _oscillating(point: OperatingPoint, growing: np.ndarray[tuple[int], np.dtype[np.complex128]]) -> dict[str, float]:
+    """Devices whose removal takes a growing oscillation away, with its frequency [Hz]."""
+    turning = np.abs(growing.imag) > 1e-6 * np.abs(growing)
+    if not turning.any():
+        return {}
+    f_hz = float(np.abs(growing[turning].imag).max() / (2.0 * np.pi))
+
+    def quiet(name: str) -> bool:
+        left = growing_poles(point, without=name)
+        return not np.any(np.abs(left.imag) > 1e-6 * np.abs(left))
+
+    return {name: f_hz for name in point.circuit.bipolars.names if quiet(name)}
 
 
 def _directed(circuit: Circuit, point: OperatingPoint) -> tuple[tuple[Port, ...], tuple[str, ...]]:

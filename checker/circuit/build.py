@@ -6,7 +6,7 @@ from collections.abc import Callable
 from typing import Final
 
 from checker.circuit.assemble import assemble
-from checker.circuit.devices import add_bipolar, add_diode, add_fet, bare_fact
+from checker.circuit.devices import add_bipolar, add_diode, add_fet, bare_fact, leave_out
 from checker.circuit.draft import Draft
 from checker.circuit.drives import add_drives
 from checker.circuit.elements import (
@@ -37,7 +37,7 @@ from checker.circuit.parts import Kind, classify
 from checker.circuit.ports import add_ports
 from checker.circuit.rails import add_rails
 from checker.circuit.supplies import find_unsupplied
-from checker.circuit.types import Circuit
+from checker.circuit.types import Circuit, PartKind
 from checker.circuit.values import written_value
 from checker.constants import DEFAULT_AMBIENT_C, ZERO_CELSIUS_K
 from checker.intent.hints import unknown
@@ -75,6 +75,21 @@ _FIRST: Final[tuple[Kind, ...]] = ("voltage", "battery")
 _LAST: Final[tuple[Kind, ...]] = ("coupling", "unmodelled")
 """Sources come before what may only repeat them (0 ohm parts); couplings after the inductors they name, and
 parts whose coil is found by the diode across it after the diodes."""
+_FACT_KINDS: Final[dict[Kind, PartKind]] = {
+    "resistor": "resistor",
+    "capacitor": "capacitor",
+    "inductor": "inductor",
+    "voltage": "source",
+    "current": "source",
+    "controlled": "source",
+    "diode": "diode",
+    "bipolar": "bipolar",
+    "fet": "fet",
+    "potentiometer": "resistor",
+    "array": "resistor",
+    "battery": "source",
+}
+"""Kinds that an export which the reader did not understand leaves unusable."""
 _VALUED: Final[tuple[Kind, ...]] = ("resistor", "capacitor", "inductor", "potentiometer", "array")
 """Kinds whose adder takes the intent's value itself."""
 
@@ -92,7 +107,11 @@ def build_circuit(netlist: Netlist, intent: Intent) -> Circuit:
     draft.touches.update(draft.net(pin.net) for part in netlist.parts for pin in part.pins)
     _check_names(draft)
     for kind, part in _sorted(netlist, draft):
-        if kind in _VALUED or not add_declared(draft, part):
+        if part.unknown and kind in _FACT_KINDS:
+            leave_out(
+                draft, part, _FACT_KINDS[kind], f"what {part.ref} is", part.unknown, blocks_dc=kind != "capacitor"
+            )
+        elif kind in _VALUED or not add_declared(draft, part):
             _ADDERS[kind](draft, part)
     add_rails(draft)
     add_ports(draft)
@@ -158,7 +177,7 @@ def _check_names(draft: Draft) -> None:
 
 def _no_ground(draft: Draft) -> None:
     nets = sorted(draft.present() - {draft.ground}, key=natural_key)
-    draft.loose("", nets, "ground", '[rails] "NET" = "0 V" for the net that is ground')
+    draft.loose("ground", nets, "ground", '[rails] "NET" = "0 V" for the net that is ground')
 
 
 def _temperature_k(netlist: Netlist, intent: Intent) -> float:

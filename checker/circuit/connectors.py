@@ -93,7 +93,7 @@ def role_by_name(*texts: str) -> PortRole | None:
     """Direction that net, value or reference names tell; None where they tell none or both."""
     roles: set[PortRole] = set()
     for text in texts:
-        last = "" if text.startswith("Net-(") else text.rsplit("/", 1)[-1]
+        last = "" if text.startswith(("Net-(", "Net-_")) else text.rsplit("/", 1)[-1]
         for word in (last, *_SPLIT.split(last)):
             if _IN.fullmatch(word):
                 roles.add("input")

@@ -24,6 +24,13 @@ ASSUMED_SPREAD: Final = (0.5, 2.0)
 """Gain limits as multiples of the model's gain, where no card gives a gain group (common practice, no
 source)."""
 _NO_FET: Final = ("a bipolar model", "field-effect transistors are not solved yet")
+_SUPPRESSOR: Final = re.compile(
+    r"(?:(?P<standoff>SM[ABC]J|SMF|SA|[35]KP)|(?:P[46](?:KE|SM[AB])|1[.,]5(?:KE|SMC)))(?P<volts>\d+(?:\.\d+)?)A?(?![\dC])",
+    re.IGNORECASE,
+)
+"""One-way suppressors by type number, after their stand-off or their breakdown voltage (common practice)."""
+_ABOVE_STANDOFF: Final = 1.17
+"""Nominal breakdown over stand-off voltage of such parts: their tables give 1.11 to 1.23 (from memory)."""
 _VOLTS: Final = re.compile(r"\d+(?:\.\d+)?V\d*|\d+[.,]?\d* ?V", re.IGNORECASE)
 
 
@@ -90,12 +97,12 @@ def add_fet(draft: Draft, part: Part) -> None:
     leave_out(draft, part, "fet", *_NO_FET)
 
 
-def leave_out(draft: Draft, part: Part, kind: PartKind, datum: str, supply: str) -> None:
-    """Record a device that cannot be solved; a FET's gate is taken as drawing no current."""
+def leave_out(draft: Draft, part: Part, kind: PartKind, datum: str, supply: str, *, blocks_dc: bool = True) -> None:
+    """Record a part that cannot be solved; a FET's gate is taken as drawing no current."""
     nets = [pin.net for pin in part.pins if kind != "fet" or letter_of(pin.function)[0] != "G"]
     if kind == "fet" and draft.netlist.format == "spice":
         nets = [pin.net for place, pin in enumerate(part.pins) if place != 1]
-    draft.loose(part.ref, nets, datum, supply)
+    draft.loose(part.ref, nets, datum, supply, blocks_dc=blocks_dc)
     draft.foreign.update(draft.net(pin.net) for pin in part.pins)
     draft.facts[part.ref] = bare_fact(draft, part, kind)
 
@@ -148,7 +155,10 @@ def _unnamed_diode(draft: Draft, part: Part) -> Identity:
 
 
 def _breakdown(part: Part) -> float | None:
-    """The Zener voltage [V] that the value text states: "6V2", "5.1V", "BZX84C4V7"."""
+    """The breakdown voltage [V] that the value states: "6V2", "5.1V", "BZX84C4V7"; of a suppressor "SMCJ30A"."""
+    suppressor = _SUPPRESSOR.match(part.value)
+    if suppressor is not None:
+        return float(suppressor["volts"]) * (_ABOVE_STANDOFF if suppressor["standoff"] else 1.0)
     found = _VOLTS.search(part.value)
     try:
         return None if found is None else parse_engineering(found[0].upper(), "V").si

@@ -12,8 +12,8 @@ from checker.netlist.types import Netlist
 from checker.shape import frozen
 
 _GROUND = re.compile(r"[ADPSC]?GND(?:[ADPSR]|PWR|REF|ISO|\d{1,2})?(?:[_-]\w{1,10})?|EARTH(?:_\w+)?|0V", re.IGNORECASE)
-_WEAK = re.compile(r"VSS[AD]?", re.IGNORECASE)
-"""A ground by name only where no net has a stronger one: beside a GND it may be a negative supply."""
+_WEAK = re.compile(r"VSS[AD]?|COM(?:MON)?", re.IGNORECASE)
+"""A ground by name only where no net has a stronger one: beside a GND it may be a negative supply or a bus."""
 
 
 @frozen

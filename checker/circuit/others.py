@@ -20,6 +20,9 @@ _NO_INPUTS: Final = frozenset(
 """Letters of parts that conduct, whatever pin kind a careless symbol gives them."""
 
 
+_COILS: Final = frozenset({"K", "RL", "RLY", "RY"})
+
+
 def add_closed(draft: Draft, part: Part) -> None:
     """A closed jumper, a fuse or a bead: an ideal wire, noted."""
     draft.facts[part.ref] = bare_fact(draft, part, "unmodelled")
@@ -63,7 +66,7 @@ def add_unmodelled(draft: Draft, part: Part) -> None:
     name = part.value or part.model
     shown = f"{part.ref} ({name})" if name else part.ref
     supply = 'its level in a [[state]], e.g. pins = {{ "{pin}" = "2.5 V" }}, or its net under [rails]'
-    if len({pin.net for pin in part.pins}) == 2:
+    if part.letter.upper() in _COILS or len({pin.net for pin in part.pins}) == 2:
         supply = f'[[part]] ref = "{part.ref}" with resistance, inductance or capacitance'
     _pins(draft, part, "", f"what {shown} does at {{pin}}", supply)
 

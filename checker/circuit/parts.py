@@ -117,7 +117,7 @@ _SYMBOLS: Final[tuple[tuple[Kind, str], ...]] = (
         "connector",
         r"(?:CONN|HEADER|HEAD|BORNIER|SCREW_?TERMINAL|USB|BARREL_?JACK|\w*JACK|DB\d|DIN)\w*(?:[-_ ]\w+)*",
     ),
-    ("connector", r"PHONES\w*|PJ301\w*|\w*JACK\w*(?:[-_]\w+)*|M0\dX\w*|EURO_PWR\w*"),
+    ("connector", r"PHONES\w*|PJ301[\w-]*|\w*JACK\w*(?:[-_]\w+)*|M0\dX\w*|EURO_PWR\w*"),
 )
 _COMPILED: Final = tuple((kind, re.compile(pattern, re.IGNORECASE)) for kind, pattern in _SYMBOLS)
 _RESCUE: Final = re.compile(
@@ -214,4 +214,4 @@ def _by_library(part: Part) -> Kind:
         return "diode"
     if part.letter.upper() in ("Q", "VT"):
         return "bipolar"
-    return "unmodelled"
+    return "connector" if part.letter.upper() in ("J", "CN", "CON") else "unmodelled"

@@ -65,7 +65,7 @@ def _declared(draft: Draft, said: PortIntent) -> DraftPort:
 def _with_elements(draft: Draft, port: DraftPort, *, attach: bool) -> DraftPort:
     """Give a port its source or load: what stands on the net already, else what the impedance asks for."""
     emf, series = existing_source(draft, port.net)
-    if port.role == "input" and emf and (not attach or not series):
+    if port.role == "input" and emf:
         if attach and port.reference_ohm is not None:
             draft.notes.add("ports", f"port {port.name}: {emf} drives its net already; no source attached")
         return replace(port, emf=emf, series=series)

@@ -17,7 +17,7 @@ _TAIL: Final = (
     r"|RF|AUDIO|MCU|USB|MAIN|AUX|PWR|REG))?"
 )
 _NUMBER: Final = r"(?P<whole>\d{1,3})(?:V(?P<part>\d{1,2})|[.,](?P<point>\d{1,2})V(?:DC)?|V(?:DC)?)"
-_NAMED: Final = re.compile(rf"(?P<sign>[+\-PN]?)V?{_NUMBER}{_TAIL}", re.IGNORECASE)
+_NAMED: Final = re.compile(rf"(?P<sign>[+\-PN]|PLUS|MINUS)?V?{_NUMBER}{_TAIL}", re.IGNORECASE)
 _AFTER_WORD: Final = re.compile(
     rf"(?:V(?:CC|DD|BUS|BAT|IN)|[AD]V(?:CC|DD))[_-]?(?P<sign>\+?){_NUMBER}{_TAIL}", re.IGNORECASE
 )
@@ -58,7 +58,7 @@ def volts_of_name(name: str) -> float | None:
     if found is not None:
         fraction = found["part"] or found["point"] or "0"
         volts = float(f"{found['whole']}.{fraction}")
-        return -volts if found["sign"] in ("-", "N", "n") else volts
+        return -volts if (found["sign"] or "").upper() in ("-", "N", "MINUS") else volts
     found = _BARE.fullmatch(text)
     if found is not None and int(found["whole"]) in _USUAL:
         return float(found["sign"] + found["whole"])
@@ -144,7 +144,7 @@ def _nameless(draft: Draft) -> None:
     for net in natural(draft.present() & draft.netlist.nets.keys()):
         last = last_segment(draft.netlist.nets[net].name)
         if draft.known_volts(net) is None and _NAMELESS.fullmatch(last) and not _is_fed(draft, net):
-            draft.loose("", (net,), f"volts of {net}", f'[rails] "{last}" = "…"')
+            draft.loose(net, (net,), f"volts of {net}", f'[rails] "{last}" = "…"')
             draft.nameless.add(net)
 
 

@@ -19,7 +19,9 @@ def find_unsupplied(draft: Draft) -> None:
     for nets, devices in groups.unfed():
         at = sorted((net for net in nets if net in groups.doors), key=lambda net: -len(draft.ends.get(net, ())))
         where = f' (perhaps "{at[0]}")' if at else ""
-        draft.loose("", nets, f"the supply of {listed(devices)}", f"the net that feeds it under [rails]{where}")
+        draft.loose(
+            natural(devices)[0], nets, f"the supply of {listed(devices)}", f"the net that feeds it under [rails]{where}"
+        )
 
 
 class _Groups:

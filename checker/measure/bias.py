@@ -6,6 +6,7 @@ import numpy as np
 
 from checker.constants import ZERO_CELSIUS_K
 from checker.measure.bench import Bench, FloatArray
+from checker.measure.feeds import base_reach, require_not_fed
 from checker.measure.make import figure, first
 from checker.measure.registry import quantity
 from checker.quantity.figure import Figure
@@ -51,12 +52,15 @@ def _kept(bench: Bench, key: str) -> FloatArray:
     return value
 
 
-@quantity("region_code", "1", "stage", "0 active, 1 saturated, 2 cut-off, 3 reverse-active")
+@quantity("region_code", "", "stage", "0 active, 1 saturated, 2 cut-off, 3 reverse-active")
 def region_code(bench: Bench, stage: str) -> Figure:
     """Region as an index into `REGIONS`, so that it can be compared over scenarios."""
     require_bias(bench, stage)
     codes = _kept(bench, "regions")[:, bench.stage(stage).index]
-    return figure("region_code", stage, codes, "1", formula="see the region's definition", source="docs/figures.md")
+    if REGIONS[int(codes[0])] == "cut-off":
+        # At rest means with everything connected: an open connector on the base leaves that undecided.
+        require_not_fed(bench, stage, base_reach(bench, stage))
+    return figure("region_code", stage, codes, "", formula="|IC| against the shorted current, VBC, IC/IB")
 
 
 def region_words(bench: Bench, stage: str, scenario: int) -> str:
@@ -70,9 +74,7 @@ def headroom(bench: Bench, stage: str) -> Figure:
     """VBC at the edge of saturation minus VBC."""
     require_bias(bench, stage)
     values = _kept(bench, "headroom")[:, bench.stage(stage).index]
-    return figure(
-        "headroom_v", stage, values, "V", formula="VBC where IC/IB is 0.9 of its value at VBC = 0, minus VBC"
-    )
+    return figure("headroom_v", stage, values, "V", formula="VBC where IC/IB is 0.9 of its value at VBC = 0, minus VBC")
 
 
 @quantity("tj_c", "degC", "stage", "junction temperature of the self-heated solution")

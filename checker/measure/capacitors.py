@@ -80,7 +80,9 @@ def own_loss(bench: Bench, part: str) -> Figure:
     f = bench.edges_hz[[0, 2]]
     response = bench.response(f)
     out = end_node(bench, outer)
-    values = 20.0 * np.log10(np.abs(_out(bench, response.shorted(part), outer, out) / _out(bench, response, outer, out)))
+    values = 20.0 * np.log10(
+        np.abs(_out(bench, response.shorted(part), outer, out) / _out(bench, response, outer, out))
+    )
     return figure(
         "own_loss_db",
         part,
@@ -88,10 +90,12 @@ def own_loss(bench: Bench, part: str) -> Figure:
         "dB",
         f_hz=f,
         formula="20 log10 |T shorted|/|T|, e upstream of the cut link unchanged",
-        numbers=(("|T|", float(np.abs(transfer(bench, response, outer))[0, 0]), "1"),),
+        numbers=(("|T|", float(np.abs(transfer(bench, response, outer))[0, 0]), ""),),
         source="in-place small-signal solution, low-rank change",
     )
 
 
-def _out(bench: Bench, response: Response, outer: Outer, node: int) -> np.ndarray[tuple[int, ...], np.dtype[np.complex128]]:
+def _out(
+    bench: Bench, response: Response, outer: Outer, node: int
+) -> np.ndarray[tuple[int, ...], np.dtype[np.complex128]]:
     return response.voltages(drive_of(bench, outer))[..., node]

@@ -33,7 +33,9 @@ def band_grid_hz(band_hz: tuple[float, float], points: int = 25) -> FloatArray:
     return np.geomspace(low if low > 0.0 else high * 1e-5, high, points)
 
 
-def corners(magnitude: Magnitude, grid: FloatArray, on_grid: FloatArray, f_ref: float, ref: float) -> tuple[float, float]:
+def corners(
+    magnitude: Magnitude, grid: FloatArray, on_grid: FloatArray, f_ref: float, ref: float
+) -> tuple[float, float]:
     """Low and high corner [Hz]; nan for none. `on_grid`: |T| on `grid`; `ref` = |T| at `f_ref`."""
     level = ref / np.sqrt(2.0)
     out = []
@@ -97,7 +99,7 @@ def _corner(name: str, which: int, meaning: str, subject: Subject) -> None:
             bench.size,
             "Hz",
             formula="|T(f)| = |T|ref/sqrt 2, first crossing walking outward",
-            numbers=(("|T|ref", found[2], "1"), ("at", found[3], "Hz")),
+            numbers=(("|T|ref", found[2], ""), ("at", found[3], "Hz")),
             source="sweep of the in-place solution, refined to 1e-6",
             reason=reason,
         )
@@ -115,9 +117,7 @@ def _droop(name: str, edge: int, meaning: str, subject: Subject) -> None:
         f = np.array([bench.edges_hz[edge], f_ref])
         t = np.abs(transfer(bench, bench.response(f), outer))
         values = 20.0 * np.log10(t[:, 1] / t[:, 0])
-        return figure(
-            name, ident, values, "dB", formula="|T|ref/|T(band edge)|", numbers=(("at", float(f[0]), "Hz"),)
-        )
+        return figure(name, ident, values, "dB", formula="|T|ref/|T(band edge)|", numbers=(("at", float(f[0]), "Hz"),))
 
 
 for _subject in ("stage", "group"):

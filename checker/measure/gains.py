@@ -59,9 +59,9 @@ def voltage_gain_db(bench: Bench, response: Response, outer: Outer) -> FloatArra
 QUANTITIES: tuple[tuple[str, str, str, Compute, str], ...] = (
     ("input_impedance_ohm", "ohm", "v/i at the input reference", input_impedance, "Zin = v(in)/i(input link)"),
     ("output_impedance_ohm", "ohm", "looking back, output link open", output_impedance, "Zout = v(out)/i, link open"),
-    ("voltage_gain", "1", "v(out) over v(in), loaded", voltage_gain, "Av = v(out)/v(in)"),
+    ("voltage_gain", "", "v(out) over v(in), loaded", voltage_gain, "Av = v(out)/v(in)"),
     ("voltage_gain_db", "dB", "voltage gain", voltage_gain_db, "20 log10 |v(out)/v(in)|"),
-    ("current_gain", "1", "output-link over input-link current", current_gain, "Ai = i(out)/i(in)"),
+    ("current_gain", "", "output-link over input-link current", current_gain, "Ai = i(out)/i(in)"),
     ("power_gain_db", "dB", "power out over power in", power_gain_db, "10 log10 Re(v i*) out/in"),
 )
 

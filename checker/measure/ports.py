@@ -13,6 +13,7 @@ from checker.measure.match import mismatch_loss_db, return_loss_db
 from checker.measure.registry import quantity
 from checker.quantity.figure import ComplexArray, Figure
 from checker.solve.response import Response, port_drive
+from checker.trouble import CannotTell
 
 MATCH_POINTS = 9
 """Frequencies of the band at which a match is judged: edges and seven between, in equal ratios."""
@@ -50,6 +51,10 @@ def port_return_loss(bench: Bench, name: str) -> Figure:
         return missing("return_loss_db", name, bench.size, "dB", "not applicable: the port has no reference impedance")
     response = bench.response(port_grid_hz(bench, port))
     z = impedance(bench, response, port)
+    if not np.isfinite(z[0]).all():
+        raise CannotTell(f"the bias of the circuit at port {name}", "see the stages without an operating point")
+    if bench.band_hz is None and port.band_hz is None and not _leads_on(bench, port):
+        raise CannotTell(f"the band at port {name}, which leads to no recognised stage", "[band] low and high")
     return figure(
         "return_loss_db",
         name,
@@ -62,12 +67,19 @@ def port_return_loss(bench: Bench, name: str) -> Figure:
     )
 
 
+def _leads_on(bench: Bench, port: Port) -> bool:
+    """Whether a signal path starts or ends at the port."""
+    return any(port.name in path for path in bench.recognition.paths)
+
+
 @quantity("mismatch_loss_db", "dB", "port", "power lost to reflection at the port's plane")
 def port_mismatch_loss(bench: Bench, name: str) -> Figure:
     """-10 log10(1 - |G|^2), over the band."""
     port = bench.port(name)
     if port.reference_ohm is None:
-        return missing("mismatch_loss_db", name, bench.size, "dB", "not applicable: the port has no reference impedance")
+        return missing(
+            "mismatch_loss_db", name, bench.size, "dB", "not applicable: the port has no reference impedance"
+        )
     response = bench.response(port_grid_hz(bench, port))
     values = mismatch_loss_db(impedance(bench, response, port), port.reference_ohm)
     return figure("mismatch_loss_db", name, values, "dB", f_hz=response.f_hz, formula="-10 log10(1 - |G|^2)")
@@ -86,14 +98,14 @@ def _ends(bench: Bench, subject: str) -> tuple[Port, Port]:
     raise KeyError(subject)
 
 
-@quantity("voltage_gain", "1", "gain", "v(out) over v(in) at the planes, in place")
+@quantity("voltage_gain", "", "gain", "v(out) over v(in) at the planes, in place")
 def port_voltage_gain(bench: Bench, subject: str) -> Figure:
     """At both band edges and f0."""
     source, to = _ends(bench, subject)
     response = bench.response(bench.edges_hz)
     v = response.voltages(port_drive(source))
     ratio = v[..., to.node] / v[..., source.node]
-    return figure("voltage_gain", subject, ratio, "1", f_hz=response.f_hz, formula="v(out)/v(in)")
+    return figure("voltage_gain", subject, ratio, "", f_hz=response.f_hz, formula="v(out)/v(in)")
 
 
 @quantity("voltage_gain_db", "dB", "gain", "voltage gain from port to port")

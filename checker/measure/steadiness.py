@@ -11,6 +11,7 @@ from checker.circuit.changes import with_changes
 from checker.circuit.types import Change, Circuit, IntArray, Scenario
 from checker.measure.bench import Bench, FloatArray
 from checker.measure.bias import require_bias
+from checker.measure.feeds import base_reach, require_not_fed
 from checker.measure.make import figure, first, missing, nominal
 from checker.measure.registry import quantity
 from checker.measure.single import nominal_circuit
@@ -101,7 +102,7 @@ def gain_limits(circuit: Circuit, device: str) -> tuple[float, float]:
     return bf * fact.gain_min / typical, bf * fact.gain_max / typical
 
 
-@quantity("gain_spread_ratio", "1", "stage", "collector current at the highest over the lowest current gain of the part")
+@quantity("gain_spread_ratio", "", "stage", "collector current at the highest over the lowest current gain of the part")
 def gain_spread_ratio(bench: Bench, stage: str) -> Figure:
     """Each device moved alone, at the nominal temperature."""
     require_bias(bench, stage)
@@ -113,23 +114,23 @@ def gain_spread_ratio(bench: Bench, stage: str) -> Figure:
         stage,
         first(ratio),
         bench.size,
-        "1",
+        "",
         formula="IC at highest gain / IC at lowest gain",
         numbers=(
             *(("IC high", first(high), "A"), ("IC low", first(low), "A")),
-            *(("BF low", bf[0], "1"), ("BF high", bf[1], "1")),
+            *(("BF low", bf[0], ""), ("BF high", bf[1], "")),
         ),
         source="stacked solve over the part's gain range",
     )
     return replace(made, values=ratio[:, None])
 
 
-@quantity("divider_shift", "1", "stage", "collector current against that of the same circuit without base current")
+@quantity("divider_shift", "%", "stage", "collector current against that of the same circuit without base current")
 def divider_shift(bench: Bench, stage: str) -> Figure:
     """|IC/IC(IB = 0) - 1| where a divider feeds the base; at nominal gain (scenario 0)."""
     require_bias(bench, stage)
     if len(base_feeds(bench, stage)) < 2:
-        return missing("divider_shift", stage, bench.size, "1", "not applicable: no divider feeds the base")
+        return missing("divider_shift", stage, bench.size, "%", "not applicable: no divider feeds the base")
     _, _, ideal = _answered(bench, stage)
     ic = np.abs(bench.point.bipolar["ic_a"][:, bench.stage(stage).index])
     shift = np.abs(ic / ideal - 1.0)
@@ -138,7 +139,7 @@ def divider_shift(bench: Bench, stage: str) -> Figure:
         stage,
         first(shift),
         bench.size,
-        "1",
+        "%",
         formula="|IC/IC(IB = 0) - 1|",
         numbers=(("IC", first(ic), "A"), ("IC(IB = 0)", first(ideal), "A")),
         source="stacked solve with and without base current",
@@ -166,32 +167,20 @@ def _supplies(bench: Bench) -> set[int]:
     return known | {node for node in held if any(far in known for _, far in resistors_on(c, node))}
 
 
-@quantity("base_dc_path", "1", "stage", "1 where direct base current has a path other than the device's own junctions")
+@quantity("base_dc_path", "", "stage", "1 where direct base current has a path other than the device's own junctions")
 def base_dc_path(bench: Bench, stage: str) -> Figure:
-    """Structure alone: resistors, coils, sources, diodes and other devices lead from the base to a known net."""
-    c, plan = bench.circuit, bench.point.plan
-    index = bench.stage(stage).index
-    start = int(c.bipolars.nodes[index, 1])
-    joins = [row for t in (c.resistors, c.inductors, c.voltages, c.diodes) for row in t.nodes.tolist()]
-    joins += [row[:3] for j, row in enumerate(c.bipolars.nodes.tolist()) if j != index]
-    reached, growing = {start}, True
-    while growing:
-        more = {x for row in joins if reached & set(row) for x in row} - reached
-        reached |= more
-        growing = bool(more)
-    found = bool(plan.is_known[list(reached)].any()) or bool((c.currents.nodes == start).any())
-    if not found and (drivers := _drivers(c, reached)):
-        raise CannotTell(
-            datum=f"whether {', '.join(drivers[:3])} feeds the base of {stage}",
-            supply=f'[[part]] ref = "{drivers[0]}" with a card or a resistance, or a [rails] entry for its net',
-        )
+    """Structure alone: resistors, coils, sources, diodes and other devices lead from the base to a known net.
+
+    Raises CannotTell where nothing does but a connector or a part without a model may.
+    """
+    reached = base_reach(bench, stage)
+    found = bool(bench.point.plan.is_known[list(reached)].any()) or bool(_current_fed(bench, reached))
+    if not found:
+        require_not_fed(bench, stage, reached)
     values = np.full(bench.size, 1.0 if found else 0.0)
-    return figure("base_dc_path", stage, values, "1", formula="a chain of conducting parts from the base to a supply")
+    return figure("base_dc_path", stage, values, "", formula="a chain of conducting parts from the base to a supply")
 
 
-def _drivers(c: Circuit, reached: set[int]) -> tuple[str, ...]:
-    """Parts without a model, connectors and the like on these nets: what they do there is not known."""
-    nets = {c.nets[node] for node in reached}
-    silent = ("resistor", "capacitor", "inductor", "diode", "bipolar")
-    refs = {ref for ref, fact in c.parts.items() if fact.kind not in silent and nets & set(fact.terminals.values())}
-    return tuple(sorted(refs | {unknown.ref for unknown in c.unknowns if nets & set(unknown.nets)}))
+def _current_fed(bench: Bench, reached: set[int]) -> bool:
+    """Whether a current source ends on one of these nets."""
+    return any(node in reached for node in bench.circuit.currents.nodes.ravel().tolist())

@@ -5,6 +5,7 @@ from __future__ import annotations
 import numpy as np
 
 from checker.measure.bench import Bench
+from checker.measure.bias import region_words
 from checker.measure.links import (
     ComplexArray,
     Outer,
@@ -32,16 +33,16 @@ def _setup(bench: Bench, stage: str) -> tuple[Outer, Response] | str:
     return outer if isinstance(outer, str) else (outer, bench.response(bench.edges_hz))
 
 
-@quantity("terminal_voltage_gain", "1", "stage", "v(exit terminal) over v(entry terminal)")
+@quantity("terminal_voltage_gain", "", "stage", "v(exit terminal) over v(entry terminal)")
 def terminal_voltage_gain(bench: Bench, stage: str) -> Figure:
     """In place, loaded."""
     found = _setup(bench, stage)
     if isinstance(found, str):
-        return missing("terminal_voltage_gain", stage, bench.size, "1", found)
+        return missing("terminal_voltage_gain", stage, bench.size, "", found)
     outer, response = found
     v = response.voltages(drive_of(bench, outer))
     ratio = v[..., terminal_net(bench.circuit, outer.exit)] / v[..., terminal_net(bench.circuit, outer.entry)]
-    return figure("terminal_voltage_gain", stage, ratio, "1", f_hz=response.f_hz, formula="v(exit)/v(entry)")
+    return figure("terminal_voltage_gain", stage, ratio, "", f_hz=response.f_hz, formula="v(exit)/v(entry)")
 
 
 @quantity("terminal_input_impedance_ohm", "ohm", "stage", "v/i into the entry terminal itself")
@@ -57,7 +58,7 @@ def terminal_input(bench: Bench, stage: str) -> Figure:
     return figure("terminal_input_impedance_ohm", stage, z, "ohm", f_hz=response.f_hz, formula="v(entry)/i(entry)")
 
 
-@quantity("terminal_output_impedance_ohm", "ohm", "stage", "of the exit terminal alone, its net's parts taken away")
+@quantity("terminal_output_impedance_ohm", "ohm", "stage", "of the exit terminal, its net's parts taken away")
 def terminal_output(bench: Bench, stage: str) -> Figure:
     """1/(1/Z in place - 1/Z with the device out), source's signal zero."""
     found = _setup(bench, stage)
@@ -128,7 +129,7 @@ def beside(a: float, b: float) -> float:
 
 
 def rule_of_thumb(bench: Bench, stage: str) -> dict[str, Figure]:
-    """Hand figures at f0, nominal, by quantity; empty where no formula belongs to the configuration.
+    """Hand figures at f0, nominal, by quantity; empty where no formula fits (not active, or another label).
 
     Common practice, no source: common base gain rc/re', input re' || RE, output RC, current gain rc/RL; common emitter
     gain -rc/(re' + Ze), input (beta + 1)(re' + Ze) || RB, output RC; common collector gain r/(r + re'),
@@ -136,6 +137,8 @@ def rule_of_thumb(bench: Bench, stage: str) -> dict[str, Figure]:
     """
     outer = outer_of(bench, stage)
     label = bench.stage(stage).configuration
+    if region_words(bench, stage, 0) != "active":
+        return {}
     if isinstance(outer, str) or label not in ("common-base", "common-emitter", "common-collector"):
         return {}
     re = first(r_e(bench, stage).values.real)
@@ -145,17 +148,17 @@ def rule_of_thumb(bench: Bench, stage: str) -> dict[str, Figure]:
     if label == "common-base":
         return _written(
             stage,
-            ("voltage_gain", a.exit_loaded / re, "1", "rc/re'", rc_words),
+            ("voltage_gain", a.exit_loaded / re, "", "rc/re'", rc_words),
             ("input_impedance_ohm", beside(re, a.emitter), "ohm", "re' || RE", (("RE", a.emitter, "ohm"), rc_words[1])),
             ("output_impedance_ohm", a.exit_alone, "ohm", "RC", ()),
-            ("current_gain", a.exit_loaded / a.load, "1", "rc/RL", (("RL", a.load, "ohm"), rc_words[0])),
+            ("current_gain", a.exit_loaded / a.load, "", "rc/RL", (("RL", a.load, "ohm"), rc_words[0])),
         )
     if label == "common-emitter":
         lead = re + a.emitter
         words = (*rc_words, ("Ze", a.emitter, "ohm"))
         return _written(
             stage,
-            ("voltage_gain", -a.exit_loaded / lead, "1", "-rc/(re' + Ze)", words),
+            ("voltage_gain", -a.exit_loaded / lead, "", "-rc/(re' + Ze)", words),
             _base_input(a, beta, lead),
             ("output_impedance_ohm", a.exit_alone, "ohm", "RC", ()),
         )
@@ -163,7 +166,7 @@ def rule_of_thumb(bench: Bench, stage: str) -> dict[str, Figure]:
     back = beside(re + a.base / (beta + 1.0), a.exit_alone)
     return _written(
         stage,
-        ("voltage_gain", r / (r + re), "1", "r/(r + re')", (("r", r, "ohm"), rc_words[1])),
+        ("voltage_gain", r / (r + re), "", "r/(r + re')", (("r", r, "ohm"), rc_words[1])),
         _base_input(a, beta, re + r),
         ("output_impedance_ohm", back, "ohm", "(re' + RS/(beta + 1)) || RE", (("RS", a.base, "ohm"),)),
     )
@@ -174,7 +177,13 @@ Hand = tuple[str, float, str, str, tuple[tuple[str, float, str], ...]]
 
 def _base_input(a: Around, beta: float, lead: float) -> Hand:
     z = beside((beta + 1.0) * lead, a.base_alone)
-    return ("input_impedance_ohm", z, "ohm", "(beta + 1)(re' + Ze) || RB", (("beta", beta, "1"), ("Ze + re'", lead, "ohm")))
+    return (
+        "input_impedance_ohm",
+        z,
+        "ohm",
+        "(beta + 1)(re' + Ze) || RB",
+        (("beta", beta, ""), ("Ze + re'", lead, "ohm")),
+    )
 
 
 def _written(stage: str, *hands: Hand) -> dict[str, Figure]:

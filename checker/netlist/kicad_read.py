@@ -43,9 +43,7 @@ def read_kicad(text: str, *, name: str, sha256: str, limits: ReadLimits) -> Netl
     parsed = parse(text, name=name, depth=limits.depth)
     root = parsed.root
     if not child(root, "components"):
-        raise InputTrouble(
-            "the export has no (components ...) list; export the netlist again", file=name, line=1
-        )
+        raise InputTrouble("the export has no (components ...) list; export the netlist again", file=name, line=1)
     remarks = list(_version_remark(root, name))
     nodes = _nodes(parsed)
     parts = _parts(parsed, nodes, name, limits)

@@ -17,9 +17,7 @@ _EXPORT = re.compile(r"\(\s*export[\s()]")
 _S_EXPRESSION = re.compile(r"\(\s*[\w{]+[\s({]")
 
 
-def read_netlist(
-    path: Path, *, include_dirs: tuple[Path, ...] = (), limits: ReadLimits | None = None
-) -> Netlist:
+def read_netlist(path: Path, *, include_dirs: tuple[Path, ...] = (), limits: ReadLimits | None = None) -> Netlist:
     """Read a SPICE-style text or a KiCad S-expression export (versions D and E) into one `Netlist`.
 
     `path` is also the name used in the result, with forward slashes. SPICE includes are followed only inside

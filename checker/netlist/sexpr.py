@@ -86,9 +86,7 @@ def _scan(text: str, name: str, limit: int) -> dict[str, list[int]]:
                 over("depth", limit, "brackets nested too deep", file=name, line=line)
         elif mark == '"':
             line = bisect_right(starts, match.start()) + 1
-            raise InputTrouble(
-                "a quoted text does not end; the file is cut off or damaged", file=name, line=line
-            )
+            raise InputTrouble("a quoted text does not end; the file is cut off or damaged", file=name, line=line)
     if level:
         raise InputTrouble(
             f"{level} brackets stay open at the end; the file is cut off", file=name, line=len(starts) + 1

@@ -114,9 +114,7 @@ class CardReader:
             self.remark(card, "a .model card without a name is passed over")
         elif name in self.open[-1].models and self.open[-1].models[name].text != card.text:
             first = self.open[-1].models[name]
-            self.remark(
-                card, f"a second model {name}: the first one, line {first.line} of {first.file}, is used"
-            )
+            self.remark(card, f"a second model {name}: the first one, line {first.line} of {first.file}, is used")
         else:
             self.open[-1].models[name] = card
 
@@ -178,11 +176,7 @@ class CardReader:
         """`.lib FILE` or `.lib FILE SECTION`; a path may hold blanks, so what exists decides."""
         head, _, last = rest.rpartition(" ")
         beside = self.beside()
-        if (
-            head.strip()
-            and not self.folders.find(rest, beside=beside)
-            and self.folders.find(head, beside=beside)
-        ):
+        if head.strip() and not self.folders.find(rest, beside=beside) and self.folders.find(head, beside=beside):
             self.follow(card, head, section=last.strip().lower())
         else:
             self.follow(card, rest, section=None)

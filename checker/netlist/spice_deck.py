@@ -51,9 +51,7 @@ class Definition:
         for name, ref in zip(names, refs, strict=True):
             self.refs.setdefault(name.lower(), ref)
         return [
-            self.cards[index].remark(
-                f"a second element {names[index]}: this one is called {refs[index]}", refs[index]
-            )
+            self.cards[index].remark(f"a second element {names[index]}: this one is called {refs[index]}", refs[index])
             for index in repeated
         ]
 

@@ -146,9 +146,7 @@ class Expansion:
         place = _At(self, frame, element)
         nodes = element.words.positional[1:-1]
         if len(nodes) != len(definition.ports):
-            reason = (
-                f"{len(nodes)} nodes for the {len(definition.ports)} of subcircuit {definition.name[:40]}"
-            )
+            reason = f"{len(nodes)} nodes for the {len(definition.ports)} of subcircuit {definition.name[:40]}"
             part = part_of(element, place)
             if part is not None:
                 self.parts.append(replace(part, unknown=reason))
@@ -172,9 +170,7 @@ class Expansion:
         self.settle(inner)
         self.fill(inner)
 
-    def arguments(
-        self, element: Element, definition: Definition, holder: Frame, place: _At
-    ) -> tuple[Scope, float]:
+    def arguments(self, element: Element, definition: Definition, holder: Frame, place: _At) -> tuple[Scope, float]:
         """Parameters of an instance: the definition's own, overridden by the pairs on the X card, which are
         evaluated where that card stands. `m` counts parallel instances unless the subcircuit has a parameter
         of that name."""

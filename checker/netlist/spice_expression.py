@@ -143,9 +143,7 @@ class _Parser:
         if kind == "number":
             return parse_spice_number(symbol)
         if kind == "name":
-            return (
-                self.call(symbol.lower(), level) if self.symbol == "(" else self.name(symbol.lower(), level)
-            )
+            return self.call(symbol.lower(), level) if self.symbol == "(" else self.name(symbol.lower(), level)
         if symbol == "(":
             value = self.expression(0, level + 1)
             self.take(")")
@@ -153,9 +151,7 @@ class _Parser:
         if symbol in ("-", "+", "!", "~"):
             value = self.expression(_UNARY, level + 1)
             return -value if symbol == "-" else value if symbol == "+" else float(not value)
-        raise NotAQuantity(
-            f"{self.text[:60]!r} ends too early or holds {symbol[:20]!r} where a number should be"
-        )
+        raise NotAQuantity(f"{self.text[:60]!r} ends too early or holds {symbol[:20]!r} where a number should be")
 
     def name(self, name: str, level: int) -> float:
         try:

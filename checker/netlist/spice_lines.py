@@ -52,9 +52,7 @@ def cards_of(text: str, *, file: str, first_line: int = 1) -> tuple[list[Card], 
             control = 0 if word == ".endc" else control
         elif word == ".control":
             control = number
-            remarks.append(
-                _remark("a control block is passed over: it holds commands, no parts", file, number)
-            )
+            remarks.append(_remark("a control block is passed over: it holds commands, no parts", file, number))
         elif word == ".end":
             ended = number
         elif bare[0] != "+":
@@ -64,9 +62,7 @@ def cards_of(text: str, *, file: str, first_line: int = 1) -> tuple[list[Card], 
         else:
             remarks.append(_remark("a continuation line with nothing before it is passed over", file, number))
     if control:
-        remarks.append(
-            _remark("the control block never ends: all that follows it is passed over", file, control)
-        )
+        remarks.append(_remark("the control block never ends: all that follows it is passed over", file, control))
     return [Card(text=" ".join(parts), file=file, line=number) for number, parts in pieces], remarks
 
 

@@ -11,9 +11,7 @@ from checker.netlist.types import Model, Remark
 from checker.trouble import NotAQuantity
 
 _COLON = re.compile(r"(?<=[A-Za-z0-9_])\s*:\s*(?=[\d.+-])")
-_NOTES = frozenset(
-    {"mfg", "manufacturer", "vendor", "type", "icrating", "vceo", "vds", "ron", "qg", "iave", "vpk"}
-)
+_NOTES = frozenset({"mfg", "manufacturer", "vendor", "type", "icrating", "vceo", "vds", "ron", "qg", "iave", "vpk"})
 """Parameters that describe the part and enter no equation; as text they are no loss."""
 
 
@@ -31,9 +29,7 @@ def read_model(card: Card, scope: Scope, name: str) -> tuple[Model, list[Remark]
     kind = words.positional[2].lower() if len(words.positional) > 2 else ""
     remarks = []
     if not kind or ":" in kind:
-        remarks.append(
-            card.remark(f"the model {name[:40]} names no kind that is understood: {kind[:40] or 'none'}")
-        )
+        remarks.append(card.remark(f"the model {name[:40]} names no kind that is understood: {kind[:40] or 'none'}"))
     params: dict[str, float] = {}
     for key, text in words.named.items():
         try:

@@ -30,9 +30,7 @@ def references(names: Sequence[str]) -> tuple[list[str], list[int]]:
     positions of the names that repeat an earlier one, which get a suffix."""
     plain = [plain_reference(name) for name in names]
     raw_uses = Counter({name.lower() for name in names})
-    plain_uses = Counter(
-        text.lower() for text in {name.lower(): plain_reference(name) for name in names}.values()
-    )
+    plain_uses = Counter(text.lower() for text in {name.lower(): plain_reference(name) for name in names}.values())
     result: list[str] = []
     repeated: list[int] = []
     taken: set[str] = set()

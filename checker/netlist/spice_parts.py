@@ -266,9 +266,7 @@ def _other(element: Element, place: Place) -> Part | None:
     words = element.words.positional[1:]
     if len(words) < 3:
         return None
-    reason = (
-        f"elements of letter {element.letter} are not understood; the words are taken for nodes and a name"
-    )
+    reason = f"elements of letter {element.letter} are not understood; the words are taken for nodes and a name"
     return _part(element, place, words[:-1], params={}, value=words[-1], model=words[-1], unknown=reason)
 
 

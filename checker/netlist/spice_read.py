@@ -56,9 +56,7 @@ def read_spice(
     )
 
 
-def _declared(
-    text: str, name: str, path: Path, include_dirs: tuple[Path, ...], limits: ReadLimits, size: int
-) -> Deck:
+def _declared(text: str, name: str, path: Path, include_dirs: tuple[Path, ...], limits: ReadLimits, size: int) -> Deck:
     deck = Deck(root=Definition(name=""))
     first, _, others = text.partition("\n")
     skipped = _title(deck, first, others, name)
@@ -71,9 +69,7 @@ def _declared(
         deck.remarks += definition.settle()
     if not deck.root.elements and deck.root.subcircuits:
         names = ", ".join(definition.name[:40] for definition in list(deck.root.subcircuits.values())[:5])
-        deck.remarks.append(
-            _remark(name, 0, f"a library: only subcircuits ({names}) and no part that uses them")
-        )
+        deck.remarks.append(_remark(name, 0, f"a library: only subcircuits ({names}) and no part that uses them"))
     return deck
 
 
@@ -89,9 +85,7 @@ def _title(deck: Deck, first: str, others: str, name: str) -> bool:
         deck.title = first.strip()
         return True
     deck.remarks.append(
-        _remark(
-            name, 1, "the first line reads as an element and is taken for one, though custom makes it a title"
-        )
+        _remark(name, 1, "the first line reads as an element and is taken for one, though custom makes it a title")
     )
     return False
 

@@ -26,11 +26,7 @@ class Scope:
 
     def knows(self, name: str) -> bool:
         """True where a parameter of that lower-case name is in force."""
-        return (
-            name in self._texts
-            or name in self._values
-            or (self._outer is not None and self._outer.knows(name))
-        )
+        return name in self._texts or name in self._values or (self._outer is not None and self._outer.knows(name))
 
     def names(self) -> tuple[str, ...]:
         """Names given a text on this level, in their order."""

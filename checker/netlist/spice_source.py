@@ -94,9 +94,7 @@ class _Reader:
     def numbers(self, most: int) -> list[float]:
         """Up to `most` numbers from the words that are left, as far as they are numbers."""
         values: list[float] = []
-        while (
-            self.at < len(self.words) and len(values) < most and self.words[self.at].lower() not in _KEYWORDS
-        ):
+        while self.at < len(self.words) and len(values) < most and self.words[self.at].lower() not in _KEYWORDS:
             try:
                 values.append(self.number(self.words[self.at]))
             except NotAQuantity:

@@ -47,11 +47,7 @@ def split_words(text: str, *, decimal_comma: bool = False) -> Words:
             more, at = _more_values(text, at)
             if more:
                 groups[key] = more
-        elif (
-            decimal_comma
-            and len(positional) >= _COMMA_FROM
-            and (comma := _COMMA_NUMBER.match(text, found.start()))
-        ):
+        elif decimal_comma and len(positional) >= _COMMA_FROM and (comma := _COMMA_NUMBER.match(text, found.start())):
             at = _end(_REST, text, comma.end())
             positional.append(text[found.start() : at])
         elif piece not in "=(),":

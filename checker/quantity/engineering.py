@@ -58,9 +58,7 @@ def parse_engineering(text: str, unit: str) -> Reading:
         raise _refusal(text, unit, "it is empty" if not folded else "it is too long")
     if unit == "F" and _EIA_CODE.fullmatch(folded):
         # EIA three-digit code: two digits and a count of zeros, in pF. Common practice.
-        return Reading(
-            si=float(f"{folded[:2]}e{int(folded[2]) - 12}"), tolerance=None, rating_v=None, text=text
-        )
+        return Reading(si=float(f"{folded[:2]}e{int(folded[2]) - 12}"), tolerance=None, rating_v=None, text=text)
     head = _head(folded, text, unit)
     if head is None:
         raise _refusal(text, unit, "it does not start with a number")

@@ -39,9 +39,7 @@ SPELLINGS: dict[str, tuple[str, ...]] = {
 }
 """Unit key to accepted spellings, lower case; a unit that is not listed is spelt as its key alone."""
 
-UNPREFIXED = frozenset(
-    {"%", "degC", "dB", "dBm", "dBV", "dBu", "dBc", "deg", "ppm", "ppm/K", "K", "K/W", "degC/W", ""}
-)
+UNPREFIXED = frozenset({"%", "degC", "dB", "dBm", "dBV", "dBu", "dBc", "deg", "ppm", "ppm/K", "K", "K/W", "degC/W", ""})
 """Units that take no prefix, neither read nor printed."""
 
 SYMBOLS = {"ohm": "Ω", "degC": "°C", "degC/W": "°C/W", "deg": "°"}

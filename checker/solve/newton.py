@@ -18,6 +18,7 @@ from checker.constants import (
     KCL_REL,
     MAX_ITERATIONS,
     MAX_RUNGS,
+    QUICK_ITERATIONS,
     RUNAWAY,
     RUNG_ITERATIONS,
     SMALLEST_RUNG,
@@ -45,8 +46,11 @@ class Solved:
     sign: FloatArray
 
 
-def solve(assembler: Assembler, x0: FloatArray | None = None) -> Solved:
-    """Solve all islands of all scenarios; `x0` (S, U) starts from known answers."""
+def solve(assembler: Assembler, x0: FloatArray | None = None, *, quick: bool = False) -> Solved:
+    """Solve all islands of all scenarios; `x0` (S, U) starts from known answers.
+
+    `quick`: no helpers, few passes: for trials of which a failure is only one trial less.
+    """
     plan = assembler.plan
     shape = (assembler.scenarios, plan.n_unknown)
     count = sum(g[1] for g in plan.groups)
@@ -54,15 +58,15 @@ def solve(assembler: Assembler, x0: FloatArray | None = None) -> Solved:
     done = np.zeros((shape[0], count), dtype=bool)
     if count:
         start = assembler.start() if x0 is None else assembler.junctions(assembler.voltages(x))
-        x, done, _ = _iterate(assembler, x, start, done)
+        x, done, _ = iterate(assembler, x, start, done, limit=QUICK_ITERATIONS if quick else MAX_ITERATIONS)
         for helper in (BY_CONDUCTANCE, BY_SOURCES):
-            if done.all():
+            if quick or done.all():
                 break
-            x, done = _continue(assembler, x, done, helper)
+            x, done = follow(assembler, x, done, helper)
     return _certify(assembler, x, done)
 
 
-def _iterate(
+def iterate(
     assembler: Assembler,
     x: FloatArray,
     at: Junctions,
@@ -162,7 +166,7 @@ BY_CONDUCTANCE = _Helper(gmin=lambda t: 10.0 ** (-2.0 - 11.0 * t) if t < 1.0 els
 BY_SOURCES = _Helper(gmin=lambda _t: 0.0, scale=lambda t: t)
 
 
-def _continue(assembler: Assembler, x: FloatArray, done: BoolArray, helper: _Helper) -> tuple[FloatArray, BoolArray]:
+def follow(assembler: Assembler, x: FloatArray, done: BoolArray, helper: _Helper) -> tuple[FloatArray, BoolArray]:
     """Follow the helper from t = 0 to 1 with a step that halves on failure and doubles on success.
 
     Islands that fail at the smallest step are given up; the others go on.
@@ -174,7 +178,7 @@ def _continue(assembler: Assembler, x: FloatArray, done: BoolArray, helper: _Hel
     t, step = 0.0, 0.0
     for _ in range(MAX_RUNGS):
         aim = min(1.0, t + step)
-        trial, good, at = _iterate(
+        trial, good, at = iterate(
             assembler,
             *state,
             given_up,

@@ -43,7 +43,7 @@ class OperatingPoint:
 
     `bipolar`: ic_a, ib_a, ie_a (into the terminal, signs as they flow), vbe_v, vce_v, vbc_v at the outer terminals
     times the polarity, power_w; each (S, n). `diode`: i_a, v_v, power_w. `bipolar_k`, `diode_k`: temperatures used.
-    `kept`: what later steps derive from the point once (pencils, numbering).
+    `refused`: island -> why its solution is not printed though it balances. `kept`: what later steps derive from the point once (pencils, numbering).
     """
 
     circuit: Circuit
@@ -56,6 +56,7 @@ class OperatingPoint:
     diode: Mapping[str, FloatArray]
     bipolar_k: FloatArray
     diode_k: FloatArray
+    refused: Mapping[int, str] = field(default_factory=dict)
     kept: dict[str, Any] = field(default_factory=dict)
 
     def reason(self, net: str) -> str:
@@ -74,10 +75,15 @@ def operating_point(
     *,
     near: OperatingPoint | None = None,
     rise_k: tuple[FloatArray, FloatArray] | None = None,
+    x0: FloatArray | None = None,
+    quick: bool = False,
+    refuse: Mapping[int, str] | None = None,
 ) -> OperatingPoint:
     """Solve and certify. `near`: a solution of the same topology to start from (its scenario 0 is used).
 
-    `rise_k`: junction temperature rise over ambient of bipolars and diodes, each (S, n) [K].
+    `rise_k`: junction temperature rise over ambient of bipolars and diodes, each (S, n) [K]. `x0` (S, U): start there.
+    `quick`: give up early on what does not converge, for trials. `refuse`: islands (by place in the plan) that are no
+    rest, with the reason; those that `near` refuses stay refused.
     """
     plan = near.plan if near is not None else make_plan(circuit)
     ambient = circuit.temperature_k[:, None]
@@ -86,11 +92,11 @@ def operating_point(
     t_b = np.broadcast_to(ambient + rise_b, (circuit.size, len(circuit.bipolars.names))).copy()
     t_d = np.broadcast_to(ambient + rise_d, (circuit.size, len(circuit.diodes.names))).copy()
     assembler = Assembler(circuit, plan, t_b, t_d)
-    x0 = None
-    if near is not None and near.solved.done[0].all():
+    if x0 is None and near is not None and near.solved.done[0].all():
         x0 = np.repeat(near.solved.x[:1], circuit.size, axis=0)
-    solved = solve(assembler, x0)
-    return _collect(circuit, plan, assembler, solved, t_b, t_d)
+    solved = solve(assembler, x0, quick=quick)
+    refused = {**(near.refused if near is not None else {}), **(refuse or {})}
+    return _collect(circuit, plan, assembler, solved, (t_b, t_d), refused)
 
 
 def self_heated(cold: OperatingPoint, *, rounds: int = 8) -> OperatingPoint:
@@ -110,7 +116,12 @@ def self_heated(cold: OperatingPoint, *, rounds: int = 8) -> OperatingPoint:
 
 
 def _collect(
-    circuit: Circuit, plan: Plan, assembler: Assembler, solved: Solved, t_b: FloatArray, t_d: FloatArray
+    circuit: Circuit,
+    plan: Plan,
+    assembler: Assembler,
+    solved: Solved,
+    device_k: tuple[FloatArray, FloatArray],
+    refused: Mapping[int, str],
 ) -> OperatingPoint:
     v = assembler.voltages(solved.x)
     v[:, (plan.unknown < 0) & ~plan.is_known] = np.nan
@@ -124,7 +135,7 @@ def _collect(
                 Island(nets=nets, ok=bad, kcl=nan, step_v=nan, condition=nan, sign=nan, reason=island.trouble)
             )
             continue
-        ok = solved.done[:, index] & (solved.kcl[:, index] <= KCL_REL)
+        ok = solved.done[:, index] & (solved.kcl[:, index] <= KCL_REL) & (index not in refused)
         v[np.ix_(~ok, list(island.nodes))] = np.nan
         islands.append(
             Island(
@@ -134,7 +145,9 @@ def _collect(
                 step_v=solved.step[:, index],
                 condition=solved.condition[:, index],
                 sign=solved.sign[:, index],
-                reason="" if ok[0] else "the operating point did not converge to a certified answer",
+                reason=""
+                if ok[0]
+                else refused.get(index, "the operating point did not converge to a certified answer"),
                 exhaustive=_single(plan, set(island.nodes)),
             )
         )
@@ -147,8 +160,9 @@ def _collect(
         islands=tuple(islands),
         bipolar=_bipolar_table(assembler, v),
         diode=_diode_table(assembler, v),
-        bipolar_k=t_b,
-        diode_k=t_d,
+        bipolar_k=device_k[0],
+        diode_k=device_k[1],
+        refused=refused,
     )
 
 

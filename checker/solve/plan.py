@@ -208,7 +208,8 @@ def _blocked(circuit: Circuit, sets: Sets, is_known: NDArray[np.bool_]) -> dict[
             node = index.get(net)
             if node is not None and not is_known[node]:
                 pin = f" pin {unknown.pin}" if unknown.pin else ""
-                out.setdefault(sets.find(node), f"{unknown.ref}{pin} on {net}: {unknown.datum} is not known")
+                where = f"{unknown.ref}{pin} on {net}: " if unknown.ref else ""
+                out.setdefault(sets.find(node), f"{where}{unknown.datum} is not known")
     return out
 
 

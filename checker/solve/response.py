@@ -287,7 +287,5 @@ def small_signal(point: OperatingPoint, f_hz: FloatArray) -> Response:
         y_known=y_known,
         bipolar_y=y_b,
         diode_y=y_d,
-        passive_y=outer_admittance(
-            point.plan.bipolars, bipolar.without_gm(g_b, transconductance(point)), c_b, f, 4
-        ),
+        passive_y=outer_admittance(point.plan.bipolars, bipolar.without_gm(g_b, transconductance(point)), c_b, f, 4),
     )

@@ -5,6 +5,8 @@ from __future__ import annotations
 from collections.abc import Iterator, Mapping
 from itertools import combinations
 
+import numpy as np
+
 from checker.stages.direction import Direction
 from checker.stages.scene import Scene
 from checker.stages.types import Group
@@ -15,16 +17,19 @@ from checker.words import GroupLabel
 def find_groups(scene: Scene, ways: Mapping[str, Direction]) -> tuple[Group, ...]:
     """All groups of two devices, sorted by id; a pair carries one label, the first that fits."""
     out = []
-    for pair in combinations(sorted(scene.devices), 2):
+    for pair in combinations(sorted(name for name in scene.devices if _biased(scene, name)), 2):
         for label, first, second, evidence in _labels(scene, ways, *pair):
             out.append(_group(label, first, second, evidence, ways))
             break
     return tuple(sorted(out, key=lambda g: g.id))
 
 
-def _labels(
-    scene: Scene, ways: Mapping[str, Direction], p: str, q: str
-) -> Iterator[tuple[GroupLabel, str, str, str]]:
+def _biased(scene: Scene, device: str) -> bool:
+    """Whether a device has an operating point: without one nothing is said of it, groups included."""
+    return bool(np.isfinite(scene.point.bipolar["ic_a"][0, scene.devices.index(device)]))
+
+
+def _labels(scene: Scene, ways: Mapping[str, Direction], p: str, q: str) -> Iterator[tuple[GroupLabel, str, str, str]]:
     for a, b in ((p, q), (q, p)):
         if _mirror(scene, a, b):
             yield "current-mirror", a, b, f"{a} has base on collector; bases joined, emitters on the same supply"
@@ -86,14 +91,19 @@ def _compound(
     ca, _, ea = scene.nodes(a)
     cb, bb, eb = scene.nodes(b)
     same = _polarity(scene, a) == _polarity(scene, b)
-    if same and bb in through_resistors(scene, ea) and (ca == cb or scene.silent[ca]) and ea != eb:
-        if ca == cb or _both_followers(ways, a, b):
-            yield "darlington", a, b, f"emitter of {a} drives the base of {b}"
+    shared = ca == cb or (scene.silent[ca] and _both_followers(ways, a, b))
+    if same and bb in through_resistors(scene, ea) and ea != eb and shared:
+        yield "darlington", a, b, f"emitter of {a} drives the base of {b}"
     if not same and bb in through_resistors(scene, ca) and cb in through_resistors(scene, ea) and not scene.silent[ea]:
-        yield "complementary-feedback-pair", a, b, f"collector of {a} drives {b}, whose collector returns to its emitter"
-    if eb in through_resistors(scene, ca) and not scene.silent[ca] and ca != bb:
-        if _enters(ways, b, "emitter") or scene.silent[bb]:
-            yield "cascode", a, b, f"collector of {a} feeds the emitter of {b}, whose base is held"
+        yield (
+            "complementary-feedback-pair",
+            a,
+            b,
+            f"collector of {a} drives {b}, whose collector returns to its emitter",
+        )
+    held = _enters(ways, b, "emitter") or scene.silent[bb]
+    if eb in through_resistors(scene, ca) and not scene.silent[ca] and ca != bb and held:
+        yield "cascode", a, b, f"collector of {a} feeds the emitter of {b}, whose base is held"
 
 
 def _both_followers(ways: Mapping[str, Direction], a: str, b: str) -> bool:
@@ -122,7 +132,9 @@ def _differential(scene: Scene, p: str, q: str) -> bool:
         return False
     if scene.silent[ep] or scene.silent[eq]:
         return False
-    return bool(through_resistors(scene, ep) & through_resistors(scene, eq)) and ep not in (bq, cq) and eq not in (bp, cp)
+    return (
+        bool(through_resistors(scene, ep) & through_resistors(scene, eq)) and ep not in (bq, cq) and eq not in (bp, cp)
+    )
 
 
 def _feeds(scene: Scene, ways: Mapping[str, Direction], a: str, b: str) -> bool:

@@ -90,9 +90,7 @@ def _best(
 ) -> Step | None:
     steps = list(ways_off(scene, node, used))
     if found is not None:
-        steps += [
-            Step(kind="device", part=name, far=node, terminal=TERMINALS.index(found[name].entry)) for name in met
-        ]
+        steps += [Step(kind="device", part=name, far=node, terminal=TERMINALS.index(found[name].entry)) for name in met]
     left = [_left_without(scene, path, step) for step in steps]
     if not steps or min(left) > CARRIES:
         return None

@@ -8,6 +8,7 @@ from dataclasses import replace
 import numpy as np
 
 from checker.circuit.types import Port
+from checker.quantity.show import show
 from checker.solve.operating import OperatingPoint
 from checker.solve.response import Response
 from checker.stages.bias_roles import bias_label, switch_evidence
@@ -33,11 +34,14 @@ def recognise(
     response: Response,
     ports: tuple[Port, ...],
     states: Mapping[str, Mapping[str, Region]],
+    *,
+    oscillating: Mapping[str, float] | None = None,
 ) -> Recognition:
     """Find stages, links and groups.
 
     `response`: nominal, at a few frequencies of the band (an odd number, f0 in the middle). `ports`: with roles.
-    `states`: device -> state name -> region, for the declared states.
+    `states`: device -> state name -> region, for the declared states. `oscillating`: devices that keep an oscillation
+    going, with its frequency [Hz] as the linearised circuit has it.
     """
     scene = make_scene(point.circuit, point, response, ports)
     parts = {name: participation(scene, name) for name in scene.devices}
@@ -48,7 +52,9 @@ def recognise(
     stages = []
     for index, name in enumerate(scene.devices):
         member_of = tuple(g.id for g in groups if name in g.devices)
-        if name in ways:
+        if oscillating and name in oscillating:
+            stages.append(_oscillator(name, index, oscillating[name], member_of))
+        elif name in ways:
             stages.append(_signal_stage(scene, name, index, live[name], ways, member_of))
         else:
             stages.append(_quiet_stage(scene, name, index, parts[name], regions[name], states, member_of))
@@ -97,6 +103,20 @@ def _signal_stage(
         port_out=part.path.to.name,
         groups=groups,
         evidence=stage_evidence(scene, name, label, way, part, (entering, leaving)),
+    )
+
+
+def _oscillator(name: str, index: int, f_hz: float, groups: tuple[str, ...]) -> Stage:
+    """A device that keeps an oscillation going: small-signal figures of a path mean nothing there."""
+    return Stage(
+        id=name,
+        device=name,
+        index=index,
+        configuration="oscillator",
+        role="signal",
+        confidence=0.8,
+        groups=groups,
+        evidence=(f"an oscillation near {show(f_hz, 'Hz')} grows, and does not without this device",),
     )
 
 
@@ -159,6 +179,7 @@ def _no_bias(scene: Scene, name: str) -> str:
 
 def _name_others(stage: Stage, stages: list[Stage]) -> Stage:
     """Fill in what stands at the far end of a coupling element: the stage that shares it, else the port."""
+
     def named(link: Link | None, side: str, port: str) -> Link | None:
         if link is None or link.other:
             return link

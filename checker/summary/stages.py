@@ -139,9 +139,7 @@ def _sign(ledger: Ledger, stage: found.Stage) -> float:
 
 def _small(ledger: Ledger, stage: found.Stage) -> SmallSignal:
     keys = ("gm_s", "re_ohm", "rpi_ohm", "ro_ohm", "ft_hz")
-    return SmallSignal(
-        **{key: ledger.real(key, stage.id, "stages", stage.id, "small_signal", key) for key in keys}
-    )
+    return SmallSignal(**{key: ledger.real(key, stage.id, "stages", stage.id, "small_signal", key) for key in keys})
 
 
 def _specs(ledger: Ledger, kind: str, subject: str) -> Specs:
@@ -194,9 +192,7 @@ def _thumb(ledger: Ledger, stage: found.Stage, key: str, hand: Figure, exact: Fi
     deviation = (value - true) / true
     agrees = abs(deviation) <= AGREES
     note = "" if agrees else _why_not(ledger, stage, exact)
-    return Thumb(
-        value=value, exact=true, deviation=deviation, agrees=agrees, formula=hand.working.formula, note=note
-    )
+    return Thumb(value=value, exact=true, deviation=deviation, agrees=agrees, formula=hand.working.formula, note=note)
 
 
 def _why_not(ledger: Ledger, stage: found.Stage, exact: Figure) -> str:
@@ -234,6 +230,4 @@ def _outer(setup: Setup, where: tuple[str, Terminal] | None) -> Connection | Non
     if where is None:
         return None
     connection = _connection(setup, *where)
-    return None if connection is None else Connection(
-        terminal=connection.terminal, net=connection.net, device=where[0]
-    )
+    return None if connection is None else Connection(terminal=connection.terminal, net=connection.net, device=where[0])

@@ -11,6 +11,7 @@ from checker.record import Certificate, Gain, Island, NetFigures, Port, Rail
 from checker.setup import Setup
 from checker.solve import operating
 from checker.summary.ledger import Ledger
+from checker.trouble import CannotTell
 
 HAZARDOUS_V = 60.0
 """DC above this on any net gets the caution; under the 70 V dry limit of IEC 61010-1:2010, 6.3.1 (from memory)."""
@@ -55,7 +56,9 @@ def _certificate(setup: Setup, ledger: Ledger, island: operating.Island) -> Cert
     # Stability is judged for the board as a whole; with a growing pole no island can claim it.
     stable = None if setup.growing else True
     if stable is None:
-        ledger.missing("the linearised board has a pole that grows", "islands", min(island.nets), "certificate", "stable")
+        ledger.missing(
+            "the linearised board has a pole that grows", "islands", min(island.nets), "certificate", "stable"
+        )
     condition = float(island.condition[0])
     if not math.isfinite(condition):
         ledger.missing("singular after scaling", "islands", min(island.nets), "certificate", "condition")
@@ -72,10 +75,10 @@ def _certificate(setup: Setup, ledger: Ledger, island: operating.Island) -> Cert
 
 def ports(setup: Setup, ledger: Ledger) -> tuple[Port, ...]:
     """Ports with their match."""
-    return tuple(_port(setup, ledger, port.name) for port in setup.ports)
+    return tuple(_port(ledger, port.name) for port in setup.ports)
 
 
-def _port(setup: Setup, ledger: Ledger, name: str) -> Port:
+def _port(ledger: Ledger, name: str) -> Port:
     port = ledger.board.port(name)
     path = ("ports", name)
     if port.role is None:
@@ -97,7 +100,11 @@ def _port(setup: Setup, ledger: Ledger, name: str) -> Port:
 
 def _middle(ledger: Ledger, quantity: str, name: str, path: tuple[str, ...]) -> float | None:
     """A match figure at f0: the middle of its grid over the band."""
-    figure = ledger.board.ask(quantity, name)
+    try:
+        figure = ledger.board.ask(quantity, name)
+    except CannotTell as gap:
+        ledger.missing(f"{gap.datum} is not known", *path, quantity)
+        return None
     value = float(figure.values[0, figure.values.shape[1] // 2])
     if not math.isfinite(value):
         ledger.missing(figure.reason or "no figure: the port's surroundings have no bias", *path, quantity)
@@ -107,7 +114,12 @@ def _middle(ledger: Ledger, quantity: str, name: str, path: tuple[str, ...]) -> 
 
 
 def _worst(ledger: Ledger, name: str, path: tuple[str, ...]) -> tuple[float | None, float | None]:
-    figure = ledger.board.ask("return_loss_db", name)
+    try:
+        figure = ledger.board.ask("return_loss_db", name)
+    except CannotTell as gap:
+        for key in ("return_loss_worst_db", "return_loss_worst_hz"):
+            ledger.missing(f"{gap.datum} is not known", *path, key)
+        return None, None
     if not np.isfinite(figure.values[0]).any():
         for key in ("return_loss_worst_db", "return_loss_worst_hz"):
             ledger.missing(figure.reason or "no figure: the port's surroundings have no bias", *path, key)
@@ -139,7 +151,9 @@ def cautions(setup: Setup) -> tuple[str, ...]:
         out.append(f"Hazardous voltage: nets above {HAZARDOUS_V:g} V DC. Work on them only as local rules allow.")
     power = setup.point.bipolar["power_w"][0]
     if np.any(power[np.isfinite(power)] > 0.5):
-        out.append("Hot parts: a transistor dissipates more than 0.5 W at rest; it can burn skin and needs its heat led away.")
+        out.append(
+            "Hot parts: a transistor dissipates more than 0.5 W at rest; it can burn skin and needs its heat led away."
+        )
     if setup.growing:
         out.append(
             "The linearised board has a growing natural frequency: it oscillates or rests elsewhere than computed. "

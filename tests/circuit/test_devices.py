@@ -279,6 +279,14 @@ def test_a_zener_takes_its_voltage_from_the_value() -> None:
     assert params_of(circuit, "D1")["bv"] == 6.2
 
 
+def test_a_suppressor_breaks_down_above_its_stand_off_voltage() -> None:
+    pins = {"1": "k|K", "2": "a|A"}
+    circuit = schematic(kicad_part("D1", "Device:D_TVS", "SMCJ30A-E3", pins))
+    assert 33.3 <= params_of(circuit, "D1")["bv"] <= 36.9  # 1.11 and 1.23 times 30 V
+    both_ways = schematic(kicad_part("D1", "Device:D_TVS", "SMCJ30CA", pins))
+    assert [unknown.datum for unknown in both_ways.unknowns] == ["breakdown voltage of D1"]
+
+
 def test_a_zener_without_voltage_is_unknown() -> None:
     circuit = schematic(kicad_part("D1", "Device:D_Zener", "D_Zener", {"1": "k|K", "2": "a|A"}))
     assert [unknown.datum for unknown in circuit.unknowns] == ["breakdown voltage of D1"]

@@ -34,6 +34,11 @@ def test_several_grounds_are_one_with_a_remark_for_each_beyond_the_first() -> No
     assert not assumed(circuit, "net GND taken")
 
 
+def test_com_is_ground_only_without_a_better_name() -> None:
+    assert kicad(resistor("R1", "a", "/COM")).nets == ("/COM", "a")
+    assert "/COM" in kicad(resistor("R1", "a", "/COM"), resistor("R2", "a", "GND")).nets[1:]
+
+
 def test_vss_is_ground_only_without_a_better_name() -> None:
     assert kicad(resistor("R1", "a", "VSS")).nets == ("VSS", "a")
     both = kicad(resistor("R1", "a", "VSS"), resistor("R2", "a", "GND"))

@@ -104,3 +104,18 @@ def test_nets_of_an_unknown_always_have_a_node() -> None:
     pins = {str(place): f"n{place}||output" for place in range(1, 9)}
     circuit = around(kicad_part("U1", "my:IC", "XYZ", pins), resistor("R9", "n1", "GND"))
     assert {net for unknown in circuit.unknowns for net in unknown.nets} <= set(circuit.nets)
+
+
+@pytest.mark.parametrize(("ref", "nets", "blocks"), [("R9", "a b", True), ("C9", "a b", False), ("Q9", "a b 0", True)])
+def test_what_the_reader_did_not_understand_is_not_used(ref: str, nets: str, blocks: bool) -> None:
+    odd = spice_part(ref, nets, 5.0, model="2N3904", unknown="the words make no sense")
+    circuit = spice(odd, spice_part("R1", "a 0", 1e3), spice_part("R2", "b 0", 1e3))
+    (unknown,) = circuit.unknowns
+    assert (unknown.ref, unknown.supply, unknown.blocks_dc) == (ref, "the words make no sense", blocks)
+    assert unknown.nets == ("a", "b")
+    assert ref in circuit.parts and ref not in circuit.resistors.names + circuit.bipolars.names
+
+
+def test_a_relay_asks_for_its_coil() -> None:
+    circuit = around(kicad_part("K1", "my:RELAY", "HJR", {"1": "a", "2": "b", "3": "GND"}))
+    assert all('[[part]] ref = "K1"' in unknown.supply for unknown in unknown_at(circuit, "K1"))

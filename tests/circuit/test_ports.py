@@ -96,6 +96,13 @@ def test_an_ideal_source_on_the_net_is_not_doubled() -> None:
     assert assumed(circuit, "port p", "VS drives its net already")
 
 
+def test_a_source_behind_its_resistor_is_not_doubled_either() -> None:
+    source = [volts("VS", "s 0", None, ac=1.0), spice_part("RS", "s in", 50.0)]
+    circuit = stage(*source, intent=declared(impedance_ohm=50.0))
+    assert circuit.resistors.names[port_of(circuit, "p").series] == "RS"
+    assert assumed(circuit, "port p", "VS drives its net already")
+
+
 def test_a_bias_supply_behind_a_resistor_is_no_signal_source() -> None:
     intent = declared(attach=False)
     circuit = stage(volts("VB", "bias 0", 5.0), spice_part("RBB", "bias in", 1e4), intent=intent)

@@ -25,6 +25,8 @@ from tests.circuit.make import SAID, assumed, ends_of, kicad, kicad_part, resist
         ("V33a", 3.3),
         ("P3V3", 3.3),
         ("N12V", -12.0),
+        ("PLUS3V3", 3.3),
+        ("MINUS5V", -5.0),
         ("2,75V", 2.75),
         ("+5V-A", 5.0),
         ("+12V_in", 12.0),

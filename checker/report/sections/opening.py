@@ -19,7 +19,7 @@ def opening(report: Report, page: Page) -> list[str]:
     if report.incomplete:
         lines += hanging("INCOMPLETE  ", "a part of the program failed:", page, style="must-fix")
         lines += [line for fault in report.faults for line in hanging("  - ", clean(fault), page)]
-    unjudged = [name(each.subject) for each in report.unchecked if not each.rule]
+    unjudged = list(dict.fromkeys(name(each.subject) for each in report.unchecked if not each.rule))
     lines += hanging("  not checked: ", f"{', '.join(unjudged)}; see below", page) if unjudged else []
     return [*lines, *conditions(report, page)]
 
