@@ -8,7 +8,7 @@ from collections.abc import Sequence
 from checker.circuit.types import Circuit
 from checker.judge.causes import causes
 from checker.judge.fingerprint import fingerprints
-from checker.judge.message import end_at, filled, frequency_hz, plain_unit, value_at
+from checker.judge.message import end_at, filled, frequency_hz, value_at
 from checker.judge.verdict import Examination, Verdict
 from checker.record.finding import Bound, Finding, Measured, Unchecked, Window
 from checker.record.stage import Location
@@ -62,13 +62,13 @@ def _measured(verdict: Verdict) -> Measured:
     return Measured(
         quantity=figure.quantity,
         value=as_written(value, figure.unit) if math.isfinite(value) else None,
-        unit=plain_unit(figure.unit),
+        unit=figure.unit,
     )
 
 
 def _limit(verdict: Verdict) -> Bound | Window:
     check, worst = verdict.evidence.check, verdict.worst
-    bound, unit = check.bound, plain_unit(check.bound.unit)
+    bound, unit = check.bound, check.bound.unit
     if check.relation == "within":
         low, high = (as_written(end_at(end, worst), unit) for end in (bound.low, bound.high))
         return Window(relation="within", low=low, high=high, unit=unit, source=bound.source)

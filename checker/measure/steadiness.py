@@ -18,7 +18,6 @@ from checker.measure.single import nominal_circuit
 from checker.quantity.figure import Figure
 from checker.solve.operating import operating_point
 from checker.stages.wiring import resistors_on
-from checker.trouble import CannotTell
 
 NO_BASE_CURRENT = 1e9
 """Factor on the forward current gain that stands for a base current of zero."""

@@ -11,7 +11,6 @@ import numpy as np
 
 from checker.circuit.types import Circuit
 from checker.examine import Examined
-from checker.judge.message import plain_unit
 from checker.judge.verdict import Verdict
 from checker.quantity.figure import Figure
 from checker.record.finding import Change, Effect
@@ -62,7 +61,7 @@ def _effect(board: Examined, quantity: str, subject: str, rows: tuple[int, int],
     except (CannotTell, Unsolved):
         return None
     before, after = (_worst(figure, row, relation) for row in rows)
-    return Effect(quantity=quantity, before=before, after=after, unit=plain_unit(figure.unit), subject=subject)
+    return Effect(quantity=quantity, before=before, after=after, unit=figure.unit, subject=subject)
 
 
 def _worst(figure: Figure, row: int, relation: Relation) -> float | None:

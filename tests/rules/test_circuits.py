@@ -44,9 +44,7 @@ def examined(rule: str, kind: str) -> Examination:
 def evidence(rule: str, kind: str) -> list[Judged]:
     """The rule's own evidence about the expected subject."""
     first = expected(rule)["subject"]
-    return [
-        each for each in examined(rule, kind).judged if each.rule.id == rule and each.evidence.subject[0] == first
-    ]
+    return [each for each in examined(rule, kind).judged if each.rule.id == rule and each.evidence.subject[0] == first]
 
 
 def test_every_rule_has_its_circuits_and_no_others_lie_there() -> None:
