@@ -100,11 +100,11 @@ class FakeBoard:
         """The uses given."""
         return self.uses
 
-    def bias_parts(self, stage: str) -> tuple[str, ...]:
+    def bias_parts(self, stage: str) -> tuple[str, ...]:  # noqa: ARG002
         """The divider."""
         return ("R2", "R1")
 
-    def resistors_at(self, stage: str, terminal: Terminal) -> tuple[str, ...]:
+    def resistors_at(self, stage: str, terminal: Terminal) -> tuple[str, ...]:  # noqa: ARG002
         """As in `small_circuit`."""
         return {"collector": ("R3",), "base": ("R1", "R2"), "emitter": ("R4",)}[terminal]
 

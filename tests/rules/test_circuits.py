@@ -21,7 +21,6 @@ from checker.judge.message import end_at, value_at
 from checker.judge.verdict import Examination, Judged
 from checker.pipeline import ready
 
-
 CIRCUITS = Path(rules.__file__).parent / "circuits"
 KINDS = ("fails", "keeps", "boundary")
 IDS = [rule.id for rule in load_rules().rules if type(rule).__module__.startswith("rules.")]
