@@ -11,11 +11,12 @@ from typing import Final
 
 from checker.cards.load import card_from, index, rows, squeeze
 from checker.cards.types import Card, CardKind
+from checker.pattern import lazy
 
 MAX_NAME: Final = 80
 """Longer texts are descriptions; the name stands at their head."""
 
-_ENDINGS: Final = re.compile(
+_ENDINGS: Final = lazy(
     r"(?:TO92|TO18|TO220|TO126|SOT23(?:3)?|SOT323|SOT363|SOT223|SC70|DO35|DO41|SOD\d{2,3}|SMA|SMD|THT)?"
     r"(?:"
     r"L?T[13]G?|RL(?:RA|RP|RM)?G?|ZL1G?|TFR?|TAR?|TR|TRL|BU|TP|AP|G|LF"  # tape, reel, bulk, plating
@@ -24,11 +25,11 @@ _ENDINGS: Final = re.compile(
     r"|(?:TR|TRL)?PBF"
     r")?Q?"
 )
-_MAKERS: Final = re.compile(r"(?:JANTXV|JANTX|JAN|NSV|S)(?=(?:2N|1N|MMBT|BC8)\d?)")
-_CUT: Final = re.compile(r"[^A-Za-z0-9 ._/|-]")
-_ABBREVIATED: Final = re.compile(r"\s*[A-Za-z0-9]{1,2}\s*")
+_MAKERS: Final = lazy(r"(?:JANTXV|JANTX|JAN|NSV|S)(?=(?:2N|1N|MMBT|BC8)\d?)")
+_CUT: Final = lazy(r"[^A-Za-z0-9 ._/|-]")
+_ABBREVIATED: Final = lazy(r"\s*[A-Za-z0-9]{1,2}\s*")
 """The end of a second name whose head is left out; only the ending E3 has a slash of its own (E3/54)."""
-_LETTER_I: Final = re.compile(r"^\s*[Ii][Nn](?=\d{3})")
+_LETTER_I: Final = lazy(r"^\s*[Ii][Nn](?=\d{3})")
 """IN4148 for 1N4148: a common slip."""
 _POLARITIES: Final = {"NPN": "npn", "PNP": "pnp"}
 

@@ -11,6 +11,7 @@ from typing import Final
 
 from checker.circuit.parts import symbol_name
 from checker.netlist.types import Part
+from checker.pattern import lazy
 from checker.shape import frozen
 from checker.words import PortRole
 
@@ -51,18 +52,18 @@ FAMILIES: Final = (
     Family(name="cinch", pattern=r"RCA|CINCH", ohm=None, source="no nominal impedance"),
 )
 _COMPILED: Final = tuple(
-    (family, re.compile(rf"(?<![A-Z0-9.])(?:{family.pattern})(?![A-Z])", re.IGNORECASE)) for family in FAMILIES
+    (family, lazy(rf"(?<![A-Z0-9.])(?:{family.pattern})(?![A-Z])", re.IGNORECASE)) for family in FAMILIES
 )
-_STATED: Final = re.compile(r"(?<![\d.])(50|75|93|100)(?:[\s_-]*(?:ohms?|Ω|R))?(?![\d.%])", re.IGNORECASE)
-_IN: Final = re.compile(
+_STATED: Final = lazy(r"(?<![\d.])(50|75|93|100)(?:[\s_-]*(?:ohms?|Ω|R))?(?![\d.%])", re.IGNORECASE)
+_IN: Final = lazy(
     r"(?:RF|AF|AUDIO|SIG(?:NAL)?|V)?[-_]?(?:IN(?:PUT)?\d?|ANT(?:ENNA)?\d?|RX(?:IN)?|SRC|SOURCE)",
     re.IGNORECASE,
 )
-_OUT: Final = re.compile(
+_OUT: Final = lazy(
     r"(?:RF|AF|AUDIO|SIG(?:NAL)?|LINE|V)?[-_]?(?:OUT(?:PUT)?\d?|TX(?:OUT)?|SPK|SPEAKER|PHONES?)|IF(?:OUT)?|LOAD",
     re.IGNORECASE,
 )
-_SPLIT: Final = re.compile(r"[\s_/().,:-]+")
+_SPLIT: Final = lazy(r"[\s_/().,:-]+")
 
 
 @frozen

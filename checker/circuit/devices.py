@@ -17,6 +17,7 @@ from checker.circuit.parts import symbol_name
 from checker.circuit.pins import Unit, kicad_terminals, letter_of, spice_terminals
 from checker.circuit.types import PartFact, PartKind
 from checker.netlist.types import Part
+from checker.pattern import lazy
 from checker.quantity.parse import parse_engineering
 from checker.trouble import NotAQuantity
 
@@ -24,14 +25,14 @@ ASSUMED_SPREAD: Final = (0.5, 2.0)
 """Gain limits as multiples of the model's gain, where no card gives a gain group (common practice, no
 source)."""
 _NO_FET: Final = ("a bipolar model", "field-effect transistors are not solved yet")
-_SUPPRESSOR: Final = re.compile(
+_SUPPRESSOR: Final = lazy(
     r"(?:(?P<standoff>SM[ABC]J|SMF|SA|[35]KP)|(?:P[46](?:KE|SM[AB])|1[.,]5(?:KE|SMC)))(?P<volts>\d+(?:\.\d+)?)A?(?![\dC])",
     re.IGNORECASE,
 )
 """One-way suppressors by type number, after their stand-off or their breakdown voltage (common practice)."""
 _ABOVE_STANDOFF: Final = 1.17
 """Nominal breakdown over stand-off voltage of such parts: their tables give 1.11 to 1.23 (from memory)."""
-_VOLTS: Final = re.compile(r"\d+(?:\.\d+)?V\d*|\d+[.,]?\d* ?V", re.IGNORECASE)
+_VOLTS: Final = lazy(r"\d+(?:\.\d+)?V\d*|\d+[.,]?\d* ?V", re.IGNORECASE)
 
 
 def add_bipolar(draft: Draft, part: Part) -> None:

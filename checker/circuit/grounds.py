@@ -9,10 +9,11 @@ from checker.circuit.notes import Notes
 from checker.circuit.order import last_segment, listed, natural
 from checker.intent.types import Intent
 from checker.netlist.types import Netlist
+from checker.pattern import lazy
 from checker.shape import frozen
 
-_GROUND = re.compile(r"[ADPSC]?GND(?:[ADPSR]|PWR|REF|ISO|\d{1,2})?(?:[_-]\w{1,10})?|EARTH(?:_\w+)?|0V", re.IGNORECASE)
-_WEAK = re.compile(r"VSS[AD]?|COM(?:MON)?", re.IGNORECASE)
+_GROUND = lazy(r"[ADPSC]?GND(?:[ADPSR]|PWR|REF|ISO|\d{1,2})?(?:[_-]\w{1,10})?|EARTH(?:_\w+)?|0V", re.IGNORECASE)
+_WEAK = lazy(r"VSS[AD]?|COM(?:MON)?", re.IGNORECASE)
 """A ground by name only where no net has a stronger one: beside a GND it may be a negative supply or a bus."""
 
 
@@ -34,7 +35,7 @@ def find_ground(netlist: Netlist, intent: Intent, notes: Notes) -> Ground:
     """
     fixed = [key for key in netlist.ground if key in netlist.nets]
     kicad = netlist.format == "kicad"
-    named = _named(netlist, _GROUND) if kicad or not fixed else _named(netlist, re.compile("GND", re.IGNORECASE))
+    named = _named(netlist, _GROUND) if kicad or not fixed else _named(netlist, lazy("GND", re.IGNORECASE))
     keys = fixed + [key for key in named if key not in fixed]
     keys = keys or _named(netlist, _WEAK)
     if not keys:

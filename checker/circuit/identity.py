@@ -12,6 +12,7 @@ from checker.cards.types import Card, CardKind
 from checker.circuit.draft import Draft
 from checker.circuit.parts import symbol_name
 from checker.netlist.types import Model, Part
+from checker.pattern import lazy
 from checker.shape import frozen
 from checker.trouble import InputTrouble
 
@@ -27,10 +28,10 @@ _MODEL_KIND: Final[Mapping[str, CardKind]] = {
     "nmos": "nmos",
     "pmos": "pmos",
 }
-_WORD: Final = re.compile(r"NPN|PNP", re.IGNORECASE)
-_JIS: Final = re.compile(r"Q?2S([ABCD])\d", re.IGNORECASE)
+_WORD: Final = lazy(r"NPN|PNP", re.IGNORECASE)
+_JIS: Final = lazy(r"Q?2S([ABCD])\d", re.IGNORECASE)
 """2SA and 2SB are PNP, 2SC and 2SD NPN (JIS C 7012, from memory)."""
-_PLACEHOLDER: Final = re.compile(
+_PLACEHOLDER: Final = lazy(
     r"[~?*]*|Q\??|D\??|NPN|PNP|LED|DIODE|ZENER|D_\w+|Q_\w+|BJT|TRANSISTOR\w*", re.IGNORECASE
 )
 _SPECIAL: Final = (
@@ -38,7 +39,7 @@ _SPECIAL: Final = (
     ("pre-?bias|digital transistor|built-in bias|bias resistor", "the base resistors of {ref}"),
     ("photo|opto", "the light on {ref}"),
 )
-_PREBIASED: Final = re.compile(r"(?:L?MUN[25]\d|P?DT[ABC]\w?\d|UMD|RN[12]\d{3}|BCR1\d\d)\w*", re.IGNORECASE)
+_PREBIASED: Final = lazy(r"(?:L?MUN[25]\d|P?DT[ABC]\w?\d|UMD|RN[12]\d{3}|BCR1\d\d)\w*", re.IGNORECASE)
 
 
 @frozen

@@ -2,10 +2,11 @@
 
 from __future__ import annotations
 
-import re
 from collections.abc import Iterable
 
-_RUN = re.compile(r"(\d+)")
+from checker.pattern import lazy
+
+_RUN = lazy(r"(\d+)")
 
 
 def natural_key(name: str) -> tuple[tuple[int, int, str], ...]:

@@ -9,6 +9,7 @@ import re
 from typing import Final, Literal
 
 from checker.netlist.types import Part
+from checker.pattern import lazy
 
 Kind = Literal[
     "resistor",
@@ -72,11 +73,11 @@ _DEVICE: Final[dict[str, Kind]] = {
 """Words of the simulation fields (`Sim.Device`, `Spice_Primitive`). The older field's J and M are not among
 them: it repeats the letter of the reference, so every connector J1 would be a transistor."""
 
-COAXIAL: Final = re.compile(
+COAXIAL: Final = lazy(
     r"COAX|(?<![A-Z0-9])(?:BNC|TNC|SMA|SMB|SMC|SMP|MCX|MMCX|UFL|U\.FL|IPEX|RF[-_ ]?CONN)(?![A-Z])",
     re.IGNORECASE,
 )
-_SMA_DIODE: Final = re.compile(r"(?:^|[:_\[ -])D(?:O-?214A[CB])?_?(?:SM[ABC])|DIODE", re.IGNORECASE)
+_SMA_DIODE: Final = lazy(r"(?:^|[:_\[ -])D(?:O-?214A[CB])?_?(?:SM[ABC])|DIODE", re.IGNORECASE)
 """Diode cases are called SMA, SMB and SMC too."""
 
 _SYMBOLS: Final[tuple[tuple[Kind, str], ...]] = (
@@ -119,8 +120,8 @@ _SYMBOLS: Final[tuple[tuple[Kind, str], ...]] = (
     ),
     ("connector", r"PHONES\w*|PJ301[\w-]*|\w*JACK\w*(?:[-_]\w+)*|M0\dX\w*|EURO_PWR\w*"),
 )
-_COMPILED: Final = tuple((kind, re.compile(pattern, re.IGNORECASE)) for kind, pattern in _SYMBOLS)
-_RESCUE: Final = re.compile(
+_COMPILED: Final = tuple((kind, lazy(pattern, re.IGNORECASE)) for kind, pattern in _SYMBOLS)
+_RESCUE: Final = lazy(
     r"-(?:RESCUE\b.*|device|conn|transistors?|diode|linear|mechanical|custom_lib|Transistor_\w+)$",
     re.IGNORECASE,
 )
@@ -172,7 +173,7 @@ def is_coaxial(part: Part) -> bool:
     return any(COAXIAL.search(text) and not _SMA_DIODE.search(text) for text in texts)
 
 
-_CONNECTOR: Final = re.compile(r"(?<![A-Z])(?:CONN|HEADER|\w*JACK|TERMINAL)", re.IGNORECASE)
+_CONNECTOR: Final = lazy(r"(?<![A-Z])(?:CONN|HEADER|\w*JACK|TERMINAL)", re.IGNORECASE)
 
 
 def _spice_kind(part: Part) -> Kind:

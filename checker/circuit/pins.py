@@ -12,6 +12,7 @@ from checker.cards.types import Card
 from checker.circuit.notes import Notes
 from checker.circuit.parts import symbol_name
 from checker.netlist.types import Part
+from checker.pattern import lazy
 from checker.shape import frozen
 
 _WORDS: Final = {
@@ -26,9 +27,9 @@ _WORDS: Final = {
     "GATE": "G",
     "SOURCE": "S",
 }
-_FUNCTION: Final = re.compile(r"([A-Z]+?)[_ ]?(\d*)")
-_COMPOUND: Final = re.compile(r"(?:[AK]\d){2}")
-_SUFFIX: Final = re.compile(r"_([BCES]{3,4})$", re.IGNORECASE)
+_FUNCTION: Final = lazy(r"([A-Z]+?)[_ ]?(\d*)")
+_COMPOUND: Final = lazy(r"(?:[AK]\d){2}")
+_SUFFIX: Final = lazy(r"_([BCES]{3,4})$", re.IGNORECASE)
 _ORDER: Final = {"bipolar": "CBE", "diode": "AK"}
 """Terminal order of SPICE elements."""
 _WANTED: Final = {"bipolar": frozenset("CBE"), "diode": frozenset("AK")}

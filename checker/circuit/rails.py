@@ -11,24 +11,25 @@ from checker.circuit.order import last_segment, natural, natural_key
 from checker.circuit.regulators import regulated_nets
 from checker.circuit.types import Rail
 from checker.intent.types import RailIntent
+from checker.pattern import lazy
 
 _TAIL: Final = (
     r"(?:[AD]|[_-](?:IN|OUT|[A-D]|ANA(?:LOG)?|DIG(?:ITAL)?|FUSED|RAW|SUPPLY"
     r"|RF|AUDIO|MCU|USB|MAIN|AUX|PWR|REG))?"
 )
 _NUMBER: Final = r"(?P<whole>\d{1,3})(?:V(?P<part>\d{1,2})|[.,](?P<point>\d{1,2})V(?:DC)?|V(?:DC)?)"
-_NAMED: Final = re.compile(rf"(?P<sign>[+\-PN]|PLUS|MINUS)?V?{_NUMBER}{_TAIL}", re.IGNORECASE)
-_AFTER_WORD: Final = re.compile(
+_NAMED: Final = lazy(rf"(?P<sign>[+\-PN]|PLUS|MINUS)?V?{_NUMBER}{_TAIL}", re.IGNORECASE)
+_AFTER_WORD: Final = lazy(
     rf"(?:V(?:CC|DD|BUS|BAT|IN)|[AD]V(?:CC|DD))[_-]?(?P<sign>\+?){_NUMBER}{_TAIL}", re.IGNORECASE
 )
-_BARE: Final = re.compile(r"(?P<sign>[+-])(?P<whole>\d{1,3})" + _TAIL, re.IGNORECASE)
-_V33: Final = re.compile(rf"V33{_TAIL}", re.IGNORECASE)
+_BARE: Final = lazy(r"(?P<sign>[+-])(?P<whole>\d{1,3})" + _TAIL, re.IGNORECASE)
+_V33: Final = lazy(rf"V33{_TAIL}", re.IGNORECASE)
 _USUAL: Final = frozenset({5, 6, 8, 9, 10, 12, 13, 15, 18, 24, 28, 30, 36, 48})
 """Supply voltages in use; a signed number that names a net without a V is a supply only if it is one of
 these."""
 _FILTER_OHM: Final = 1000.0
 """Largest resistor taken for a supply filter (common practice, no source)."""
-_NAMELESS: Final = re.compile(
+_NAMELESS: Final = lazy(
     r"[AD]?V(?:CC|DD|EE)[AD]?|V(?:BAT|BUS|SUP|SUPPLY|S?PP|NN)|V[+-]{1,2}|[+-]V(?:CC|DD|EE|S)?|VSS[AD]?|B\+|[+-]?HV|VS[+-]",
     re.IGNORECASE,
 )

@@ -8,6 +8,7 @@ from typing import Final
 
 from checker.circuit.draft import Draft
 from checker.netlist.types import Part
+from checker.pattern import lazy
 from checker.quantity.parse import parse_engineering
 from checker.quantity.value import Value
 from checker.trouble import NotAQuantity
@@ -15,7 +16,7 @@ from checker.trouble import NotAQuantity
 TOLERANCE: Final = {"ohm": 0.05, "F": 0.20, "H": 0.20}
 """Fractions assumed where neither value text nor intent says (common practice, no source: E24 carbon film
 and general-purpose capacitors and inductors)."""
-_RANGE: Final = re.compile(
+_RANGE: Final = lazy(
     r"(?P<low>\d+(?:\.\d+)?\s*[a-zµ]{0,2})\s*(?:-|\.\.|to)\s*(?P<high>\d+(?:\.\d+)?)\s*(?P<unit>[a-zµΩ]{0,4})",
     re.IGNORECASE,
 )

@@ -11,6 +11,7 @@ from collections.abc import Mapping
 from pathlib import Path
 from typing import Any, Final
 
+from checker.pattern import lazy
 from checker.shape import frozen
 from checker.trouble import InputTrouble
 
@@ -26,12 +27,12 @@ KeyPath = tuple[str | int, ...]
 
 _PART: Final = r"(?:[A-Za-z0-9_-]+|\"(?:[^\"\\]|\\.)*\"|'[^']*')"
 _KEY: Final = rf"{_PART}(?:[ \t]*\.[ \t]*{_PART})*"
-_HEADER: Final = re.compile(rf"[ \t]*(\[\[?)[ \t]*({_KEY})[ \t]*\]")
-_ENTRY: Final = re.compile(rf"[ \t]*({_KEY})[ \t]*=")
-_SPLIT: Final = re.compile(_PART)
+_HEADER: Final = lazy(rf"[ \t]*(\[\[?)[ \t]*({_KEY})[ \t]*\]")
+_ENTRY: Final = lazy(rf"[ \t]*({_KEY})[ \t]*=")
+_SPLIT: Final = lazy(_PART)
 _SHORT: Final = r"(?:[A-Za-z0-9_-]{1,99}|\"(?:[^\"\\]|\\.){0,99}\"|'[^']{0,99}')"  # longer ones: few a line
-_TOO_DOTTED: Final = re.compile(rf"(?<![A-Za-z0-9_-])(?:{_SHORT}[ \t]*\.[ \t]*){{{MAX_DOTTED}}}")
-_LONG_TEXT: Final = re.compile(r'"""|\'\'\'')
+_TOO_DOTTED: Final = lazy(rf"(?<![A-Za-z0-9_-])(?:{_SHORT}[ \t]*\.[ \t]*){{{MAX_DOTTED}}}")
+_LONG_TEXT: Final = lazy(r'"""|\'\'\'')
 
 
 @frozen

@@ -17,12 +17,13 @@ import math
 import re
 from typing import Any, Final
 
+from checker.pattern import lazy
 from checker.quantity.parse import parse_with_unit
 from checker.trouble import NotAQuantity
 
 ABSOLUTE_ZERO_C: Final = -273.15
 
-_LEVEL: Final = re.compile(r"(.*V)\s*(pp|pk-pk|p-p|pk|p|rms)?", re.IGNORECASE)
+_LEVEL: Final = lazy(r"(.*V)\s*(pp|pk-pk|p-p|pk|p|rms)?", re.IGNORECASE)
 _PEAK_PER_UNIT: Final = {"pp": 0.5, "pk-pk": 0.5, "p-p": 0.5, "pk": 1.0, "p": 1.0, "rms": math.sqrt(2)}
 
 

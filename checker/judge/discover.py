@@ -6,18 +6,18 @@ from __future__ import annotations
 
 import importlib
 import importlib.util
-import re
 from collections.abc import Iterable
 from pathlib import Path
 from typing import NamedTuple
 
 from checker.judge.plugins import BUILTIN, plugins
 from checker.judge.verdict import AnyRule
+from checker.pattern import lazy
 from checker.rulekit import Rule
 from checker.trouble import InputTrouble
 from checker.words import SEVERITIES
 
-_ID = re.compile(r"[a-z][a-z0-9]*(-[a-z0-9]+)*")
+_ID = lazy(r"[a-z][a-z0-9]*(-[a-z0-9]+)*")
 _TOLD = ("id", "summary", "theme", "weight", "bench", "source", "applies")
 
 

@@ -6,7 +6,9 @@ from __future__ import annotations
 import re
 from collections.abc import Mapping
 
-_WORDS = re.compile(
+from checker.pattern import lazy
+
+_WORDS = lazy(
     r"(?<![A-Za-z0-9])(dnp|dnf|dni|dns|do\s*not\s*(?:fit|populate|place|install|stuff)|not\s*(?:fitted|populated)"
     r"|no\s*(?:pop|stuff|fit|mount)|unpopulated|n\.?\s?f\.?$)(?![A-Za-z0-9])",
     re.IGNORECASE,

@@ -6,7 +6,6 @@ and in the library parts in version D.
 
 from __future__ import annotations
 
-import re
 from collections import Counter, defaultdict
 from collections.abc import Mapping
 from dataclasses import replace
@@ -15,13 +14,14 @@ from checker.netlist.fitting import is_left_out
 from checker.netlist.limits import ReadLimits, over
 from checker.netlist.sexpr import Parsed, Tree, child, children, own_text, parse, text_of
 from checker.netlist.types import Net, Netlist, Part, Pin, Remark
+from checker.pattern import lazy
 from checker.quantity.value import Origin
 from checker.shape import frozen
 from checker.trouble import InputTrouble
 
 _VERSIONS = ("D", "E")
-_LETTERS = re.compile(r"[^\W\d_]+")
-_DIGITS = re.compile(r"(\d+)")
+_LETTERS = lazy(r"[^\W\d_]+")
+_DIGITS = lazy(r"(\d+)")
 _OF_THE_TOOL = ("Sheetname", "Sheetfile", "ki_keywords", "ki_fp_filters", "ki_description")
 
 _PinTable = Mapping[tuple[str, str], Mapping[str, tuple[str, str]]]

@@ -3,7 +3,6 @@
 from __future__ import annotations
 
 import hashlib
-import re
 from pathlib import Path
 
 from checker.netlist.kicad_read import read_kicad
@@ -11,10 +10,11 @@ from checker.netlist.limits import ReadLimits
 from checker.netlist.spice_read import read_spice
 from checker.netlist.text import decode, display_name, read_bytes
 from checker.netlist.types import Netlist
+from checker.pattern import lazy
 from checker.trouble import InputTrouble
 
-_EXPORT = re.compile(r"\(\s*export[\s()]")
-_S_EXPRESSION = re.compile(r"\(\s*[\w{]+[\s({]")
+_EXPORT = lazy(r"\(\s*export[\s()]")
+_S_EXPRESSION = lazy(r"\(\s*[\w{]+[\s({]")
 
 
 def read_netlist(path: Path, *, include_dirs: tuple[Path, ...] = (), limits: ReadLimits | None = None) -> Netlist:

@@ -13,14 +13,15 @@ from bisect import bisect_right
 import sexpdata
 
 from checker.netlist.limits import over
+from checker.pattern import lazy
 from checker.shape import frozen
 from checker.trouble import InputTrouble
 
 Tree = list["Tree | str"]
 """A list whose first item is usually its tag."""
 
-_TOKEN = re.compile(r'"[^"\\]*+(?:\\.[^"\\]*+)*+"|\(\s*(?:comp|net)(?=[\s()])|[()"]', re.DOTALL)
-_ATOM_END = re.compile(r'[\s()"]')
+_TOKEN = lazy(r'"[^"\\]*+(?:\\.[^"\\]*+)*+"|\(\s*(?:comp|net)(?=[\s()])|[()"]', re.DOTALL)
+_ATOM_END = lazy(r'[\s()"]')
 
 
 @frozen

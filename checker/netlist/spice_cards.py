@@ -12,11 +12,12 @@ from checker.netlist.spice_includes import Folders
 from checker.netlist.spice_lines import Card, cards_of
 from checker.netlist.spice_words import split_assignments, split_words
 from checker.netlist.text import decode, read_bytes
+from checker.pattern import lazy
 from checker.quantity.spice_number import parse_spice_number
 from checker.trouble import InputTrouble, NotAQuantity
 
-_DOT = re.compile(r"\.([A-Za-z]+)[\s=]*(.*)", re.DOTALL)
-_TEMPERATURE = re.compile(r"(?<![\w.])temp\s*=\s*(\S+)", re.IGNORECASE)
+_DOT = lazy(r"\.([A-Za-z]+)[\s=]*(.*)", re.DOTALL)
+_TEMPERATURE = lazy(r"(?<![\w.])temp\s*=\s*(\S+)", re.IGNORECASE)
 _COMMANDS = frozenset(
     {"ac", "dc", "op", "tran", "run", "plot", "print", "write", "set", "save", "quit", "exit", "let", "echo"}
     | {"meas", "noise", "tf", "source", "destroy", "linearize"}

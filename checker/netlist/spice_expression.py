@@ -4,9 +4,9 @@ executed but the operators and functions listed here."""
 from __future__ import annotations
 
 import math
-import re
 from collections.abc import Callable
 
+from checker.pattern import lazy
 from checker.quantity.spice_number import parse_spice_number
 from checker.trouble import NotAQuantity, Trouble
 
@@ -14,11 +14,11 @@ Lookup = Callable[[str, int], float]
 """Value of a parameter by lower-case name, asked for at a level of nesting; raises `NotAQuantity` for
 none."""
 
-_TOKEN = re.compile(
+_TOKEN = lazy(
     r"\s*(?:(?P<number>(?:\d+\.?\d*|\.\d+)(?:[eE][+-]?\d+)?[A-Za-zµμ]*\d*)"
     r"|(?P<name>[A-Za-z_][\w.#]*)|(?P<op>\*\*|<=|>=|==|!=|&&|\|\||[-+*/^()<>?:,!&|~%]))"
 )
-_BLANK = re.compile(r"\s*\Z")
+_BLANK = lazy(r"\s*\Z")
 _BINARY = {
     "?": 1, "||": 2, "|": 2, "&&": 3, "&": 3, "==": 4, "!=": 4, "<": 5, ">": 5, "<=": 5, ">=": 5,
     "+": 6, "-": 6, "*": 7, "/": 7, "%": 7, "**": 9, "^": 9,

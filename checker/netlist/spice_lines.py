@@ -9,12 +9,13 @@ from __future__ import annotations
 import re
 
 from checker.netlist.types import Remark
+from checker.pattern import lazy
 from checker.quantity.value import Origin
 from checker.shape import frozen
 
-_COMMENT = re.compile(r"\"[^\"]*\"|(;|(?<!\S)\$(?=\s|$)|(?<!\S)//)")
-_PATH_COMMENT = re.compile(r"\"[^\"]*\"|(;|(?<!\S)\$(?=\s|$))")
-_PATH_CARD = re.compile(r"\s*\.(inc|lib)", re.IGNORECASE)
+_COMMENT = lazy(r"\"[^\"]*\"|(;|(?<!\S)\$(?=\s|$)|(?<!\S)//)")
+_PATH_COMMENT = lazy(r"\"[^\"]*\"|(;|(?<!\S)\$(?=\s|$))")
+_PATH_CARD = lazy(r"\s*\.(inc|lib)", re.IGNORECASE)
 
 
 @frozen

@@ -2,15 +2,14 @@
 
 from __future__ import annotations
 
-import re
-
 from checker.netlist.spice_lines import Card
 from checker.netlist.spice_scope import Scope
 from checker.netlist.spice_words import split_words
 from checker.netlist.types import Model, Remark
+from checker.pattern import lazy
 from checker.trouble import NotAQuantity
 
-_COLON = re.compile(r"(?<=[A-Za-z0-9_])\s*:\s*(?=[\d.+-])")
+_COLON = lazy(r"(?<=[A-Za-z0-9_])\s*:\s*(?=[\d.+-])")
 _NOTES = frozenset({"mfg", "manufacturer", "vendor", "type", "icrating", "vceo", "vds", "ron", "qg", "iave", "vpk"})
 """Parameters that describe the part and enter no equation; as text they are no loss."""
 

@@ -7,9 +7,11 @@ import re
 from collections import Counter
 from collections.abc import Sequence
 
-_SEPARATED = re.compile(r"([A-Za-z])[_§](.+)", re.DOTALL)
-_REFERENCE = re.compile(r"[A-Za-z]{1,4}\d+[A-Za-z]?")
-_INSTANCE = re.compile(r"[Xx]([A-Za-z].*)", re.DOTALL)
+from checker.pattern import lazy
+
+_SEPARATED = lazy(r"([A-Za-z])[_§](.+)", re.DOTALL)
+_REFERENCE = lazy(r"[A-Za-z]{1,4}\d+[A-Za-z]?")
+_INSTANCE = lazy(r"[Xx]([A-Za-z].*)", re.DOTALL)
 
 
 def plain_reference(name: str) -> str:

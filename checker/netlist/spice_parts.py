@@ -10,10 +10,11 @@ from typing import Protocol
 from checker.netlist.spice_deck import Element
 from checker.netlist.spice_source import read_source
 from checker.netlist.types import Part, Pin
+from checker.pattern import lazy
 from checker.quantity.value import Origin
 from checker.trouble import NotAQuantity
 
-_PLAIN_NUMBER = re.compile(r"(\d+\.?\d*|\.\d+)(e[+-]?\d+)?", re.IGNORECASE)
+_PLAIN_NUMBER = lazy(r"(\d+\.?\d*|\.\d+)(e[+-]?\d+)?", re.IGNORECASE)
 _KINDS = {
     "R": {"r", "res"},
     "C": {"c", "cap"},
@@ -24,7 +25,7 @@ _KINDS = {
     "M": {"nmos", "pmos", "vdmos"},
 }
 """Kinds of model that an element letter takes: a node may bear the name of a model of another kind."""
-_WORD = re.compile(r"[A-Za-z_][\w.-]*")
+_WORD = lazy(r"[A-Za-z_][\w.-]*")
 _NODE_COUNT = {"E": 4, "G": 4, "S": 4, "T": 4, "O": 4, "Q": 3, "J": 3, "Z": 3, "M": 4, "K": 0}
 """How many words after the name are nodes, where the line itself leaves it open; 2 for other letters."""
 _BEHAVIOURAL = frozenset({"poly", "value", "vol", "cur", "table", "laplace", "freq", "foster", "delay"})

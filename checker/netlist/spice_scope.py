@@ -2,16 +2,15 @@
 
 from __future__ import annotations
 
-import re
-
 from checker.netlist.limits import ReadLimits
 from checker.netlist.spice_expression import evaluate
+from checker.pattern import lazy
 from checker.quantity.spice_number import parse_spice_number
 from checker.trouble import NotAQuantity
 
-_NAME = re.compile(r"[A-Za-z_][\w.]*")
+_NAME = lazy(r"[A-Za-z_][\w.]*")
 _QUOTES = {"{": "}", "'": "'", '"': '"'}
-_OPERATOR = re.compile(r"[-+*/^(]")
+_OPERATOR = lazy(r"[-+*/^(]")
 
 
 class Scope:

@@ -3,10 +3,10 @@ spelling."""
 
 from __future__ import annotations
 
-import re
 from collections.abc import Callable, Mapping, Sequence
 
 from checker.netlist.types import Source
+from checker.pattern import lazy
 from checker.trouble import NotAQuantity
 
 Number = Callable[[str], float]
@@ -23,7 +23,7 @@ _WAVEFORMS = {
 _KEYWORDS = frozenset({*_WAVEFORMS, "dc", "ac", "distof1", "distof2"})
 _REST_INDEX = {"sin": 0, "pulse": 0, "exp": 0, "sffm": 0, "pwl": 1}
 """Which number of the waveform is its value at rest: offset, initial value, first value."""
-_AMPERES = re.compile(r"([+-]?(?:\d+\.?\d*|\.\d+)(?:[eE][+-]?\d+)?)[aA]")
+_AMPERES = lazy(r"([+-]?(?:\d+\.?\d*|\.\d+)(?:[eE][+-]?\d+)?)[aA]")
 
 
 def read_source(words: Sequence[str], named: Mapping[str, str], number: Number, *, amperes: bool) -> Source:

@@ -4,22 +4,23 @@ from __future__ import annotations
 
 import re
 
+from checker.pattern import lazy
 from checker.shape import frozen
 
-_PIECE = re.compile(
+_PIECE = lazy(
     r"\{[^{}]*\}|'[^']*'|\"[^\"]*\"|[=(),]"
     # A word may hold a group in braces (`~{RST}`), or a bracket after a hyphen (`Net-(Q1-Pad2)`).
     r"|[^\s=(),{}'\"](?:[^\s=(),{}]|\{[^{}\s]*\}|(?<=-)\([^\s()]*\))*"
     r"|\S"
 )
-_REST = re.compile(r"[^\s=(),{}]*")
-_VALUE_RUN = re.compile(r"[^\s(),{}'\"=]*")
-_BLANKS = re.compile(r"\s*")
-_COMMA_NUMBER = re.compile(r"\d+,\d+(?=[A-Za-zµμΩ]|\s|$)")
+_REST = lazy(r"[^\s=(),{}]*")
+_VALUE_RUN = lazy(r"[^\s(),{}'\"=]*")
+_BLANKS = lazy(r"\s*")
+_COMMA_NUMBER = lazy(r"\d+,\d+(?=[A-Za-zµμΩ]|\s|$)")
 _COMMA_FROM = 3
 """A decimal comma is looked for only behind the name and two nodes, where commas may part nodes."""
-_NAME = re.compile(r"[A-Za-z_][\w.]*")
-_ASSIGNMENT = re.compile(r"\{[^{}]*\}|'[^']*'|\"[^\"]*\"|(?<![\w.])([A-Za-z_][\w.]*)\s*=(?!=)")
+_NAME = lazy(r"[A-Za-z_][\w.]*")
+_ASSIGNMENT = lazy(r"\{[^{}]*\}|'[^']*'|\"[^\"]*\"|(?<![\w.])([A-Za-z_][\w.]*)\s*=(?!=)")
 
 
 @frozen

@@ -9,6 +9,7 @@ from __future__ import annotations
 import math
 import re
 
+from checker.pattern import lazy
 from checker.quantity.codes import tolerance_of_letter
 from checker.quantity.prefixes import EXPONENTS, plain, spellings
 from checker.shape import frozen
@@ -30,17 +31,17 @@ _LONGEST = 200
 """Characters; a longer text is a note, not a value."""
 
 _PREFIX = r"meg|[TGMKkmuUnNpPf]"
-_HEAD = re.compile(
+_HEAD = lazy(
     rf"(?P<sign>[+-]?)\s*(?:"
     rf"(?P<whole>\d*)(?P<point>[RrLVAFH]|{_PREFIX})(?P<part>\d{{1,3}})(?![\d.])"
     rf"|(?P<number>\d+(?:\.\d*)?|\.\d+)(?P<power>[eE][+-]?\d{{1,3}})?)",
 )
-_AFTER = re.compile(rf"\s*(?P<prefix>meg(?:a(?=\s*ohm))?|{_PREFIX})?", re.IGNORECASE)
-_PERCENT = re.compile(r"(?:\+/-|±|\+-)?\s*(\d+(?:\.\d+)?|\.\d+)\s*%")
-_VOLTS = re.compile(r"(?<![\w.])(\d+(?:\.\d+)?)\s*(k?)V(?:dc|ac|rms)?(?![A-Za-z0-9])", re.IGNORECASE)
-_RANGE = re.compile(r"(\.\.|-\s*[\d.]|~|to\b|\|\||\*|\+|x\b|=|:)", re.IGNORECASE)
-_COMMA = re.compile(r"^([+-]?\d*),(\d+)")
-_EIA_CODE = re.compile(r"[1-9]\d[1-6]")
+_AFTER = lazy(rf"\s*(?P<prefix>meg(?:a(?=\s*ohm))?|{_PREFIX})?", re.IGNORECASE)
+_PERCENT = lazy(r"(?:\+/-|±|\+-)?\s*(\d+(?:\.\d+)?|\.\d+)\s*%")
+_VOLTS = lazy(r"(?<![\w.])(\d+(?:\.\d+)?)\s*(k?)V(?:dc|ac|rms)?(?![A-Za-z0-9])", re.IGNORECASE)
+_RANGE = lazy(r"(\.\.|-\s*[\d.]|~|to\b|\|\||\*|\+|x\b|=|:)", re.IGNORECASE)
+_COMMA = lazy(r"^([+-]?\d*),(\d+)")
+_EIA_CODE = lazy(r"[1-9]\d[1-6]")
 _POINT_UNITS = {"R": "ohm", "r": "ohm", "L": "ohm", "V": "V", "A": "A", "F": "F", "H": "H"}
 _NEEDS_PREFIX = ("F", "H")
 _SIGNED = ("V", "A", "degC")

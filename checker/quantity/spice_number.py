@@ -6,6 +6,7 @@ from __future__ import annotations
 import math
 import re
 
+from checker.pattern import lazy
 from checker.quantity.prefixes import plain
 from checker.trouble import NotAQuantity
 
@@ -26,11 +27,11 @@ _SUFFIXES = {
 _MIL_M = 25.4e-6
 """One thousandth of an inch [m]."""
 
-_NUMBER = re.compile(
+_NUMBER = lazy(
     r"([+-]?)(\d+(?:[.,]\d*)?|[.,]\d+)(?:[ed]([+-]?\d{1,9}))?(meg|mil|[tgxkmunpfa])?([a-z%]*)(?:/[a-z]+)?",
     re.IGNORECASE,
 )
-_INFIX = re.compile(r"([+-]?)(\d*)(meg|[tgxkmunpfr])(\d{1,3})([a-z%]*)", re.IGNORECASE)
+_INFIX = lazy(r"([+-]?)(\d*)(meg|[tgxkmunpfr])(\d{1,3})([a-z%]*)", re.IGNORECASE)
 
 
 def parse_spice_number(text: str) -> float:

@@ -3,12 +3,12 @@
 from __future__ import annotations
 
 import math
-import re
 
+from checker.pattern import lazy
 from checker.quantity.prefixes import EXPONENTS, UNPREFIXED, plain, spellings
 from checker.trouble import NotAQuantity
 
-_NUMBER = re.compile(r"([+-]?)(\d+(?:\.\d*)?|\.\d+)(?:[eE]([+-]?\d{1,3}))?\s*")
+_NUMBER = lazy(r"([+-]?)(\d+(?:\.\d*)?|\.\d+)(?:[eE]([+-]?\d{1,3}))?\s*")
 
 
 def parse_with_unit(text: str, unit: str) -> float:

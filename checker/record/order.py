@@ -2,16 +2,16 @@
 
 from __future__ import annotations
 
-import re
 from collections.abc import Iterable, Mapping
 from dataclasses import replace
 from typing import Any
 
+from checker.pattern import lazy
 from checker.record.finding import Finding
 from checker.record.report import Report
 from checker.words import SEVERITIES
 
-_DIGITS = re.compile("([0-9]+)")
+_DIGITS = lazy("([0-9]+)")
 
 Key = tuple[Any, ...]
 
