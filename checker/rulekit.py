@@ -33,6 +33,7 @@ __all__ = [
     "CannotTell",
     "CapacitorUse",
     "Check",
+    "Configuration",
     "Evidence",
     "Figure",
     "Lever",
@@ -43,11 +44,12 @@ __all__ = [
     "Stage",
     "TargetIntent",
     "ceiling",
-    "flag",
     "in_percent",
     "levers",
+    "magnitude",
     "require",
     "show",
+    "where_code",
 ]
 
 Kind = Literal["stage", "port", "capacitor", "target"]
@@ -61,11 +63,8 @@ LINEAR: tuple[Configuration, ...] = (
     "common-collector",
     "phase-splitter",
     "current-source",
-    "unclassified",
 )
-"""Labels of bipolar stages that are meant to rest in the active region. `unclassified` is among them
-because a stage with a dead bias no longer acts as anything.
-"""
+"""Labels of bipolar stages that are meant to rest in the active region."""
 
 NOT_APPLICABLE = "not applicable"
 """A figure without any value whose reason starts so is clean, not unchecked."""
@@ -227,10 +226,10 @@ def _column(end: float | NDArray[np.float64] | None) -> NDArray[np.float64]:
 class Evidence:
     """What a rule found about one subject, whether or not it is a fault.
 
-    `subject`: at most three parts, the faulty one first. `message` may hold {value}, {limit}, {frequency}
-    and the names in `figures`; they are filled in from the worst scenario. `measured`: the figure to report
-    where the one judged is only a yes or no. `effect`: what one sees on the bench, where the rule's own
-    sentence is too general. `in_step`: the levers are of use only by one factor, as the arms of a divider.
+    `subject`: at most three parts, the faulty one first. `message` may hold {value}, {limit}, {frequency} and the names
+    in `figures`; they are filled in from the worst scenario. `effect`: what one sees on the bench, where the rule's own
+    sentence is too general. `in_step`: the levers are of use only by one factor, as the arms of a divider. `goal`: what
+    a remedy has to reach besides, where to clear the limit by a hair would mend nothing; it never accuses.
     """
 
     check: Check
@@ -239,8 +238,8 @@ class Evidence:
     effect: str = ""
     levers: tuple[Lever, ...] = ()
     in_step: bool = False
+    goal: Check | None = None
     figures: Mapping[str, Figure] = field(default_factory=dict)
-    measured: Figure | None = None
 
 
 class Rule(Generic[SubjectT]):
@@ -273,11 +272,17 @@ def levers(parts: Iterable[str], direction: Direction = "any") -> tuple[Lever, .
     return tuple(Lever(part=part, property="r_ohm", direction=direction) for part in parts)
 
 
-def flag(figure: Figure, code: float, quantity: str) -> Figure:
-    """1 where a coded figure has that code, 0 where another, nan where unknown; shape as `figure`."""
-    values = np.asarray(figure.values, dtype=np.float64)
-    hit = np.where(np.isnan(values), np.nan, (values == code).astype(np.float64))
-    return replace(figure, quantity=quantity, values=hit)
+def where_code(figure: Figure, codes: Figure, wanted: tuple[int, ...], otherwise: float) -> Figure:
+    """`figure` in the scenarios in which the coded figure has one of the `wanted` codes, `otherwise` (which should
+    pass) in the others, nan where the code is unknown; both (S, 1)."""
+    coded = np.asarray(codes.values, dtype=np.float64)
+    values = np.where(np.isin(coded, wanted), figure.values, otherwise)
+    return replace(figure, values=np.where(np.isnan(coded), np.nan, values))
+
+
+def magnitude(figure: Figure) -> Figure:
+    """Without its sign or phase."""
+    return replace(figure, values=np.abs(figure.values))
 
 
 def in_percent(figure: Figure) -> Figure:

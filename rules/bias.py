@@ -3,45 +3,64 @@
 from __future__ import annotations
 
 from collections.abc import Iterable, Mapping
+from dataclasses import replace
+from math import inf
 
 from checker.rulekit import (
     LINEAR,
     Applies,
     Board,
     Bound,
+    CannotTell,
+    Check,
+    Configuration,
     Evidence,
     Limit,
     Rule,
     Stage,
-    flag,
     in_percent,
     levers,
+    magnitude,
     require,
+    where_code,
 )
 
-_NO = Bound.at(0.0, "", "definition of the regions of operation")
-_YES = Bound.at(1.0, "", "Kirchhoff's current law")
+_RESTING: tuple[Configuration, ...] = (*LINEAR, "unclassified")
+"""Those that are asked how they rest. A device that no signal path was found through is asked too, but its
+rest accuses nobody: it may be a switch that is off, or wait for a fault.
+"""
+
+_ROOM = Bound.at(0.5, "V", "half a volt over saturation, common practice")
+"""What a remedy of saturation has to reach."""
+_DRAWN_DOWN = 0.75
+"""Share of the voltage over a device that is cut off which may remain once it conducts."""
+_FORWARD = Bound.at(0.0, "V", "sense of the collector current")
+_PATH = Bound.at(1.0, "", "Kirchhoff's current law")
 
 
 def _rests(
-    board: Board, stage: Stage, code: float, name: str, message: str, first: tuple[str, ...] = ()
+    board: Board, stage: Stage, check: Check, goal: Check | None, words: str, turned: Iterable[str]
 ) -> list[Evidence]:
-    """That the stage does not rest in the region of that code; VCE is what the report shows.
-
-    `first`: resistors that set the region before those of the bias do.
-    """
-    vce = board.ask("vce_v", stage.id)
-    turn = (*first, *board.bias_parts(stage.id))
+    """Evidence that a stage rests where it should not. Raises `CannotTell` for one whose work is unknown."""
+    if stage.configuration == "unclassified" and check.failed.any():
+        raise CannotTell(
+            f"what {stage.id} is for: it {words}, and no signal path through it was found",
+            "[[port]] entries where the signal enters and leaves, or an [[accepted]] entry",
+        )
+    turn = tuple(dict.fromkeys((*turned, *board.bias_parts(stage.id))))
     return [
         Evidence(
-            check=require(flag(board.ask("region_code", stage.id), code, name), "equals", _NO),
-            subject=(stage.id, *dict.fromkeys(turn))[:2],
-            message=message,
-            figures={"vce": vce, "ic": board.ask("ic_a", stage.id), "vbe": board.ask("vbe_v", stage.id)},
-            levers=levers(dict.fromkeys(turn)),
-            measured=vce,
+            check=check,
+            subject=(stage.id, *turn)[:2],
+            message=f"{stage.id} {words}: VCE {{vce}}, VBE {{vbe}}, IC {{ic}}",
+            figures={name: board.ask(f"{name}_{unit}", stage.id) for name, unit in _SHOWN},
+            levers=levers(turn),
+            goal=goal,
         )
     ]
+
+
+_SHOWN = (("vce", "v"), ("vbe", "v"), ("ic", "a"))
 
 
 class SaturatedAtRest(Rule[Stage]):
@@ -58,19 +77,34 @@ class SaturatedAtRest(Rule[Stage]):
     weight = "must-fix"
     bench = "next to no gain; the collector stands a few tenths of a volt above the emitter and hardly moves"
     source = "definition: forward base-collector junction with forced gain; device equations at the operating point"
-    applies = Applies(kind="stage", configurations=LINEAR)
+    applies = Applies(kind="stage", configurations=_RESTING)
+    limits = (
+        Limit(
+            name="headroom_v",
+            default=0.0,
+            unit="V",
+            low=0.0,
+            high=10.0,
+            source="the edge of saturation itself; a house rule may keep half a volt (common practice)",
+        ),
+    )
 
     def judge(self, board: Board, subject: Stage, limits: Mapping[str, Bound]) -> Iterable[Evidence]:
-        """One check of the region."""
-        message = f"{subject.id} rests in saturation: VCE {{vce}} at IC {{ic}}"
-        return _rests(board, subject, 1, "saturated", message, board.resistors_at(subject.id, "collector"))
+        """One check of the headroom, wherever the device is not cut off or reversed."""
+        headroom = board.ask("headroom_v", subject.id)
+        region = board.ask("region_code", subject.id)
+        check = require(where_code(headroom, region, (0, 1), inf), "at least", limits["headroom_v"])
+        goal = require(headroom, "at least", _ROOM)
+        at_collector = board.resistors_at(subject.id, "collector")
+        return _rests(board, subject, check, goal, "rests in saturation", at_collector)
 
 
 class CutOffAtRest(Rule[Stage]):
     """The base divider gives less than a junction needs: without signal no collector current flows.
 
-    Cut off: |IC| under 1e-3 of the current with collector and emitter joined and the device removed. A
-    class C stage and a limiter that waits for a fault rest so on purpose; accept them.
+    Cut off: |IC| under 1e-3 of the current with collector and emitter joined and the device removed, and
+    VBE under the limit: a large current beside a still larger one that could flow is no fault. A class C
+    stage and a limiter that waits for a fault rest so on purpose; accept them.
     """
 
     id = "cut-off-at-rest"
@@ -78,13 +112,28 @@ class CutOffAtRest(Rule[Stage]):
     theme = "bias"
     weight = "must-fix"
     bench = "the collector stands at the supply; small signals vanish, large ones come through as narrow peaks"
-    source = "a silicon junction needs about 0.5 V for a small current (device equation)"
-    applies = Applies(kind="stage", configurations=LINEAR)
+    source = "a silicon junction needs about half a volt for a small current (device equation)"
+    applies = Applies(kind="stage", configurations=_RESTING)
+    limits = (
+        Limit(
+            name="ic_a",
+            default=10e-6,
+            unit="A",
+            low=1e-9,
+            high=1e-3,
+            source="what passes for a current in a stage of milliamperes: common practice, no source",
+        ),
+    )
 
     def judge(self, board: Board, subject: Stage, limits: Mapping[str, Bound]) -> Iterable[Evidence]:
-        """One check of the region."""
-        message = f"{subject.id} is cut off at rest: VBE {{vbe}}, IC {{ic}}"
-        return _rests(board, subject, 2, "cut_off", message)
+        """One check of the collector current where the region is cut-off."""
+        current = magnitude(board.ask("ic_a", subject.id))
+        check = require(
+            where_code(current, board.ask("region_code", subject.id), (2,), inf), "at least", limits["ic_a"]
+        )
+        vce = board.ask("vce_v", subject.id)
+        goal = require(vce, "at most", Bound.at(_DRAWN_DOWN * abs(vce.nominal), "V", "a quarter for the load"))
+        return _rests(board, subject, check, goal, "is cut off at rest", ())
 
 
 class ReverseActive(Rule[Stage]):
@@ -101,19 +150,18 @@ class ReverseActive(Rule[Stage]):
     weight = "must-fix"
     bench = "gain of a few at best; noise grows over months as the emitter junction is worn"
     source = "sign of both junction voltages (device equation)"
-    applies = Applies(kind="stage", configurations=LINEAR)
+    applies = Applies(kind="stage", configurations=_RESTING)
 
     def judge(self, board: Board, subject: Stage, limits: Mapping[str, Bound]) -> Iterable[Evidence]:
-        """One check of the region."""
-        found = _rests(board, subject, 3, "reverse_active", "")[0]
-        message = f"{subject.id} runs backwards: VCE {{vce}}, VBE {{vbe}}; are collector and emitter exchanged?"
+        """One check of the collector-emitter voltage where the region is reverse-active; no value mends
+        it.
+        """
+        vce = board.ask("vce_v", subject.id)
+        check = require(where_code(vce, board.ask("region_code", subject.id), (3,), inf), "at least", _FORWARD)
         return [
-            Evidence(
-                check=found.check,
-                subject=(subject.id,),
-                message=message,
-                figures=found.figures,
-                measured=found.measured,
+            replace(evidence, subject=(subject.id,), levers=())
+            for evidence in _rests(
+                board, subject, check, None, "runs backwards, as with collector and emitter exchanged", ()
             )
         ]
 
@@ -224,7 +272,7 @@ class NoBasePath(Rule[Stage]):
         """One check of the structure."""
         return [
             Evidence(
-                check=require(board.ask("base_dc_path", subject.id), "equals", _YES),
+                check=require(board.ask("base_dc_path", subject.id), "equals", _PATH),
                 subject=(subject.id,),
                 message=f"the base of {subject.id} has no path for direct current",
             )

@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from collections.abc import Iterable, Mapping
 
-from checker.rulekit import Applies, Board, Bound, Evidence, Lever, Limit, Port, Rule, levers, require
+from checker.rulekit import Applies, Board, Bound, CannotTell, Evidence, Lever, Limit, Port, Rule, levers, require
 
 
 class InputMismatch(Rule[Port]):
@@ -40,6 +40,8 @@ class InputMismatch(Rule[Port]):
         if subject.role != "input" or subject.reference_ohm is None or not (subject.declared or subject.coaxial):
             return ()
         stage = board.stage_at_port(subject.name)
+        if stage is None and not subject.declared:
+            raise CannotTell(f"what port {subject.name} feeds", "a [[port]] entry, or models for the parts behind it")
         parts = () if stage is None else (stage.id, *board.bias_parts(stage.id)[:1])
         turn: tuple[Lever, ...] = ()
         if stage is not None and stage.entry is not None:

@@ -7,8 +7,10 @@ in `PRIMACY` counts.
 
 from __future__ import annotations
 
+import math
 from collections.abc import Sequence
 
+from checker.judge.message import frequency_hz
 from checker.judge.verdict import Verdict
 
 REST = ("no-base-path", "reverse-active", "cut-off-at-rest", "saturated-at-rest")
@@ -52,6 +54,9 @@ CAUSES_BY_QUANTITY: dict[str, dict[str, tuple[str, ...]]] = {
 }
 """The same, only where the judged quantity's name holds the word."""
 
+CAUSES_AT_ONE_FREQUENCY: dict[str, tuple[str, ...]] = {"target-missed": ("bypass-loss", "coupling-loss")}
+"""The same, only where both are worst at the same frequency: a gain missed at the band edge where a capacitor loses."""
+
 
 def causes(verdicts: Sequence[Verdict]) -> tuple[int | None, ...]:
     """For each verdict the index of the one it follows from, None where it is a root. Never in a circle."""
@@ -64,9 +69,17 @@ def _cause(effect: Verdict, verdicts: Sequence[Verdict]) -> int | None:
 
 
 def _follows(effect: Verdict, cause: Verdict) -> bool:
-    if cause.rule.id not in _named(effect) or not set(effect.stages) & set(cause.stages):
+    if not set(effect.stages) & set(cause.stages):
+        return False
+    at_one = cause.rule.id in CAUSES_AT_ONE_FREQUENCY.get(effect.rule.id, ()) and _same_frequency(effect, cause)
+    if cause.rule.id not in _named(effect) and not at_one:
         return False
     return cause.outcome == "violates" or effect.outcome == "may-violate"
+
+
+def _same_frequency(effect: Verdict, cause: Verdict) -> bool:
+    one, other = (frequency_hz(each.evidence.check, each.worst) for each in (effect, cause))
+    return one is not None and other is not None and math.isclose(one, other, rel_tol=1e-6)
 
 
 def _named(effect: Verdict) -> tuple[str, ...]:

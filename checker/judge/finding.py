@@ -8,7 +8,7 @@ from collections.abc import Sequence
 from checker.circuit.types import Circuit
 from checker.judge.causes import causes
 from checker.judge.fingerprint import fingerprints
-from checker.judge.message import end_at, filled, frequency_hz, plain_unit, value_at
+from checker.judge.message import end_at, filled, frequency_hz, value_at
 from checker.judge.verdict import Examination, Verdict
 from checker.record.finding import Bound, Finding, Measured, Unchecked, Window
 from checker.record.stage import Location
@@ -51,26 +51,24 @@ def _finding(verdict: Verdict, circuit: Circuit, mark: str, root: str | None) ->
         scenario=verdict.name,
         frequency_hz=frequency_hz(evidence.check, worst),
         measured=_measured(verdict),
-        limit=None if evidence.measured is not None else _limit(verdict),
+        limit=_limit(verdict),
         caused_by=root,
         location=_location(evidence.subject, circuit),
     )
 
 
 def _measured(verdict: Verdict) -> Measured:
-    evidence, worst = verdict.evidence, verdict.worst
-    figure = evidence.check.figure if evidence.measured is None else evidence.measured
-    value = value_at(evidence.check, worst) if evidence.measured is None else float(figure.values[worst, 0].real)
+    figure, value = verdict.evidence.check.figure, value_at(verdict.evidence.check, verdict.worst)
     return Measured(
         quantity=figure.quantity,
         value=as_written(value, figure.unit) if math.isfinite(value) else None,
-        unit=plain_unit(figure.unit),
+        unit=figure.unit,
     )
 
 
 def _limit(verdict: Verdict) -> Bound | Window:
     check, worst = verdict.evidence.check, verdict.worst
-    bound, unit = check.bound, plain_unit(check.bound.unit)
+    bound, unit = check.bound, check.bound.unit
     if check.relation == "within":
         low, high = (as_written(end_at(end, worst), unit) for end in (bound.low, bound.high))
         return Window(relation="within", low=low, high=high, unit=unit, source=bound.source)

@@ -10,11 +10,6 @@ from checker.rulekit import Check, Evidence, Figure
 NO_FREQUENCY = "DC"
 
 
-def plain_unit(unit: str) -> str:
-    """A unit as the report has it: a plain number has none."""
-    return "" if unit == "1" else unit
-
-
 def frequency_hz(check: Check, scenario: int) -> float | None:
     """Where the check is worst in that scenario; None where the figure has no frequency."""
     if check.figure.f_hz is None:
@@ -39,7 +34,7 @@ def filled(evidence: Evidence, text: str, scenario: int) -> str:
     check = evidence.check
     at_hz = frequency_hz(check, scenario)
     numbers = {
-        "value": show(value_at(check, scenario), plain_unit(check.figure.unit)),
+        "value": show(value_at(check, scenario), check.figure.unit),
         "limit": limit_text(check, scenario),
         "frequency": NO_FREQUENCY if at_hz is None else show(at_hz, "Hz"),
     }
@@ -62,7 +57,7 @@ def _single(check: Check) -> tuple[object]:
 
 def _short(value: float, unit: str) -> str:
     """Without zeros behind the point."""
-    number, space, sign = show(value, plain_unit(unit)).partition(" ")
+    number, space, sign = show(value, unit).partition(" ")
     return (number.rstrip("0").rstrip(".") if "." in number else number) + space + sign
 
 
@@ -74,6 +69,6 @@ def _shown(figure: Figure, scenario: int, at_hz: float | None) -> str:
         place = int(np.argmin(distance))
     value = figure.values[scenario, place]
     if not np.iscomplexobj(value) or abs(value.imag) < 0.01 * abs(value):
-        return show(float(value.real), plain_unit(figure.unit))
-    number, _, sign = show(float(abs(value)), plain_unit(figure.unit)).partition(" ")
+        return show(float(value.real), figure.unit)
+    number, _, sign = show(float(abs(value)), figure.unit).partition(" ")
     return f"{number} {sign} at {np.degrees(np.angle(value)):.0f}°"

@@ -22,7 +22,7 @@ def cleared(examination: Examination, verdict: Verdict, base: int) -> Bools:
     for each in examination.judged:
         if is_finding(each, verdict):
             found = True
-            good &= ~_bad(each)
+            good &= ~_bad(each) & _goal_met(each)
         elif each.evidence.check.applies and _as_heavy(each.rule.weight, verdict):
             good &= _bad(each)[base] | ~_bad(each)
     return good & found
@@ -68,6 +68,11 @@ def _bad(judged: Judged) -> Bools:
     """bool (S,): failed, or no longer known; a figure of the nominal alone is not asked elsewhere."""
     check = judged.evidence.check
     return check.failed if check.figure.nominal_only else check.failed | check.unknown
+
+
+def _goal_met(judged: Judged) -> Bools:
+    goal = judged.evidence.goal
+    return ~_bad(judged) if goal is None else ~(goal.failed | goal.unknown)
 
 
 def _weight_of(new: Bools, judged: Judged, scenarios: Sequence[Scenario]) -> Severity:

@@ -11,7 +11,6 @@ import numpy as np
 
 from checker.circuit.types import Circuit
 from checker.examine import Examined
-from checker.judge.message import plain_unit
 from checker.judge.verdict import Verdict
 from checker.quantity.figure import Figure
 from checker.record.finding import Change, Effect
@@ -47,8 +46,7 @@ def effects_of(verdict: Verdict, nominal: Examined, stack: Examined, start: int)
     the change from `start`.
     """
     evidence = verdict.evidence
-    judged = evidence.check.figure if evidence.measured is None else evidence.measured
-    relation = evidence.check.relation
+    judged, relation = evidence.check.figure, evidence.check.relation
     board, rows = (nominal, (0, 1)) if verdict.worst == 0 else (stack, (verdict.worst, start + verdict.worst))
     first = _effect(board, judged.quantity, judged.subject, rows, relation)
     main = (_effect(nominal, name, each, (0, 1), relation) for each in verdict.stages[:1] for name in MAIN)
@@ -63,7 +61,7 @@ def _effect(board: Examined, quantity: str, subject: str, rows: tuple[int, int],
     except (CannotTell, Unsolved):
         return None
     before, after = (_worst(figure, row, relation) for row in rows)
-    return Effect(quantity=quantity, before=before, after=after, unit=plain_unit(figure.unit), subject=subject)
+    return Effect(quantity=quantity, before=before, after=after, unit=figure.unit, subject=subject)
 
 
 def _worst(figure: Figure, row: int, relation: Relation) -> float | None:
