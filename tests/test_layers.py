@@ -118,9 +118,7 @@ def test_only_the_stated_packages_are_imported() -> None:
     wrong = [
         f"{path.relative_to(ROOT)}:{line}: {imported}"
         for path in sources("checker", "rules")
-        for line, imported in imports(
-            path.read_text("utf-8"), module_name(path), is_package=path.name == "__init__.py"
-        )
+        for line, imported in imports(path.read_text("utf-8"), module_name(path), is_package=path.name == "__init__.py")
         if imported.split(".")[0] not in known
     ]
     assert not wrong, "\n".join(wrong)
