@@ -43,7 +43,8 @@ class OperatingPoint:
 
     `bipolar`: ic_a, ib_a, ie_a (into the terminal, signs as they flow), vbe_v, vce_v, vbc_v at the outer terminals
     times the polarity, power_w; each (S, n). `diode`: i_a, v_v, power_w. `bipolar_k`, `diode_k`: temperatures used.
-    `refused`: island -> why its solution is not printed though it balances. `kept`: what later steps derive from the point once (pencils, numbering).
+    `refused`: island -> why its solution is not printed though it balances.
+    `kept`: what later steps derive from the point once (pencils, numbering).
     """
 
     circuit: Circuit
