@@ -80,8 +80,10 @@ def operating_point(
     quick: bool = False,
     refuse: Mapping[int, str] | None = None,
 ) -> OperatingPoint:
-    """Solve and certify. `near`: a solution of the same topology to start from (scenario by scenario where both have as many, else from its scenario 0).
+    """Solve and certify.
 
+    `near`: a solution of the same topology to start from, scenario by scenario where both have as many, else from its
+    scenario 0.
     `rise_k`: junction temperature rise over ambient of bipolars and diodes, each (S, n) [K]. `x0` (S, U): start there.
     `quick`: give up early on what does not converge, for trials. `refuse`: islands (by place in the plan) that are no
     rest, with the reason; those that `near` refuses stay refused.
