@@ -76,12 +76,9 @@ def terminal_output(bench: Bench, stage: str) -> Figure:
 
 @frozen
 class Around:
-    (
-        """What stands around a device at f0, nominal, in ohm, with the device out: at the `emitter`, at the `base`
+    """What stands around a device at f0, nominal, in ohm, with the device out: at the `emitter`, at the `base`
     (upstream source in place), at the base with the input link open too (`base_alone`), at the exit in place
     (`exit_loaded`) and with the output link open (`exit_alone`); `load`: what the output link feeds."""
-        ""
-    )
 
     emitter: float
     base: float
