@@ -142,7 +142,7 @@ def _collect(
             )
             continue
         ok = solved.done[:, index] & (solved.kcl[:, index] <= KCL_REL) & agreed & (index not in refused)
-        v[np.ix_(~ok, list(island.nodes))] = np.nan
+        v[np.ix_(~ok, np.array(island.nodes))] = np.nan
         islands.append(
             Island(
                 nets=nets,
