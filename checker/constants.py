@@ -24,8 +24,8 @@ CURRENT_FLOOR_A: Final = 1e-15
 """Currents below this count as zero in the certificate (a femtoampere is under any board's leakage)."""
 QUICK_ITERATIONS: Final = 40
 """Newton iterations of a trial that starts at a neighbour's answer: what takes more is left out of the running."""
-MAX_ITERATIONS: Final = 200
-"""Newton iterations of the plain start; well-posed stages take under 15, so 200 means stuck."""
+MAX_ITERATIONS: Final = 60
+"""Newton iterations of the plain start; well-posed stages take under 15, a chain of five 21: 60 means stuck."""
 RUNG_ITERATIONS: Final = 40
 """Newton iterations at one value of a helper, which starts from the neighbouring value's answer."""
 FIRST_RUNG: Final = 0.05

@@ -33,7 +33,6 @@ from checker.record import (
     WorkingLine,
     in_order,
 )
-from checker.remedy.search import propose
 from checker.setup import Setup, set_up
 from checker.shape import frozen
 from checker.summary.ledger import Ledger
@@ -92,7 +91,7 @@ def check_board(netlist_path: Path, intent_path: Path | None, *, today: datetime
         unchecked=(*_unknowns(setup), *_unsolved(stages), *_judged_apart(stages, to_unchecked(examination))),
         unavailable=ledger.unavailable,
     )
-    return Outcome(report=in_order(report), workings=tuple(ledger.workings), incomplete=bool(faults))
+    return Outcome(report=in_order(report), workings=ledger.workings, incomplete=bool(faults))
 
 
 def ready(netlist_path: Path, intent_path: Path | None) -> Setup:
@@ -129,6 +128,10 @@ def _mended(
     order = sorted(range(len(pairs)), key=lambda k: (pairs[k][1].severity != "must-fix", k))
     sought = {k for k in order if pairs[k][1].caused_by is None and pairs[k][0].evidence.levers}
     chosen = set(sorted(sought, key=order.index)[:MOST_REMEDIES])
+    if not chosen:
+        return tuple(finding for _, finding in pairs)
+    from checker.remedy.search import propose  # a clean board does not pay for it
+
     out = []
     for k, (verdict, finding) in enumerate(pairs):
         remedy = propose(verdict, board, rulebook.rules, limits, setup.board) if k in chosen else None

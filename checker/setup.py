@@ -54,6 +54,7 @@ class Setup:
             ports=self.ports,
             band_hz=self.circuit.band_hz,
             f0_hz=self.f0_hz,
+            nominal=self.point,
         )
         order = {name: self.influence.order(name) for name in self.influence.devices}
         return Board(bench, self.intent, order)

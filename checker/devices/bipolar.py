@@ -25,7 +25,7 @@ from checker.devices.junction import (
     capacitance_at,
     critical_v,
     depletion,
-    exponential,
+    excess,
     limited,
     potential_at,
     saturation_ratio,
@@ -100,14 +100,14 @@ def limit(p: Mapping[str, FloatArray], new: FloatArray, old: FloatArray) -> Floa
 def core(p: Mapping[str, FloatArray], vbe: FloatArray, vbc: FloatArray) -> Core:
     """Inner currents and derivatives at junction voltages (S, n) [V]."""
     vt = p["vt"]
-    e, de = exponential(vbe / (p["nf"] * vt))
-    i_f, g_f = p["is"] * (e - 1.0), p["is"] * de / (p["nf"] * vt)
-    e, de = exponential(vbc / (p["nr"] * vt))
-    i_r, g_r = p["is"] * (e - 1.0), p["is"] * de / (p["nr"] * vt)
-    e, de = exponential(vbe / (p["ne"] * vt))
-    i_le, g_le = p["ise"] * (e - 1.0), p["ise"] * de / (p["ne"] * vt)
-    e, de = exponential(vbc / (p["nc"] * vt))
-    i_lc, g_lc = p["isc"] * (e - 1.0), p["isc"] * de / (p["nc"] * vt)
+    e, de = excess(vbe / (p["nf"] * vt))
+    i_f, g_f = p["is"] * e, p["is"] * de / (p["nf"] * vt)
+    e, de = excess(vbc / (p["nr"] * vt))
+    i_r, g_r = p["is"] * e, p["is"] * de / (p["nr"] * vt)
+    e, de = excess(vbe / (p["ne"] * vt))
+    i_le, g_le = p["ise"] * e, p["ise"] * de / (p["ne"] * vt)
+    e, de = excess(vbc / (p["nc"] * vt))
+    i_lc, g_lc = p["isc"] * e, p["isc"] * de / (p["nc"] * vt)
     # An Early denominator at or below zero is outside the model; hold it there during wild iterates.
     early = np.maximum(1.0 - vbc / p["vaf"] - vbe / p["var"], 1e-3)
     inside = early > 1e-3

@@ -16,6 +16,7 @@ from checker.devices.junction import (
     capacitance_at,
     critical_v,
     depletion,
+    excess,
     exponential,
     limited,
     potential_at,
@@ -64,17 +65,17 @@ def limit(p: Mapping[str, FloatArray], new: FloatArray, old: FloatArray) -> Floa
 def current(p: Mapping[str, FloatArray], v: FloatArray) -> tuple[FloatArray, FloatArray]:
     """Junction current [A] and conductance [S] at junction voltage v (S, n) [V]."""
     n_vt = p["n"] * p["vt"]
-    e, de = exponential(v / n_vt)
-    i_f = p["is"] * (e - 1.0)
+    e, de = excess(v / n_vt)
+    i_f = p["is"] * e
     g_f = p["is"] * de / n_vt
     root = np.sqrt(1.0 + np.maximum(i_f, 0.0) / p["ikf"])
     g_h = np.where(i_f > 0.0, g_f * (1.0 / root - 0.5 * i_f / p["ikf"] / root**3), g_f)
     i = i_f / root
-    e_r, de_r = exponential(v / (p["nr"] * p["vt"]))
+    e_r, de_r = excess(v / (p["nr"] * p["vt"]))
     depth = (1.0 - v / p["vj"]) ** 2 + 0.005
     grow = depth ** (p["m"] / 2.0)
     d_grow = -p["m"] * grow / depth * (1.0 - v / p["vj"]) / p["vj"]
-    i_r = p["isr"] * (e_r - 1.0)
+    i_r = p["isr"] * e_r
     i = i + i_r * grow
     g = g_h + p["isr"] * de_r / (p["nr"] * p["vt"]) * grow + i_r * d_grow
     e_b, de_b = exponential(-(v + p["bv"]) / p["vt"])

@@ -33,6 +33,12 @@ def exponential(x: FloatArray) -> tuple[FloatArray, FloatArray]:
     return e * (1.0 + np.maximum(x - EXP_KNEE, 0.0)), e
 
 
+def excess(x: FloatArray) -> tuple[FloatArray, FloatArray]:
+    """exp(x) - 1 and its derivative, exact to the last digit at small x, continued like `exponential`."""
+    e, slope = exponential(x)
+    return np.where(x < 0.5, np.expm1(np.minimum(x, 0.5)), e - 1.0), slope
+
+
 def depletion(v: FloatArray, cj: FloatArray, vj: FloatArray, mj: FloatArray, fc: FloatArray) -> FloatArray:
     """Depletion capacitance [F] at junction voltage `v` [V], linear continuation above FC*VJ."""
     limit = fc * vj

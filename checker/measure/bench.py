@@ -29,7 +29,9 @@ class Bench:
         ports: tuple[Port, ...],
         band_hz: tuple[float, float] | None,
         f0_hz: float,
+        nominal: OperatingPoint,
     ) -> None:
+        """`nominal`: the certified point of scenario 0 alone."""
         self.circuit = circuit
         self.point = point
         self.recognition = recognition
@@ -39,7 +41,7 @@ class Bench:
         self._responses: dict[tuple[float, ...], Response] = {}
         self._nominal_responses: dict[tuple[float, ...], Response] = {}
         self._heated: OperatingPoint | None = None
-        self._nominal: OperatingPoint | None = None
+        self.nominal_point = nominal
         self.kept: dict[str, object] = {}
 
     @property
@@ -73,15 +75,6 @@ class Bench:
         if key not in self._nominal_responses:
             self._nominal_responses[key] = small_signal(self.nominal_point, np.array(key))
         return self._nominal_responses[key]
-
-    @property
-    def nominal_point(self) -> OperatingPoint:
-        """The operating point of scenario 0 alone."""
-        if self._nominal is None:
-            from checker.measure.single import first_scenario
-
-            self._nominal = self.point if self.size == 1 else first_scenario(self.point)
-        return self._nominal
 
     @property
     def heated(self) -> OperatingPoint:

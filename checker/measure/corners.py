@@ -52,16 +52,40 @@ def corners(
 
 
 def _refine(magnitude: Magnitude, inside: float, outside: float, level: float) -> float:
-    """Cut the bracket in sixteen until it is 1e-6 wide; then read the crossing off the chord."""
+    """Cut the bracket in sixteen, and again around where a cubic through the crossing says it is, until it is 1e-6
+    wide; then read the crossing off the chord."""
     a, b = np.log(inside), np.log(outside)
+    x = np.linspace(a, b, 17)
     while True:
-        x = np.linspace(a, b, 17)
         y = np.log(magnitude(np.exp(x)) / level)
         first = int(np.argmax(y < 0.0))
         a, b = x[first - 1], x[first]
         if abs(b - a) < 16.0 * CORNER_REL:
             ya, yb = y[first - 1], y[first]
             return float(np.exp(a + (b - a) * ya / (ya - yb)))
+        x = _closer(x, y, first)
+
+
+def _at_zero(y: FloatArray, x: FloatArray) -> float:
+    """x where y = 0 on the polynomial x(y) through the points (Lagrange)."""
+    total = 0.0
+    for j in range(len(y)):
+        others = np.delete(y, j)
+        total += float(x[j] * np.prod(others / (others - y[j]))) if np.all(others != y[j]) else np.nan
+    return total
+
+
+def _closer(x: FloatArray, y: FloatArray, first: int) -> FloatArray:
+    """17 points in the bracket x[first - 1]..x[first]: its ends, and a cluster around the likely crossing."""
+    a, b = x[first - 1], x[first]
+    near = slice(max(first - 2, 0), first + 2)
+    guess = _at_zero(y[near], x[near])
+    low, high = min(a, b), max(a, b)
+    if not low < guess < high:
+        return np.linspace(a, b, 17)
+    reach = 4.0 * CORNER_REL
+    cluster = np.clip(guess + np.linspace(-reach, reach, 15) * np.sign(b - a), low, high)
+    return np.concatenate([[a], cluster, [b]])
 
 
 def _stage_corners(bench: Bench, ident: str, outer: Outer) -> tuple[float, float, float, float]:

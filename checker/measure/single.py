@@ -1,16 +1,10 @@
-"""The nominal scenario cut out of a stack without solving again."""
+"""The nominal scenario cut out of a stack."""
 
 from __future__ import annotations
 
 from dataclasses import replace
 
 from checker.circuit.types import Branches, Circuit, Devices
-from checker.solve.operating import OperatingPoint, operating_point
-
-
-def first_scenario(point: OperatingPoint) -> OperatingPoint:
-    """Scenario 0 of a stacked operating point: converged already, so one pass confirms its certificate."""
-    return operating_point(nominal_circuit(point.circuit), near=point)
 
 
 def nominal_circuit(circuit: Circuit) -> Circuit:

@@ -50,6 +50,12 @@ def transconductance(point: OperatingPoint) -> FloatArray:
     return k.ic_vbe + k.ic_vbc
 
 
+def passive_admittance(point: OperatingPoint, f_hz: FloatArray) -> ComplexArray:
+    """Y of the bipolars with their controlled current gm vbe taken out, complex128 (S, F, n, 4, 4) [S]."""
+    (g, c), _ = device_pencils(point)
+    return outer_admittance(point.plan.bipolars, bipolar.without_gm(g, transconductance(point)), c, f_hz, 4)
+
+
 def outer_admittance(placed: Placed, g: FloatArray, c: FloatArray, f_hz: FloatArray, outer: int) -> ComplexArray:
     """Y of each device at its `outer` first terminals, complex128 (S, F, n, outer, outer) [S]."""
     y = g[:, None] + 2j * np.pi * f_hz[None, :, None, None, None] * c[:, None]

@@ -12,6 +12,7 @@ import numpy as np
 from numpy.typing import NDArray
 
 from checker.circuit.types import Circuit
+from checker.constants import DEFAULT_AMBIENT_C, ZERO_CELSIUS_K, thermal_voltage_v
 from checker.devices import bipolar, diode
 from checker.shape import frozen
 from checker.solve.counters import COUNTERS
@@ -234,10 +235,11 @@ class Assembler:
         """What rounding of the node voltages alone makes of each current balance, (S, U) [A].
 
         A conductance g between nodes at 10 V cannot carry a current known better than g times the spacing of
-        doubles at 10 V; behind 1 ohm that is a femtoampere, more than a transistor leaks.
+        doubles at 10 V; behind 1 ohm that is a femtoampere, more than a transistor leaks. Under a thermal voltage
+        nothing needs a finer step than at one.
         """
         c, s = self.circuit, self.scenarios
-        v = np.abs(self.voltages(x))
+        v = np.maximum(np.abs(self.voltages(x)), thermal_voltage_v(DEFAULT_AMBIENT_C + ZERO_CELSIUS_K))
         i_r = (v[:, c.resistors.nodes[:, 0]] + v[:, c.resistors.nodes[:, 1]]) * self._g_r
         branches = 2 * (c.currents.value.shape[1] + len(self.plan.v_row) + len(self.plan.l_row))
         columns, at = [i_r, i_r, np.zeros((s, branches))], 0

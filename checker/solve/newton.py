@@ -221,9 +221,13 @@ def _certify(assembler: Assembler, x: FloatArray, done: BoolArray) -> Solved:
 
 
 def _conditions(assembler: Assembler, flat: FloatArray) -> tuple[FloatArray, FloatArray]:
-    """Condition estimate (2-norm, after scaling rows and columns) and sign of the determinant, (S, islands)."""
+    """Condition (2-norm, after scaling rows and columns) and sign of the determinant, (S, islands).
+
+    Of scenario 0, which the report certifies; nan in the others.
+    """
     conditions, signs = [], []
-    for a in assembler.block_views(flat):
+    for blocks in assembler.block_views(flat):
+        a = blocks[:1]
         scale = np.sqrt(np.maximum(np.abs(a).max(axis=-1, keepdims=True), 1e-300))
         scaled = a / scale / np.sqrt(np.maximum(np.abs(a).max(axis=-2, keepdims=True), 1e-300))
         COUNTERS.factorisations += 2 * a.shape[0] * a.shape[1]
@@ -233,4 +237,10 @@ def _conditions(assembler: Assembler, flat: FloatArray) -> tuple[FloatArray, Flo
     if not conditions:
         empty = np.zeros((assembler.scenarios, 0))
         return empty, empty
-    return np.concatenate(conditions, axis=1), np.concatenate(signs, axis=1)
+    return _first_row(conditions, assembler.scenarios), _first_row(signs, assembler.scenarios)
+
+
+def _first_row(values: list[FloatArray], scenarios: int) -> FloatArray:
+    out = np.full((scenarios, sum(v.shape[1] for v in values)), np.nan)
+    out[:1] = np.concatenate(values, axis=1)
+    return out

@@ -79,7 +79,7 @@ def operating_point(
     quick: bool = False,
     refuse: Mapping[int, str] | None = None,
 ) -> OperatingPoint:
-    """Solve and certify. `near`: a solution of the same topology to start from (its scenario 0 is used).
+    """Solve and certify. `near`: a solution of the same topology to start from (scenario by scenario where both have as many, else from its scenario 0).
 
     `rise_k`: junction temperature rise over ambient of bipolars and diodes, each (S, n) [K]. `x0` (S, U): start there.
     `quick`: give up early on what does not converge, for trials. `refuse`: islands (by place in the plan) that are no
@@ -92,6 +92,8 @@ def operating_point(
     t_b = np.broadcast_to(ambient + rise_b, (circuit.size, len(circuit.bipolars.names))).copy()
     t_d = np.broadcast_to(ambient + rise_d, (circuit.size, len(circuit.diodes.names))).copy()
     assembler = Assembler(circuit, plan, t_b, t_d)
+    if x0 is None and near is not None and near.solved.x.shape[0] == circuit.size and near.solved.done.all():
+        x0 = near.solved.x
     if x0 is None and near is not None and near.solved.done[0].all():
         x0 = np.repeat(near.solved.x[:1], circuit.size, axis=0)
     solved = solve(assembler, x0, quick=quick)
@@ -125,6 +127,7 @@ def _collect(
 ) -> OperatingPoint:
     v = assembler.voltages(solved.x)
     v[:, (plan.unknown < 0) & ~plan.is_known] = np.nan
+    agreed = _sources_agree(circuit, plan, v)
     islands: list[Island] = []
     for index, island in enumerate(plan.islands):
         nets = tuple(circuit.nets[i] for i in island.nodes if i < len(circuit.nets))
@@ -135,7 +138,7 @@ def _collect(
                 Island(nets=nets, ok=bad, kcl=nan, step_v=nan, condition=nan, sign=nan, reason=island.trouble)
             )
             continue
-        ok = solved.done[:, index] & (solved.kcl[:, index] <= KCL_REL) & (index not in refused)
+        ok = solved.done[:, index] & (solved.kcl[:, index] <= KCL_REL) & agreed & (index not in refused)
         v[np.ix_(~ok, list(island.nodes))] = np.nan
         islands.append(
             Island(
@@ -164,6 +167,15 @@ def _collect(
         diode_k=device_k[1],
         refused=refused,
     )
+
+
+def _sources_agree(circuit: Circuit, plan: Plan, v: FloatArray) -> BoolArray:
+    """(S,): no ideal source between fixed nets says otherwise than those that fixed them; a change may part them."""
+    table = circuit.voltages
+    followed = {step.source for step in plan.known}
+    spare = [j for j, ends in enumerate(table.nodes) if j not in followed and plan.is_known[ends].all()]
+    off = np.abs(v[:, table.nodes[spare, 0]] - v[:, table.nodes[spare, 1]] - table.value[:, spare])
+    return np.asarray((off <= 1e-9 * np.maximum(1.0, np.abs(table.value[:, spare]))).all(axis=1), dtype=bool)
 
 
 def _single(plan: Plan, nodes: set[int]) -> bool:

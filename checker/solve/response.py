@@ -1,7 +1,7 @@
 """The in-place small-signal solution over frequencies, with low-rank changes.
 
 One inverse an AC island serves every drive; removing a device, shorting a part or opening a link is an update of
-low rank, never a second factorisation, and never another bias.
+low rank (a second factorisation only where that would cost digits), and never another bias.
 
 Unknowns: voltages of nets that no ideal source fixes, then branch currents of floating sources and of inductors.
 """
@@ -15,9 +15,8 @@ import numpy as np
 from numpy.typing import NDArray
 
 from checker.circuit.types import Branches, Circuit, Port
-from checker.devices import bipolar
 from checker.shape import frozen
-from checker.solve.admittance import device_pencils, outer_admittance, transconductance
+from checker.solve.admittance import device_pencils, outer_admittance
 from checker.solve.counters import COUNTERS
 from checker.solve.operating import OperatingPoint
 from checker.solve.system import signal_system
@@ -52,7 +51,7 @@ class Response:
     """`z` complex128 (S, F, u, u): inverse of the system matrix `y`; `y_known` (S, F, u, n_net): coupling from nets.
 
     Immutable; `removed`, `shorted`, `opened` return changed copies. `row` (n_net,): unknown of a net, -1 if none.
-    `bipolar_y` (S, F, n, 4, 4), `diode_y` (S, F, n, 2, 2): devices at their terminals; `passive_y`: bipolars without gm.
+    `bipolar_y` (S, F, n, 4, 4), `diode_y` (S, F, n, 2, 2): devices at their terminals.
     """
 
     circuit: Circuit
@@ -66,7 +65,6 @@ class Response:
     y_known: ComplexArray
     bipolar_y: ComplexArray
     diode_y: ComplexArray
-    passive_y: ComplexArray
 
     # --- solutions ---------------------------------------------------------------------------------------
     def solution(self, drive: Drive) -> ComplexArray:
@@ -138,17 +136,6 @@ class Response:
         return np.einsum("sfc,sfc->sf", block.y[..., terminal, :], v)
 
     # --- changes -----------------------------------------------------------------------------------------
-    def without_gm(self, device: str) -> Response:
-        """The same circuit with one bipolar's controlled current taken out, everything else of it kept."""
-        return self.replaced(device, self.passive_y[:, :, self.circuit.bipolars.names.index(device)])
-
-    def controlled_current(self, device: str, solution: ComplexArray) -> ComplexArray:
-        """gm vbe of a bipolar in a solution, complex128 (S, F) [A], counted into the collector."""
-        j = self.circuit.bipolars.names.index(device)
-        v = solution[..., self.circuit.bipolars.nodes[j]]
-        active = self.bipolar_y[:, :, j, 0] - self.passive_y[:, :, j, 0]
-        return np.einsum("sfc,sfc->sf", active, v)
-
     def removed(self, devices: Sequence[str]) -> Response:
         """The same circuit with whole devices taken out."""
         out = self
@@ -287,5 +274,4 @@ def small_signal(point: OperatingPoint, f_hz: FloatArray) -> Response:
         y_known=y_known,
         bipolar_y=y_b,
         diode_y=y_d,
-        passive_y=outer_admittance(point.plan.bipolars, bipolar.without_gm(g_b, transconductance(point)), c_b, f, 4),
     )

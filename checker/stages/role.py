@@ -31,7 +31,7 @@ def participation(scene: Scene, device: str) -> Part | None:
     best: Part | None = None
     if not np.isfinite(scene.response.bipolar_y[0, :, scene.devices.index(device)]).all():
         return None
-    passive = scene.response.without_gm(device)
+    passive = scene.without_gm(device)
     for path in scene.paths:
         without = passive.voltages(path.drive)[0, :, path.to.node]
         change = np.abs(1.0 - without / path.h)
@@ -43,7 +43,7 @@ def participation(scene: Scene, device: str) -> Part | None:
 
 def _share(scene: Scene, device: str, path: Path) -> NDArray[np.float64]:
     """|gm vbe| over the current that the output port's own impedance and load take from the driving point."""
-    current = np.abs(scene.response.controlled_current(device, path.solution)[0])
+    current = np.abs(scene.controlled_current(device, path.solution)[0])
     load = _load_admittance(scene, path)
     driven = np.abs(path.h) * load
     # Below the load's own current the share is meaningless (a port without a load): only change counts there.
@@ -64,6 +64,6 @@ def _reaches(scene: Scene, device: str, path: Path) -> NDArray[np.float64]:
     A current source's own current is no share of the load: what it injects must arrive at the port.
     """
     c, _, e = scene.nodes(device)
-    current = scene.response.controlled_current(device, path.solution)[0]
+    current = scene.controlled_current(device, path.solution)[0]
     z = scene.response.transfer(path.to.node, e)[0] - scene.response.transfer(path.to.node, c)[0]
     return (np.abs(current * z) > 0.1 * np.abs(path.h)).astype(float)

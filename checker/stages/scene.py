@@ -7,6 +7,7 @@ from numpy.typing import NDArray
 
 from checker.circuit.types import Circuit, Port
 from checker.shape import frozen
+from checker.solve.admittance import passive_admittance
 from checker.solve.operating import OperatingPoint
 from checker.solve.response import Drive, Response, port_drive
 
@@ -26,13 +27,26 @@ class Path:
 
 @frozen
 class Scene:
-    """`response` with S = 1; `paths` sorted by port names; `silent` (n_net,): nets at signal ground."""
+    """`response` with S = 1; `paths` sorted by port names; `silent` (n_net,): nets at signal ground; `passive_y`
+    (1, F, n, 4, 4): bipolars without gm."""
 
     circuit: Circuit
     point: OperatingPoint
     response: Response
     paths: tuple[Path, ...]
     silent: NDArray[np.bool_]
+    passive_y: ComplexArray
+
+    def without_gm(self, device: str) -> Response:
+        """The same circuit with one bipolar's controlled current taken out, everything else of it kept."""
+        return self.response.replaced(device, self.passive_y[:, :, self.devices.index(device)])
+
+    def controlled_current(self, device: str, solution: ComplexArray) -> ComplexArray:
+        """gm vbe of a bipolar in a solution, complex128 (S, F) [A], counted into the collector."""
+        j = self.devices.index(device)
+        v = solution[..., self.circuit.bipolars.nodes[j]]
+        active = self.response.bipolar_y[:, :, j, 0] - self.passive_y[:, :, j, 0]
+        return np.einsum("sfc,sfc->sf", active, v)
 
     @property
     def devices(self) -> tuple[str, ...]:
@@ -71,4 +85,5 @@ def make_scene(circuit: Circuit, point: OperatingPoint, response: Response, port
         response=response,
         paths=tuple(paths),
         silent=signal_grounds(circuit, response),
+        passive_y=passive_admittance(point, response.f_hz),
     )

@@ -21,7 +21,7 @@ class Ledger:
     def __init__(self, board: Board) -> None:
         self.board = board
         self.unavailable: dict[str, str] = {}
-        self.workings: list[WorkingLine] = []
+        self._lines: dict[tuple[str, str, str], WorkingLine] = {}
 
     def real(self, quantity: str, subject: str, *path: str) -> float | None:
         """A real figure at f0, nominal; None with its reason filed under `path` (last segment: the key)."""
@@ -32,6 +32,11 @@ class Ledger:
         """A complex figure at f0, nominal."""
         value = self._value(quantity, subject, path)
         return None if value is None else Complex.of(complex(value))
+
+    @property
+    def workings(self) -> tuple[WorkingLine, ...]:
+        """All workings so far, each once, in the order they were asked for."""
+        return tuple(self._lines.values())
 
     def missing(self, reason: str, *path: str) -> None:
         """File a reason."""
@@ -60,8 +65,7 @@ class Ledger:
             result=in_words(value, figure.unit),
             source=figure.working.source,
         )
-        if line not in self.workings:
-            self.workings.append(line)
+        self._lines.setdefault((line.subject, line.quantity, line.formula), line)
 
 
 def in_words(value: complex, unit: str) -> str:
