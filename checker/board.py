@@ -106,11 +106,14 @@ class Board:
         return self._bias_parts.get(stage, ())
 
     def resistors_at(self, stage: str, terminal: Terminal) -> tuple[str, ...]:
-        """Resistors on a terminal's net, sorted."""
+        """Resistors of the board on a terminal's net, sorted; none on ground or a supply, which all share."""
         row = self.circuit.bipolars.nodes[self.bench.stage(stage).index]
         node = int(row[("collector", "base", "emitter").index(terminal)])
+        if self.bench.point.plan.is_known[node]:
+            return ()
         r = self.circuit.resistors
-        return tuple(sorted(r.names[j] for j in np.flatnonzero((r.nodes == node).any(axis=1)).tolist()))
+        names = (r.names[j] for j in np.flatnonzero((r.nodes == node).any(axis=1)).tolist())
+        return tuple(sorted(name for name in names if name in self.circuit.parts))
 
     def port(self, name: str) -> Port:
         """The port of that name. Raises KeyError."""

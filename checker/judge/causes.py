@@ -1,8 +1,7 @@
 """Root causes: one fault sets off several rules, and the report should say which came first.
 
-A finding follows from another where both are about one stage, the table below says that such a thing can be
-its cause, and the cause is at least as certain as the effect. Of several causes the one that stands first
-in `PRIMACY` counts.
+A finding follows from another where both are about one stage, the tables below say that such a thing can be its cause,
+and the cause is more certain or stands earlier in `PRIMACY`. Of several causes the first by that order counts.
 """
 
 from __future__ import annotations
@@ -65,7 +64,7 @@ def causes(verdicts: Sequence[Verdict]) -> tuple[int | None, ...]:
 
 def _cause(effect: Verdict, verdicts: Sequence[Verdict]) -> int | None:
     possible = [index for index, each in enumerate(verdicts) if each is not effect and _follows(effect, each)]
-    return min(possible, key=lambda index: (PRIMACY.index(verdicts[index].rule.id), index), default=None)
+    return min(possible, key=lambda index: (_precedence(verdicts[index]), index), default=None)
 
 
 def _follows(effect: Verdict, cause: Verdict) -> bool:
@@ -74,7 +73,13 @@ def _follows(effect: Verdict, cause: Verdict) -> bool:
     at_one = cause.rule.id in CAUSES_AT_ONE_FREQUENCY.get(effect.rule.id, ()) and _same_frequency(effect, cause)
     if cause.rule.id not in _named(effect) and not at_one:
         return False
-    return cause.outcome == "violates" or effect.outcome == "may-violate"
+    return _precedence(cause) < _precedence(effect)
+
+
+def _precedence(verdict: Verdict) -> tuple[bool, int]:
+    """What is certain before what may be, then `PRIMACY`; a cause stands strictly before its effect, so no circles."""
+    place = PRIMACY.index(verdict.rule.id) if verdict.rule.id in PRIMACY else len(PRIMACY)
+    return verdict.outcome != "violates", place
 
 
 def _same_frequency(effect: Verdict, cause: Verdict) -> bool:

@@ -23,21 +23,25 @@ _STEPS = 10
 _PAIRED = 3
 """Levers, from the first, that are tried in pairs."""
 _FACTORS = (2.2, 4.7)
+_MADE = {"r_ohm": (1.0, 10e6), "c_f": (1e-12, 4.7e-3), "l_h": (1e-9, 1.0)}
+"""Values that are easily bought; nothing beyond is proposed."""
 
 Trial = tuple[Change, ...]
 
 
 def trials(circuit: Circuit, levers: Sequence[Lever], *, in_step: bool = False) -> tuple[Trial, ...]:
-    """Changes to try, at most `MOST`; levers on parts that the circuit does not hold as such are passed over.
+    """Changes to try, at most `MOST`; levers on parts that the circuit does not hold as such, or that stand
+    for what is outside the board, are passed over.
 
     `in_step`: all levers by one factor and nothing else.
     """
-    found = ((lever, drawn(circuit, lever.part, lever.property)) for lever in levers)
+    outside = {name for port in circuit.ports for name in port.load}
+    found = ((lever, drawn(circuit, lever.part, lever.property)) for lever in levers if lever.part not in outside)
     usable = [(lever, value) for lever, value in found if value is not None]
     if in_step:
         factors = (mantissa * decade for decade in (1.0, 10.0) for mantissa in mantissas("E12"))
         return tuple(dict.fromkeys(_together(usable, factors)))
-    singles = [(change,) for lever, value in usable[:_ALONE] for change in _single(lever, value)]
+    singles = [(change,) for lever, value in usable[:_ALONE] for change in _single(lever, value) if _is_made(change)]
     pairs = [pair for one, two in combinations(usable[:_PAIRED], 2) for pair in _together((one, two), _FACTORS)]
     return tuple(dict.fromkeys((*singles, *pairs)))[:MOST]
 
@@ -90,6 +94,11 @@ def size(trial: Trial, circuit: Circuit) -> float:
     return sum(abs(math.log(change.value / old)) for change, old in zip(trial, olds, strict=True) if old)
 
 
+def _is_made(change: Change) -> bool:
+    low, high = _MADE[change.property]
+    return low <= change.value <= high
+
+
 def _single(lever: Lever, value: float) -> Iterator[Change]:
     """Values around `value`, only on one side where the lever says so."""
     for up in (True, False):
@@ -113,7 +122,9 @@ def _together(parts: Sequence[tuple[Lever, float]], factors: Iterable[float]) ->
         for up in (True, False):
             if parts and factor > 1.0 and ways <= {"any", "up" if up else "down"}:
                 scale = factor if up else 1.0 / factor
-                yield tuple(_scaled(lever, value * scale) for lever, value in parts)
+                trial = tuple(_scaled(lever, value * scale) for lever, value in parts)
+                if all(map(_is_made, trial)):
+                    yield trial
 
 
 def _scaled(lever: Lever, value: float) -> Change:
