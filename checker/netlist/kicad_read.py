@@ -7,7 +7,7 @@ and in the library parts in version D.
 from __future__ import annotations
 
 from collections import Counter, defaultdict
-from collections.abc import Mapping, Sequence
+from collections.abc import Iterable, Mapping, Sequence
 from dataclasses import replace
 
 from checker.netlist.fitting import is_left_out
@@ -104,10 +104,7 @@ def _net_keys(names: Sequence[str], codes: Sequence[str]) -> list[str]:
     """The name where it is unique and not empty, else name and code; a count behind what is still not
     unique."""
     uses = Counter(names)
-    wanted = [
-        name if name and uses[name] == 1 else f"{name}#{code}"
-        for name, code in zip(names, codes, strict=True)
-    ]
+    wanted = [name if name and uses[name] == 1 else f"{name}#{code}" for name, code in zip(names, codes, strict=True)]
     taken = {key for key in wanted if uses[key] == 1}
     copies: Counter[str] = Counter()
     keys = []
@@ -155,12 +152,7 @@ def _part(tree: Tree, nodes: _Nodes, table: _PinTable, name: str, line: int) -> 
     fields = _fields(tree)
     value = text_of(tree, "value")
     letters = _LETTERS.match(ref)
-    pins = [
-        replace(pin, function=pin.function or known[pin.number][0], kind=pin.kind or known[pin.number][1])
-        if pin.number in known
-        else pin
-        for pin in nodes.pins.get(ref, ())
-    ]
+    pins = _named(nodes.pins.get(ref, {}), known)
     return Part(
         ref=ref,
         letter=letters.group().upper() if letters else "",
@@ -173,6 +165,21 @@ def _part(tree: Tree, nodes: _Nodes, table: _PinTable, name: str, line: int) -> 
         description=text_of(tree, "description") or text_of(source, "description"),
         do_not_fit=bool(child(tree, "dnp")) or is_left_out(value, fields),
     )
+
+
+def _named(pins: Iterable[Pin], known: Mapping[str, tuple[str, str]]) -> list[Pin]:
+    """Pins with name and type of the library where the node has none. Newer exports write `K_1` for pin 1 named `K`:
+    the number comes off where the library says so, or, without a library, where all pins of the part bear it."""
+    pins = list(pins)
+    numbered = all(pin.function.endswith(f"_{pin.number}") for pin in pins)
+    result = []
+    for pin in pins:
+        name, kind = known.get(pin.number, ("", ""))
+        function = pin.function or name
+        if function == f"{name}_{pin.number}" or (numbered and not name):
+            function = function.removesuffix(f"_{pin.number}")
+        result.append(replace(pin, function=function, kind=pin.kind or kind))
+    return result
 
 
 def _fields(tree: Tree) -> dict[str, str]:

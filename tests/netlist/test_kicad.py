@@ -232,6 +232,29 @@ def test_limits(read: Read) -> None:
         read(board("(comp (ref R1))" * 4), limits=ReadLimits(parts=3))
 
 
+@pytest.mark.parametrize(
+    ("library", "functions", "names"),
+    [
+        ("", ("K_1", "A_2"), ["K", "A"]),
+        ("", ("IO_1", "A"), ["IO_1", "A"]),
+        ("(pin (num 1) (name K) (type passive))", ("K_1", "A"), ["K", "A"]),
+        ("(pin (num 1) (name IO_1) (type passive))", ("IO_1", "A_2"), ["IO_1", "A"]),
+    ],
+)
+def test_pin_names_that_carry_their_number(
+    read: Read, library: str, functions: tuple[str, str], names: list[str]
+) -> None:
+    nodes = "".join(
+        f"(net (code {number}) (name N{number}) (node (ref D1) (pin {number}) (pinfunction {function})))"
+        for number, function in enumerate(functions, start=1)
+    )
+    libparts = f"(libparts (libpart (lib a) (part D) (pins {library})))"
+    netlist = read(
+        f"(export (version E) (components (comp (ref D1) (libsource (lib a) (part D)))) {libparts} (nets {nodes}))"
+    )
+    assert [pin.function for pin in netlist.parts[0].pins] == names
+
+
 def test_apostrophes_are_letters(read: Read) -> None:
     # Once a recursion without bound: the library nests a quoted form for each apostrophe.
     many = "'" * 5_000
