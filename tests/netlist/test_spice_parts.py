@@ -234,7 +234,7 @@ def test_devices_are_not_guessed_where_pads_are_listed(read: Read) -> None:
 def test_models(read: Read) -> None:
     netlist = read(
         "* models\n.model BC547B NPN(Is=7f Bf=400\n+ Vaf = 80 mjc:.33 mfg=ACME Ikf={2*40m})\n"
-        ".MODEL dd D\n.model big vdmos(pchan Vto=-2)\n.model j njf beta=1m beta=2m\n.end\n"
+        ".MODEL dd D\n.model big vdmos(pchan VT0=-2)\n.model j njf beta=1m beta=2m\n.end\n"
     )
     assert netlist.models["bc547b"].params == {
         "is": 7e-15,
