@@ -134,7 +134,9 @@ def _mended(
 
     out = []
     for k, (verdict, finding) in enumerate(pairs):
-        remedy = propose(verdict, board, rulebook.rules, limits, setup.board) if k in chosen else None
+        remedy = None
+        if k in chosen:
+            remedy = propose(verdict, board, rulebook.rules, limits, setup.board, setup.corners_with)
         out.append(finding if remedy is None else replace(finding, remedy=remedy))
     return tuple(out)
 

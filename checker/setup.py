@@ -9,9 +9,10 @@ import numpy as np
 from checker.board import Board
 from checker.circuit.build import build_circuit
 from checker.circuit.changes import state_scenarios, with_changes
-from checker.circuit.types import Circuit, Port, Scenario
+from checker.circuit.types import Change, Circuit, Port, Scenario
 from checker.intent.types import Intent
 from checker.measure.bench import Bench
+from checker.measure.single import one_scenario
 from checker.netlist.types import Netlist
 from checker.shape import frozen
 from checker.solve.operating import OperatingPoint, operating_point
@@ -58,6 +59,13 @@ class Setup:
         )
         order = {name: self.influence.order(name) for name in self.influence.devices}
         return Board(bench, self.intent, order)
+
+    def corners_with(self, changes: tuple[Change, ...]) -> tuple[Scenario, ...]:
+        """The corners that the board has with these changes made, which are not among theirs: which end of a tolerance
+        raises a current follows from the operating point, and may turn with it."""
+        both = with_changes(self.circuit, (self.scenarios[0], Scenario(name="changed", changes=changes)))
+        point = operating_point(one_scenario(both, 1), near=self.point, quick=True)
+        return corner_scenarios(point.circuit, self.intent.ambient, influence(point))[1:]
 
 
 def set_up(netlist: Netlist, intent: Intent) -> Setup:

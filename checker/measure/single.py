@@ -1,4 +1,4 @@
-"""The nominal scenario cut out of a stack."""
+"""One scenario cut out of a stack."""
 
 from __future__ import annotations
 
@@ -9,12 +9,18 @@ from checker.circuit.types import Branches, Circuit, Devices
 
 def nominal_circuit(circuit: Circuit) -> Circuit:
     """The circuit with scenario 0 alone."""
+    return one_scenario(circuit, 0)
+
+
+def one_scenario(circuit: Circuit, row: int) -> Circuit:
+    """The circuit with one scenario alone, which is then its nominal."""
+    cut = slice(row, row + 1)
 
     def branches(table: Branches) -> Branches:
-        return replace(table, value=table.value[:1])
+        return replace(table, value=table.value[cut])
 
     def devices(table: Devices) -> Devices:
-        return replace(table, params={name: value[:1] for name, value in table.params.items()})
+        return replace(table, params={name: value[cut] for name, value in table.params.items()})
 
     return replace(
         circuit,
@@ -23,9 +29,9 @@ def nominal_circuit(circuit: Circuit) -> Circuit:
         inductors=branches(circuit.inductors),
         voltages=branches(circuit.voltages),
         currents=branches(circuit.currents),
-        couplings=replace(circuit.couplings, k=circuit.couplings.k[:1]),
+        couplings=replace(circuit.couplings, k=circuit.couplings.k[cut]),
         bipolars=devices(circuit.bipolars),
         diodes=devices(circuit.diodes),
-        temperature_k=circuit.temperature_k[:1],
-        scenarios=circuit.scenarios[:1],
+        temperature_k=circuit.temperature_k[cut],
+        scenarios=circuit.scenarios[cut],
     )

@@ -16,36 +16,45 @@ Bools = NDArray[np.bool_]
 
 
 def cleared(examination: Examination, verdict: Verdict, base: int) -> Bools:
-    """bool (S,): scenarios without the finding and with nothing as heavy that scenario `base` has not."""
+    """bool (S,): scenarios without the finding, its goal met, and with nothing as heavy that scenario `base` has not.
+
+    Where the finding's own rule was not asked, it is not in the way.
+    """
     good = np.full(len(examination.scenarios), not examination.failures)
-    found = False
-    for each in examination.judged:
+    for each in _applying(examination):
         if is_finding(each, verdict):
-            found = True
             good &= ~_bad(each) & _goal_met(each)
-        elif each.evidence.check.applies and _as_heavy(each.rule.weight, verdict):
+        elif _as_heavy(each.rule.weight, verdict):
             good &= _bad(each)[base] | ~_bad(each)
-    return good & found
+    return good
 
 
 def lighter(examination: Examination, verdict: Verdict, count: int, start: int) -> int | None:
     """How many findings lighter than this one are new in the `count` scenarios from `start`, against the first `count`;
     None where the finding is still there or one of its weight is new."""
-    if examination.failures:
-        return None
-    scenarios, number, found = examination.scenarios[:count], 0, False
-    for each in (each for each in examination.judged if each.evidence.check.applies):
+    scenarios, number = examination.scenarios[:count], 0
+    for each in _applying(examination):
         asked = np.array([each.rule.always or scenario.kind != "state" for scenario in scenarios])
         before, after = _bad(each)[:count], _bad(each)[start : start + count] & asked
-        if is_finding(each, verdict):
-            found = True
-            if np.any(after):
-                return None
-        elif np.any(new := after & ~before):
+        new = after if is_finding(each, verdict) else after & ~before
+        if np.any(new):
             number += 1
-            if _as_heavy(_weight_of(new, each, scenarios), verdict):
+            if is_finding(each, verdict) or _as_heavy(_weight_of(new, each, scenarios), verdict):
                 return None
-    return number if found else None
+    return None if examination.failures else number
+
+
+def holds_in_corners(examination: Examination, verdict: Verdict, drawn: Examination, start: int) -> bool:
+    """Whether the scenarios from `start`, corners of the changed board, are free of the finding and of anything as
+    heavy that the `drawn` board has in no scenario."""
+    before = {_key(each) for each in drawn.judged if np.any(_bad(each))}
+    for each in _applying(examination):
+        if not np.any(_bad(each)[start:]):
+            continue
+        heavy = _as_heavy(severity("may-violate", each.rule.weight), verdict)
+        if is_finding(each, verdict) or (heavy and _key(each) not in before):
+            return False
+    return not examination.failures
 
 
 def is_finding(judged: Judged, verdict: Verdict) -> bool:
@@ -54,9 +63,13 @@ def is_finding(judged: Judged, verdict: Verdict) -> bool:
 
 
 def judged_at(examination: Examination, verdict: Verdict, scenario: int) -> bool:
-    """Whether the finding's own figure has a value there."""
-    own = (each for each in examination.judged if is_finding(each, verdict))
-    return all(not each.evidence.check.unknown[scenario] for each in own)
+    """Whether the finding's own figure is there and has a value in that scenario."""
+    own = [each for each in examination.judged if is_finding(each, verdict)]
+    return bool(own) and not any(each.evidence.check.unknown[scenario] for each in own)
+
+
+def _applying(examination: Examination) -> list[Judged]:
+    return [each for each in examination.judged if each.evidence.check.applies]
 
 
 def _key(owner: Verdict | Judged) -> tuple[str, ...]:

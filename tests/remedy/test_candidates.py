@@ -106,9 +106,9 @@ def test_a_tolerance_of_the_condition_applies_to_the_new_value() -> None:
         ),
         temperature_k=330.0,
     )
-    made = laid_over(condition, (Change(part="R1", property="r_ohm", value=10e3),), "trial", "sample")
+    made = laid_over(condition, (Change(part="R1", property="r_ohm", value=10e3),), "trial", "corner")
     assert made.temperature_k == 330.0
-    assert made.kind == "sample"
+    assert made.kind == "corner"
     assert set(made.changes) == {
         Change(part="R1", property="r_ohm", value=9.5e3),
         Change(part="R3", property="factor", value=1.05),
@@ -118,6 +118,6 @@ def test_a_tolerance_of_the_condition_applies_to_the_new_value() -> None:
 
 def test_one_scenario_a_trial_in_order() -> None:
     every = trials(CIRCUIT, CAPACITOR)
-    made = all_over(Scenario(name="nominal"), every, "candidate")
+    made = all_over(Scenario(name="nominal"), every)
     assert [scenario.changes for scenario in made] == list(every)
     assert {scenario.kind for scenario in made} == {"candidate"}

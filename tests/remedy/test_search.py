@@ -169,6 +169,15 @@ def test_a_goal_has_to_be_reached_besides() -> None:
     assert remedy.changes[0].to == pytest.approx(3.0e3)
 
 
+def test_the_corners_of_the_changed_board_count_too() -> None:
+    # Of the changed board a corner at half the capacitance: 1.965 uF / 0.5, so 3.9 uF fails and 4.7 uF holds.
+    half = Scenario(name="half", kind="corner", changes=(Change(part="C1", property="factor", value=0.5),))
+    verdict, here, limits = first([Loss()])
+    remedy = propose(verdict, here, [Loss()], limits, board, lambda _: (half,))
+    assert remedy is not None
+    assert remedy.changes[0].to == pytest.approx(4.7e-6)
+
+
 def test_no_lever_no_search() -> None:
     class Structure(Loss):
         """Nothing to turn."""
