@@ -40,7 +40,7 @@ def count_one(netlist: str) -> Counts:
 
     status: object = 0
     sys.argv = ["stageproof", "check", netlist]
-    with contextlib.redirect_stdout(io.StringIO()):
+    with contextlib.redirect_stdout(io.TextIOWrapper(io.BytesIO(), encoding="utf-8")):
         try:
             main()
         except SystemExit as stop:
