@@ -9,7 +9,7 @@ from checker.solve.operating import OperatingPoint, operating_point
 from checker.solve.poles import growing_poles
 from checker.solve.states import searched
 from tests.bench import Bench
-from tests.reference.boards import NPN, differential_pair, feedback_pair
+from tests.reference.boards import differential_pair, feedback_pair
 
 
 def _latch() -> Bench:
