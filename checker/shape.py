@@ -38,7 +38,7 @@ def _delattr(self: Any, name: str) -> None:
     raise FrozenInstanceError(f"cannot delete field {name!r} of {type(self).__name__}")
 
 
-def _eq(self: Any, other: object) -> Any:
+def _eq(self: Any, other: Any) -> Any:
     if other.__class__ is not self.__class__:
         return NotImplemented
     return all(getattr(self, name) == getattr(other, name) for name in self.__dataclass_fields__)

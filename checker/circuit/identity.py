@@ -31,9 +31,7 @@ _MODEL_KIND: Final[Mapping[str, CardKind]] = {
 _WORD: Final = lazy(r"NPN|PNP", re.IGNORECASE)
 _JIS: Final = lazy(r"Q?2S([ABCD])\d", re.IGNORECASE)
 """2SA and 2SB are PNP, 2SC and 2SD NPN (JIS C 7012, from memory)."""
-_PLACEHOLDER: Final = lazy(
-    r"[~?*]*|Q\??|D\??|NPN|PNP|LED|DIODE|ZENER|D_\w+|Q_\w+|BJT|TRANSISTOR\w*", re.IGNORECASE
-)
+_PLACEHOLDER: Final = lazy(r"[~?*]*|Q\??|D\??|NPN|PNP|LED|DIODE|ZENER|D_\w+|Q_\w+|BJT|TRANSISTOR\w*", re.IGNORECASE)
 _SPECIAL: Final = (
     ("darlington", "a model of the Darlington {ref}"),
     ("pre-?bias|digital transistor|built-in bias|bias resistor", "the base resistors of {ref}"),

@@ -19,9 +19,7 @@ _TAIL: Final = (
 )
 _NUMBER: Final = r"(?P<whole>\d{1,3})(?:V(?P<part>\d{1,2})|[.,](?P<point>\d{1,2})V(?:DC)?|V(?:DC)?)"
 _NAMED: Final = lazy(rf"(?P<sign>[+\-PN]|PLUS|MINUS)?V?{_NUMBER}{_TAIL}", re.IGNORECASE)
-_AFTER_WORD: Final = lazy(
-    rf"(?:V(?:CC|DD|BUS|BAT|IN)|[AD]V(?:CC|DD))[_-]?(?P<sign>\+?){_NUMBER}{_TAIL}", re.IGNORECASE
-)
+_AFTER_WORD: Final = lazy(rf"(?:V(?:CC|DD|BUS|BAT|IN)|[AD]V(?:CC|DD))[_-]?(?P<sign>\+?){_NUMBER}{_TAIL}", re.IGNORECASE)
 _BARE: Final = lazy(r"(?P<sign>[+-])(?P<whole>\d{1,3})" + _TAIL, re.IGNORECASE)
 _V33: Final = lazy(rf"V33{_TAIL}", re.IGNORECASE)
 _USUAL: Final = frozenset({5, 6, 8, 9, 10, 12, 13, 15, 18, 24, 28, 30, 36, 48})

@@ -76,7 +76,7 @@ def saturation_ratio(eg_ev: FloatArray, xti: FloatArray, t_k: FloatArray, tnom_k
 
 def critical_v(i_sat: FloatArray, n_vt: FloatArray) -> FloatArray:
     """Junction voltage [V] of largest curvature: n VT ln(n VT / (sqrt 2 IS))."""
-    return n_vt * np.log(n_vt / (np.sqrt(2.0) * np.maximum(i_sat, 1e-300)))
+    return np.asarray(n_vt * np.log(n_vt / (np.sqrt(2.0) * np.maximum(i_sat, 1e-300))))
 
 
 def limited(new: FloatArray, old: FloatArray, n_vt: FloatArray, crit: FloatArray) -> FloatArray:

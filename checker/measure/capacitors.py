@@ -47,7 +47,7 @@ def _holding(bench: Bench, outer: Outer) -> tuple[str, ...]:
     silent = _silent(bench)
     device = outer.entry[0]
     carried = {terminal_net(c, outer.entry), terminal_net(c, outer.exit)}
-    nets = {terminal_net(c, (device, t)) for t in ("collector", "base", "emitter")} - carried  # type: ignore[arg-type]
+    nets = {terminal_net(c, (device, t)) for t in ("collector", "base", "emitter")} - carried
     near = set(nets)
     for a, b in c.resistors.nodes.tolist():
         for here, there in ((a, b), (b, a)):

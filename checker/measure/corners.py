@@ -94,7 +94,7 @@ def _stage_corners(bench: Bench, ident: str, outer: Outer) -> tuple[float, float
     if key not in bench.kept:
 
         def magnitude(f: FloatArray) -> FloatArray:
-            return np.abs(transfer(bench, bench.nominal_response(f), outer)[0])
+            return np.asarray(np.abs(transfer(bench, bench.nominal_response(f), outer)[0]))
 
         band = bench.band_hz or (bench.f0_hz, bench.f0_hz)
         f_band = band_grid_hz(band) if bench.band_hz else np.array([bench.f0_hz])

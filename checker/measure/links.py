@@ -13,7 +13,7 @@ from checker.measure.bench import Bench
 from checker.shape import frozen
 from checker.solve.response import Drive, Response, port_drive
 from checker.stages.direction import TERMINALS
-from checker.stages.types import Link
+from checker.stages.types import Group, Link
 from checker.words import Terminal
 
 ComplexArray = NDArray[np.complex128]
@@ -35,16 +35,15 @@ class Outer:
 
 def outer_of(bench: Bench, ident: str, *, group: bool = False) -> Outer | str:
     """The outside of a stage or group, or the reason why it has none."""
-    if group:
-        item = bench.group(ident)
+    item = bench.group(ident) if group else bench.stage(ident)
+    if isinstance(item, Group):
         entry, leaving, devices = item.entry, item.exit, item.devices
     else:
-        stage = bench.stage(ident)
-        if stage.role != "signal":
+        if item.role != "signal":
             return f"not applicable: {ident} carries no signal"
-        entry = (stage.device, stage.entry) if stage.entry else None
-        leaving = (stage.device, stage.exit) if stage.exit else None
-        item, devices = stage, (stage.device,)
+        entry = (item.device, item.entry) if item.entry else None
+        leaving = (item.device, item.exit) if item.exit else None
+        devices = (item.device,)
     if entry is None or leaving is None:
         return f"not applicable: no signal path through {ident}"
     if item.input_link is None:
@@ -107,7 +106,7 @@ def load_current(bench: Bench, port: Port, solution: ComplexArray) -> ComplexArr
         return np.full(solution.shape[:2], np.nan, dtype=complex)
     r = bench.circuit.resistors
     y = sum(1.0 / r.value[:, r.names.index(name)] for name in port.load)
-    return solution[..., port.node] * np.asarray(y)[:, None]
+    return np.asarray(solution[..., port.node] * np.asarray(y)[:, None])
 
 
 def current_in(bench: Bench, response: Response, outer: Outer, solution: ComplexArray) -> ComplexArray:
@@ -127,7 +126,7 @@ def current_out(bench: Bench, response: Response, outer: Outer, solution: Comple
         return load_current(bench, bench.port(link.other), solution)
     if link.kind == "direct":
         assert link.terminal  # noqa: S101 - a direct link names the receiving terminal
-        return response.current(link.part, TERMINALS.index(link.terminal), solution)  # type: ignore[arg-type]
+        return response.current(link.part, TERMINALS.index(link.terminal), solution)
     return response.current(link.part, _end(response.circuit, link.part, link.stage_node), solution)
 
 
@@ -149,7 +148,7 @@ def cut_output(bench: Bench, response: Response, outer: Outer) -> Response:
             response = response.opened(name)
         return response
     if link.kind == "direct":
-        return response.opened(link.part, TERMINALS.index(link.terminal))  # type: ignore[arg-type]
+        return response.opened(link.part, TERMINALS.index(link.terminal))
     return response.opened(link.part)
 
 

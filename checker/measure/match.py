@@ -18,9 +18,7 @@ PERFECT_DB = 200.0
 
 def reflection(z_ohm: ComplexArray, reference_ohm: float) -> ComplexArray:
     """Reflection coefficient of impedances [ohm], any shape, against a real reference [ohm]."""
-    z = np.asarray(z_ohm, dtype=complex)
-    out: ComplexArray = (z - reference_ohm) / (z + reference_ohm)
-    return out
+    return np.asarray((z_ohm - reference_ohm) / (z_ohm + reference_ohm), dtype=complex)
 
 
 def return_loss_db(z_ohm: ComplexArray, reference_ohm: float) -> FloatArray:

@@ -149,7 +149,7 @@ def _port_corners(bench: Bench, subject: str) -> tuple[float, float]:
 
         def magnitude(f: FloatArray) -> FloatArray:
             v = bench.nominal_response(f).voltages(port_drive(source))[0]
-            return np.abs(v[:, to.node] if source.emf >= 0 else v[:, to.node] / v[:, source.node])
+            return np.asarray(np.abs(v[:, to.node] if source.emf >= 0 else v[:, to.node] / v[:, source.node]))
 
         inside = band_grid_hz(bench.band_hz) if bench.band_hz else np.array([bench.f0_hz])
         best = magnitude(inside)

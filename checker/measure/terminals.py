@@ -76,9 +76,9 @@ def terminal_output(bench: Bench, stage: str) -> Figure:
 
 @frozen
 class Around:
-    """What stands around a device at f0, nominal, in ohm, with the device out: at the `emitter`, at the `base` (upstream
-    source in place), at the base with the input link open too (`base_alone`), at the exit in place (`exit_loaded`) and
-    with the output link open (`exit_alone`); `load`: what the output link feeds."""
+    """What stands around a device at f0, nominal, in ohm, with the device out: at the `emitter`, at the `base`
+    (upstream source in place), at the base with the input link open too (`base_alone`), at the exit in place
+    (`exit_loaded`) and with the output link open (`exit_alone`); `load`: what the output link feeds."""
 
     emitter: float
     base: float
@@ -96,7 +96,7 @@ def around(bench: Bench, outer: Outer) -> Around:
     direct = outer.input_link.kind == "direct"
     alone_in = cut_input(response, outer).removed([device]) if not direct else out
     alone_out = cut_output(bench, response, outer).removed([device])
-    emitter, base = (terminal_net(bench.circuit, (device, t)) for t in ("emitter", "base"))  # type: ignore[arg-type]
+    emitter, base = (terminal_net(bench.circuit, (device, t)) for t in ("emitter", "base"))
     leaving = terminal_net(bench.circuit, outer.exit)
     s = response.solution(drive_of(bench, outer))
     with np.errstate(divide="ignore", invalid="ignore"):

@@ -7,7 +7,7 @@ and in the library parts in version D.
 from __future__ import annotations
 
 from collections import Counter, defaultdict
-from collections.abc import Mapping
+from collections.abc import Iterable, Mapping, Sequence
 from dataclasses import replace
 
 from checker.netlist.fitting import is_left_out
@@ -31,7 +31,7 @@ _PinTable = Mapping[tuple[str, str], Mapping[str, tuple[str, str]]]
 @frozen
 class _Nodes:
     nets: dict[str, Net]
-    pins: dict[str, list[Pin]]
+    pins: dict[str, dict[Pin, None]]
     lines: dict[str, int]
 
 
@@ -80,11 +80,12 @@ def _nodes(parsed: Parsed) -> _Nodes:
     codes = [text_of(tree, "code") or str(index) for index, tree in enumerate(trees, start=1)]
     names = [text_of(tree, "name") for tree in trees]
     nets: dict[str, Net] = {}
-    pins: dict[str, list[Pin]] = defaultdict(list)
+    pins: dict[str, dict[Pin, None]] = defaultdict(dict)
+    """Ordered sets: a node may stand twice in a file."""
     lines: dict[str, int] = {}
-    uses = Counter(names)
+    keys = _net_keys(names, codes)
     for index, tree in enumerate(trees):
-        key = _net_key(names[index], codes[index], uses, nets)
+        key = keys[index]
         nets[key] = Net(key=key, name=names[index])
         for node in children(tree, "node"):
             pin = Pin(
@@ -94,17 +95,27 @@ def _nodes(parsed: Parsed) -> _Nodes:
                 kind=text_of(node, "pintype"),
             )
             ref = text_of(node, "ref")
-            if pin not in pins[ref]:
-                pins[ref].append(pin)
+            pins[ref][pin] = None
             lines.setdefault(ref, parsed.lines["net"][index] if index < len(parsed.lines["net"]) else 0)
     return _Nodes(nets=nets, pins=pins, lines=lines)
 
 
-def _net_key(name: str, code: str, uses: Counter[str], taken: Mapping[str, Net]) -> str:
-    key = name if name and uses[name] == 1 and name not in taken else f"{name}#{code}"
-    while key in taken:
-        key += "#"
-    return key
+def _net_keys(names: Sequence[str], codes: Sequence[str]) -> list[str]:
+    """The name where it is unique and not empty, else name and code; a count behind what is still not
+    unique."""
+    uses = Counter(names)
+    wanted = [name if name and uses[name] == 1 else f"{name}#{code}" for name, code in zip(names, codes, strict=True)]
+    taken = {key for key in wanted if uses[key] == 1}
+    copies: Counter[str] = Counter()
+    keys = []
+    for name, key in zip(names, wanted, strict=True):
+        unique = key
+        while unique in taken and unique != name:
+            copies[key] += 1
+            unique = f"{key}#{copies[key]}"
+        taken.add(unique)
+        keys.append(unique)
+    return keys
 
 
 def _parts(parsed: Parsed, nodes: _Nodes, name: str, limits: ReadLimits) -> list[Part]:
@@ -141,12 +152,7 @@ def _part(tree: Tree, nodes: _Nodes, table: _PinTable, name: str, line: int) -> 
     fields = _fields(tree)
     value = text_of(tree, "value")
     letters = _LETTERS.match(ref)
-    pins = [
-        replace(pin, function=pin.function or known[pin.number][0], kind=pin.kind or known[pin.number][1])
-        if pin.number in known
-        else pin
-        for pin in nodes.pins.get(ref, ())
-    ]
+    pins = _named(nodes.pins.get(ref, {}), known)
     return Part(
         ref=ref,
         letter=letters.group().upper() if letters else "",
@@ -159,6 +165,21 @@ def _part(tree: Tree, nodes: _Nodes, table: _PinTable, name: str, line: int) -> 
         description=text_of(tree, "description") or text_of(source, "description"),
         do_not_fit=bool(child(tree, "dnp")) or is_left_out(value, fields),
     )
+
+
+def _named(pins: Iterable[Pin], known: Mapping[str, tuple[str, str]]) -> list[Pin]:
+    """Pins with name and type of the library where the node has none. Newer exports write `K_1` for pin 1 named `K`:
+    the number comes off where the library says so, or, without a library, where all pins of the part bear it."""
+    pins = list(pins)
+    numbered = all(pin.function.endswith(f"_{pin.number}") for pin in pins)
+    result = []
+    for pin in pins:
+        name, kind = known.get(pin.number, ("", ""))
+        function = pin.function or name
+        if function == f"{name}_{pin.number}" or (numbered and not name):
+            function = function.removesuffix(f"_{pin.number}")
+        result.append(replace(pin, function=function, kind=pin.kind or kind))
+    return result
 
 
 def _fields(tree: Tree) -> dict[str, str]:
@@ -192,19 +213,16 @@ def _told_apart(parts: list[Part], remarks: list[Remark]) -> list[Part]:
             result.append(part)
             continue
         seen[part.ref] += 1
-        ref = part.ref if seen[part.ref] == 1 else _free(part.ref, seen[part.ref], taken)
+        ref = part.ref
+        while seen[part.ref] > 1 and ref in taken:
+            ref = f"{part.ref}#{seen[part.ref]}"
+            seen[part.ref] += ref in taken
+        taken.add(ref)
         reason = f"{uses[part.ref]} parts bear the reference {part.ref}: their pins cannot be told apart"
         pins = part.pins if ref == part.ref else ()
         result.append(replace(part, ref=ref, pins=pins, unknown=reason))
         remarks.append(Remark(text=f"{reason}; this one is called {ref}", origin=part.origin, parts=(ref,)))
     return result
-
-
-def _free(ref: str, count: int, taken: set[str]) -> str:
-    while f"{ref}#{count}" in taken:
-        count += 1
-    taken.add(f"{ref}#{count}")
-    return f"{ref}#{count}"
 
 
 def _lost_nodes(parts: list[Part], nodes: _Nodes, name: str) -> list[Remark]:

@@ -5,9 +5,7 @@ from __future__ import annotations
 import hashlib
 from pathlib import Path
 
-from checker.netlist.kicad_read import read_kicad
 from checker.netlist.limits import ReadLimits
-from checker.netlist.spice_read import read_spice
 from checker.netlist.text import decode, display_name, read_bytes
 from checker.netlist.types import Netlist
 from checker.pattern import lazy
@@ -33,7 +31,10 @@ def read_netlist(path: Path, *, include_dirs: tuple[Path, ...] = (), limits: Rea
         raise InputTrouble("is empty; expected a netlist", file=name)
     sha256 = hashlib.sha256(data).hexdigest()
     start = text.lstrip()
+    # Only the reader in use is loaded: start-up time.
     if not _S_EXPRESSION.match(start):
+        from checker.netlist.spice_read import read_spice
+
         return read_spice(
             text,
             name=name,
@@ -49,4 +50,6 @@ def read_netlist(path: Path, *, include_dirs: tuple[Path, ...] = (), limits: Rea
             file=name,
             line=1,
         )
+    from checker.netlist.kicad_read import read_kicad
+
     return read_kicad(text, name=name, sha256=sha256, limits=limits)

@@ -20,8 +20,10 @@ from checker.trouble import InputTrouble
 Tree = list["Tree | str"]
 """A list whose first item is usually its tag."""
 
-_TOKEN = lazy(r'"[^"\\]*+(?:\\.[^"\\]*+)*+"|\(\s*(?:comp|net)(?=[\s()])|[()"]', re.DOTALL)
-_ATOM_END = lazy(r'[\s()"]')
+_TOKEN = lazy(r'"[^"\\]*+(?:\\.[^"\\]*+)*+"|\(\s*(?:comp|net)(?=[\s()])|[()"]', re.DOTALL | re.ASCII)
+_APOSTROPHE = "\0"
+# The library takes only ASCII blanks for blanks: where an atom ends must be where it goes on.
+_ATOM_END = lazy(r'[\s()"]', re.ASCII)
 
 
 @frozen
@@ -37,7 +39,9 @@ class _TextParser(sexpdata.Parser):  # type: ignore[misc]
     """The library's parser with bare atoms read as plain text up to the next blank, bracket or quote."""
 
     def __init__(self, text: str) -> None:
-        super().__init__(text, line_comment="\0")
+        # No line comments, and an apostrophe is a letter like any other: the library knows no switch for it, so
+        # another character, which no netlist may hold, takes its place until `_atom` puts it back.
+        super().__init__(text.replace("'", _APOSTROPHE), line_comment="")
         self.brackets = {"(": ")"}
         self.closing_brackets = {")"}
 
@@ -59,7 +63,7 @@ def parse(text: str, *, name: str, depth: int) -> Parsed:
     lines = _scan(text, name, depth)
     try:
         forest = _TextParser(text).parse()
-    except (sexpdata.ExpectNothing, sexpdata.ExpectSExp, sexpdata.ExpectClosingBracket, IndexError) as error:
+    except (sexpdata.ExpectNothing, sexpdata.ExpectClosingBracket, IndexError) as error:
         raise InputTrouble("is not a well-formed S-expression", file=name) from error
     root = next((tree for tree in forest if isinstance(tree, list)), None)
     if root is None:
@@ -116,6 +120,5 @@ def own_text(tree: Tree) -> str:
     return " ".join(atoms) if len(atoms) > 1 else atoms[0] if atoms else ""
 
 
-def _atom(item: object) -> str:
-    """An apostrophe in front of an atom is part of it, though the library sets it aside."""
-    return "'" + str(item[0]) if isinstance(item, tuple) else str(item)
+def _atom(item: str) -> str:
+    return item.replace(_APOSTROPHE, "'") if _APOSTROPHE in item else item

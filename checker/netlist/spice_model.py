@@ -10,6 +10,8 @@ from checker.pattern import lazy
 from checker.trouble import NotAQuantity
 
 _COLON = lazy(r"(?<=[A-Za-z0-9_])\s*:\s*(?=[\d.+-])")
+_ALIASES = {"vt0": "vto"}
+"""Spellings with a zero for the letter O, common in real libraries."""
 _NOTES = frozenset({"mfg", "manufacturer", "vendor", "type", "icrating", "vceo", "vds", "ron", "qg", "iave", "vpk"})
 """Parameters that describe the part and enter no equation; as text they are no loss."""
 
@@ -32,7 +34,7 @@ def read_model(card: Card, scope: Scope, name: str) -> tuple[Model, list[Remark]
     params: dict[str, float] = {}
     for key, text in words.named.items():
         try:
-            params[key] = scope.number(text)
+            params[_ALIASES.get(key, key)] = scope.number(text)
         except NotAQuantity as error:
             if key not in _NOTES:
                 remarks.append(card.remark(f"model {name[:40]}: {key[:20]} is passed over: {error}"))

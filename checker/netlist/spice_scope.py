@@ -19,6 +19,8 @@ class Scope:
     def __init__(self, texts: dict[str, str], *, outer: Scope | None, limits: ReadLimits) -> None:
         self._texts = texts
         self._values: dict[str, float] = {}
+        self._failed: dict[str, str] = {}
+        """Why a parameter does not compute, so that it is tried once however often it is used."""
         self._outer = outer
         self._limits = limits
         self._open: list[str] = []
@@ -39,6 +41,8 @@ class Scope:
         """Value of a parameter. Raises `NotAQuantity` where it is unknown, circular or does not compute."""
         if name in self._values:
             return self._values[name]
+        if name in self._failed:
+            raise NotAQuantity(self._failed[name])
         if name not in self._texts:
             if self._outer is None:
                 raise NotAQuantity(f"the parameter {name[:40]!r} is not defined")
@@ -51,6 +55,9 @@ class Scope:
         self._open.append(name)
         try:
             self._values[name] = self.number(self._texts[name], level + 1)
+        except NotAQuantity as error:
+            self._failed[name] = str(error)
+            raise
         finally:
             self._open.pop()
         return self._values[name]

@@ -43,4 +43,5 @@ class Figure:
     @property
     def nominal(self) -> complex | float:
         """The value of scenario 0 at the first frequency, as a Python number."""
-        return self.values[0, 0].item()
+        value: complex | float = self.values[0, 0].item()
+        return value

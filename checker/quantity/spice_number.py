@@ -31,6 +31,8 @@ _NUMBER = lazy(
     r"([+-]?)(\d+(?:[.,]\d*)?|[.,]\d+)(?:[ed]([+-]?\d{1,9}))?(meg|mil|[tgxkmunpfa])?([a-z%]*)(?:/[a-z]+)?",
     re.IGNORECASE,
 )
+_DECIMAL = lazy(r"[+-]?\d*\.?\d+(?:[eE][+-]?\d+)?", re.ASCII)
+"""What `float` reads as it stands: most numbers of a large file, on a short path."""
 _INFIX = lazy(r"([+-]?)(\d*)(meg|[tgxkmunpfr])(\d{1,3})([a-z%]*)", re.IGNORECASE)
 
 
@@ -41,6 +43,8 @@ def parse_spice_number(text: str) -> float:
     what is no number and for numbers that do not fit (`1e400`). The suffix rules are common practice, no
     source.
     """
+    if text[-1:].isdigit() and _DECIMAL.fullmatch(text):
+        return _finite(float(text), text)
     folded = plain(text)
     found = _NUMBER.fullmatch(folded)
     if found is not None:
@@ -54,6 +58,10 @@ def parse_spice_number(text: str) -> float:
             raise NotAQuantity(f"{text[:60]!r} is not a number")
         sign, whole, letter, part, _ = infix.groups()
         value = float(f"{sign}{whole or '0'}.{part}{_SUFFIXES[letter.lower()]}")
+    return _finite(value, text)
+
+
+def _finite(value: float, text: str) -> float:
     if not math.isfinite(value):
         raise NotAQuantity(f"{text[:60]!r} is too large to be a number")
     return value

@@ -2,10 +2,11 @@
 
 from __future__ import annotations
 
-from checker.record.base import Record, record
+from checker.record.base import Record
+from checker.shape import frozen
 
 
-@record
+@frozen
 class Complex(Record):
     """A complex number."""
 
@@ -20,7 +21,7 @@ class Complex(Record):
         return cls(re=float(value.real), im=float(value.imag))
 
 
-@record
+@frozen
 class Specs(Record):
     """What a stage or group does, loaded as it really is, from input to output reference, at `f0_hz`."""
 
@@ -54,7 +55,7 @@ class Specs(Record):
     """At f0, T0 = 290 K, from the declared source impedance."""
 
 
-@record
+@frozen
 class TerminalFigures(Record):
     """The same quantities at the device terminals: what the rule of thumb is compared with."""
 
@@ -66,7 +67,7 @@ class TerminalFigures(Record):
     """Looking back into the exit terminal."""
 
 
-@record
+@frozen
 class Thumb(Record):
     """A hand formula's figure beside the exact one."""
 
@@ -84,7 +85,7 @@ class Thumb(Record):
     """Why they differ, where they do."""
 
 
-@record
+@frozen
 class Span(Record):
     """The range of one figure over part spread and temperature."""
 

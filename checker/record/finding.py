@@ -4,12 +4,13 @@ from __future__ import annotations
 
 from typing import Literal
 
-from checker.record.base import Record, record
+from checker.record.base import Record
 from checker.record.stage import Location
+from checker.shape import frozen
 from checker.words import Outcome, Severity
 
 
-@record
+@frozen
 class Measured(Record):
     """The figure that the rule judged."""
 
@@ -21,7 +22,7 @@ class Measured(Record):
     """V, A, W, ohm, F, H, Hz, s, S, dB, degC and the like, % for percent, "" for a plain number."""
 
 
-@record
+@frozen
 class Bound(Record):
     """A limit with one end."""
 
@@ -35,7 +36,7 @@ class Bound(Record):
     """Where the limit comes from."""
 
 
-@record
+@frozen
 class Window(Record):
     """A limit with two ends."""
 
@@ -51,7 +52,7 @@ class Window(Record):
     """Where the limit comes from."""
 
 
-@record
+@frozen
 class Change(Record):
     """One altered part value."""
 
@@ -67,7 +68,7 @@ class Change(Record):
     """SI unit, or "" where the values are names."""
 
 
-@record
+@frozen
 class Effect(Record):
     """What a remedy does to one quantity."""
 
@@ -83,7 +84,7 @@ class Effect(Record):
     """The stage, port or part it belongs to."""
 
 
-@record
+@frozen
 class Remedy(Record):
     """A change that was tried and clears the finding without raising a new one of its weight."""
 
@@ -95,7 +96,7 @@ class Remedy(Record):
     """Names of the scenarios that it was tried over."""
 
 
-@record
+@frozen
 class Finding(Record):
     """One thing that a rule found."""
 
@@ -133,7 +134,7 @@ class Finding(Record):
     """A verified change; null where none is proposed."""
 
 
-@record
+@frozen
 class Accepted(Record):
     """A finding that the team lives with, as the intent file says."""
 
@@ -147,7 +148,7 @@ class Accepted(Record):
     """Last day of the acceptance, YYYY-MM-DD; null without end."""
 
 
-@record
+@frozen
 class Unchecked(Record):
     """A rule that could not be judged, or a stage that could not be solved. Never counts as clean."""
 

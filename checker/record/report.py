@@ -6,16 +6,17 @@ from collections.abc import Mapping
 from dataclasses import field
 from typing import Literal
 
-from checker.record.base import Record, record
+from checker.record.base import Record
 from checker.record.figures import Complex
 from checker.record.finding import Accepted, Finding, Unchecked
 from checker.record.stage import Group, Stage
+from checker.shape import frozen
 from checker.words import Format, PortRole, Search
 
 SCHEMA: Literal["stageproof-report/1"] = "stageproof-report/1"
 
 
-@record
+@frozen
 class Tool(Record):
     """The program that wrote the report."""
 
@@ -23,7 +24,7 @@ class Tool(Record):
     """Version of Stageproof."""
 
 
-@record
+@frozen
 class SourceFile(Record):
     """The netlist that was read."""
 
@@ -35,7 +36,7 @@ class SourceFile(Record):
     """Of the bytes read."""
 
 
-@record
+@frozen
 class Conditions(Record):
     """Under what the figures hold."""
 
@@ -51,7 +52,7 @@ class Conditions(Record):
     """Path of the intent file; null without one."""
 
 
-@record
+@frozen
 class Checked(Record):
     """How much of the board could be judged."""
 
@@ -61,7 +62,7 @@ class Checked(Record):
     """Stages there are."""
 
 
-@record
+@frozen
 class Rail(Record):
     """A net of known voltage."""
 
@@ -73,7 +74,7 @@ class Rail(Record):
     """How it is known."""
 
 
-@record
+@frozen
 class NetFigures(Record):
     """What is known of a net."""
 
@@ -81,7 +82,7 @@ class NetFigures(Record):
     """Voltage at rest."""
 
 
-@record
+@frozen
 class Certificate(Record):
     """The proof that goes with an operating point."""
 
@@ -101,7 +102,7 @@ class Certificate(Record):
     """Whether every on/off seed was tried."""
 
 
-@record
+@frozen
 class Island(Record):
     """Nets joined by parts that carry direct current."""
 
@@ -111,7 +112,7 @@ class Island(Record):
     """Null where there is no operating point."""
 
 
-@record
+@frozen
 class Port(Record):
     """Where signal enters or leaves the board."""
 
@@ -135,7 +136,7 @@ class Port(Record):
     """At f0 against the reference."""
 
 
-@record
+@frozen
 class Gain(Record):
     """From an input port to an output port."""
 
@@ -157,7 +158,7 @@ class Gain(Record):
     """Of the e.m.f. gain."""
 
 
-@record
+@frozen
 class Report(Record):
     """Everything that one check of one netlist has to say."""
 
@@ -205,7 +206,7 @@ class Report(Record):
     and to as two segments."""
 
 
-@record
+@frozen
 class WorkingLine(Record):
     """How one figure was got; not part of the report, shown by `stageproof why`."""
 

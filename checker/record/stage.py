@@ -6,15 +6,16 @@ from collections.abc import Mapping
 from dataclasses import field
 from typing import Literal
 
-from checker.record.base import Record, record
+from checker.record.base import Record
 from checker.record.figures import Span, Specs, TerminalFigures, Thumb
+from checker.shape import frozen
 from checker.words import Configuration, GroupLabel, Role
 
 Side = Literal["input", "output"]
 LinkKind = Literal["capacitor", "winding", "direct", "port"]
 
 
-@record
+@frozen
 class Location(Record):
     """Where a part stands in the source."""
 
@@ -26,7 +27,7 @@ class Location(Record):
     """Sheet path in a hierarchical schematic."""
 
 
-@record
+@frozen
 class Connection(Record):
     """A device terminal and the net it is on."""
 
@@ -38,7 +39,7 @@ class Connection(Record):
     """Of a group: the member whose terminal it is."""
 
 
-@record
+@frozen
 class StageLink(Record):
     """What carries the signal across the stage's boundary."""
 
@@ -56,7 +57,7 @@ class StageLink(Record):
     """Id of the stage, or name of the port, at the far end."""
 
 
-@record
+@frozen
 class CardUsed(Record):
     """The data that stood for the device."""
 
@@ -68,7 +69,7 @@ class CardUsed(Record):
     """True where a generic card stood in for an unknown part."""
 
 
-@record
+@frozen
 class Bias(Record):
     """Operating point of a bipolar transistor at nominal temperature. P devices are multiplied by -1."""
 
@@ -90,7 +91,7 @@ class Bias(Record):
     """Junction temperature with self-heating, degrees Celsius."""
 
 
-@record
+@frozen
 class FetBias(Record):
     """Operating point of a field-effect transistor at nominal temperature. P devices are multiplied by -1."""
 
@@ -114,7 +115,7 @@ class FetBias(Record):
     """Drain and source are swapped at rest."""
 
 
-@record
+@frozen
 class SmallSignal(Record):
     """Intrinsic small-signal parameters at the operating point."""
 
@@ -130,7 +131,7 @@ class SmallSignal(Record):
     """gm / 2 pi (Cpi + Cmu), junction charge included."""
 
 
-@record
+@frozen
 class Stage(Record):
     """One device and what surrounds it. `id` is its reference ("Q1", a dual's unit "Q1.A", "X1.Q3")."""
 
@@ -178,7 +179,7 @@ class Stage(Record):
     """Why it was recognised as it was, in words and numbers."""
 
 
-@record
+@frozen
 class Group(Record):
     """Several devices that act as one. `id`: device ids joined by "+", sorted."""
 

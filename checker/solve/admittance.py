@@ -10,6 +10,7 @@ import numpy as np
 from numpy.typing import NDArray
 
 from checker.devices import bipolar, diode
+from checker.solve.frequencies import angular
 from checker.solve.operating import OperatingPoint
 from checker.solve.plan import Placed
 
@@ -58,7 +59,7 @@ def passive_admittance(point: OperatingPoint, f_hz: FloatArray) -> ComplexArray:
 
 def outer_admittance(placed: Placed, g: FloatArray, c: FloatArray, f_hz: FloatArray, outer: int) -> ComplexArray:
     """Y of each device at its `outer` first terminals, complex128 (S, F, n, outer, outer) [S]."""
-    y = g[:, None] + 2j * np.pi * f_hz[None, :, None, None, None] * c[:, None]
+    y = g[:, None] + angular(f_hz)[None, :, None, None, None] * c[:, None]
     k = placed.nodes.shape[1]
     pairs = bipolar.INNER if k == bipolar.TERMINALS else diode.INNER
     for _, out, inside in pairs:

@@ -111,7 +111,7 @@ def newton_step(assembler: Assembler, f: FloatArray, flat: FloatArray) -> FloatA
 def _solve_stack(a: FloatArray, b: FloatArray) -> FloatArray:
     """Stacked solve; a singular member is replaced by its least-squares step, the others are unharmed."""
     try:
-        return np.linalg.solve(a, b)
+        return np.asarray(np.linalg.solve(a, b), dtype=float)
     except np.linalg.LinAlgError:
         out = np.zeros_like(b)
         for where in np.ndindex(a.shape[:-2]):
@@ -151,7 +151,7 @@ def _unlimited(assembler: Assembler, wanted: Junctions, held: Junctions, before:
     ):
         far = (new != kept) | (np.abs(new - old) > 1e-7 + 1e-7 * np.abs(new))
         moved.append(far.any(axis=-1).astype(float))
-    return assembler.by_island.largest(np.concatenate(moved, axis=1)) == 0.0
+    return np.asarray(assembler.by_island.largest(np.concatenate(moved, axis=1)) == 0.0)
 
 
 @frozen

@@ -43,7 +43,8 @@ class OperatingPoint:
 
     `bipolar`: ic_a, ib_a, ie_a (into the terminal, signs as they flow), vbe_v, vce_v, vbc_v at the outer terminals
     times the polarity, power_w; each (S, n). `diode`: i_a, v_v, power_w. `bipolar_k`, `diode_k`: temperatures used.
-    `refused`: island -> why its solution is not printed though it balances. `kept`: what later steps derive from the point once (pencils, numbering).
+    `refused`: island -> why its solution is not printed though it balances.
+    `kept`: what later steps derive from the point once (pencils, numbering).
     """
 
     circuit: Circuit
@@ -79,8 +80,10 @@ def operating_point(
     quick: bool = False,
     refuse: Mapping[int, str] | None = None,
 ) -> OperatingPoint:
-    """Solve and certify. `near`: a solution of the same topology to start from (scenario by scenario where both have as many, else from its scenario 0).
+    """Solve and certify.
 
+    `near`: a solution of the same topology to start from, scenario by scenario where both have as many, else from its
+    scenario 0.
     `rise_k`: junction temperature rise over ambient of bipolars and diodes, each (S, n) [K]. `x0` (S, U): start there.
     `quick`: give up early on what does not converge, for trials. `refuse`: islands (by place in the plan) that are no
     rest, with the reason; those that `near` refuses stay refused.
@@ -139,7 +142,7 @@ def _collect(
             )
             continue
         ok = solved.done[:, index] & (solved.kcl[:, index] <= KCL_REL) & agreed & (index not in refused)
-        v[np.ix_(~ok, list(island.nodes))] = np.nan
+        v[np.ix_(~ok, np.array(island.nodes))] = np.nan
         islands.append(
             Island(
                 nets=nets,

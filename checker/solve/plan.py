@@ -171,7 +171,9 @@ def _islands(
     left: list[int],
     n: int,
 ) -> tuple[list[IslandPlan], tuple[int, ...]]:
-    sets, anchored, touched = Sets(n), set(), set()
+    sets = Sets(n)
+    anchored: set[int] = set()
+    touched: set[int] = set()
     for a, b in pairs:
         touched.update((a, b))
         if not is_known[a] and not is_known[b]:

@@ -18,6 +18,7 @@ from checker.circuit.types import Branches, Circuit, Port
 from checker.shape import frozen
 from checker.solve.admittance import device_pencils, outer_admittance
 from checker.solve.counters import COUNTERS
+from checker.solve.frequencies import angular
 from checker.solve.operating import OperatingPoint
 from checker.solve.system import signal_system
 from checker.solve.update import updated
@@ -106,7 +107,7 @@ class Response:
     def block(self, part: str) -> Block:
         """Admittance block of a resistor, capacitor, diode or bipolar. Raises KeyError for another part."""
         c = self.circuit
-        s = 2j * np.pi * self.f_hz
+        s = angular(self.f_hz)
         for table, y_of in ((c.resistors, self._y_r), (c.capacitors, self._y_c)):
             if part in table.names:
                 j = table.names.index(part)
@@ -133,7 +134,7 @@ class Response:
             return sign * solution[..., len(self.row) + row]
         block = self.block(part)
         v = solution[..., list(block.nodes)]
-        return np.einsum("sfc,sfc->sf", block.y[..., terminal, :], v)
+        return np.asarray(np.einsum("sfc,sfc->sf", block.y[..., terminal, :], v))
 
     # --- changes -----------------------------------------------------------------------------------------
     def removed(self, devices: Sequence[str]) -> Response:

@@ -11,6 +11,7 @@ from numpy.typing import NDArray
 
 from checker.circuit.types import Branches, Circuit
 from checker.shape import frozen
+from checker.solve.frequencies import angular
 from checker.solve.operating import OperatingPoint
 from checker.solve.plan import Sets
 
@@ -37,7 +38,7 @@ class SignalSystem:
     def matrices(self, f_hz: FloatArray, y_b: ComplexArray, y_d: ComplexArray) -> tuple[ComplexArray, ComplexArray]:
         """System matrix (S, F, u, u) and its coupling from nets (S, F, u, n_net)."""
         c = self.circuit
-        s = 2j * np.pi * f_hz
+        s = angular(f_hz)
         shape = (c.size, len(f_hz))
         n_net = len(c.nets)
         full = np.zeros((*shape, self.size, self.size + n_net), dtype=complex)
@@ -54,8 +55,8 @@ class SignalSystem:
         c = self.circuit
         out: list[tuple[int, int, ComplexArray]] = []
         for table, y in (
-            (c.resistors, np.repeat(1.0 / c.resistors.value[:, None], len(s), axis=1) + 0j),
-            (c.capacitors, c.capacitors.value[:, None] * s[None, :, None]),
+            (c.resistors, np.repeat(1.0 / c.resistors.value[:, None], len(s), axis=1).astype(complex)),
+            (c.capacitors, np.asarray(c.capacitors.value[:, None] * s[None, :, None])),
         ):
             for j, (a, b) in enumerate(table.nodes.tolist()):
                 for row, column, sign in ((a, a, 1), (b, b, 1), (a, b, -1), (b, a, -1)):
@@ -113,7 +114,7 @@ class SignalSystem:
 
 def _inverse(a: ComplexArray) -> ComplexArray:
     try:
-        return np.linalg.inv(a)
+        return np.asarray(np.linalg.inv(a), dtype=complex)
     except np.linalg.LinAlgError:
         out = np.full_like(a, np.nan)
         for where in np.ndindex(a.shape[:-2]):

@@ -49,8 +49,8 @@ def _back(small: ComplexArray, terms: FloatArray) -> tuple[ComplexArray, NDArray
     Loss: the largest term that was summed into the matrix, times the size (1-norm) of its inverse.
     """
     identity = np.eye(small.shape[-1])
-    known = np.isfinite(small).all(axis=(-1, -2))
-    singular = known & (np.linalg.det(np.where(known[..., None, None], small, identity)) == 0.0)
+    known = np.asarray(np.isfinite(small).all(axis=(-1, -2)))
+    singular = np.asarray(known & (np.linalg.det(np.where(known[..., None, None], small, identity)) == 0.0))
     back = np.linalg.inv(np.where((known & ~singular)[..., None, None], small, identity))
     size = np.maximum(1.0, np.where(known, terms.max(axis=(-1, -2)), 0.0))
     weak = singular | (known & ~(size * np.abs(back).sum(axis=-2).max(axis=-1) <= LARGEST_LOSS))

@@ -55,14 +55,15 @@ def entry_weights(scene: Scene, device: str, path: Path) -> NDArray[np.float64]:
     y = scene.response.bipolar_y[0, :, scene.devices.index(device), :3, :3]
     back = np.linalg.inv(np.eye(3) + z @ y)
     vbe = (back[:, 1, :] - back[:, 2, :]) * v0
-    return np.abs(vbe.T)
+    return np.asarray(np.abs(vbe.T), dtype=float)
 
 
 def exit_weights(scene: Scene, device: str, path: Path) -> NDArray[np.float64]:
     """|v| at the output port for 1 A injected at the collector, and at the emitter: float64 (2, F)."""
     c, _, e = scene.nodes(device)
     out = scene.response.removed([device])
-    return np.abs(np.stack([out.transfer(path.to.node, c)[0], out.transfer(path.to.node, e)[0]]))
+    at_port = np.stack([out.transfer(path.to.node, c)[0], out.transfer(path.to.node, e)[0]])
+    return np.asarray(np.abs(at_port), dtype=float)
 
 
 def _margin(a: float, b: float) -> float:

@@ -66,4 +66,4 @@ def _reaches(scene: Scene, device: str, path: Path) -> NDArray[np.float64]:
     c, _, e = scene.nodes(device)
     current = scene.controlled_current(device, path.solution)[0]
     z = scene.response.transfer(path.to.node, e)[0] - scene.response.transfer(path.to.node, c)[0]
-    return (np.abs(current * z) > 0.1 * np.abs(path.h)).astype(float)
+    return np.asarray(np.abs(current * z) > 0.1 * np.abs(path.h), dtype=float)

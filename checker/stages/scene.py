@@ -46,7 +46,7 @@ class Scene:
         j = self.devices.index(device)
         v = solution[..., self.circuit.bipolars.nodes[j]]
         active = self.response.bipolar_y[:, :, j, 0] - self.passive_y[:, :, j, 0]
-        return np.einsum("sfc,sfc->sf", active, v)
+        return np.asarray(np.einsum("sfc,sfc->sf", active, v))
 
     @property
     def devices(self) -> tuple[str, ...]:

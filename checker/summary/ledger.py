@@ -23,12 +23,12 @@ class Ledger:
         self.unavailable: dict[str, str] = {}
         self._lines: dict[tuple[str, str, str], WorkingLine] = {}
 
-    def real(self, quantity: str, subject: str, *path: str) -> float | None:
+    def real_at(self, quantity: str, subject: str, *path: str) -> float | None:
         """A real figure at f0, nominal; None with its reason filed under `path` (last segment: the key)."""
         value = self._value(quantity, subject, path)
         return None if value is None else float(value.real)
 
-    def complex(self, quantity: str, subject: str, *path: str) -> Complex | None:
+    def complex_at(self, quantity: str, subject: str, *path: str) -> Complex | None:
         """A complex figure at f0, nominal."""
         value = self._value(quantity, subject, path)
         return None if value is None else Complex.of(complex(value))

@@ -3,12 +3,14 @@
 from __future__ import annotations
 
 import math
+from typing import Literal
 
 from checker.circuit.types import PartFact
 from checker.quantity.figure import Figure
 from checker.record import (
     Bias,
     CardUsed,
+    Complex,
     Connection,
     Group,
     Location,
@@ -78,18 +80,7 @@ def _stage(setup: Setup, ledger: Ledger, stage: found.Stage) -> Stage:
         exit=_connection(setup, stage.device, stage.exit),
         input_ref=nets[stage.input_link.stage_node] if stage.input_link else None,
         output_ref=nets[stage.output_link.stage_node] if stage.output_link else None,
-        links=tuple(
-            StageLink(
-                side=side,
-                kind=link.kind,
-                part=link.part or None,
-                net=nets[link.stage_node],
-                far_net=nets[link.far_node],
-                other=link.other or None,
-            )
-            for side, link in (("input", stage.input_link), ("output", stage.output_link))
-            if link is not None
-        ),
+        links=_link(setup, "input", stage.input_link) + _link(setup, "output", stage.output_link),
         location=_location(fact),
         card=_card(fact),
         bias=_bias(setup, ledger, stage),
@@ -98,6 +89,22 @@ def _stage(setup: Setup, ledger: Ledger, stage: found.Stage) -> Stage:
         terminal=_terminal(ledger, stage.id),
         rule_of_thumb=_thumbs(ledger, stage),
         evidence=stage.evidence,
+    )
+
+
+def _link(setup: Setup, side: Literal["input", "output"], link: found.Link | None) -> tuple[StageLink, ...]:
+    if link is None:
+        return ()
+    nets = setup.circuit.nets
+    return (
+        StageLink(
+            side=side,
+            kind=link.kind,
+            part=link.part or None,
+            net=nets[link.stage_node],
+            far_net=nets[link.far_node],
+            other=link.other or None,
+        ),
     )
 
 
@@ -125,7 +132,7 @@ def _bias(setup: Setup, ledger: Ledger, stage: found.Stage) -> Bias | None:
 
 def _own_bias(ledger: Ledger, stage: found.Stage) -> Bias:
     keys = ("ic_a", "ib_a", "vce_v", "vbe_v", "headroom_v", "power_w", "tj_c")
-    values = {key: ledger.real(key, stage.id, "stages", stage.id, "bias", key) for key in keys}
+    values = {key: ledger.real_at(key, stage.id, "stages", stage.id, "bias", key) for key in keys}
     polarity = _sign(ledger, stage)
     for key in ("ic_a", "ib_a"):
         current = values[key]
@@ -139,36 +146,38 @@ def _sign(ledger: Ledger, stage: found.Stage) -> float:
 
 def _small(ledger: Ledger, stage: found.Stage) -> SmallSignal:
     keys = ("gm_s", "re_ohm", "rpi_ohm", "ro_ohm", "ft_hz")
-    return SmallSignal(**{key: ledger.real(key, stage.id, "stages", stage.id, "small_signal", key) for key in keys})
+    return SmallSignal(**{key: ledger.real_at(key, stage.id, "stages", stage.id, "small_signal", key) for key in keys})
 
 
 def _specs(ledger: Ledger, kind: str, subject: str) -> Specs:
     path = (kind, subject, "specs")
     for key in ("clip_up_v", "clip_down_v", "swing_vpp", "noise_figure_db"):
         ledger.missing(LATER, *path, key)
+
+    def real(key: str) -> float | None:
+        return ledger.real_at(key, subject, *path, key)
+
+    def both(key: str) -> Complex | None:
+        return ledger.complex_at(key, subject, *path, key)
+
     return Specs(
-        **{
-            key: ledger.complex(key, subject, *path, key)
-            for key in ("voltage_gain", "current_gain", "input_impedance_ohm", "output_impedance_ohm")
-        },
-        **{
-            key: ledger.real(key, subject, *path, key)
-            for key in (
-                "voltage_gain_db",
-                "power_gain_db",
-                "low_corner_hz",
-                "high_corner_hz",
-                "droop_low_db",
-                "droop_high_db",
-            )
-        },
+        voltage_gain=both("voltage_gain"),
+        voltage_gain_db=real("voltage_gain_db"),
+        current_gain=both("current_gain"),
+        power_gain_db=real("power_gain_db"),
+        input_impedance_ohm=both("input_impedance_ohm"),
+        output_impedance_ohm=both("output_impedance_ohm"),
+        low_corner_hz=real("low_corner_hz"),
+        high_corner_hz=real("high_corner_hz"),
+        droop_low_db=real("droop_low_db"),
+        droop_high_db=real("droop_high_db"),
     )
 
 
 def _terminal(ledger: Ledger, subject: str) -> TerminalFigures:
     return TerminalFigures(
         **{
-            key: ledger.complex(f"terminal_{key}", subject, "stages", subject, "terminal", key)
+            key: ledger.complex_at(f"terminal_{key}", subject, "stages", subject, "terminal", key)
             for key in ("voltage_gain", "input_impedance_ohm", "output_impedance_ohm")
         }
     )

@@ -90,7 +90,7 @@ def _port(ledger: Ledger, name: str) -> Port:
         net=port.net,
         role=port.role,
         reference_ohm=port.reference_ohm,
-        impedance_ohm=ledger.complex("impedance_ohm", name, *path, "impedance_ohm"),
+        impedance_ohm=ledger.complex_at("impedance_ohm", name, *path, "impedance_ohm"),
         return_loss_db=_middle(ledger, "return_loss_db", name, path),
         return_loss_worst_db=worst,
         return_loss_worst_hz=worst_hz,
@@ -135,10 +135,10 @@ def gains(setup: Setup, ledger: Ledger) -> tuple[Gain, ...]:
     for source, to in setup.recognition.paths:
         subject, path = gain_subject(source, to), ("gains", source, to)
         reals = {
-            key: ledger.real(key, subject, *path, key)
+            key: ledger.real_at(key, subject, *path, key)
             for key in ("voltage_gain_db", "emf_gain_db", "transducer_gain_db", "low_corner_hz", "high_corner_hz")
         }
-        gain = ledger.complex("voltage_gain", subject, *path, "voltage_gain")
+        gain = ledger.complex_at("voltage_gain", subject, *path, "voltage_gain")
         out.append(Gain(from_=source, to=to, voltage_gain=gain, **reals))
     return tuple(out)
 

@@ -45,7 +45,7 @@ def test_intent(pipeline: Pipeline, board: Board, call: Call, tmp_path: Path) ->
 def test_rules(call: Call, monkeypatch: pytest.MonkeyPatch) -> None:
     module = ModuleType("checker.judge.discover")
     rule = SimpleNamespace(id="a-rule", summary="Sums up.", theme="bias", weight="note", bench="", source="", limits=())
-    module.load_rules = lambda: (rule,)  # type: ignore[attr-defined]
+    module.load_rules = lambda: SimpleNamespace(rules=(rule,))  # type: ignore[attr-defined]
     monkeypatch.setitem(sys.modules, "checker.judge.discover", module)
     assert call("rules").out == "Bias\n  a-rule  (note)\n    Sums up.\n"
 

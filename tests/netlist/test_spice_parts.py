@@ -226,9 +226,7 @@ def test_net_names_with_brackets_and_braces(read: Read) -> None:
 
 
 def test_devices_are_not_guessed_where_pads_are_listed(read: Read) -> None:
-    deck = (
-        "* p\nU1 a b c d OPA2134\nQ1 a b c BC850\nQ2 a b c mine\nR1 a b 1k\nD1 a b 1N4148\n.model mine npn\n"
-    )
+    deck = "* p\nU1 a b c d OPA2134\nQ1 a b c BC850\nQ2 a b c mine\nR1 a b 1k\nD1 a b 1N4148\n.model mine npn\n"
     unknown = {part.ref: bool(part.unknown) for part in read(deck).parts}
     assert unknown == {"U1": True, "Q1": True, "Q2": False, "R1": False, "D1": True}
 
@@ -236,7 +234,7 @@ def test_devices_are_not_guessed_where_pads_are_listed(read: Read) -> None:
 def test_models(read: Read) -> None:
     netlist = read(
         "* models\n.model BC547B NPN(Is=7f Bf=400\n+ Vaf = 80 mjc:.33 mfg=ACME Ikf={2*40m})\n"
-        ".MODEL dd D\n.model big vdmos(pchan Vto=-2)\n.model j njf beta=1m beta=2m\n.end\n"
+        ".MODEL dd D\n.model big vdmos(pchan VT0=-2)\n.model j njf beta=1m beta=2m\n.end\n"
     )
     assert netlist.models["bc547b"].params == {
         "is": 7e-15,
@@ -267,9 +265,7 @@ def test_temperature(read: Read, card: str, temperature_c: float | None) -> None
 
 
 def test_analyses_are_passed_over_in_silence_and_control_blocks_with_a_remark(read: Read) -> None:
-    quiet = "".join(
-        f".{word} x y\n" for word in ("tran", "ac", "dc", "probe", "print", "backanno", "meas", "option")
-    )
+    quiet = "".join(f".{word} x y\n" for word in ("tran", "ac", "dc", "probe", "print", "backanno", "meas", "option"))
     netlist = read(f"* q\nR1 a 0 1k\n{quiet}.control\nrun\nplot v(a)\nR9 a b 5\n.endc\nR2 a 0 1k\n.end\n")
     assert [part.ref for part in netlist.parts] == ["R1", "R2"]
     assert len(netlist.remarks) == 1

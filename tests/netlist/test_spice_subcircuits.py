@@ -83,9 +83,7 @@ def test_expressions(text: str, expected: float | None) -> None:
         assert value(text, a=3.0, b=4.0) == pytest.approx(expected, rel=1e-15)
 
 
-@given(
-    st.recursive(st.integers(0, 99).map(str), lambda inner: st.tuples(inner, st.sampled_from("+-*"), inner))
-)
+@given(st.recursive(st.integers(0, 99).map(str), lambda inner: st.tuples(inner, st.sampled_from("+-*"), inner)))
 def test_arithmetic_against_python(tree: object) -> None:
     def text(node: Any) -> str:
         return node if isinstance(node, str) else f"({text(node[0])}{node[1]}{text(node[2])})"
@@ -105,9 +103,7 @@ def test_arithmetic_against_python(tree: object) -> None:
     assert found == pytest.approx(exact(tree), rel=1e-12)
 
 
-@pytest.mark.parametrize(
-    ("text", "limit"), [("1+" * 9_999 + "1", "steps"), ("(" * 70 + "1" + ")" * 70, "depth")]
-)
+@pytest.mark.parametrize(("text", "limit"), [("1+" * 9_999 + "1", "steps"), ("(" * 70 + "1" + ")" * 70, "depth")])
 def test_expressions_are_bounded(text: str, limit: str) -> None:
     with pytest.raises(TooMuch) as caught:
         value(text)
@@ -204,16 +200,12 @@ def test_nested_definitions_and_instances(read: Read) -> None:
 
 
 def test_parallel_instances_multiply(read: Read) -> None:
-    netlist = read(
-        "* m\n.subckt a x\nQ1 x x 0 n m=2\nX1 x b m=3\n.ends\n.subckt b x\nR1 x 0 1\n.ends\nX1 1 a m=5\n"
-    )
+    netlist = read("* m\n.subckt a x\nQ1 x x 0 n m=2\nX1 x b m=3\n.ends\n.subckt b x\nR1 x 0 1\n.ends\nX1 1 a m=5\n")
     assert {part.ref: part.params["m"] for part in netlist.parts} == {"X1.Q1": 10.0, "X1.X1.R1": 15.0}
 
 
 def test_controls_are_those_of_the_instance(read: Read) -> None:
-    netlist = read(
-        "* c\n.subckt a x\nV_Vs x 0 0\nF1 x 0 V_Vs 2\nL1 x 0 1\nL2 x 0 1\nK1 L1 L2 0.5\n.ends\nX1 1 a\n"
-    )
+    netlist = read("* c\n.subckt a x\nV_Vs x 0 0\nF1 x 0 V_Vs 2\nL1 x 0 1\nL2 x 0 1\nK1 L1 L2 0.5\n.ends\nX1 1 a\n")
     assert [part.controls for part in netlist.parts if part.controls] == [("X1.Vs",), ("X1.L1", "X1.L2")]
 
 

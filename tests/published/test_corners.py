@@ -62,7 +62,7 @@ def _boylestad_9_11() -> OperatingPoint:
 
 
 def test_mid_band_of_the_corner_example() -> None:
-    """L1, Boylestad & Nashelsky 10th ed. Ex 9.11 p. 558: gain -90.07, input 1.3165k, overall -51.19; recomputed, .2 %."""
+    """L1, Boylestad & Nashelsky 10th ed. Ex 9.11 p. 558: gain -90.07, input 1.3165k, all -51.19; recomputed, .2 %."""
     point = _boylestad_9_11()
     r = small_signal(point, np.array([1e7]))
     v = r.voltages(Drive(source=1))[0, 0]

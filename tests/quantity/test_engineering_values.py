@@ -105,9 +105,7 @@ def test_other_units(text: str, unit: str, si: float) -> None:
         ("10n 2kV", "F", 10e-9, None, 2000.0),
     ],
 )
-def test_tolerance_and_rating(
-    text: str, unit: str, si: float, tolerance: float | None, rating_v: float | None
-) -> None:
+def test_tolerance_and_rating(text: str, unit: str, si: float, tolerance: float | None, rating_v: float | None) -> None:
     reading = parse_engineering(text, unit)
     assert reading.si == pytest.approx(si, rel=1e-15)
     assert reading.tolerance == tolerance

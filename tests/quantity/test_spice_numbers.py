@@ -46,9 +46,7 @@ def test_suffixes(text: str, value: float) -> None:
     assert parse_spice_number(text) == pytest.approx(value, rel=1e-15)
 
 
-@pytest.mark.parametrize(
-    "text", ["", "abc", "inf", "nan", "-inf", "1e400", "1e999999", "2N3904", "1 k", "{x}"]
-)
+@pytest.mark.parametrize("text", ["", "abc", "inf", "nan", "-inf", "1e400", "1e999999", "2N3904", "1 k", "{x}"])
 def test_no_number(text: str) -> None:
     with pytest.raises(NotAQuantity):
         parse_spice_number(text)

@@ -4,11 +4,14 @@ from __future__ import annotations
 
 from dataclasses import dataclass
 
+from hypothesis import settings
 from hypothesis import strategies as st
 
 from tests.bench import Bench
 from tests.reference.boards import NPN, PNP
 
+steady = settings(deadline=None, derandomize=True, max_examples=40)
+"""The same examples in every run, so that a run of the suite means the same everywhere."""
 RAILS = ("vcc", "vee", "0")
 SUPPLY = {"vcc": 12.0, "vee": -9.0}
 IDEAL: dict[str, float] = {"bf": 120.0, "vaf": 60.0, "is_": 3e-15}

@@ -3,13 +3,13 @@
 from __future__ import annotations
 
 import numpy as np
-from hypothesis import given, settings
+from hypothesis import given
 from hypothesis import strategies as st
 
 from checker.solve.operating import OperatingPoint, operating_point
 from checker.solve.response import Drive, small_signal
 from tests.bench import Bench
-from tests.solve.random_circuits import Drawn, circuits
+from tests.solve.random_circuits import Drawn, circuits, steady
 
 KCL = 1e-9
 """The certificate's own bound."""
@@ -42,7 +42,7 @@ def _net_currents(point: OperatingPoint) -> tuple[np.ndarray, np.ndarray]:
     return total, largest
 
 
-@settings(max_examples=60, deadline=None)
+@steady
 @given(circuits())
 def test_currents_balance_at_every_net(drawn: Drawn) -> None:
     point = _solved(_bench(drawn))
@@ -52,7 +52,7 @@ def test_currents_balance_at_every_net(drawn: Drawn) -> None:
     assert (np.abs(total[free]) <= KCL * largest[free] + 1e-14).all()
 
 
-@settings(max_examples=60, deadline=None)
+@steady
 @given(circuits())
 def test_power_balances(drawn: Drawn) -> None:
     """What the rails deliver is what resistors and transistors take."""
@@ -65,7 +65,7 @@ def test_power_balances(drawn: Drawn) -> None:
     np.testing.assert_allclose(taken, delivered, rtol=1e-8, atol=1e-13)
 
 
-@settings(max_examples=40, deadline=None)
+@steady
 @given(circuits(), st.sampled_from([1e-2, 0.5, 1e3]))
 def test_scaling_all_impedances_keeps_all_voltages(drawn: Drawn, ohm: float) -> None:
     one, other = _solved(_bench(drawn)), _solved(_bench(drawn, ohm=ohm))
@@ -74,7 +74,7 @@ def test_scaling_all_impedances_keeps_all_voltages(drawn: Drawn, ohm: float) -> 
     np.testing.assert_allclose(other.bipolar["ic_a"] * ohm, one.bipolar["ic_a"], rtol=1e-6, atol=1e-13)
 
 
-@settings(max_examples=40, deadline=None)
+@steady
 @given(circuits(), st.randoms(use_true_random=False))
 def test_order_of_parts_and_nets_changes_nothing(drawn: Drawn, random: object) -> None:
     resistors, transistors = list(drawn.resistors), list(drawn.transistors)
@@ -88,7 +88,7 @@ def test_order_of_parts_and_nets_changes_nothing(drawn: Drawn, random: object) -
         )
 
 
-@settings(max_examples=30, deadline=None)
+@steady
 @given(circuits(), st.lists(st.floats(2.0, 30.0), min_size=2, max_size=5))
 def test_stack_equals_one_by_one(drawn: Drawn, supplies: list[float]) -> None:
     stacked = Bench(27.0)
@@ -100,7 +100,7 @@ def test_stack_equals_one_by_one(drawn: Drawn, supplies: list[float]) -> None:
         np.testing.assert_allclose(together.v_v[j], operating_point(alone.circuit()).v_v[0], rtol=1e-8, atol=1e-8)
 
 
-@settings(max_examples=30, deadline=None)
+@steady
 @given(circuits(), circuits())
 def test_circuits_that_share_only_rails_do_not_meet(one: Drawn, other: Drawn) -> None:
     both = Bench(27.0)
@@ -118,7 +118,7 @@ def test_circuits_that_share_only_rails_do_not_meet(one: Drawn, other: Drawn) ->
             )
 
 
-@settings(max_examples=40, deadline=None)
+@steady
 @given(circuits())
 def test_small_signal_is_the_slope_of_two_bias_solves(drawn: Drawn) -> None:
     point = _solved(_bench(drawn))

@@ -6,13 +6,14 @@ from collections.abc import Callable
 
 import numpy as np
 import pytest
-from hypothesis import given, settings
+from hypothesis import given
 from hypothesis import strategies as st
 
 from checker.solve.operating import operating_point
 from checker.solve.response import Drive, Response, small_signal
 from tests.bench import Bench
 from tests.reference.boards import NPN, PNP
+from tests.solve.random_circuits import steady
 
 F_HZ = np.array([100.0, 1e4, 1e6, 1e8])
 
@@ -166,7 +167,7 @@ def _with_drive(make: Callable[[Anew], np.ndarray], r: Response, source: int) ->
     return make(Driven(r))
 
 
-@settings(max_examples=25, deadline=None)
+@steady
 @given(st.floats(-9.0, -3.0), st.floats(-6.0, -2.0))
 def test_opening_keeps_its_digits_however_large_the_capacitor(log_coupling: float, log_bypass: float) -> None:
     """1 nF to 1 mF in a link, to 10 mF at an emitter, to 1 MHz: the plain update would lose all digits."""
