@@ -30,6 +30,13 @@ QUANTITY_NAMES = tuple(sorted({name for name, subject in REGISTRY if subject in 
 """What a target may name."""
 
 
+def target_quantities() -> tuple[tuple[str, str, str, str], ...]:
+    """(name, unit, subject, meaning) of all that a target may name, sorted."""
+    wanted = ("stage", "group", "gain")
+    found = (q for (_, subject), q in REGISTRY.items() if subject in wanted)
+    return tuple(sorted((q.name, q.unit, q.subject, q.meaning) for q in found))
+
+
 class Board:
     """One board with all its scenarios. `ask` answers by quantity and subject, each question once."""
 

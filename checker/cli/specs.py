@@ -11,7 +11,27 @@ from checker.cli.output import coloured, columns, deliver
 from checker.cli.status import CLEAN, FAILED
 
 
+def list_quantities(context: click.Context, _parameter: click.Parameter, wanted: bool) -> None:
+    """Print the registry of quantities and end the command; needs no netlist."""
+    if not wanted or context.resilient_parsing:
+        return
+    from checker.board import target_quantities
+    from checker.report.catalogue import render_quantities
+
+    deliver(render_quantities(target_quantities(), width=columns(None)), None)
+    context.exit(CLEAN)
+
+
 @click.command("specs")
+@click.option(
+    "--list",
+    "listed",
+    is_flag=True,
+    is_eager=True,
+    expose_value=False,
+    callback=list_quantities,
+    help="List the quantities that a target may name, and leave.",
+)
 @options.netlist
 @options.intent
 @options.width

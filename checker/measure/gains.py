@@ -56,6 +56,56 @@ def voltage_gain_db(bench: Bench, response: Response, outer: Outer) -> FloatArra
     return db(voltage_gain(bench, response, outer))
 
 
+@quantity("loop_impedance_ohm", "ohm", "stage", "driving-point impedance in place, where a loop runs through the link")
+def loop_impedance(bench: Bench, ident: str) -> Figure:
+    """In place at the output reference, if what lies beyond the open output link still reaches back to it.
+
+    The output impedance with the link open then leaves a loop broken, and this figure stands beside it.
+    """
+    outer = outer_of(bench, ident)
+    if isinstance(outer, str):
+        return missing("loop_impedance_ohm", ident, bench.size, "ohm", outer)
+    f = bench.edges_hz
+    response = bench.response(f)
+    here = outer.output_link.stage_node
+    cut = cut_output(bench, response, outer)
+    far = _beyond(bench, outer)
+    back = max((_coupling(cut, here, node) for node in far), default=0.0)
+    if back < LOOP:
+        reason = "not applicable: no loop runs through the output link"
+        return missing("loop_impedance_ohm", ident, bench.size, "ohm", reason)
+    return figure(
+        "loop_impedance_ohm",
+        ident,
+        response.impedance(here),
+        "ohm",
+        f_hz=f,
+        formula="v/i at the output reference, nothing opened",
+        source=METHOD,
+    )
+
+
+LOOP = 0.05
+"""Share of a current beyond the open link that reaches back to the output reference, from which a loop is said to run:
+a shared supply filter couples less."""
+
+
+def _beyond(bench: Bench, outer: Outer) -> tuple[int, ...]:
+    """Net on the far side of the output link; of a direct link the exit of the receiving stage."""
+    link = outer.output_link
+    if link.kind != "direct":
+        return () if link.kind == "port" else (link.far_node,)
+    receiver = outer_of(bench, link.part)
+    return () if isinstance(receiver, str) else (receiver.output_link.stage_node,)
+
+
+def _coupling(response: Response, to: int, of: int) -> float:
+    """|transfer impedance| over the geometric mean of both driving-point impedances, nominal, at f0."""
+    z = abs(response.transfer(to, of)[0, 1])
+    own = abs(response.impedance(to)[0, 1] * response.impedance(of)[0, 1]) ** 0.5
+    return float(z / own) if own > 0.0 and np.isfinite(z) else 0.0
+
+
 QUANTITIES: tuple[tuple[str, str, str, Compute, str], ...] = (
     ("input_impedance_ohm", "ohm", "v/i at the input reference", input_impedance, "Zin = v(in)/i(input link)"),
     ("output_impedance_ohm", "ohm", "looking back, output link open", output_impedance, "Zout = v(out)/i, link open"),

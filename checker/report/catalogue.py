@@ -78,3 +78,17 @@ def _limit(limit: LimitShown) -> str:
 def _shown(si: float, unit: str) -> str:
     """A limit as the house holds it: a share where the unit is percent."""
     return given(as_written(si, unit), unit)
+
+
+def render_quantities(rows: Iterable[tuple[str, str, str, str]], *, width: int) -> str:
+    """(name, unit, subject, meaning) a line: what a target may name, by what it is asked of."""
+    page = Page(width=width, colour=False)
+    table = list(rows)
+    wide = max((len(name) for name, _, _, _ in table), default=0)
+    lines: list[str] = []
+    for subject, title in (("stage", "Of a stage"), ("group", "Of a group"), ("gain", "From port to port")):
+        lines += page.heading(title)
+        for name, unit, of, meaning in table:
+            if of == subject:
+                lines += hanging(f"  {name:{wide}}  {unit:5} ", meaning, page)
+    return finished(lines[1:])

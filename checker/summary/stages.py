@@ -5,6 +5,8 @@ from __future__ import annotations
 import math
 from typing import Literal
 
+import numpy as np
+
 from checker.circuit.types import PartFact
 from checker.quantity.figure import Figure
 from checker.record import (
@@ -24,7 +26,7 @@ from checker.record import (
 from checker.setup import Setup
 from checker.stages import types as found
 from checker.stages.direction import TERMINALS
-from checker.summary.ledger import LATER, MIDDLE, Ledger
+from checker.summary.ledger import LATER, MIDDLE, Ledger, in_words
 from checker.words import Terminal
 
 AGREES = 0.15
@@ -88,8 +90,19 @@ def _stage(setup: Setup, ledger: Ledger, stage: found.Stage) -> Stage:
         specs=_specs(ledger, "stages", stage.id),
         terminal=_terminal(ledger, stage.id),
         rule_of_thumb=_thumbs(ledger, stage),
-        evidence=stage.evidence,
+        evidence=(*stage.evidence, *_loop(ledger, stage)),
     )
+
+
+def _loop(ledger: Ledger, stage: found.Stage) -> tuple[str, ...]:
+    """Where the output impedance was taken with a loop broken: the figure in place beside it."""
+    if stage.output_link is None:
+        return ()
+    figure = ledger.board.ask("loop_impedance_ohm", stage.id)
+    if figure.f_hz is None or not np.isfinite(figure.values[0, MIDDLE]):
+        return ()
+    shown = in_words(complex(figure.values[0, MIDDLE]), "ohm")
+    return (f"loop broken for the output impedance; driving-point impedance in place {shown}",)
 
 
 def _link(setup: Setup, side: Literal["input", "output"], link: found.Link | None) -> tuple[StageLink, ...]:

@@ -26,7 +26,7 @@ def _nulls(stage: Stage) -> Iterator[Null]:
     for part, where in (("specs", ""), ("terminal", " at the terminals")):
         missing = [key for key, value in _items(getattr(stage, part)) if value is None]
         if len(missing) == len(fields(getattr(stage, part))):
-            yield f"all figures{where or ' loaded'}", ("stages", stage.id, part)
+            yield f"all figures{where or ' loaded'}", ("stages", stage.id, part, "voltage_gain")
             continue
         for key in missing:
             yield f"{words(key)}{where}", ("stages", stage.id, part, key)
