@@ -29,6 +29,11 @@ HEAD = "# Operation counts of `stageproof check` on the sample boards. Written b
 Counts = dict[str, int]
 
 
+EXACT = ("own_modules", "foreign_packages")
+SLACK = 1.1
+"""Another processor's linear algebra may round a Newton pass into or out of a solve; a real rise is larger."""
+
+
 def count_one(netlist: str) -> Counts:
     """Run `check` on one netlist in this process [fresh] and read every counter.
 
@@ -40,7 +45,7 @@ def count_one(netlist: str) -> Counts:
 
     status: object = 0
     sys.argv = ["stageproof", "check", netlist]
-    with contextlib.redirect_stdout(io.StringIO()):
+    with contextlib.redirect_stdout(io.TextIOWrapper(io.BytesIO(), encoding="utf-8")):
         try:
             main()
         except SystemExit as stop:
@@ -81,7 +86,7 @@ def compare(counts: dict[str, Counts], table: dict[str, Counts]) -> list[str]:
             print(f"{name:<28}{counter:<22}{committed!s:>10}{now!s:>10}")
             if committed is None or now is None:
                 faults.append(f"{name}: {counter}: committed {committed}, now {now}; run with --write")
-            elif now > committed:
+            elif now > committed * (1.0 if counter in EXACT else SLACK):
                 faults.append(f"{name}: {counter} rose from {committed} to {now}")
     return faults
 
