@@ -20,6 +20,7 @@ from checker.judge.discover import Rulebook, load_rules
 from checker.judge.finding import to_findings, to_unchecked
 from checker.judge.limits import limit_values, resolve_limits
 from checker.judge.verdict import Examination, Limits
+from checker.judge.wanted import check_targets
 from checker.netlist.read import read_netlist
 from checker.record import (
     Checked,
@@ -62,6 +63,7 @@ def check_board(netlist_path: Path, intent_path: Path | None, *, today: datetime
     setup = ready(netlist_path, intent_path)
     limits = resolve_limits(rulebook.rules, setup.intent)
     check_quantity(setup.intent, QUANTITY_NAMES)
+    check_targets(setup.intent.targets, setup.recognition, [port.name for port in setup.ports])
     board = setup.board(setup.scenarios)
     examination = examine(board, rulebook.rules, limits)
     findings = _mended(setup, board, rulebook, limits, examination)

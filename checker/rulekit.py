@@ -44,7 +44,6 @@ __all__ = [
     "Stage",
     "TargetIntent",
     "ceiling",
-    "in_percent",
     "levers",
     "magnitude",
     "require",
@@ -283,11 +282,6 @@ def where_code(figure: Figure, codes: Figure, wanted: tuple[int, ...], otherwise
 def magnitude(figure: Figure) -> Figure:
     """Without its sign or phase."""
     return replace(figure, values=np.abs(figure.values))
-
-
-def in_percent(figure: Figure) -> Figure:
-    """A plain fraction shown as per cent; the values stay a fraction."""
-    return replace(figure, unit="%")
 
 
 def ceiling(whole: Figure, *, share: float = 1.0, less: float = 0.0) -> Bound:

@@ -18,7 +18,6 @@ from checker.rulekit import (
     Limit,
     Rule,
     Stage,
-    in_percent,
     levers,
     magnitude,
     require,
@@ -199,7 +198,7 @@ class SoftDivider(Rule[Stage]):
         divider = board.resistors_at(subject.id, "base")
         return [
             Evidence(
-                check=require(in_percent(board.ask("divider_shift", subject.id)), "at most", limits["shift"]),
+                check=require(board.ask("divider_shift", subject.id), "at most", limits["shift"]),
                 subject=(subject.id, *divider)[:3],
                 message=f"base current moves the collector current of {subject.id} to {{ic}}, "
                 f"{{value}} from what its "

@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from collections.abc import Iterable, Mapping
 
-from checker.rulekit import Applies, Board, Bound, Evidence, Relation, Rule, TargetIntent, levers, require
+from checker.rulekit import Applies, Board, Bound, CannotTell, Evidence, Relation, Rule, TargetIntent, levers, require
 
 
 class TargetMissed(Rule[TargetIntent]):
@@ -24,6 +24,10 @@ class TargetMissed(Rule[TargetIntent]):
 
     def judge(self, board: Board, subject: TargetIntent, limits: Mapping[str, Bound]) -> Iterable[Evidence]:
         """One check a target."""
+        if subject.group and subject.group not in {group.id for group in board.recognition.groups}:
+            raise CannotTell(
+                f"whether {subject.group} act as one: they were not recognised as a group", "a target a stage"
+            )
         stages = _stages(board, subject)
         name = subject.stage or subject.group or f"{subject.source}->{subject.to}"
         figure = board.ask(subject.quantity, name)

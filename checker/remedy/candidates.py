@@ -35,15 +35,27 @@ def trials(circuit: Circuit, levers: Sequence[Lever], *, in_step: bool = False) 
 
     `in_step`: all levers by one factor and nothing else.
     """
-    outside = {name for port in circuit.ports for name in port.load}
-    found = ((lever, drawn(circuit, lever.part, lever.property)) for lever in levers if lever.part not in outside)
-    usable = [(lever, value) for lever, value in found if value is not None]
+    usable = _usable(circuit, levers)
     if in_step:
         factors = (mantissa * decade for decade in (1.0, 10.0) for mantissa in mantissas("E12"))
         return tuple(dict.fromkeys(_together(usable, factors)))
     singles = [(change,) for lever, value in usable[:_ALONE] for change in _single(lever, value) if _is_made(change)]
     pairs = [pair for one, two in combinations(usable[:_PAIRED], 2) for pair in _together((one, two), _FACTORS)]
     return tuple(dict.fromkeys((*singles, *pairs)))[:MOST]
+
+
+def with_second(circuit: Circuit, trial: Trial, levers: Sequence[Lever]) -> tuple[Trial, ...]:
+    """The trial with one part more: the first of the levers that it does not hold already."""
+    held = {change.part for change in trial}
+    free = [(lever, value) for lever, value in _usable(circuit, levers) if lever.part not in held]
+    return tuple((*trial, change) for lever, value in free[:1] for change in _single(lever, value) if _is_made(change))
+
+
+def _usable(circuit: Circuit, levers: Sequence[Lever]) -> list[tuple[Lever, float]]:
+    """Levers on elements of the board, with their values as drawn."""
+    outside = {name for port in circuit.ports for name in port.load}
+    found = ((lever, drawn(circuit, lever.part, lever.property)) for lever in levers if lever.part not in outside)
+    return [(lever, value) for lever, value in found if value is not None]
 
 
 def finer(circuit: Circuit, tried: Sequence[Trial], cleared: Sequence[bool]) -> tuple[Trial, ...]:

@@ -29,6 +29,18 @@ def cleared(examination: Examination, verdict: Verdict, base: int) -> Bools:
     return good
 
 
+def hindrances(examination: Examination, verdict: Verdict, base: int, scenario: int) -> list[Judged]:
+    """What is as heavy as the finding and new in a scenario against `base`."""
+    return [
+        each
+        for each in _applying(examination)
+        if not is_finding(each, verdict)
+        and _as_heavy(each.rule.weight, verdict)
+        and _bad(each)[scenario]
+        and not _bad(each)[base]
+    ]
+
+
 def lighter(examination: Examination, verdict: Verdict, count: int, start: int) -> int | None:
     """How many findings lighter than this one are new in the `count` scenarios from `start`, against the first `count`;
     None where the finding is still there or one of its weight is new."""

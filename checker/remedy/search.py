@@ -8,10 +8,11 @@ from checker.circuit.types import Change, Scenario
 from checker.examine import Examined, examine
 from checker.judge.verdict import AnyRule, Examination, Limits, Verdict
 from checker.record.finding import Remedy
-from checker.remedy.candidates import Trial, finer, size, trials
-from checker.remedy.compare import cleared, holds_in_corners, judged_at, lighter
+from checker.remedy.candidates import MOST, Trial, finer, size, trials, with_second
+from checker.remedy.compare import cleared, hindrances, holds_in_corners, judged_at, lighter
 from checker.remedy.effects import changes_of, effects_of
 from checker.remedy.stack import all_over, laid_over
+from checker.rulekit import Lever
 from checker.shape import frozen
 
 Rebuild = Callable[[Sequence[Scenario]], Examined]
@@ -20,6 +21,8 @@ Rebuild = Callable[[Sequence[Scenario]], Examined]
 Corners = Callable[[tuple[Change, ...]], Sequence[Scenario]]
 """The corners that the board would have with these changes, which are not among theirs."""
 
+_SECONDS = 4
+"""Trials, from the smallest, that are tried again with a second part where each alone brings up a new fault."""
 _VERIFIED = (6, 12)
 """Trials that are taken through all conditions: the smallest first; if none holds, some of the larger ones."""
 
@@ -53,7 +56,7 @@ def propose(
     Fewer parts first, then the smaller sum of |ln(new/old)|. One stack of at most `candidates.MOST` trials is judged by
     the finding's own rule; those that clear it, and the values between, by all that have an answer in every scenario;
     the smallest of these over all scenarios of `board`; the chosen one by all rules, and in the corners that the
-    changed board has itself.
+    changed board has itself. Where every trial brings up a fault that another part would mend, both are changed.
     """
     tried = trials(board.circuit, verdict.evidence.levers, in_step=verdict.evidence.in_step)
     if not tried:
@@ -82,8 +85,11 @@ def _worth_proving(case: _Case, tried: Sequence[Trial]) -> list[Trial]:
     between = finer(case.board.circuit, tried, clear)
     if between:
         found += [trial for trial, ok in zip(between, _clearing(case, between), strict=True) if ok]
-    clean = _clean(case, found) if found else []
-    holding = (trial for trial, ok in zip(found, clean, strict=True) if ok)
+    found.sort(key=lambda trial: _rank(case, trial))
+    holding, hindered = _parted(case, found) if found else ([], [])
+    if not holding:
+        seconds = [t for trial, in_way in hindered[:_SECONDS] for t in with_second(case.board.circuit, trial, in_way)]
+        holding, _ = _parted(case, seconds[:MOST]) if seconds else ([], [])
     return sorted(holding, key=lambda trial: _rank(case, trial))
 
 
@@ -95,11 +101,15 @@ def _clearing(case: _Case, tried: Sequence[Trial]) -> list[bool]:
     return [bool(good[i]) and judged_at(examination, case.verdict, i) for i in range(start, len(good))]
 
 
-def _clean(case: _Case, tried: Sequence[Trial]) -> list[bool]:
-    """Which trials bring up nothing as heavy there."""
+def _parted(case: _Case, tried: Sequence[Trial]) -> tuple[list[Trial], list[tuple[Trial, tuple[Lever, ...]]]]:
+    """Trials that bring up nothing as heavy there, and those that bring up a single one, with what mends that."""
     stack, start = _stacked(case, tried)
-    good = cleared(examine(stack, case.broad, case.limits), case.verdict, start - 1)
-    return [bool(ok) for ok in good[start:]]
+    examination = examine(stack, case.broad, case.limits)
+    good = cleared(examination, case.verdict, start - 1)
+    holding = [trial for trial, ok in zip(tried, good[start:], strict=True) if ok]
+    new = [hindrances(examination, case.verdict, start - 1, start + number) for number in range(len(tried))]
+    hindered = [(t, each[0].evidence.levers) for t, each in zip(tried, new, strict=True) if len(each) == 1]
+    return holding, [(trial, turn) for trial, turn in hindered if turn]
 
 
 def _stacked(case: _Case, tried: Sequence[Trial]) -> tuple[Examined, int]:

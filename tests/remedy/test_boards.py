@@ -33,6 +33,7 @@ def findings(netlist: Path) -> tuple[Finding, ...]:
         "saturated-at-rest",
         "cut-off-at-rest",
         "soft-divider",
+        "target-missed",
         "base-not-grounded",
     ],
 )

@@ -36,6 +36,7 @@ def board(scenarios: Sequence[Scenario]) -> FakeBoard:
         figures={
             ("own_loss_db", "Q1"): figure(loss, "dB", quantity="own_loss_db"),
             ("vce_v", "Q1"): figure(12.0 - 1e-3 * r3, "V", quantity="vce_v"),
+            ("product_s", "Q1"): figure(c * r3, "s", quantity="product_s"),
             ("settling_s", "Q1"): figure(c, "s", quantity="settling_s"),
         },
     )
@@ -121,6 +122,23 @@ def test_effects_before_and_after() -> None:
 
 def test_no_remedy_that_brings_up_one_as_heavy() -> None:
     assert search(Loss(), Settling()) is None
+
+
+def test_what_one_change_brings_up_a_second_one_mends() -> None:
+    class Joint(Loss):
+        """C1 x R3 at most 10 ms: the capacitor that clears the loss needs a smaller R3."""
+
+        id = "d-joint"
+
+        def judge(self, board: Board, subject: Stage, limits: Mapping[str, Bound]) -> Iterable[Evidence]:  # noqa: ARG002
+            """One check."""
+            check = require(board.ask("product_s", subject.id), "at most", Bound.at(10e-3, "s", "a test"))
+            return [Evidence(check=check, subject=("R3",), message="", levers=levers(("R3",), "down"))]
+
+    # 2.2 uF x 4.7 kohm = 10.3 ms; without corners 2.2 uF clears the loss, and 4.3 kohm the product.
+    remedy = search(Loss(), Joint(), conditions=CONDITIONS[:1])
+    assert remedy is not None
+    assert {change.part: change.to for change in remedy.changes} == pytest.approx({"C1": 2.2e-6, "R3": 4.3e3})
 
 
 def test_a_lighter_one_is_a_price_that_may_be_paid() -> None:

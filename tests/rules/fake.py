@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass, field
+from dataclasses import dataclass, field, replace
 
 import numpy as np
 
@@ -88,7 +88,7 @@ class FakeBoard:
     def ask(self, quantity: str, subject: str) -> Figure:
         """The figure given."""
         try:
-            return self.figures[quantity, subject]
+            return replace(self.figures[quantity, subject], quantity=quantity, subject=subject)
         except KeyError:
             raise CannotTell(f"{quantity} of {subject}", "a figure in the test") from None
 

@@ -9,7 +9,7 @@ import pytest
 from hypothesis import given
 from hypothesis import strategies as st
 
-from checker.rulekit import Bound, CannotTell, Relation, ceiling, in_percent, levers, magnitude, require, where_code
+from checker.rulekit import Bound, CannotTell, Relation, ceiling, levers, magnitude, require, where_code
 from checker.trouble import Trouble
 from tests.rules.fake import figure
 
@@ -97,7 +97,6 @@ def test_the_value_of_a_bound() -> None:
 
 def test_shared_formulas() -> None:
     assert magnitude(figure([-2.0])).values.tolist() == [[2.0]]
-    assert in_percent(figure([0.28], "1")).unit == "%"
     bound = ceiling(figure([0.6, 0.4], "W"), share=0.5, less=0.1)
     assert np.asarray(bound.high) == pytest.approx([0.2, 0.1])
     assert bound.source == "a test"
