@@ -17,7 +17,9 @@ MODELS = """.model QN NPN(IS=1e-14 BF=200 VAF=100 TF=0.4n CJE=8p CJC=4p RB=10)
 """Two invented transistors of equal figures."""
 
 
-def intent_text(*ports: tuple[str, str, str], band: tuple[str, str] | None = ("300 Hz", "3 kHz"), more: str = "") -> str:
+def intent_text(
+    *ports: tuple[str, str, str], band: tuple[str, str] | None = ("300 Hz", "3 kHz"), more: str = ""
+) -> str:
     """An intent file. `ports`: (net, role, impedance or ""); port names are the nets in lower case."""
     out = [f'[band]\nlow = "{band[0]}"\nhigh = "{band[1]}"\n'] if band else []
     out.append(more)

@@ -44,8 +44,7 @@ CASES = [
     ),
     Case(
         name="common emitter with stopper and build-out",
-        netlist=DIVIDER
-        + "RC VCC C 4.7k\nRE E 0 1k\nC1 IN X 10u\nRS X B 220\nRO C Y 100\nC2 Y OUT 10u\nQ1 C B E QN",
+        netlist=DIVIDER + "RC VCC C 4.7k\nRE E 0 1k\nC1 IN X 10u\nRS X B 220\nRO C Y 100\nC2 Y OUT 10u\nQ1 C B E QN",
         stages={"Q1": CE},
         links={"Q1": ("capacitor C1", "capacitor C2")},
     ),
@@ -100,7 +99,8 @@ CASES = [
     Case(
         name="direct-coupled pair",
         netlist=DIVIDER
-        + "RC VCC C 4.7k\nRE E 0 1k\nCE E 0 1000u\nC1 IN B 10u\nQ1 C B E QN\nRE2 E2 0 2.2k\nC3 E2 OUT 10u\nQ2 VCC C E2 QN",
+        + "RC VCC C 4.7k\nRE E 0 1k\nCE E 0 1000u\nC1 IN B 10u\nQ1 C B E QN\nRE2 E2 0 2.2k\n"
+        + "C3 E2 OUT 10u\nQ2 VCC C E2 QN",
         stages={"Q1": CE, "Q2": CC},
         groups={"Q1+Q2": "direct-coupled-pair"},
         links={"Q1": ("capacitor C1", "direct Q2"), "Q2": ("direct Q2", "capacitor C3")},
@@ -152,8 +152,7 @@ CASES = [
     ),
     Case(
         name="current mirror loading a follower",
-        netlist=DIVIDER
-        + "C1 IN B 10u\nC2 E OUT 10u\nQ1 VCC B E QN\nR5 VCC M 8.2k\nQ2 M M 0 QN\nQ3 E M 0 QN",
+        netlist=DIVIDER + "C1 IN B 10u\nC2 E OUT 10u\nQ1 VCC B E QN\nR5 VCC M 8.2k\nQ2 M M 0 QN\nQ3 E M 0 QN",
         stages={"Q1": CC, "Q2": quiet("diode-connected"), "Q3": quiet("current-source")},
         groups={"Q2+Q3": "current-mirror"},
     ),
