@@ -134,6 +134,8 @@ def _differential(scene: Scene, p: str, q: str) -> bool:
         return False
     if scene.silent[ep] or scene.silent[eq]:
         return False
+    if bq in through_resistors(scene, cp) or bp in through_resistors(scene, cq):
+        return False  # one drives the other: a trigger or a latch
     return (
         bool(through_resistors(scene, ep) & through_resistors(scene, eq)) and ep not in (bq, cq) and eq not in (bp, cp)
     )
