@@ -1,5 +1,6 @@
 """The report: its types, how it is written and read, and its JSON Schema (`describe.schema`)."""
 
+from checker.record.comparison import COMPARISON, Changed, Comparison, Condition, Edit, Moved, Side
 from checker.record.figures import Complex, Span, Specs, TerminalFigures, Thumb
 from checker.record.finding import (
     Accepted,
@@ -45,6 +46,7 @@ from checker.record.stage import (
 from checker.record.write import to_json
 
 __all__ = [
+    "COMPARISON",
     "SCHEMA",
     "Accepted",
     "Bias",
@@ -52,10 +54,14 @@ __all__ = [
     "CardUsed",
     "Certificate",
     "Change",
+    "Changed",
     "Checked",
+    "Comparison",
     "Complex",
+    "Condition",
     "Conditions",
     "Connection",
+    "Edit",
     "Effect",
     "FetBias",
     "Finding",
@@ -64,12 +70,14 @@ __all__ = [
     "Island",
     "Location",
     "Measured",
+    "Moved",
     "NetFigures",
     "Part",
     "Port",
     "Rail",
     "Remedy",
     "Report",
+    "Side",
     "Since",
     "SmallSignal",
     "SourceFile",

@@ -187,6 +187,8 @@ class Since(Record):
     """Fingerprints of findings that it had too."""
     cured: tuple[Finding, ...] = ()
     """Its findings that are no longer there."""
+    unjudged: tuple[Finding, ...] = ()
+    """Its findings that are gone only because this report could not judge them."""
 
 
 @record
