@@ -2,12 +2,14 @@
 
 from __future__ import annotations
 
+import re
 from dataclasses import replace
 
 import numpy as np
 from numpy.typing import NDArray
 
-from checker.circuit.types import Port
+from checker.circuit.types import Circuit, Port
+from checker.pattern import lazy
 from checker.solve.operating import OperatingPoint
 from checker.solve.response import Response, port_drive, small_signal
 from checker.words import PortRole
@@ -75,3 +77,46 @@ def widest_band(point: OperatingPoint, ports: tuple[Port, ...]) -> tuple[tuple[f
     spans = [(f[a], f[b - 1]) for a, b in zip(runs[::2], runs[1::2], strict=True)]
     low, high = max(spans, key=lambda s: np.log(s[1] / s[0]))
     return (float(low), float(high)), float(np.sqrt(low * high))
+
+
+_OUTPUT_NAME = lazy(r"v?_?out(put)?[0-9]*", re.IGNORECASE)
+
+
+def supposed_output(
+    point: OperatingPoint, ports: tuple[Port, ...], response: Response
+) -> tuple[tuple[Port, ...], tuple[str, ...]]:
+    """An output for a board that has inputs and nothing else: the net named like one, else the last net that carries
+    signal. Returns the ports with it and the sentence that says so."""
+    sources = [p for p in ports if p.role == "input"]
+    if not sources or any(p.role == "output" for p in ports):
+        return ports, ()
+    v = np.abs(response.voltages(port_drive(sources[0]))[0]).max(axis=0)
+    taken = {p.node for p in ports}
+    live = [
+        n for n in range(1, len(v)) if np.isfinite(v[n]) and v[n] > 1e-6 and n not in taken and not response.known[n]
+    ]
+    nets = point.circuit.nets
+    named = [n for n in live if _OUTPUT_NAME.fullmatch(nets[n].rpartition("/")[2])]
+    ends = named or [n for n in live if _leads_nowhere(point.circuit, n, response)]
+    if not ends:
+        return ports, ()
+    node = max(ends, key=lambda n: (float(v[n]), nets[n]))
+    port = Port(name=nets[node], net=nets[node], node=node, role="output", reference_ohm=None)
+    return (*ports, port), (f"no output is declared: {nets[node]}, where the signal ends, taken as one",)
+
+
+def _leads_nowhere(circuit: Circuit, node: int, response: Response) -> bool:
+    """A collector or emitter from which no part leads on to another device's base or emitter."""
+    devices = circuit.bipolars.nodes
+    own = {j for j, row in enumerate(devices.tolist()) if node in (row[0], row[2])}
+    if not own:
+        return False
+    near = {node}
+    for table in (circuit.resistors, circuit.capacitors, circuit.inductors):
+        near |= {
+            far
+            for a, b in table.nodes.tolist()
+            for here, far in ((a, b), (b, a))
+            if here == node and not response.known[far]
+        }
+    return not any(j not in own and ({row[1], row[2]} & near) for j, row in enumerate(devices.tolist()))
