@@ -97,26 +97,44 @@ def supposed_output(
     ]
     nets = point.circuit.nets
     named = [n for n in live if _OUTPUT_NAME.fullmatch(nets[n].rpartition("/")[2])]
-    ends = named or [n for n in live if _leads_nowhere(point.circuit, n, response)]
+    hops = device_hops(point.circuit, sources[0].node, response)
+    ends = named or [n for n in live if hops.get(n, 0) > 0]
     if not ends:
         return ports, ()
-    node = max(ends, key=lambda n: (float(v[n]), nets[n]))
+    node = max(ends, key=lambda n: (hops.get(n, 0), float(v[n]), nets[n]))
     port = Port(name=nets[node], net=nets[node], node=node, role="output", reference_ohm=None)
     return (*ports, port), (f"no output is declared: {nets[node]}, where the signal ends, taken as one",)
 
 
-def _leads_nowhere(circuit: Circuit, node: int, response: Response) -> bool:
-    """A collector or emitter from which no part leads on to another device's base or emitter."""
-    devices = circuit.bipolars.nodes
-    own = {j for j, row in enumerate(devices.tolist()) if node in (row[0], row[2])}
-    if not own:
-        return False
-    near = {node}
-    for table in (circuit.resistors, circuit.capacitors, circuit.inductors):
-        near |= {
+def device_hops(circuit: Circuit, start: int, response: Response) -> dict[int, int]:
+    """Transistors between a net and each net that they drive onward from it: base to collector and emitter, emitter to
+    collector; passive parts carry on free of charge. Only collectors and emitters that carry signal are listed."""
+    passive = [row for t in (circuit.resistors, circuit.capacitors, circuit.inductors) for row in t.nodes.tolist()]
+    reached: dict[int, int] = {start: 0}
+    driven: dict[int, int] = {}
+    hop = 0
+    while True:
+        _spread(reached, passive, hop, response)
+        fresh: set[int] = set()
+        for c, b, e, _ in circuit.bipolars.nodes.tolist():
+            exits = {c, e} if b in reached else {c} if e in reached else set()
+            fresh |= {node for node in exits if node not in reached and not response.known[node]}
+        if not fresh:
+            return driven
+        hop += 1
+        reached.update(dict.fromkeys(fresh, hop))
+        driven.update(dict.fromkeys(fresh, hop))
+
+
+def _spread(reached: dict[int, int], passive: list[list[int]], hop: int, response: Response) -> None:
+    """Let passive parts carry what is reached on to their other nets."""
+    growing = True
+    while growing:
+        more = {
             far
-            for a, b in table.nodes.tolist()
+            for a, b in passive
             for here, far in ((a, b), (b, a))
-            if here == node and not response.known[far]
+            if here in reached and far not in reached and not response.known[far]
         }
-    return not any(j not in own and ({row[1], row[2]} & near) for j, row in enumerate(devices.tolist()))
+        reached.update(dict.fromkeys(more, hop))
+        growing = bool(more)
