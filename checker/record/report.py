@@ -196,6 +196,8 @@ class Since(Record):
 class Report(Record):
     """Everything that one check of one netlist has to say."""
 
+    schema: Literal["stageproof-report/1"] = SCHEMA
+    """Names this contract; a new number is a new contract."""
     tool: Tool
     """The program."""
     netlist: SourceFile
@@ -204,8 +206,6 @@ class Report(Record):
     """Under what the figures hold."""
     checked: Checked
     """How much could be judged."""
-    schema: Literal["stageproof-report/1"] = SCHEMA
-    """Names this contract; a new number is a new contract."""
     incomplete: bool = False
     """Something internal failed: see `faults`; the rest of the report stands."""
     faults: tuple[str, ...] = ()

@@ -27,6 +27,7 @@ from checker.setup import Setup
 from checker.stages import types as found
 from checker.stages.direction import TERMINALS
 from checker.summary.ledger import LATER, MIDDLE, Ledger, in_words
+from checker.summary.spread import spans
 from checker.words import Terminal
 
 AGREES = 0.15
@@ -90,6 +91,7 @@ def _stage(setup: Setup, ledger: Ledger, stage: found.Stage) -> Stage:
         specs=_specs(ledger, "stages", stage.id),
         terminal=_terminal(ledger, stage.id),
         rule_of_thumb=_thumbs(ledger, stage),
+        spread=spans(setup, ledger, stage),
         evidence=(*stage.evidence, *_loop(ledger, stage)),
     )
 
