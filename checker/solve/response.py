@@ -150,6 +150,10 @@ class Response:
         block = self.block(device)
         return self._changed(block.nodes, y - block.y)._with_device(device, y)
 
+    def loaded(self, nodes: tuple[int, ...], y: ComplexArray) -> Response:
+        """The same circuit with admittances (S, F, k) [S] from k nets to signal ground."""
+        return self._changed(nodes, y[..., None] * np.eye(len(nodes)))
+
     def shorted(self, part: str) -> Response:
         """The same circuit with a two-terminal part shorted."""
         return self._tied(*self._two_nodes(part))

@@ -12,6 +12,8 @@ from checker.solve.operating import OperatingPoint
 from checker.solve.response import Drive, Response, port_drive
 
 ComplexArray = NDArray[np.complex128]
+LEAK = 1e-9
+"""Of a net's own admittance: nine digits above arithmetic's end, and nine under what anyone would notice."""
 
 
 @frozen
@@ -69,8 +71,28 @@ def signal_grounds(circuit: Circuit, response: Response) -> NDArray[np.bool_]:
     return silent
 
 
+def anchored(circuit: Circuit, response: Response) -> Response:
+    """Nets that transistors alone hold, with a leak of a billionth of what these present there.
+
+    Without it such a net has no voltage once a device is taken out or lifted, where the others are ideal sources.
+    """
+    tables = (circuit.resistors, circuit.capacitors, circuit.inductors, circuit.voltages, circuit.diodes)
+    others = {node for table in tables for node in table.nodes.ravel().tolist()}
+    terminals = circuit.bipolars.nodes[:, :3].tolist()
+    alone = sorted({node for row in terminals for node in row if node not in others and response.row[node] >= 0})
+    if not alone:
+        return response
+    y = np.zeros((*response.z.shape[:2], len(alone)), dtype=complex)
+    for j, row in enumerate(terminals):
+        for t, node in enumerate(row):
+            if node in alone:
+                y[..., alone.index(node)] += LEAK * np.abs(np.nan_to_num(response.bipolar_y[:, :, j, t, t]))
+    return response.loaded(tuple(alone), y)
+
+
 def make_scene(circuit: Circuit, point: OperatingPoint, response: Response, ports: tuple[Port, ...]) -> Scene:
     """Solve the drive of every input port once. Scenario 0 alone is looked at."""
+    response = anchored(circuit, response)
     paths = []
     for source in (p for p in ports if p.role == "input"):
         drive = port_drive(source)
