@@ -37,6 +37,7 @@ from checker.record import (
 from checker.setup import Setup, set_up
 from checker.shape import frozen
 from checker.summary.ledger import Ledger
+from checker.summary.parts import parts
 from checker.summary.stages import group_records, stage_records
 from checker.summary.surroundings import cautions, gains, islands, nets, ports, rails
 
@@ -83,6 +84,8 @@ def check_board(netlist_path: Path, intent_path: Path | None, *, today: datetime
         cautions=(*cautions(setup), *rulebook.cautions, *accepted.cautions),
         rails=rails(setup),
         nets=nets(setup, ledger),
+        ground=setup.circuit.nets[0],
+        parts=parts(setup.circuit),
         islands=islands(setup, ledger),
         stages=stages,
         groups=group_records(setup, ledger),

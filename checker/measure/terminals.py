@@ -204,7 +204,10 @@ def _gm(bench: Bench, stage: str) -> float:
 
 @quantity("base_ground_loss_db", "dB", "stage", "gain lost because the base of a common-base stage is not at ground")
 def base_ground_loss(bench: Bench, stage: str) -> Figure:
-    """|v out| with the base grounded over |v out|, for the same upstream e.m.f.; at both band edges and f0."""
+    """|v(out)/v(in)| with the base grounded over the same in place; at both band edges and f0.
+
+    From the input reference, so that a source of unknown impedance, taken as a current, hides nothing.
+    """
     outer = outer_of(bench, stage)
     if isinstance(outer, str) or bench.stage(stage).configuration != "common-base":
         why = outer if isinstance(outer, str) else "not applicable: not a common-base stage"
@@ -212,13 +215,15 @@ def base_ground_loss(bench: Bench, stage: str) -> Figure:
     response = bench.response(bench.edges_hz)
     base = terminal_net(bench.circuit, (outer.entry[0], "base"))
     drive, node = drive_of(bench, outer), outer.output_link.stage_node
-    ratio = response.grounded(base).voltages(drive)[..., node] / response.voltages(drive)[..., node]
+    into = outer.input_link.stage_node
+    held, drawn = response.grounded(base).voltages(drive), response.voltages(drive)
+    ratio = held[..., node] / held[..., into] / (drawn[..., node] / drawn[..., into])
     return figure(
         "base_ground_loss_db",
         stage,
         20.0 * np.log10(np.abs(ratio)),
         "dB",
         f_hz=response.f_hz,
-        formula="20 log10 |v(out), base at signal ground|/|v(out)|",
+        formula="20 log10 |v(out)/v(in), base at signal ground|/|v(out)/v(in)|",
         source="in-place small-signal solution, low-rank change",
     )

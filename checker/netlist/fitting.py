@@ -10,7 +10,7 @@ from checker.pattern import lazy
 
 _WORDS = lazy(
     r"(?<![A-Za-z0-9])(dnp|dnf|dni|dns|do\s*not\s*(?:fit|populate|place|install|stuff)|not\s*(?:fitted|populated)"
-    r"|no\s*(?:pop|stuff|fit|mount)|unpopulated|n\.?\s?f\.?$)(?![A-Za-z0-9])",
+    r"|no\s*(?:pop|stuff|fit|mount)|unpopulated)(?![A-Za-z0-9])",
     re.IGNORECASE,
 )
 _FIELDS = ("dnp", "dnf", "dni", "donotpopulate", "donotfit", "donotplace", "nopop")

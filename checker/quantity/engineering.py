@@ -42,6 +42,12 @@ _VOLTS = lazy(r"(?<![\w.])(\d+(?:\.\d+)?)\s*(k?)V(?:dc|ac|rms)?(?![A-Za-z0-9])",
 _RANGE = lazy(r"(\.\.|-\s*[\d.]|~|to\b|\|\||\*|\+|x\b|=|:)", re.IGNORECASE)
 _COMMA = lazy(r"^([+-]?\d*),(\d+)")
 _EIA_CODE = lazy(r"[1-9]\d[1-6]")
+_SECOND = {
+    "ohm": lazy(r"\d\s*(?:[kKMR]|ohm)(?![A-Za-z])"),
+    "F": lazy(r"\d\s*[unp]F?(?![A-Za-z])", re.IGNORECASE),
+    "H": lazy(r"\d\s*[munp]H?(?![A-Za-z])"),
+}
+"""A further value of the same unit behind the first (`10k/47k`, `0603 10k`): which one is meant cannot be told."""
 _POINT_UNITS = {"R": "ohm", "r": "ohm", "L": "ohm", "V": "V", "A": "A", "F": "F", "H": "H"}
 _NEEDS_PREFIX = ("F", "H")
 _SIGNED = ("V", "A", "degC")
@@ -71,6 +77,9 @@ def parse_engineering(text: str, unit: str) -> Reading:
         raise _refusal(text, unit, f"{rest!r} follows the number")
     if _RANGE.match(rest.lstrip()) and not _PERCENT.match(rest.lstrip()):
         raise _refusal(text, unit, "it is a range or a sum")
+    second = _SECOND.get(unit)
+    if second is not None and second.search(rest):
+        raise _refusal(text, unit, "it holds two values")
     tolerance, rating_v = _tail(rest, unit)
     if tolerance is None and letter:
         tolerance = tolerance_of_letter(letter, si, unit)

@@ -1,5 +1,6 @@
 """The report: its types, how it is written and read, and its JSON Schema (`describe.schema`)."""
 
+from checker.record.comparison import COMPARISON, Changed, Comparison, Condition, Edit, Moved, Side
 from checker.record.figures import Complex, Span, Specs, TerminalFigures, Thumb
 from checker.record.finding import (
     Accepted,
@@ -22,9 +23,11 @@ from checker.record.report import (
     Gain,
     Island,
     NetFigures,
+    Part,
     Port,
     Rail,
     Report,
+    Since,
     SourceFile,
     Tool,
     WorkingLine,
@@ -43,6 +46,7 @@ from checker.record.stage import (
 from checker.record.write import to_json
 
 __all__ = [
+    "COMPARISON",
     "SCHEMA",
     "Accepted",
     "Bias",
@@ -50,10 +54,14 @@ __all__ = [
     "CardUsed",
     "Certificate",
     "Change",
+    "Changed",
     "Checked",
+    "Comparison",
     "Complex",
+    "Condition",
     "Conditions",
     "Connection",
+    "Edit",
     "Effect",
     "FetBias",
     "Finding",
@@ -62,11 +70,15 @@ __all__ = [
     "Island",
     "Location",
     "Measured",
+    "Moved",
     "NetFigures",
+    "Part",
     "Port",
     "Rail",
     "Remedy",
     "Report",
+    "Side",
+    "Since",
     "SmallSignal",
     "SourceFile",
     "Span",

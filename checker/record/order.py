@@ -47,6 +47,7 @@ def in_order(report: Report) -> Report:
         cautions=tuple(sorted(report.cautions)),
         rails=_by(report.rails, lambda rail: natural(rail.net)),
         nets=_mapping(report.nets),
+        parts=_mapping(report.parts),
         islands=_by(
             (replace(island, nets=_by(island.nets, natural)) for island in report.islands),
             lambda island: tuple(natural(net) for net in island.nets),

@@ -159,6 +159,40 @@ class Gain(Record):
 
 
 @frozen
+class Part(Record):
+    """A part of the board, as far as it was understood."""
+
+    kind: str
+    """resistor, capacitor, bipolar and so on."""
+    value: float | None = None
+    """In `unit`; null where it has none."""
+    unit: str = ""
+    """Unit of the value."""
+    model: str = ""
+    """Name of its card or model; "" where it has none."""
+    pins: Mapping[str, str] = field(default_factory=dict)
+    """Pin or terminal to net."""
+    data: str = ""
+    """Hash of every number that the solution takes from the part."""
+
+
+@frozen
+class Since(Record):
+    """How the findings stand against an earlier report."""
+
+    path: str
+    """The netlist of that report."""
+    new: tuple[str, ...] = ()
+    """Fingerprints of findings that it did not have, or had as less severe."""
+    unchanged: tuple[str, ...] = ()
+    """Fingerprints of findings that it had too."""
+    cured: tuple[Finding, ...] = ()
+    """Its findings that are no longer there."""
+    unjudged: tuple[Finding, ...] = ()
+    """Its findings that are gone only because this report could not judge them."""
+
+
+@frozen
 class Report(Record):
     """Everything that one check of one netlist has to say."""
 
@@ -184,6 +218,10 @@ class Report(Record):
     """Sorted by net."""
     nets: Mapping[str, NetFigures] = field(default_factory=dict)
     """By net key."""
+    ground: str = ""
+    """The net from which voltages are counted."""
+    parts: Mapping[str, Part] = field(default_factory=dict)
+    """By reference."""
     islands: tuple[Island, ...] = ()
     """Sorted by their first net."""
     stages: tuple[Stage, ...] = ()
@@ -200,6 +238,8 @@ class Report(Record):
     """In the order of findings."""
     unchecked: tuple[Unchecked, ...] = ()
     """Sorted by subject, rule."""
+    since: Since | None = None
+    """Against an earlier report; null where none was given."""
     unavailable: Mapping[str, str] = field(default_factory=dict)
     """Why a value is null: path, e.g. "stages/Q1/specs/low_corner_hz", to the reason. A path stands for all
     below it. In a name "/" is written "~1" and "~" "~0"; an island goes by its first net, a gain by its from

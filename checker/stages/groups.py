@@ -35,8 +35,9 @@ def _labels(scene: Scene, ways: Mapping[str, Direction], p: str, q: str) -> Iter
             yield "current-mirror", a, b, f"{a} has base on collector; bases joined, emitters on the same supply"
     for a, b in ((p, q), (q, p)):
         yield from _compound(scene, ways, a, b)
-    if _push_pull(scene, p, q, ways):
-        yield "push-pull", p, q, "opposite polarities, emitters joined, collectors on opposite supplies"
+    for joined, outer, place in (("emitter", "collector", 2), ("collector", "emitter", 0)):
+        if _push_pull(scene, p, q, ways, place):
+            yield "push-pull", p, q, f"opposite polarities, {joined}s joined, {outer}s on opposite supplies"
     if _differential(scene, p, q):
         yield "differential-pair", p, q, "emitters joined to a common tail, bases apart"
     for a, b in ((p, q), (q, p)):
@@ -101,7 +102,8 @@ def _compound(
             b,
             f"collector of {a} drives {b}, whose collector returns to its emitter",
         )
-    held = _enters(ways, b, "emitter") or scene.silent[bb]
+    # A quiet device under a signal device is its current source; two quiet ones are a cascoded source.
+    held = (_enters(ways, b, "emitter") or scene.silent[bb]) and (a in ways or b not in ways)
     if eb in through_resistors(scene, ca) and not scene.silent[ca] and ca != bb and held:
         yield "cascode", a, b, f"collector of {a} feeds the emitter of {b}, whose base is held"
 
@@ -114,14 +116,14 @@ def _enters(ways: Mapping[str, Direction], device: str, terminal: str) -> bool:
     return device in ways and ways[device].entry == terminal
 
 
-def _push_pull(scene: Scene, p: str, q: str, ways: Mapping[str, Direction]) -> bool:
-    cp, _, ep = scene.nodes(p)
-    cq, _, eq = scene.nodes(q)
-    if _polarity(scene, p) == _polarity(scene, q) or cp == cq:
+def _push_pull(scene: Scene, p: str, q: str, ways: Mapping[str, Direction], place: int) -> bool:
+    """`place`: of the joined terminals, 0 collectors or 2 emitters; the others stand on different supplies."""
+    joined_p, joined_q = scene.nodes(p)[place], scene.nodes(q)[place]
+    outer_p, outer_q = (_supplies(scene, scene.nodes(device)[2 - place]) for device in (p, q))
+    if _polarity(scene, p) == _polarity(scene, q) or not outer_p or not outer_q or outer_p & outer_q:
         return False
-    joined = bool(through_resistors(scene, ep) & through_resistors(scene, eq)) and not scene.silent[ep]
-    driven = _enters(ways, p, "base") and _enters(ways, q, "base")
-    return joined and scene.silent[cp] and scene.silent[cq] and driven
+    joined = bool(through_resistors(scene, joined_p) & through_resistors(scene, joined_q))
+    return joined and not scene.silent[joined_p] and _enters(ways, p, "base") and _enters(ways, q, "base")
 
 
 def _differential(scene: Scene, p: str, q: str) -> bool:
@@ -132,6 +134,8 @@ def _differential(scene: Scene, p: str, q: str) -> bool:
         return False
     if scene.silent[ep] or scene.silent[eq]:
         return False
+    if bq in through_resistors(scene, cp) or bp in through_resistors(scene, cq):
+        return False  # one drives the other: a trigger or a latch
     return (
         bool(through_resistors(scene, ep) & through_resistors(scene, eq)) and ep not in (bq, cq) and eq not in (bp, cp)
     )

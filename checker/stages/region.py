@@ -19,6 +19,11 @@ FloatArray = NDArray[np.float64]
 REGIONS: tuple[Region, ...] = ("active", "saturated", "cut-off", "reverse-active")
 CUT_OFF = 1e-3
 SATURATED = 0.9
+UNLIMITED_A = 1e-3
+"""Stands for the shorted current where nothing but the device limits it: a collector and an emitter both at supplies,
+or at one through a coil. Cut off is then what carries under a microampere."""
+LEAST_OHM = 1e-3
+"""Under this the surroundings are a short for direct current (a coil at `SLOW_HZ` is not quite 0)."""
 SLOW_HZ = 1e-3
 """The frequency that stands for direct current in a linearised circuit: capacitors of a board are open there."""
 
@@ -76,7 +81,7 @@ def _cut_off(point: OperatingPoint) -> NDArray[np.bool_]:
 
 
 def shorted_current(point: OperatingPoint, slow: Response, j: int) -> FloatArray:
-    """Current [A], (S,), with collector and emitter of bipolar `j` shorted and the device out; inf between supplies."""
+    """Current [A], (S,), with collector and emitter of bipolar `j` shorted and the device out."""
     device = point.circuit.bipolars
     c, b, e = device.nodes[j, :3].tolist()
     out = slow.removed([device.names[j]])
@@ -86,4 +91,4 @@ def shorted_current(point: OperatingPoint, slow: Response, j: int) -> FloatArray
         vce = vce + np.real(out.transfer(c, node)[:, 0] - out.transfer(e, node)[:, 0]) * current
     z = np.real(out.between(c, e)[:, 0])
     with np.errstate(divide="ignore", invalid="ignore"):
-        return np.where(z > 0.0, np.abs(vce / z), np.inf)
+        return np.where(z > LEAST_OHM, np.abs(vce / z), UNLIMITED_A)

@@ -35,7 +35,10 @@ def participation(scene: Scene, device: str) -> Part | None:
     for path in scene.paths:
         without = passive.voltages(path.drive)[0, :, path.to.node]
         change = np.abs(1.0 - without / path.h)
-        weight = np.maximum(change, _share(scene, device, path))
+        share = _share(scene, device, path)
+        if np.any(share > change):
+            share = share * _reaches(scene, device, path)
+        weight = np.maximum(change, share)
         if np.isfinite(weight).all() and (best is None or weight.max() > best.weight.max()):
             best = Part(weight=weight, path=path)
     return best
@@ -47,7 +50,7 @@ def _share(scene: Scene, device: str, path: Path) -> NDArray[np.float64]:
     load = _load_admittance(scene, path)
     driven = np.abs(path.h) * load
     # Below the load's own current the share is meaningless (a port without a load): only change counts there.
-    return np.where(driven > 0.0, current / np.maximum(driven, 1e-30), 0.0) * _reaches(scene, device, path)
+    return np.where(driven > 0.0, current / np.maximum(driven, 1e-30), 0.0)
 
 
 def _load_admittance(scene: Scene, path: Path) -> NDArray[np.float64]:
@@ -63,7 +66,12 @@ def _reaches(scene: Scene, device: str, path: Path) -> NDArray[np.float64]:
 
     A current source's own current is no share of the load: what it injects must arrive at the port.
     """
-    c, _, e = scene.nodes(device)
-    current = scene.controlled_current(device, path.solution)[0]
-    z = scene.response.transfer(path.to.node, e)[0] - scene.response.transfer(path.to.node, c)[0]
+    c, b, e = scene.nodes(device)
+    current = np.abs(scene.controlled_current(device, path.solution)[0])
+    response = scene.response
+    # In a feedback pair the loop takes back what is injected: what drives this device's base must not answer.
+    for name in scene.devices:
+        if name != device and b in (scene.nodes(name)[0], scene.nodes(name)[2]):
+            response = scene.without_gm(name, response)
+    z = response.transfer(path.to.node, e)[0] - response.transfer(path.to.node, c)[0]
     return np.asarray(np.abs(current * z) > 0.1 * np.abs(path.h), dtype=float)

@@ -37,9 +37,9 @@ class Scene:
     silent: NDArray[np.bool_]
     passive_y: ComplexArray
 
-    def without_gm(self, device: str) -> Response:
+    def without_gm(self, device: str, response: Response | None = None) -> Response:
         """The same circuit with one bipolar's controlled current taken out, everything else of it kept."""
-        return self.response.replaced(device, self.passive_y[:, :, self.devices.index(device)])
+        return (response or self.response).replaced(device, self.passive_y[:, :, self.devices.index(device)])
 
     def controlled_current(self, device: str, solution: ComplexArray) -> ComplexArray:
         """gm vbe of a bipolar in a solution, complex128 (S, F) [A], counted into the collector."""

@@ -197,6 +197,8 @@ def test_a_pin_on_two_nets_and_a_node_twice(read: Read) -> None:
         ("(comp (ref R1) (value 10k) (fields (field (name Note) DNP)))", True),
         ('(comp (ref R1) (value 10k) (fields (field (name Note) "replace by DNP variant")))', False),
         ("(comp (ref R1) (value 10k))", False),
+        ('(comp (ref C1) (value "100 nF"))', False),
+        ('(comp (ref C1) (value "100 NF"))', False),
         ('(comp (ref R1) (value 10k) (property (name "exclude_from_bom")))', False),
     ],
 )

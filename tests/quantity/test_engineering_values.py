@@ -35,6 +35,8 @@ OHMS = [
     ("100R/1W", 100.0),
     ("10k lin", 10e3),
     ("4k75", 4750.0),
+    ("10k 0603", 10e3),
+    ("10k 100ppm", 10e3),
 ]
 
 
@@ -143,6 +145,10 @@ def test_tolerance_and_rating(text: str, unit: str, si: float, tolerance: float 
         ("2x10k", "ohm"),
         ("10k||4k7", "ohm"),
         ("1,500", "ohm"),
+        ("0603 10k", "ohm"),
+        ("10k/47k", "ohm"),
+        ("4R7 or 10R", "ohm"),
+        ("10u / 22uF", "F"),
         ("4k71%", "ohm"),
         ("-10k", "ohm"),
         ("1e400", "ohm"),

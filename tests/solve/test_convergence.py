@@ -246,14 +246,15 @@ def test_self_heating_closes_its_loop() -> None:
 # --- once found wrong ------------------------------------------------------------------------------------------
 
 
-def test_grounded_base_does_not_part_collector_from_emitter() -> None:
+@pytest.mark.parametrize("device", [NPN, {"bf": 280.0, "vaf": 74.0}], ids=["inner base", "no inner nodes"])
+def test_grounded_base_does_not_part_collector_from_emitter(device: dict[str, float]) -> None:
     """With its base at a known voltage a transistor's other nets were once islands of their own."""
     b = Bench(27.0)
     b.v("VP", "vp", "0", 12.0)
     b.v("VN", "vn", "0", -12.0)
     b.r("RC", "vp", "c", 2.2e3)
     b.r("RE", "e", "vn", 5.6e3)
-    b.q("Q1", "c", "0", "e", **NPN)
+    b.q("Q1", "c", "0", "e", **device)
     point = _certified(b)
     assert len(point.islands) == 1
     np.testing.assert_allclose(point.bipolar["ic_a"], 2.0e-3, rtol=0.02)
