@@ -6,9 +6,10 @@ from collections.abc import Mapping
 from dataclasses import field
 from typing import Literal
 
-from checker.record.base import Record, record
+from checker.record.base import Record
 from checker.record.figures import Complex
 from checker.record.finding import Finding
+from checker.shape import frozen
 
 COMPARISON: Literal["stageproof-comparison/1"] = "stageproof-comparison/1"
 
@@ -16,7 +17,7 @@ Figure = Complex | float | str | bool | None
 """A figure, or a word such as a region."""
 
 
-@record
+@frozen
 class Side(Record):
     """One of the two reports."""
 
@@ -34,7 +35,7 @@ class Side(Record):
     """Something internal failed while it was made."""
 
 
-@record
+@frozen
 class Edit(Record):
     """One way in which a part differs."""
 
@@ -54,7 +55,7 @@ class Edit(Record):
     """Ids of the stages that the part belongs to, in the new board; of a removed part in the old one."""
 
 
-@record
+@frozen
 class Condition(Record):
     """Something that is no part and moves figures or judgements all the same: band, temperature, limit, rail."""
 
@@ -66,7 +67,7 @@ class Condition(Record):
     """As text."""
 
 
-@record
+@frozen
 class Moved(Record):
     """One figure that differs beyond the tolerance."""
 
@@ -78,7 +79,7 @@ class Moved(Record):
     """In the new report; null where it has none."""
 
 
-@record
+@frozen
 class Changed(Record):
     """A stage, group, port or path whose figures differ."""
 
@@ -96,7 +97,7 @@ class Changed(Record):
     """In the order of the report."""
 
 
-@record
+@frozen
 class Comparison(Record):
     """Everything that differs between two reports."""
 
