@@ -21,7 +21,7 @@ from checker.solve.response import small_signal
 from checker.solve.states import searched, settled
 from checker.spread.corners import corner_scenarios
 from checker.spread.influence import Influence, influence
-from checker.stages.ports import directed, wide_grid_hz, widest_band
+from checker.stages.ports import directed, supposed_output, wide_grid_hz, widest_band
 from checker.stages.recognise import recognise
 from checker.stages.region import REGIONS, region_codes
 from checker.stages.types import Recognition
@@ -119,10 +119,15 @@ def _oscillating(point: OperatingPoint, growing: np.ndarray[tuple[int], np.dtype
 
 
 def _directed(circuit: Circuit, point: OperatingPoint) -> tuple[tuple[Port, ...], tuple[str, ...]]:
-    """Ports with roles; the sweep for directions is made only where one is missing."""
-    if all(port.role is not None for port in circuit.ports):
-        return circuit.ports, ()
-    return directed(circuit.ports, small_signal(point, wide_grid_hz()))
+    """Ports with roles; the sweep is made only where a direction or every output is missing."""
+    words: tuple[str, ...]
+    ports, words = circuit.ports, ()
+    if any(port.role is None for port in ports):
+        ports, words = directed(ports, small_signal(point, wide_grid_hz()))
+    if any(port.role == "input" for port in ports) and not any(port.role == "output" for port in ports):
+        ports, more = supposed_output(point, ports, small_signal(point, wide_grid_hz()))
+        words = (*words, *more)
+    return ports, words
 
 
 def _frequencies(

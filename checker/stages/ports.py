@@ -2,12 +2,14 @@
 
 from __future__ import annotations
 
+import re
 from dataclasses import replace
 
 import numpy as np
 from numpy.typing import NDArray
 
-from checker.circuit.types import Port
+from checker.circuit.types import Circuit, Port
+from checker.pattern import lazy
 from checker.solve.operating import OperatingPoint
 from checker.solve.response import Response, port_drive, small_signal
 from checker.words import PortRole
@@ -75,3 +77,64 @@ def widest_band(point: OperatingPoint, ports: tuple[Port, ...]) -> tuple[tuple[f
     spans = [(f[a], f[b - 1]) for a, b in zip(runs[::2], runs[1::2], strict=True)]
     low, high = max(spans, key=lambda s: np.log(s[1] / s[0]))
     return (float(low), float(high)), float(np.sqrt(low * high))
+
+
+_OUTPUT_NAME = lazy(r"v?_?out(put)?[0-9]*", re.IGNORECASE)
+
+
+def supposed_output(
+    point: OperatingPoint, ports: tuple[Port, ...], response: Response
+) -> tuple[tuple[Port, ...], tuple[str, ...]]:
+    """An output for a board that has inputs and nothing else: the net named like one, else the last net that carries
+    signal. Returns the ports with it and the sentence that says so."""
+    sources = [p for p in ports if p.role == "input"]
+    if not sources or any(p.role == "output" for p in ports):
+        return ports, ()
+    v = np.abs(response.voltages(port_drive(sources[0]))[0]).max(axis=0)
+    taken = {p.node for p in ports}
+    live = [
+        n for n in range(1, len(v)) if np.isfinite(v[n]) and v[n] > 1e-6 and n not in taken and not response.known[n]
+    ]
+    nets = point.circuit.nets
+    named = [n for n in live if _OUTPUT_NAME.fullmatch(nets[n].rpartition("/")[2])]
+    hops = device_hops(point.circuit, sources[0].node, response)
+    ends = named or [n for n in live if hops.get(n, 0) > 0]
+    if not ends:
+        return ports, ()
+    node = max(ends, key=lambda n: (hops.get(n, 0), float(v[n]), nets[n]))
+    port = Port(name=nets[node], net=nets[node], node=node, role="output", reference_ohm=None)
+    return (*ports, port), (f"no output is declared: {nets[node]}, where the signal ends, taken as one",)
+
+
+def device_hops(circuit: Circuit, start: int, response: Response) -> dict[int, int]:
+    """Transistors between a net and each net that they drive onward from it: base to collector and emitter, emitter to
+    collector; passive parts carry on free of charge. Only collectors and emitters that carry signal are listed."""
+    passive = [row for t in (circuit.resistors, circuit.capacitors, circuit.inductors) for row in t.nodes.tolist()]
+    reached: dict[int, int] = {start: 0}
+    driven: dict[int, int] = {}
+    hop = 0
+    while True:
+        _spread(reached, passive, hop, response)
+        fresh: set[int] = set()
+        for c, b, e, _ in circuit.bipolars.nodes.tolist():
+            exits = {c, e} if b in reached else {c} if e in reached else set()
+            fresh |= {node for node in exits if node not in reached and not response.known[node]}
+        if not fresh:
+            return driven
+        hop += 1
+        reached.update(dict.fromkeys(fresh, hop))
+        driven.update(dict.fromkeys(fresh, hop))
+
+
+def _spread(reached: dict[int, int], passive: list[list[int]], hop: int, response: Response) -> None:
+    """Let passive parts carry what is reached on to their other nets."""
+    growing = True
+    while growing:
+        more = {
+            far
+            for a, b in passive
+            for here, far in ((a, b), (b, a))
+            if here in reached and far not in reached and not response.known[far]
+        }
+        reached.update(dict.fromkeys(more, hop))
+        growing = bool(more)
