@@ -86,7 +86,12 @@ def test_a_later_subject_that_values_choose_does_not_matter() -> None:
 
 def test_two_ports_are_told_apart_though_they_are_no_parts() -> None:
     circuit = board()
-    assert mark(circuit, verdict(subject=("in", "out"))) != mark(circuit, verdict(subject=("in", "monitor")))
+    others = [
+        Port(name=name, net="c", node=3, role="output", reference_ohm=None, declared=True) for name in ("IF", "monitor")
+    ]
+    circuit = replace(circuit, ports=(*circuit.ports, *others))
+    pairs = [("antenna", "IF"), ("antenna", "monitor")]
+    assert len({mark(circuit, verdict(subject=pair)) for pair in pairs}) == 2
 
 
 def test_equal_findings_are_numbered_by_reference() -> None:
