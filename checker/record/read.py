@@ -5,7 +5,7 @@ from __future__ import annotations
 import json
 import math
 import types
-from collections.abc import Mapping
+from collections.abc import Callable, Mapping
 from dataclasses import fields
 from functools import cache
 from typing import Any, Literal, Union, get_args, get_origin, get_type_hints
@@ -14,24 +14,45 @@ from checker.record.base import Record, has_default, key_of
 from checker.record.report import SCHEMA, Report
 from checker.trouble import InputTrouble
 
+SEVERAL = "stageproof-reports/1"
+"""Names the object that holds the reports of several netlists."""
+
 
 def from_json(text: str, *, file: str = "") -> Report:
     """The report in `text`. Keys that this version does not know are passed over.
 
     Raises InputTrouble, naming `file`, for text that is no JSON, another schema, or a value of a wrong type.
     """
+    return _read(text, file, _one)[0]
+
+
+def several_from_json(text: str, *, file: str = "") -> tuple[Report, ...]:
+    """The report in `text`, or all of those that one call on several netlists wrote. Raises as `from_json` does."""
+    return _read(text, file, _all)
+
+
+def _read(text: str, file: str, reports: Callable[[Any], tuple[Report, ...]]) -> tuple[Report, ...]:
     try:
-        value = json.loads(text, parse_constant=_no_constant)
-        if not isinstance(value, dict) or value.get("schema") != SCHEMA:
-            raise ValueError(f'not a report: expected an object whose "schema" is "{SCHEMA}"')
-        report = _record(Report, value, "report")
+        return reports(json.loads(text, parse_constant=_no_constant))
     except RecursionError:
         raise InputTrouble("not a report: nested too deeply", file=file) from None
     except ValueError as problem:
         line = problem.lineno if isinstance(problem, json.JSONDecodeError) else 0
         raise InputTrouble(f"not a readable report: {problem}", file=file, line=line) from None
+
+
+def _one(value: Any) -> tuple[Report, ...]:
+    if not isinstance(value, dict) or value.get("schema") != SCHEMA:
+        raise ValueError(f'not a report: expected an object whose "schema" is "{SCHEMA}"')
+    report = _record(Report, value, "report")
     assert isinstance(report, Report)  # noqa: S101 - `_record` returns the class it is given
-    return report
+    return (report,)
+
+
+def _all(value: Any) -> tuple[Report, ...]:
+    if isinstance(value, dict) and value.get("schema") == SEVERAL and isinstance(value.get("reports"), list):
+        return tuple(report for each in value["reports"] for report in _one(each))
+    return _one(value)
 
 
 def _no_constant(name: str) -> float:

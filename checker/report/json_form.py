@@ -5,6 +5,7 @@ from __future__ import annotations
 from collections.abc import Sequence
 
 from checker.record import Report, in_order, to_json
+from checker.record.read import SEVERAL
 from checker.record.write import dump, plain
 
 
@@ -18,7 +19,7 @@ def render_several(reports: Sequence[Report], unusable: Sequence[tuple[str, str]
     return (
         dump(
             {
-                "schema": "stageproof-reports/1",
+                "schema": SEVERAL,
                 "reports": [plain(in_order(report)) for report in reports],
                 "unusable": [{"path": path, "message": message} for path, message in unusable],
             }
