@@ -1,7 +1,7 @@
 """The in-place small-signal solution over frequencies, with low-rank changes.
 
 One inverse an AC island serves every drive; removing a device, shorting a part or opening a link is an update of
-low rank, never a second factorisation, and never another bias.
+low rank (a second factorisation only where that would cost digits), and never another bias.
 
 Unknowns: voltages of nets that no ideal source fixes, then branch currents of floating sources and of inductors.
 """

@@ -1,0 +1,243 @@
+"""Cold starts: ordinary stages in few passes, hard circuits at all, always with the full certificate."""
+
+from __future__ import annotations
+
+from collections.abc import Callable
+
+import numpy as np
+import pytest
+
+from checker.constants import FIRST_RUNG, KCL_REL, STEP_ABS_V, STEP_REL
+from checker.solve.counters import COUNTERS
+from checker.solve.operating import OperatingPoint, operating_point, self_heated
+from tests.bench import Bench
+from tests.reference.boards import ALL, NPN, PNP, Board
+
+ORDINARY_PASSES = 15
+
+
+def _certified(b: Bench) -> OperatingPoint:
+    point = operating_point(b.circuit())
+    for island in point.islands:
+        assert island.ok.all(), island
+        assert (island.kcl <= KCL_REL).all()
+        assert (island.step_v <= STEP_ABS_V + STEP_REL * 1e4).all()
+    return point
+
+
+@pytest.mark.parametrize("make", ALL, ids=[make.__name__ for make in ALL])
+def test_ordinary_stages_need_few_passes(make: Callable[[], Board]) -> None:
+    circuit = make().bench.circuit()
+    COUNTERS.reset()
+    point = operating_point(circuit)
+    assert all(island.ok.all() for island in point.islands)
+    assert 1 < COUNTERS.newton_passes <= ORDINARY_PASSES
+
+
+def _darlington_chain() -> Bench:
+    b = Bench(27.0)
+    b.v("VCC", "vcc", "0", 30.0)
+    b.r("RB", "vcc", "n0", 10e6)
+    for j in range(5):
+        b.q(f"Q{j}", "vcc", f"n{j}", f"n{j + 1}", **NPN)
+    b.r("RE", "n5", "0", 100.0)
+    return b
+
+
+def _high_gain_feedback() -> Bench:
+    """Three common-emitter stages with direct feedback from the last collector to the first base."""
+    b = Bench(27.0)
+    b.v("VCC", "vcc", "0", 15.0)
+    for j in range(3):
+        b.r(f"RC{j}", "vcc", f"c{j}", 10e3)
+        b.q(f"Q{j}", f"c{j}", "b0" if j == 0 else f"c{j - 1}", "0", **NPN)
+    b.r("RF", "c2", "b0", 1e6)
+    b.r("RG", "b0", "0", 1e5)
+    return b
+
+
+def _output_stage() -> Bench:
+    """Differential input, current sources, driver, VBE multiplier, Darlington outputs, overall feedback."""
+    b = Bench(27.0)
+    b.v("VP", "vp", "0", 30.0)
+    b.v("VN", "vn", "0", -30.0)
+    b.r("RIN", "ip", "0", 22e3)
+    b.q("Q1", "a", "ip", "t", pnp=True, **PNP)
+    b.q("Q2", "m", "im", "t", pnp=True, **PNP)
+    b.r("RT", "vp", "t", 15e3)
+    b.q("Q3", "a", "m", "vn", **NPN)
+    b.q("Q4", "m", "m", "vn", **NPN)
+    b.q("Q5", "lo", "a", "ed", **NPN)
+    b.r("RD", "ed", "vn", 100.0)
+    b.r("RX", "hi", "xb", 2.2e3)
+    b.r("RY", "xb", "lo", 680.0)
+    b.q("Q6", "hi", "xb", "lo", **NPN)
+    b.r("RI", "vp", "hi", 4.7e3)
+    b.q("Q7", "vp", "hi", "d1", **NPN)
+    b.q("Q8", "vp", "d1", "e1", **NPN)
+    b.q("Q9", "vn", "lo", "d2", pnp=True, **PNP)
+    b.q("Q10", "vn", "d2", "e2", pnp=True, **PNP)
+    b.r("RDD", "d1", "d2", 220.0)
+    b.r("RE1", "e1", "o", 0.33)
+    b.r("RE2", "o", "e2", 0.33)
+    b.r("RF", "o", "im", 22e3)
+    b.r("RG", "im", "g", 1e3)
+    b.c("CG", "g", "0", 100e-6)
+    b.r("RL", "o", "0", 8.0)
+    return b
+
+
+def _four_hundred_volts() -> Bench:
+    b = Bench(27.0)
+    b.v("VCC", "vcc", "0", 400.0)
+    b.r("RC", "vcc", "c", 150e3)
+    b.r("RF", "c", "b", 1.5e6)
+    b.r("RB", "b", "0", 10e3)
+    b.q("Q1", "c", "b", "0", **{**NPN, "vaf": 800.0})
+    return b
+
+
+def _microvolts() -> Bench:
+    b = Bench(27.0)
+    b.v("VCC", "vcc", "0", 3e-6)
+    b.r("RC", "vcc", "c", 1e3)
+    b.r("RB", "vcc", "b", 1e5)
+    b.q("Q1", "c", "b", "0", **NPN)
+    return b
+
+
+def _zero_volts() -> Bench:
+    b = Bench(27.0)
+    b.v("VCC", "vcc", "0", 0.0)
+    b.r("RC", "vcc", "c", 1e3)
+    b.r("RB", "vcc", "b", 1e5)
+    b.q("Q1", "c", "b", "0", **NPN)
+    return b
+
+
+def _straight_across() -> Bench:
+    """Base straight on 5 V: only lead resistances and high injection limit tens of amperes."""
+    b = Bench(27.0)
+    b.v("V", "v", "0", 5.0)
+    b.q("Q1", "v", "v", "0", **NPN)
+    b.d("D1", "v", "0", rs=0.5, is_=1e-9, n=1.8)
+    return b
+
+
+def _class_b() -> Bench:
+    """No bias at all between the bases; off at rest."""
+    b = Bench(27.0)
+    b.v("VP", "vp", "0", 12.0)
+    b.v("VN", "vn", "0", -12.0)
+    b.v("VI", "i", "0", 0.0)
+    b.q("Q1", "vp", "i", "o", **NPN)
+    b.q("Q2", "vn", "i", "o", pnp=True, **PNP)
+    b.r("RL", "o", "0", 8.0)
+    return b
+
+
+def _diode_string() -> Bench:
+    """Twenty diodes in series, and a rectifier bridge backwards."""
+    b = Bench(27.0)
+    b.v("V", "n0", "0", 24.0)
+    for j in range(20):
+        b.d(f"D{j}", f"n{j}", f"n{j + 1}", is_=1e-12, rs=0.1)
+    b.r("R", "n20", "0", 1e3)
+    b.d("DX", "0", "n10", is_=1e-12, bv=6.0)
+    return b
+
+
+def _reverse_avalanche() -> Bench:
+    b = Bench(27.0)
+    b.v("V", "v", "0", 300.0)
+    b.r("R", "v", "x", 1e3)
+    b.d("D1", "0", "x", bv=33.0, ibv=1e-3, rs=2.0)
+    b.d("D2", "0", "y", bv=15.0, ibv=1e-3)
+    b.r("R2", "x", "y", 1e3)
+    return b
+
+
+def _schmitt() -> Bench:
+    """Emitter-coupled pair with positive feedback, well past its threshold."""
+    b = Bench(27.0)
+    b.v("VCC", "vcc", "0", 9.0)
+    b.v("VI", "b1", "0", 4.0)
+    b.r("RC1", "vcc", "c1", 3.3e3)
+    b.r("RC2", "vcc", "c2", 1e3)
+    b.r("RE", "e", "0", 470.0)
+    b.r("RX", "c1", "b2", 10e3)
+    b.r("RY", "b2", "0", 10e3)
+    b.q("Q1", "c1", "b1", "e", **NPN)
+    b.q("Q2", "c2", "b2", "e", **NPN)
+    return b
+
+
+HARD = (
+    _darlington_chain, _high_gain_feedback, _output_stage, _four_hundred_volts, _microvolts, _zero_volts,
+    _straight_across, _class_b, _diode_string, _reverse_avalanche, _schmitt,
+)  # fmt: skip
+
+
+@pytest.mark.parametrize("make", HARD, ids=[make.__name__.strip("_") for make in HARD])
+def test_hard_circuits_are_certified(make: Callable[[], Bench]) -> None:
+    COUNTERS.reset()
+    point = _certified(make())
+    assert np.isfinite(point.v_v[:, point.plan.unknown >= 0]).all()
+    assert COUNTERS.newton_passes < 400
+
+
+def test_output_stage_rests_where_feedback_puts_it() -> None:
+    point = _certified(_output_stage())
+    assert abs(point.v_v[0, point.circuit.node("o")]) < 0.5
+    assert (np.abs(point.bipolar["ic_a"][0]) > 1e-6).all()
+
+
+def test_zero_supply_gives_zero_everywhere() -> None:
+    point = _certified(_zero_volts())
+    np.testing.assert_allclose(point.v_v, 0.0, atol=1e-12)
+
+
+@pytest.mark.parametrize("t_c", [-55.0, 27.0, 175.0])
+def test_over_temperature(t_c: float) -> None:
+    b = Bench(t_c)
+    b.v("VCC", "vcc", "0", 10.0)
+    b.r("R1", "vcc", "b", 10e3)
+    b.r("R2", "b", "0", 2.2e3)
+    b.r("RC", "vcc", "c", 3.6e3)
+    b.r("RE", "e", "0", 1e3)
+    b.q("Q1", "c", "b", "e", tnom_c=27.0, **NPN)
+    ic = float(_certified(b).bipolar["ic_a"][0, 0])
+    assert 0.8e-3 < ic < 1.6e-3
+
+
+def test_helpers_reach_the_same_answer_as_the_plain_start() -> None:
+    """The ladders themselves, on circuits that do not need them: same voltages, no helper left in."""
+    from checker.solve import newton
+    from checker.solve.assemble import Assembler
+
+    assert 0.0 < FIRST_RUNG < 1.0
+    for make in ALL:
+        point = operating_point(make().bench.circuit())
+        a = Assembler(point.circuit, point.plan, point.bipolar_k, point.diode_k)
+        count = sum(g[1] for g in point.plan.groups)
+        none = np.zeros((1, count), dtype=bool)
+        for helper in (newton.BY_CONDUCTANCE, newton.BY_SOURCES):
+            x, reached = newton._continue(a, np.zeros((1, point.plan.n_unknown)), none, helper)
+            assert reached.all(), make.__name__
+            np.testing.assert_allclose(x, point.solved.x, rtol=1e-7, atol=1e-9, err_msg=make.__name__)
+
+
+def test_self_heating_closes_its_loop() -> None:
+    """TJ - TA = P Rth at the solution, to the hundredth of a kelvin at which the rounds stop."""
+    b = Bench(25.0)
+    b.v("VCC", "vcc", "0", 12.0)
+    b.r("RB", "vcc", "b", 56e3)
+    b.r("RC", "vcc", "c", 100.0)
+    b.r("RE", "e", "0", 22.0)
+    b.q("Q1", "c", "b", "e", rth=200.0, **NPN)
+    cold = _certified(b)
+    hot = self_heated(cold)
+    rise = hot.bipolar_k[0, 0] - 298.15
+    assert rise > 20.0
+    np.testing.assert_allclose(rise, hot.bipolar["power_w"][0, 0] * 200.0, atol=0.05)
+    assert hot.bipolar["ic_a"][0, 0] > cold.bipolar["ic_a"][0, 0]
