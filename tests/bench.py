@@ -141,6 +141,11 @@ class Bench:
             raise ValueError(f"scenario axes of different lengths: {sorted(sizes)}")
         return sizes.pop() if sizes else 1
 
+    def _device_tables(self, s: int) -> dict[str, Devices]:
+        kinds = {"bipolar": ("q", BIPOLAR), "diode": ("d", DIODE)}
+        tables = {kind: (self._tables[letter], defaults) for kind, (letter, defaults) in kinds.items()}
+        return {kind: _devices(table, defaults, s) for kind, (table, defaults) in tables.items() if table.names}
+
     def circuit(self) -> Circuit:
         """The finished circuit, all values on one scenario axis."""
         s = self._scenarios()
@@ -153,8 +158,7 @@ class Bench:
             couplings=Couplings(names=tuple(pairs.names), pair=_nodes(pairs, 2), k=_columns(pairs.values, s)),
             voltages=_branches(self._tables["v"], s),
             currents=_branches(self._tables["i"], s),
-            bipolars=_devices(self._tables["q"], 4, BIPOLAR, s),
-            diodes=_devices(self._tables["d"], 2, DIODE, s),
+            devices=self._device_tables(s),
             temperature_k=np.broadcast_to(self._t_k, (s,)).copy(),
             scenarios=tuple(
                 Scenario(name="nominal" if j == 0 else f"case {j}", kind="nominal" if j == 0 else "sample")
@@ -178,10 +182,10 @@ def _branches(table: _Table, s: int) -> Branches:
     return Branches(names=tuple(table.names), nodes=_nodes(table, 2), value=_columns(table.values, s))
 
 
-def _devices(table: _Table, width: int, defaults: Mapping[str, float], s: int) -> Devices:
+def _devices(table: _Table, defaults: Mapping[str, float], s: int) -> Devices:
     return Devices(
         names=tuple(table.names),
-        nodes=_nodes(table, width),
+        nodes=np.array(table.nodes, dtype=np.int64),
         polarity=np.array(table.polarity, dtype=float),
         params={key: _columns([p[key] for p in table.params], s) for key in defaults},
         tnom_k=np.array(table.tnom_k, dtype=float),

@@ -78,6 +78,12 @@ DIODE: Final[Mapping[str, float]] = {
     "af": 1.0,
 }
 
+PARAMETERS: Final[Mapping[str, Mapping[str, float]]] = {
+    "bipolar": BIPOLAR,
+    "diode": DIODE,
+}
+"""Every device family of a board with the parameters of its table and their defaults."""
+
 BIPOLAR_SPELLINGS: Final[Mapping[str, str]] = {
     "va": "vaf",
     "vb": "var",

@@ -24,9 +24,11 @@ from checker.devices.junction import (
 )
 
 FloatArray = NDArray[np.float64]
-TERMINALS = 3
+TERMINALS, OUTER = 3, 2
 INNER = (("rs", 0, 2),)
 """Series resistance, outer terminal, inner terminal."""
+PATHS = ((0, 2), (2, 1))
+CONTROLS = ()
 
 
 def at_temperature(p: Mapping[str, FloatArray], t_k: FloatArray, tnom_k: FloatArray) -> dict[str, FloatArray]:
@@ -110,3 +112,11 @@ def capacitance(p: Mapping[str, FloatArray], polarity: FloatArray, v: FloatArray
     c[..., 2, 2] = c[..., 1, 1] = c_d
     c[..., 2, 1] = c[..., 1, 2] = -c_d
     return c
+
+
+def figures(p: Mapping[str, FloatArray], polarity: FloatArray, v: FloatArray) -> dict[str, FloatArray]:
+    """i_a [A] from anode to cathode, v_v [V] across, power_w [W]; each (S, n)."""
+    i, _ = current(p, junctions(v, polarity)[..., 0])
+    across = v[..., 0] - v[..., 1]
+    i = np.where(np.isfinite(across), i, np.nan)
+    return {"i_a": i, "v_v": across, "power_w": i * across}

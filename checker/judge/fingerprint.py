@@ -49,7 +49,7 @@ def _key(verdict: Verdict, labels: Mapping[str, str]) -> list[str]:
 def _labels(circuit: Circuit) -> dict[str, str]:
     """Structure label of each part, by refinement: a part knows its nets, a net its parts, `STEPS` times."""
     fixed, free = _nets(circuit)
-    polarity = dict(zip(circuit.bipolars.names, circuit.bipolars.polarity.tolist(), strict=True))
+    polarity = dict(zip(circuit.transistors.names, circuit.transistors.polarity.tolist(), strict=True))
     parts = {ref: f"{fact.kind}{polarity.get(ref, '')}" for ref, fact in circuit.parts.items()}
     small = {ref: fact for ref, fact in circuit.parts.items() if len(fact.terminals) <= _MOST_PINS}
     for _ in range(STEPS):

@@ -30,8 +30,7 @@ def nominal_circuit(circuit: Circuit) -> Circuit:
         voltages=branches(circuit.voltages),
         currents=branches(circuit.currents),
         couplings=replace(circuit.couplings, k=circuit.couplings.k[:1]),
-        bipolars=devices(circuit.bipolars),
-        diodes=devices(circuit.diodes),
+        devices={kind: devices(table) for kind, table in circuit.devices.items()},
         temperature_k=circuit.temperature_k[:1],
         scenarios=circuit.scenarios[:1],
     )

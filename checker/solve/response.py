@@ -8,16 +8,16 @@ Unknowns: voltages of nets that no ideal source fixes, then branch currents of f
 
 from __future__ import annotations
 
-from collections.abc import Sequence
+from collections.abc import Mapping, Sequence
 from dataclasses import replace
 
 import numpy as np
 from numpy.typing import NDArray
 
 from checker.circuit.types import Branches, Circuit, Port
-from checker.devices import bipolar
+from checker.devices.family import TRANSISTORS
 from checker.shape import frozen
-from checker.solve.admittance import device_pencils, outer_admittance, transconductance
+from checker.solve.admittance import device_pencils, intrinsic, outer_admittance
 from checker.solve.counters import COUNTERS
 from checker.solve.operating import OperatingPoint
 from checker.solve.system import signal_system
@@ -52,7 +52,8 @@ class Response:
     """`z` complex128 (S, F, u, u): inverse of the system matrix `y`; `y_known` (S, F, u, n_net): coupling from nets.
 
     Immutable; `removed`, `shorted`, `opened` return changed copies. `row` (n_net,): unknown of a net, -1 if none.
-    `bipolar_y` (S, F, n, 4, 4), `diode_y` (S, F, n, 2, 2): devices at their terminals; `passive_y`: bipolars without gm.
+    `device_y`: family -> devices at their outer terminals (S, F, n, k, k); `passive_y`: the transistors of them without
+    gm.
     """
 
     circuit: Circuit
@@ -64,9 +65,8 @@ class Response:
     z: ComplexArray
     y: ComplexArray
     y_known: ComplexArray
-    bipolar_y: ComplexArray
-    diode_y: ComplexArray
-    passive_y: ComplexArray
+    device_y: Mapping[str, ComplexArray]
+    passive_y: Mapping[str, ComplexArray]
 
     # --- solutions ---------------------------------------------------------------------------------------
     def solution(self, drive: Drive) -> ComplexArray:
@@ -106,7 +106,7 @@ class Response:
 
     # --- elements ----------------------------------------------------------------------------------------
     def block(self, part: str) -> Block:
-        """Admittance block of a resistor, capacitor, diode or bipolar. Raises KeyError for another part."""
+        """Admittance block of a resistor, capacitor or semiconductor. Raises KeyError for another part."""
         c = self.circuit
         s = 2j * np.pi * self.f_hz
         for table, y_of in ((c.resistors, self._y_r), (c.capacitors, self._y_c)):
@@ -114,11 +114,8 @@ class Response:
                 j = table.names.index(part)
                 y = y_of(table, j, s)
                 return Block(nodes=_ends(table, j), y=y[..., None, None] * np.array([[1.0, -1.0], [-1.0, 1.0]]))
-        for devices, y in ((c.bipolars, self.bipolar_y), (c.diodes, self.diode_y)):
-            if part in devices.names:
-                j = devices.names.index(part)
-                return Block(nodes=tuple(int(n) for n in devices.nodes[j]), y=y[:, :, j])
-        raise KeyError(part)
+        kind, j = c.find_device(part)
+        return Block(nodes=tuple(c.devices[kind].nodes[j].tolist()), y=self.device_y[kind][:, :, j])
 
     def _y_r(self, table: Branches, j: int, _s: ComplexArray) -> ComplexArray:
         return np.broadcast_to(1.0 / table.value[:, j, None], (self.z.shape[0], len(self.f_hz))).astype(complex)
@@ -127,7 +124,7 @@ class Response:
         return table.value[:, j, None] * s
 
     def current(self, part: str, terminal: int, solution: ComplexArray) -> ComplexArray:
-        """Current into a part's terminal (0 or 1; bipolar c, b, e, s), complex128 (S, F) [A]."""
+        """Current into a part's terminal (0 or 1; of a semiconductor as in its table), complex128 (S, F) [A]."""
         c = self.circuit
         if part in c.inductors.names:
             row = self.l_row[c.inductors.names.index(part)]
@@ -139,14 +136,15 @@ class Response:
 
     # --- changes -----------------------------------------------------------------------------------------
     def without_gm(self, device: str) -> Response:
-        """The same circuit with one bipolar's controlled current taken out, everything else of it kept."""
-        return self.replaced(device, self.passive_y[:, :, self.circuit.bipolars.names.index(device)])
+        """The same circuit with one transistor's controlled current taken out, everything else of it kept."""
+        kind, j = self.circuit.find_device(device)
+        return self.replaced(device, self.passive_y[kind][:, :, j])
 
     def controlled_current(self, device: str, solution: ComplexArray) -> ComplexArray:
-        """gm vbe of a bipolar in a solution, complex128 (S, F) [A], counted into the collector."""
-        j = self.circuit.bipolars.names.index(device)
-        v = solution[..., self.circuit.bipolars.nodes[j]]
-        active = self.bipolar_y[:, :, j, 0] - self.passive_y[:, :, j, 0]
+        """gm times the control voltage in a solution, complex128 (S, F) [A], counted into the output terminal."""
+        kind, j = self.circuit.find_device(device)
+        v = solution[..., self.circuit.devices[kind].nodes[j]]
+        active = self.device_y[kind][:, :, j, 0] - self.passive_y[kind][:, :, j, 0]
         return np.einsum("sfc,sfc->sf", active, v)
 
     def removed(self, devices: Sequence[str]) -> Response:
@@ -198,7 +196,7 @@ class Response:
         safe = np.where(y_tt == 0.0, 1.0, y_tt)
         delta = -block.y[..., :, t, None] * block.y[..., None, t, :] / safe[..., None, None]
         out = self._changed(block.nodes, delta)
-        return out._with_device(part, block.y + delta) if part in self.circuit.bipolars.names else out
+        return out._with_device(part, block.y + delta)
 
     def _open_inductor(self, part: str) -> Response:
         row = self.l_row[self.circuit.inductors.names.index(part)]
@@ -220,15 +218,12 @@ class Response:
         raise KeyError(part)
 
     def _with_device(self, name: str, y: ComplexArray) -> Response:
-        c = self.circuit
-        if name in c.bipolars.names:
-            new = self.bipolar_y.copy()
-            new[:, :, c.bipolars.names.index(name)] = y
-            return replace(self, bipolar_y=new)
-        if name in c.diodes.names:
-            new = self.diode_y.copy()
-            new[:, :, c.diodes.names.index(name)] = y
-            return replace(self, diode_y=new)
+        """The block of a semiconductor as it now is; other parts keep none."""
+        for kind, table in self.circuit.devices.items():
+            if name in table.names:
+                new = self.device_y[kind].copy()
+                new[:, :, table.names.index(name)] = y
+                return replace(self, device_y={**self.device_y, kind: new})
         return self
 
     def _changed(self, nodes: tuple[int, ...], delta: ComplexArray) -> Response:
@@ -270,10 +265,14 @@ def small_signal(point: OperatingPoint, f_hz: FloatArray) -> Response:
     """Linearise at the operating point and solve at all frequencies [Hz], (F,)."""
     f = np.asarray(f_hz, dtype=float)
     system = signal_system(point)
-    (g_b, c_b), (g_d, c_d) = device_pencils(point)
-    y_b = outer_admittance(point.plan.bipolars, g_b, c_b, f, 4)
-    y_d = outer_admittance(point.plan.diodes, g_d, c_d, f, 2)
-    y, y_known = system.matrices(f, y_b, y_d)
+    placed, pencils = point.plan.placed, device_pencils(point)
+    device_y = {kind: outer_admittance(placed[kind], g, c, f) for kind, (g, c) in pencils.items()}
+    passive_y = {
+        kind: outer_admittance(placed[kind], TRANSISTORS[kind]().without_gm(g, intrinsic(point, kind)["gm"]), c, f)
+        for kind, (g, c) in pencils.items()
+        if kind in TRANSISTORS
+    }
+    y, y_known = system.matrices(f, device_y)
     COUNTERS.factorisations += y.shape[0] * y.shape[1] * len(system.islands)
     return Response(
         circuit=point.circuit,
@@ -285,7 +284,6 @@ def small_signal(point: OperatingPoint, f_hz: FloatArray) -> Response:
         z=system.inverse(y),
         y=y,
         y_known=y_known,
-        bipolar_y=y_b,
-        diode_y=y_d,
-        passive_y=outer_admittance(point.plan.bipolars, bipolar.without_gm(g_b, transconductance(point)), c_b, f, 4),
+        device_y=device_y,
+        passive_y=passive_y,
     )

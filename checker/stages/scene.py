@@ -5,10 +5,12 @@ from __future__ import annotations
 import numpy as np
 from numpy.typing import NDArray
 
-from checker.circuit.types import Circuit, Port
+from checker.circuit.types import Circuit, Port, Transistors
 from checker.shape import frozen
 from checker.solve.operating import OperatingPoint
 from checker.solve.response import Drive, Response, port_drive
+from checker.stages.terminals import NUMBER, WORDS
+from checker.words import Terminal
 
 ComplexArray = NDArray[np.complex128]
 
@@ -33,16 +35,34 @@ class Scene:
     response: Response
     paths: tuple[Path, ...]
     silent: NDArray[np.bool_]
+    transistors: Transistors
 
     @property
     def devices(self) -> tuple[str, ...]:
-        """Names of the bipolars."""
-        return self.circuit.bipolars.names
+        """Names of the transistors."""
+        return self.transistors.names
 
     def nodes(self, device: str) -> tuple[int, int, int]:
-        """Collector, base and emitter nets of a device."""
-        c, b, e = self.circuit.bipolars.nodes[self.devices.index(device)][:3].tolist()
+        """Output, control and common net of a device (collector, base, emitter; drain, gate, source)."""
+        c, b, e = self.transistors.nodes[self.devices.index(device)].tolist()
         return c, b, e
+
+    def polarity(self, device: str) -> float:
+        """+1 for NPN and N channel, else -1."""
+        return float(self.transistors.polarity[self.devices.index(device)])
+
+    def words(self, device: str) -> tuple[Terminal, Terminal, Terminal]:
+        """What output, control and common terminal of a device are called."""
+        return WORDS[self.transistors.families[self.devices.index(device)]]
+
+    def net(self, device: str, terminal: Terminal) -> int:
+        """The net of a device's terminal."""
+        return self.nodes(device)[NUMBER[terminal]]
+
+    def admittance(self, device: str) -> ComplexArray:
+        """Admittances between the three terminals, complex128 (F, 3, 3) [S]."""
+        j = self.devices.index(device)
+        return self.response.device_y[self.transistors.families[j]][0, :, self.transistors.places[j], :3, :3]
 
 
 def signal_grounds(circuit: Circuit, response: Response) -> NDArray[np.bool_]:
@@ -71,4 +91,5 @@ def make_scene(circuit: Circuit, point: OperatingPoint, response: Response, port
         response=response,
         paths=tuple(paths),
         silent=signal_grounds(circuit, response),
+        transistors=circuit.transistors,
     )

@@ -62,7 +62,7 @@ class Anew:
                     table.nodes[j].tolist(),
                     admittance(table.value[0, j])[:, None, None] * one,
                 )
-        for devices, y in ((c.bipolars, r.bipolar_y), (c.diodes, r.diode_y)):
+        for devices, y in ((c.devices[kind], y) for kind, y in r.device_y.items()):
             for j, name in enumerate(devices.names):
                 self.blocks[name] = (devices.nodes[j].tolist(), y[0, :, j])
 
@@ -101,9 +101,10 @@ class Anew:
         """One terminal of a part left open: Schur complement over it."""
         nodes, y = self.blocks.pop(name)
         rest = [k for k in range(len(nodes)) if k != terminal]
-        left = y[:, rest][:, :, rest] - y[:, rest, terminal, None] * y[:, None, terminal, rest] / y[
-            :, terminal, terminal, None, None
-        ]
+        left = (
+            y[:, rest][:, :, rest]
+            - y[:, rest, terminal, None] * y[:, None, terminal, rest] / y[:, terminal, terminal, None, None]
+        )
         self.blocks[name] = ([nodes[k] for k in rest], left)
         return self
 
