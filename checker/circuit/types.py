@@ -88,7 +88,7 @@ NO_DEVICES: Final = Devices(
 """The table of a family that a board has none of."""
 
 
-TRANSISTOR_FAMILIES: Final = ("bipolar",)
+TRANSISTOR_FAMILIES: Final = ("bipolar", "jfet", "mosfet")
 """Families whose first three terminals are output, control and common, in the order of `Circuit.transistors`."""
 
 

@@ -40,6 +40,7 @@ C, B, E, SUB, CI, BI, EI = range(7)
 PATHS = ((C, CI), (B, BI), (E, EI), (CI, BI), (BI, EI), (CI, EI))
 """A base at a known voltage still lets collector and emitter act on each other, hence the last."""
 CONTROLS = ()
+TIED = ()
 FIGURES = ("ic_a", "ib_a", "ie_a", "vce_v", "vbe_v", "power_w")
 SMALL_Z = 0.01
 """Below this z of base crowding its series is exact to 1e-9 and the closed form loses 1e-11."""

@@ -45,6 +45,10 @@ class Family(Protocol):
     def CONTROLS(self) -> Pairs:
         """Pairs of which the first acts on the second at DC without a current between them."""
 
+    @property
+    def TIED(self) -> Pairs:
+        """Pairs of outer terminals of which the first is one lead with the second where both are on one net."""
+
     def at_temperature(self, p: Params, t_k: FloatArray, tnom_k: FloatArray, /) -> dict[str, FloatArray]:
         """Parameters moved to the device temperatures [K]."""
 
@@ -97,8 +101,22 @@ def _diode() -> Family:
     return diode
 
 
+def _jfet() -> TransistorFamily:
+    from checker.devices import jfet
+
+    return jfet
+
+
+def _mosfet() -> TransistorFamily:
+    from checker.devices import mosfet
+
+    return mosfet
+
+
 TRANSISTORS: Final[Mapping[str, Callable[[], TransistorFamily]]] = {
     "bipolar": _bipolar,
+    "jfet": _jfet,
+    "mosfet": _mosfet,
 }
 """Families with an output, a control and a common terminal, in the order of `Circuit.transistors`."""
 

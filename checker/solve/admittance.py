@@ -62,6 +62,12 @@ def outer_admittance(placed: Placed, g: FloatArray, c: FloatArray, f_hz: FloatAr
         y[:, :, same, inside, :] = 0.0
         y[:, :, same, :, inside] = 0.0
         y[:, :, same, inside, inside] = 1.0
+    for a, b in placed.model.TIED:
+        one = placed.nodes[:, a] == placed.nodes[:, b]
+        y[:, :, one, b, :] += y[:, :, one, a, :]
+        y[:, :, one, :, b] += y[:, :, one, :, a]
+        y[:, :, one, a, :] = 0.0
+        y[:, :, one, :, a] = 0.0
     lost = ~np.isfinite(y).all(axis=(-1, -2))
     y[lost] = np.eye(k)
     reduced = y[..., :outer, :outer] - y[..., :outer, outer:] @ np.linalg.solve(
