@@ -22,6 +22,7 @@ from checker.measure.ports import gain_subject
 from checker.measure.registry import REGISTRY, Subject
 from checker.measure.terminals import rule_of_thumb
 from checker.quantity.figure import Figure
+from checker.stages.terminals import NUMBER
 from checker.stages.types import Recognition, Stage
 from checker.trouble import Trouble
 from checker.words import Terminal
@@ -114,8 +115,7 @@ class Board:
 
     def resistors_at(self, stage: str, terminal: Terminal) -> tuple[str, ...]:
         """Resistors of the board on a terminal's net, sorted; none on ground or a supply, which all share."""
-        row = self.circuit.bipolars.nodes[self.bench.stage(stage).index]
-        node = int(row[("collector", "base", "emitter").index(terminal)])
+        node = int(self.circuit.transistors.nodes[self.bench.stage(stage).index, NUMBER[terminal]])
         if self.bench.point.plan.is_known[node]:
             return ()
         r = self.circuit.resistors

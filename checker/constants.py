@@ -9,6 +9,12 @@ BOLTZMANN_JPK: Final = 1.380649e-23
 CHARGE_C: Final = 1.602176634e-19
 ZERO_CELSIUS_K: Final = 273.15
 """0 degC in kelvin (SI Brochure, 9th edition, section 2.3.1)."""
+OXIDE_F_PER_M: Final = 3.9 * 8.8541878188e-12
+"""Permittivity of silicon dioxide: 3.9 (from memory) times that of vacuum (CODATA 2022)."""
+SILICON_F_PER_M: Final = 11.7 * 8.8541878188e-12
+"""Permittivity of silicon: 11.7 (from memory) times that of vacuum (CODATA 2022)."""
+INTRINSIC_PER_CM3: Final = 1.45e10
+"""Intrinsic carriers of silicon at 300 K as level-1 models have them [1/cm3] (SPICE 2G6 guide, from memory)."""
 REFERENCE_NOISE_K: Final = 290.0
 """T0 of noise figure (IEC 60050-702, 702-08-57)."""
 DEFAULT_AMBIENT_C: Final = 27.0

@@ -115,7 +115,7 @@ def _oscillating(point: OperatingPoint, growing: np.ndarray[tuple[int], np.dtype
         left = growing_poles(point, without=name)
         return not np.any(np.abs(left.imag) > 1e-6 * np.abs(left))
 
-    return {name: f_hz for name in point.circuit.bipolars.names if quiet(name)}
+    return {name: f_hz for name in point.circuit.transistors.names if quiet(name)}
 
 
 def _directed(circuit: Circuit, point: OperatingPoint) -> tuple[tuple[Port, ...], tuple[str, ...]]:
@@ -152,7 +152,7 @@ def _frequencies(
 def _state_regions(
     circuit: Circuit, point: OperatingPoint, states: tuple[Scenario, ...]
 ) -> dict[str, dict[str, Region]]:
-    """Region of each bipolar in each declared state."""
+    """Region of each transistor in each declared state."""
     if not states:
         return {}
     stack = operating_point(with_changes(circuit, (Scenario(name="nominal"), *states)), near=point)
@@ -161,5 +161,5 @@ def _state_regions(
         name: {
             state.name: REGIONS[int(codes[1 + k, j])] for k, state in enumerate(states) if np.isfinite(codes[1 + k, j])
         }
-        for j, name in enumerate(circuit.bipolars.names)
+        for j, name in enumerate(circuit.transistors.names)
     }

@@ -51,8 +51,9 @@ GroupLabel = Literal[
 """Label of several devices that act as one."""
 
 Role = Literal["signal", "bias", "switch"]
-Terminal = Literal["base", "emitter", "collector"]
-Region = Literal["active", "saturated", "cut-off", "reverse-active"]
+Terminal = Literal["base", "emitter", "collector", "gate", "source", "drain"]
+Region = Literal["active", "saturated", "cut-off", "reverse-active", "ohmic", "body-conducting", "gate-conducting"]
+"""Bipolars: the first four. Field-effect transistors: active, ohmic, cut-off and the last two."""
 Outcome = Literal["violates", "may-violate"]
 Severity = Literal["must-fix", "review", "note"]
 Relation = Literal["at most", "at least", "within", "equals"]

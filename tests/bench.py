@@ -33,7 +33,16 @@ BIPOLAR: Mapping[str, float] = {
 }  # fmt: skip
 DIODE: Mapping[str, float] = {
     "is": 1e-14, "n": 1.0, "rs": 0.0, "cjo": 0.0, "vj": 1.0, "m": 0.5, "tt": 0.0, "eg": 1.11, "xti": 3.0,
-    "bv": INF, "ibv": 1e-3, "fc": 0.5, "isr": 0.0, "nr": 2.0, "ikf": INF,
+    "bv": INF, "ibv": 1e-3, "fc": 0.5, "isr": 0.0, "nr": 2.0, "ikf": INF, "nbv": 1.0, "tbv1": 0.0,
+}  # fmt: skip
+JFET: Mapping[str, float] = {
+    "vto": -2.0, "beta": 1e-3, "lambda": 0.0, "b": 1.0, "is": 1e-14, "n": 1.0, "rd": 0.0, "rs": 0.0,
+    "cgs": 0.0, "cgd": 0.0, "pb": 1.0, "m": 0.5, "fc": 0.5, "vtotc": 0.0, "betatce": 0.0, "eg": 1.11, "xti": 3.0,
+}  # fmt: skip
+MOSFET: Mapping[str, float] = {
+    "vto": 2.0, "kp": 1e-3, "lambda": 0.0, "gamma": 0.0, "phi": 0.6, "channel": 1.0, "w": 1.0, "l": 1.0,
+    "rd": 0.0, "rs": 0.0, "is": 1e-14, "n": 1.0, "cbd": 0.0, "cbs": 0.0, "pb": 0.8, "mj": 0.5, "fc": 0.5,
+    "cgso": 0.0, "cgdo": 0.0, "cgbo": 0.0, "cox": 0.0,
 }  # fmt: skip
 
 
@@ -54,7 +63,7 @@ class Bench:
     def __init__(self, temperature_c: Number = 27.0) -> None:
         self._t_k = np.atleast_1d(np.asarray(temperature_c, dtype=float)) + ZERO_CELSIUS_K
         self._nets = ["0"]
-        self._tables = {kind: _Table() for kind in "rclkviqd"}
+        self._tables = {kind: _Table() for kind in "rclkviqdjm"}
 
     def net(self, name: str) -> int:
         """Number of a net, new or known."""
@@ -106,6 +115,15 @@ class Bench:
         """Diode; `is_` for the saturation current; `tnom_c`, `rth`."""
         self._device("d", name, (anode, cathode), DIODE, 1.0, given)
 
+    def j(self, name: str, d: str, g: str, s: str, *, p: bool = False, **given: Number) -> None:
+        """Junction FET; `is_`, `lambda_`; `tnom_c`, `rth`."""
+        self._device("j", name, (d, g, s), JFET, -1.0 if p else 1.0, given)
+
+    def m(self, name: str, d: str, g: str, s: str, body: str = "", *, p: bool = False, **given: Number) -> None:
+        """MOSFET, its body on its source unless named; `vto` positive for enhancement; `is_`, `lambda_`."""
+        given.setdefault("channel", -1.0 if p else 1.0)
+        self._device("m", name, (d, g, s, body or s), MOSFET, -1.0 if p else 1.0, given)
+
     def _device(
         self,
         kind: str,
@@ -141,6 +159,11 @@ class Bench:
             raise ValueError(f"scenario axes of different lengths: {sorted(sizes)}")
         return sizes.pop() if sizes else 1
 
+    def _device_tables(self, s: int) -> dict[str, Devices]:
+        kinds = {"bipolar": ("q", BIPOLAR), "jfet": ("j", JFET), "mosfet": ("m", MOSFET), "diode": ("d", DIODE)}
+        tables = {kind: (self._tables[letter], defaults) for kind, (letter, defaults) in kinds.items()}
+        return {kind: _devices(table, defaults, s) for kind, (table, defaults) in tables.items() if table.names}
+
     def circuit(self) -> Circuit:
         """The finished circuit, all values on one scenario axis."""
         s = self._scenarios()
@@ -153,8 +176,7 @@ class Bench:
             couplings=Couplings(names=tuple(pairs.names), pair=_nodes(pairs, 2), k=_columns(pairs.values, s)),
             voltages=_branches(self._tables["v"], s),
             currents=_branches(self._tables["i"], s),
-            bipolars=_devices(self._tables["q"], 4, BIPOLAR, s),
-            diodes=_devices(self._tables["d"], 2, DIODE, s),
+            devices=self._device_tables(s),
             temperature_k=np.broadcast_to(self._t_k, (s,)).copy(),
             scenarios=tuple(
                 Scenario(name="nominal" if j == 0 else f"case {j}", kind="nominal" if j == 0 else "sample")
@@ -178,10 +200,10 @@ def _branches(table: _Table, s: int) -> Branches:
     return Branches(names=tuple(table.names), nodes=_nodes(table, 2), value=_columns(table.values, s))
 
 
-def _devices(table: _Table, width: int, defaults: Mapping[str, float], s: int) -> Devices:
+def _devices(table: _Table, defaults: Mapping[str, float], s: int) -> Devices:
     return Devices(
         names=tuple(table.names),
-        nodes=_nodes(table, width),
+        nodes=np.array(table.nodes, dtype=np.int64),
         polarity=np.array(table.polarity, dtype=float),
         params={key: _columns([p[key] for p in table.params], s) for key in defaults},
         tnom_k=np.array(table.tnom_k, dtype=float),

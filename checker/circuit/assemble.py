@@ -10,7 +10,7 @@ from numpy.typing import NDArray
 
 from checker.circuit.draft import Draft, DraftDevice, DraftPort, Wire
 from checker.circuit.order import natural, natural_key
-from checker.circuit.parameters import BIPOLAR, DIODE
+from checker.circuit.parameters import PARAMETERS
 from checker.circuit.types import (
     Branches,
     Circuit,
@@ -41,8 +41,9 @@ def assemble(draft: Draft, temperature_k: float) -> Circuit:
         couplings=_couplings(draft.couplings, inductors.names),
         voltages=voltages,
         currents=_branches(draft.currents, node),
-        bipolars=_devices(draft.bipolars, node, 4, BIPOLAR),
-        diodes=_devices(draft.diodes, node, 2, DIODE),
+        devices={
+            kind: _devices(draft.devices[kind], node, keys) for kind, keys in PARAMETERS.items() if draft.devices[kind]
+        },
         temperature_k=frozen(np.array([temperature_k])),
         scenarios=(NOMINAL,),
         rails=rails,
@@ -83,14 +84,11 @@ def _couplings(pairs: Mapping[str, tuple[str, str, float]], inductors: tuple[str
     return Couplings(names=names, pair=pair, k=_column([pairs[name][2] for name in names]))
 
 
-def _devices(
-    devices: Mapping[str, DraftDevice], node: Mapping[str, int], terminals: int, keys: Iterable[str]
-) -> Devices:
-    """A device table; every parameter has its column even where there is no device."""
+def _devices(devices: Mapping[str, DraftDevice], node: Mapping[str, int], keys: Iterable[str]) -> Devices:
+    """The table of one family."""
     names = tuple(natural(devices))
     entries = [devices[name] for name in names]
     nodes = np.array([[node[net] for net in entry.nets] for entry in entries], dtype=np.int64)
-    nodes = nodes.reshape(len(names), terminals)
     nodes.setflags(write=False)
     return Devices(
         names=names,

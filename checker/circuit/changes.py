@@ -93,8 +93,10 @@ class _Columns:
             voltages=self._branches(circuit, "voltages"),
             currents=self._branches(circuit, "currents"),
             couplings=replace(circuit.couplings, k=self._spread(circuit.couplings.k)),
-            bipolars=self._devices(circuit.bipolars, {"bf": self._stack("bf")}),
-            diodes=self._devices(circuit.diodes, {}),
+            devices={
+                kind: self._devices(table, {"bf": self._stack("bf")} if kind == "bipolar" else {})
+                for kind, table in circuit.devices.items()
+            },
             scenarios=scenarios,
             temperature_k=temperature,
         )

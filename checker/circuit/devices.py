@@ -57,7 +57,7 @@ def add_bipolar(draft: Draft, part: Part) -> None:
     _tell_unused(draft, known, parameters)
     for unit in units:
         order = (unit.nets["C"], unit.nets["B"], unit.nets["E"], _substrate(draft, unit))
-        _place(draft, "bipolars", part, unit, order, known, parameters)
+        _place(draft, "bipolar", part, unit, order, known, parameters)
 
 
 def add_diode(draft: Draft, part: Part) -> None:
@@ -85,7 +85,7 @@ def add_diode(draft: Draft, part: Part) -> None:
     parameters = diode_parameters(written, area=part.params.get("area", 1.0), count=part.params.get("m", 1.0))
     _tell_unused(draft, known, parameters)
     for unit in units:
-        _place(draft, "diodes", part, unit, (unit.nets["A"], unit.nets["K"]), known, parameters)
+        _place(draft, "diode", part, unit, (unit.nets["A"], unit.nets["K"]), known, parameters)
 
 
 def add_fet(draft: Draft, part: Part) -> None:
@@ -175,7 +175,7 @@ def _tell_unused(draft: Draft, known: Identity, parameters: Parameters) -> None:
 
 def _place(
     draft: Draft,
-    kind: Literal["bipolars", "diodes"],
+    kind: Literal["bipolar", "diode"],
     part: Part,
     unit: Unit,
     nets: Sequence[str],

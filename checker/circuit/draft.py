@@ -10,6 +10,7 @@ from typing import Final, Literal
 
 from checker.circuit.notes import Notes
 from checker.circuit.order import natural_key
+from checker.circuit.parameters import PARAMETERS
 from checker.circuit.ties import Ties
 from checker.circuit.types import PartFact, Rail, Unknown
 from checker.intent.types import Intent, PartIntent
@@ -108,8 +109,8 @@ class Draft:
     voltages: dict[str, Wire] = field(default_factory=dict)
     currents: dict[str, Wire] = field(default_factory=dict)
     couplings: dict[str, tuple[str, str, float]] = field(default_factory=dict)
-    bipolars: dict[str, DraftDevice] = field(default_factory=dict)
-    diodes: dict[str, DraftDevice] = field(default_factory=dict)
+    devices: dict[str, dict[str, DraftDevice]] = field(default_factory=lambda: {kind: {} for kind in PARAMETERS})
+    """Family -> its devices by name."""
     signals: set[str] = field(default_factory=set)
     """Names of V and I elements that carry signal."""
     links: set[str] = field(default_factory=set)
@@ -198,9 +199,9 @@ class Draft:
         for net in (wire.first, wire.second):
             self.ends.setdefault(net, []).append((table, name))
 
-    def place(self, kind: Literal["bipolars", "diodes"], name: str, device: DraftDevice) -> None:
-        """Add a semiconductor."""
-        {"bipolars": self.bipolars, "diodes": self.diodes}[kind][name] = device
+    def place(self, kind: str, name: str, device: DraftDevice) -> None:
+        """Add a semiconductor to its family."""
+        self.devices[kind][name] = device
         self.device_ends.update(device.nets)
 
     def table(self, table: Table) -> dict[str, Wire]:

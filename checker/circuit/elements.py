@@ -221,7 +221,7 @@ def _coil_pins(draft: Draft, part: Part) -> tuple[str, str] | None:
     if ends is not None:
         return ends
     own = {draft.net(pin.net) for pin in part.pins}
-    across = {device.nets for device in draft.diodes.values() if set(device.nets) <= own}
+    across = {device.nets for device in draft.devices["diode"].values() if set(device.nets) <= own}
     if len(across) != 1:
         return None
     ((anode, cathode),) = across

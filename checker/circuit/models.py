@@ -2,10 +2,19 @@
 
 from __future__ import annotations
 
+import math
 from collections.abc import Mapping
 
 from checker.circuit import parameters as p
-from checker.constants import DEFAULT_AMBIENT_C, ZERO_CELSIUS_K
+from checker.constants import (
+    BOLTZMANN_JPK,
+    CHARGE_C,
+    DEFAULT_AMBIENT_C,
+    INTRINSIC_PER_CM3,
+    OXIDE_F_PER_M,
+    SILICON_F_PER_M,
+    ZERO_CELSIUS_K,
+)
 from checker.shape import frozen
 
 
@@ -51,6 +60,53 @@ def diode_parameters(written: Mapping[str, float], *, area: float = 1.0, count: 
         p.DIODE_OVER_AREA,
     )
     return _finished(values, given, p.DIODE)
+
+
+def jfet_parameters(written: Mapping[str, float], *, area: float = 1.0, count: float = 1.0) -> Parameters:
+    """Shichman-Hodges parameters of `count` junction FETs of relative `area` in parallel."""
+    given = _respelt(written, p.JFET_SPELLINGS)
+    values = {name: given.get(name, default) for name, default in p.JFET.items()}
+    # The cut-off voltage is negative for both polarities by the model's rule; some cards of P types write it positive.
+    values["vto"] = -abs(values["vto"])
+    return _finished(_scaled(values, area * count, p.JFET_TIMES_AREA, p.JFET_OVER_AREA), given, p.JFET)
+
+
+def mosfet_parameters(
+    written: Mapping[str, float], *, polarity: float, size: Mapping[str, float] | None = None, count: float = 1.0
+) -> Parameters:
+    """Level-1 parameters of `count` MOSFETs in parallel; `polarity` +1 N channel, -1 P channel; `size`: `w`, `l` [m] of
+    this one.
+
+    KP follows from mobility and oxide where it is not given, GAMMA and PHI from the doping (level-1 rules of the SPICE
+    2G6 guide, from memory). A JS without a junction area is not used.
+    """
+    given = _respelt(written, p.MOSFET_SPELLINGS)
+    values = {name: given.get(name, default) for name, default in p.MOSFET.items()}
+    values |= {name: value for name, value in (size or {}).items() if name in ("w", "l") and value > 0.0}
+    values["l"] = max(values["l"] - 2.0 * given.get("ld", 0.0), 1e-9)
+    values["channel"] = polarity
+    values["vto"] *= polarity
+    oxide = OXIDE_F_PER_M / given["tox"] if given.get("tox", 0.0) > 0.0 else 0.0
+    values["cox"] = oxide * values["w"] * values["l"]
+    if oxide:
+        if "kp" not in given:
+            values["kp"] = given.get("u0", 600.0) * 1e-4 * oxide
+        _from_doping(values, given, oxide)
+    values = _scaled(values, count, p.MOSFET_TIMES_COUNT, p.MOSFET_OVER_COUNT)
+    derived = {"tox", "u0", "nsub", "ld"} if oxide else {"ld"}
+    return _finished(values, {k: v for k, v in given.items() if k not in derived}, p.MOSFET)
+
+
+def _from_doping(values: dict[str, float], given: Mapping[str, float], oxide: float) -> None:
+    """PHI = 2 VT ln(NSUB/ni) and GAMMA = sqrt(2 eps q NSUB)/COX at 27 degC, where they are not given."""
+    per_cm3 = given.get("nsub", 0.0)
+    if per_cm3 <= INTRINSIC_PER_CM3:
+        return
+    vt = BOLTZMANN_JPK * (DEFAULT_AMBIENT_C + ZERO_CELSIUS_K) / CHARGE_C
+    if "phi" not in given:
+        values["phi"] = max(2.0 * vt * math.log(per_cm3 / INTRINSIC_PER_CM3), 0.1)
+    if "gamma" not in given:
+        values["gamma"] = math.sqrt(2.0 * SILICON_F_PER_M * CHARGE_C * per_cm3 * 1e6) / oxide
 
 
 def _respelt(written: Mapping[str, float], spellings: Mapping[str, str]) -> dict[str, float]:

@@ -112,7 +112,7 @@ def settle(draft: Draft) -> None:
     """Decide which loose parts and pins matter, now that every element is known; fills `draft.unknowns`."""
     tables = (draft.resistors, draft.capacitors, draft.inductors, draft.voltages, draft.currents)
     ends = [{net for wire in table.values() for net in (wire.first, wire.second)} for table in tables]
-    devices = {net for table in (draft.bipolars, draft.diodes) for device in table.values() for net in device.nets}
+    devices = {net for table in draft.devices.values() for device in table.values() for net in device.nets}
     conducting = set().union(ends[0], *ends[2:], devices)
     present = conducting | ends[1]
     for loose in draft.loose_parts:

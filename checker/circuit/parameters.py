@@ -74,9 +74,69 @@ DIODE: Final[Mapping[str, float]] = {
     "isr": 0.0,
     "nr": 2.0,
     "ikf": INF,
+    "nbv": 1.0,
+    "tbv1": 0.0,
     "kf": 0.0,
     "af": 1.0,
 }
+
+JFET: Final[Mapping[str, float]] = {
+    "vto": -2.0,
+    "beta": 1e-4,
+    "lambda": 0.0,
+    "b": 1.0,
+    "is": 1e-14,
+    "n": 1.0,
+    "rd": 0.0,
+    "rs": 0.0,
+    "cgs": 0.0,
+    "cgd": 0.0,
+    "pb": 1.0,
+    "m": 0.5,
+    "fc": 0.5,
+    "vtotc": 0.0,
+    "betatce": 0.0,
+    "eg": 1.11,
+    "xti": 3.0,
+    "kf": 0.0,
+    "af": 1.0,
+}
+
+MOSFET: Final[Mapping[str, float]] = {
+    "vto": 0.0,
+    "kp": 2e-5,
+    "lambda": 0.0,
+    "gamma": 0.0,
+    "phi": 0.6,
+    "channel": 1.0,
+    "w": 1e-4,
+    "l": 1e-4,
+    "rd": 0.0,
+    "rs": 0.0,
+    "is": 1e-14,
+    "n": 1.0,
+    "cbd": 0.0,
+    "cbs": 0.0,
+    "pb": 0.8,
+    "mj": 0.5,
+    "fc": 0.5,
+    "cgso": 0.0,
+    "cgdo": 0.0,
+    "cgbo": 0.0,
+    "cox": 0.0,
+    "kf": 0.0,
+    "af": 1.0,
+}
+"""`vto` is counted positive for enhancement of either polarity, `channel` is +1 for N and -1 for P, `l` is the
+effective length, `cox` [F] the oxide over the whole channel."""
+
+PARAMETERS: Final[Mapping[str, Mapping[str, float]]] = {
+    "bipolar": BIPOLAR,
+    "jfet": JFET,
+    "mosfet": MOSFET,
+    "diode": DIODE,
+}
+"""Every device family of a board with the parameters of its table and their defaults."""
 
 BIPOLAR_SPELLINGS: Final[Mapping[str, str]] = {
     "va": "vaf",
@@ -122,6 +182,14 @@ DIODE_SPELLINGS: Final[Mapping[str, str]] = {
     "t_measured": "tnom",
 }
 
+JFET_SPELLINGS: Final[Mapping[str, str]] = {"vt0": "vto", "tref": "tnom", "t_measured": "tnom"}
+MOSFET_SPELLINGS: Final[Mapping[str, str]] = {
+    "vt0": "vto",
+    "uo": "u0",
+    "tref": "tnom",
+    "t_measured": "tnom",
+}
+
 ZERO_IS_ABSENT: Final = frozenset({"vaf", "var", "ikf", "ikr", "irb", "vtf", "bv"})
 """A written 0 means infinite: the effect is switched off."""
 
@@ -140,6 +208,10 @@ BIPOLAR_TIMES_AREA: Final = (
 BIPOLAR_OVER_AREA: Final = ("rb", "rbm", "re", "rc")
 DIODE_TIMES_AREA: Final = ("is", "isr", "ikf", "ibv", "cjo")
 DIODE_OVER_AREA: Final = ("rs",)
+JFET_TIMES_AREA: Final = ("beta", "is", "cgs", "cgd")
+JFET_OVER_AREA: Final = ("rd", "rs")
+MOSFET_TIMES_COUNT: Final = ("w", "is", "cbd", "cbs", "cgbo", "cox")
+MOSFET_OVER_COUNT: Final = ("rd", "rs")
 
 SILENT: Final = frozenset({"level", "tnom", "vceo", "vcbo", "icrating", "iave", "vpk", "irms", "isurge", "mfg", "type"})
 """Written in models without an effect on what is computed here: no remark is made."""

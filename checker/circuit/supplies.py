@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from checker.circuit.draft import Draft
 from checker.circuit.order import listed, natural
+from checker.circuit.types import TRANSISTOR_FAMILIES
 
 
 def find_unsupplied(draft: Draft) -> None:
@@ -39,10 +40,9 @@ class _Groups:
         for wire in draft.currents.values():
             self._join((wire.first,), live=wire.value != 0.0)
             self._join((wire.second,), live=wire.value != 0.0)
-        for device in draft.diodes.values():
-            self._join(device.nets)
-        for name, device in draft.bipolars.items():
-            self._join(device.nets[:3], device=name)
+        for kind, devices in draft.devices.items():
+            for name, device in devices.items():
+                self._join(device.nets[:3], device=name if kind in TRANSISTOR_FAMILIES else "")
 
     def _root(self, net: str) -> str:
         while self._above.get(net, net) != net:

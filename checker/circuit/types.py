@@ -9,7 +9,7 @@ from __future__ import annotations
 
 from collections.abc import Mapping
 from dataclasses import field
-from typing import Literal
+from typing import Final, Literal
 
 import numpy as np
 from numpy.typing import NDArray
@@ -61,10 +61,11 @@ class Couplings:
 
 @frozen
 class Devices:
-    """Semiconductors of one kind with their external terminals.
+    """Semiconductors of one family with their external terminals.
 
-    `nodes` int64 (n, k): bipolar (collector, base, emitter, substrate; substrate 0 where absent), diode (anode,
-    cathode). `polarity` float64 (n,): +1 NPN or diode, -1 PNP. `params`: SPICE-style names, lower case, SI, at
+    `nodes` int64 (n, k): bipolar (collector, base, emitter, substrate; substrate 0 where absent), junction FET (drain,
+    gate, source), MOSFET (drain, gate, source, body), diode (anode, cathode). `polarity` float64 (n,): +1 NPN,
+    N channel or diode, -1 PNP or P channel. `params`: SPICE-style names, lower case, SI, at
     `tnom_k` (n,), each float64 (S, n). `rth_kpw` (n,): nan where unknown.
     """
 
@@ -73,6 +74,37 @@ class Devices:
     polarity: FloatArray
     params: Mapping[str, FloatArray]
     tnom_k: FloatArray
+    rth_kpw: FloatArray
+
+
+NO_DEVICES: Final = Devices(
+    names=(),
+    nodes=np.zeros((0, 4), dtype=np.int64),
+    polarity=np.zeros(0),
+    params={},
+    tnom_k=np.zeros(0),
+    rth_kpw=np.zeros(0),
+)
+"""The table of a family that a board has none of."""
+
+
+TRANSISTOR_FAMILIES: Final = ("bipolar", "jfet", "mosfet")
+"""Families whose first three terminals are output, control and common, in the order of `Circuit.transistors`."""
+
+
+@frozen
+class Transistors:
+    """Every amplifying device of a board, family after family, alike.
+
+    `nodes` int64 (n, 3): output, control and common net (collector, base, emitter; drain, gate, source). `families`
+    and `places`: table of each, and its row there. `polarity`, `rth_kpw` (n,) as in `Devices`.
+    """
+
+    names: tuple[str, ...]
+    families: tuple[str, ...]
+    places: tuple[int, ...]
+    nodes: IntArray
+    polarity: FloatArray
     rth_kpw: FloatArray
 
 
@@ -166,7 +198,10 @@ class Scenario:
 
 @frozen
 class Circuit:
-    """Everything a solve needs. S scenarios, n nodes; `nets[0]` is ground."""
+    """Everything a solve needs. S scenarios, n nodes; `nets[0]` is ground.
+
+    `devices`: family -> table, for the families of `checker.devices.family` that the board has.
+    """
 
     nets: tuple[str, ...]
     resistors: Branches
@@ -175,8 +210,7 @@ class Circuit:
     couplings: Couplings
     voltages: Branches
     currents: Branches
-    bipolars: Devices
-    diodes: Devices
+    devices: Mapping[str, Devices]
     temperature_k: FloatArray
     scenarios: tuple[Scenario, ...]
     rails: tuple[Rail, ...] = ()
@@ -190,6 +224,36 @@ class Circuit:
     def size(self) -> int:
         """Number of scenarios."""
         return len(self.scenarios)
+
+    @property
+    def transistors(self) -> Transistors:
+        """Bipolars and field-effect transistors in one list; made anew at each call."""
+        tables = [(kind, self.devices[kind]) for kind in TRANSISTOR_FAMILIES if kind in self.devices]
+        return Transistors(
+            names=tuple(name for _, table in tables for name in table.names),
+            families=tuple(kind for kind, table in tables for _ in table.names),
+            places=tuple(j for _, table in tables for j in range(len(table.names))),
+            nodes=np.concatenate([NO_DEVICES.nodes[:, :3], *(table.nodes[:, :3] for _, table in tables)]),
+            polarity=np.concatenate([NO_DEVICES.polarity, *(table.polarity for _, table in tables)]),
+            rth_kpw=np.concatenate([NO_DEVICES.rth_kpw, *(table.rth_kpw for _, table in tables)]),
+        )
+
+    def find_device(self, name: str) -> tuple[str, int]:
+        """Family and place of a semiconductor. Raises KeyError for another part."""
+        for kind, table in self.devices.items():
+            if name in table.names:
+                return kind, table.names.index(name)
+        raise KeyError(name)
+
+    @property
+    def bipolars(self) -> Devices:
+        """The bipolar transistors."""
+        return self.devices.get("bipolar", NO_DEVICES)
+
+    @property
+    def diodes(self) -> Devices:
+        """The diodes."""
+        return self.devices.get("diode", NO_DEVICES)
 
     def node(self, net: str) -> int:
         """Index of a net [ground included]. Raises KeyError for a net that is not in the circuit."""

@@ -34,9 +34,14 @@ from checker.devices.junction import (
 from checker.shape import frozen
 
 FloatArray = NDArray[np.float64]
-TERMINALS = 7
+TERMINALS, OUTER = 7, 4
 INNER = (("rc", 0, 4), ("rb", 1, 5), ("re", 2, 6))
 C, B, E, SUB, CI, BI, EI = range(7)
+PATHS = ((C, CI), (B, BI), (E, EI), (CI, BI), (BI, EI), (CI, EI))
+"""A base at a known voltage still lets collector and emitter act on each other, hence the last."""
+CONTROLS = ()
+TIED = ()
+FIGURES = ("ic_a", "ib_a", "ie_a", "vce_v", "vbe_v", "power_w")
 SMALL_Z = 0.01
 """Below this z of base crowding its series is exact to 1e-9 and the closed form loses 1e-11."""
 
@@ -81,6 +86,11 @@ def start(p: Mapping[str, FloatArray]) -> FloatArray:
     """First junction voltages, float64 (S, n, 2): base-emitter at its critical voltage, base-collector at zero."""
     crit = critical_v(p["is"], p["nf"] * p["vt"])
     return np.stack([crit, np.zeros_like(crit)], axis=-1)
+
+
+def off(p: Mapping[str, FloatArray]) -> FloatArray:
+    """Junction voltages (S, n, 2) of a transistor that does not conduct."""
+    return np.zeros((*p["is"].shape, 2))
 
 
 def junctions(v: FloatArray, polarity: FloatArray) -> FloatArray:
@@ -285,3 +295,32 @@ def capacitance(p: Mapping[str, FloatArray], polarity: FloatArray, v: FloatArray
     v_sc = polarity * (v[..., SUB] - v[..., CI])
     _stamp(c, SUB, CI, depletion(v_sc, p["cjs"], p["vjs"], p["mjs"], np.zeros_like(v_sc)))
     return c
+
+
+def figures(p: Mapping[str, FloatArray], polarity: FloatArray, v: FloatArray) -> dict[str, FloatArray]:
+    """ic_a, ib_a, ie_a [A] into the terminals, vbe_v, vce_v, vbc_v [V] at the outer terminals times the polarity,
+    power_w [W]; each (S, n)."""
+    at = junctions(v, polarity)
+    k = core(p, at[..., 0], at[..., 1])
+    c, b, e = v[..., C], v[..., B], v[..., E]
+    ic, ib = polarity * k.ic, polarity * k.ib
+    return {
+        "ic_a": ic,
+        "ib_a": ib,
+        "ie_a": -(ic + ib),
+        "vbe_v": polarity * (b - e),
+        "vce_v": polarity * (c - e),
+        "vbc_v": polarity * (b - c),
+        "power_w": ic * (c - e) + ib * (b - e),
+    }
+
+
+def small_signal(p: Mapping[str, FloatArray], polarity: FloatArray, v: FloatArray) -> dict[str, FloatArray]:
+    """Intrinsic gm = dIC/dVBE at VCE, g_pi = dIB/dVBE at VCE, g_o = dIC/dVCE [S], c = all base charge over VBE [F]."""
+    at = junctions(v, polarity)
+    k = core(p, at[..., 0], at[..., 1])
+    be, be_bc, bc = charges(p, at[..., 0], at[..., 1])
+    gm = k.ic_vbe + k.ic_vbc
+    # Under 1e-15 of gm it is what the blocked collector junction leaves in arithmetic.
+    g_o = np.where(-k.ic_vbc > 1e-15 * np.abs(gm), -k.ic_vbc, 0.0)
+    return {"gm": gm, "g_pi": k.ib_vbe + k.ib_vbc, "g_o": np.where(np.isfinite(gm), g_o, np.nan), "c": be + be_bc + bc}

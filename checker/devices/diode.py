@@ -1,6 +1,9 @@
 """Junction diode: exponential with high injection and recombination, breakdown, series resistance, charge.
 
-Terminals: anode, cathode, inner anode (behind RS). Voltages in volts, currents in amperes.
+Terminals: anode, cathode, inner anode (behind RS). Voltages in volts, currents in amperes. Schottky diodes and LEDs are
+the same equations with their own IS, N and EG. Breakdown: I = -IBV exp(-(V + BV)/(NBV VT)); a soft knee, as low-voltage
+Zener diodes have it, has NBV well above 1; BV moves by TBV1 per kelvin.
+
 Source: Antognetti and Massobrio, *Semiconductor Device Modeling with SPICE*, chapter 1 (from memory).
 """
 
@@ -25,9 +28,12 @@ from checker.devices.junction import (
 )
 
 FloatArray = NDArray[np.float64]
-TERMINALS = 3
+TERMINALS, OUTER = 3, 2
 INNER = (("rs", 0, 2),)
 """Series resistance, outer terminal, inner terminal."""
+PATHS = ((0, 2), (2, 1))
+CONTROLS = ()
+TIED = ()
 
 
 def at_temperature(p: Mapping[str, FloatArray], t_k: FloatArray, tnom_k: FloatArray) -> dict[str, FloatArray]:
@@ -38,6 +44,7 @@ def at_temperature(p: Mapping[str, FloatArray], t_k: FloatArray, tnom_k: FloatAr
     q["isr"] = p["isr"] * saturation_ratio(p["eg"] / p["nr"], p["xti"] / p["nr"], t_k, tnom_k)
     q["vj"] = potential_at(p["vj"], t_k, tnom_k)
     q["cjo"] = capacitance_at(p["cjo"], p["m"], p["vj"], q["vj"], t_k, tnom_k)
+    q["bv"] = p["bv"] * (1.0 + p["tbv1"] * (t_k - tnom_k))
     q["vt"] = thermal_v(t_k)
     return q
 
@@ -58,7 +65,8 @@ def limit(p: Mapping[str, FloatArray], new: FloatArray, old: FloatArray) -> Floa
     crit = critical_v(p["is"], n_vt)
     forward = limited(new[..., 0], old[..., 0], n_vt, crit)
     bv = np.where(np.isfinite(p["bv"]), p["bv"], 1e30)
-    mirrored = -limited(-(new[..., 0] + bv), -(old[..., 0] + bv), p["vt"], 10.0 * p["vt"]) - bv
+    knee = p["nbv"] * p["vt"]
+    mirrored = -limited(-(new[..., 0] + bv), -(old[..., 0] + bv), knee, 10.0 * knee) - bv
     return np.where(new[..., 0] < -bv, mirrored, forward)[..., None]
 
 
@@ -78,8 +86,9 @@ def current(p: Mapping[str, FloatArray], v: FloatArray) -> tuple[FloatArray, Flo
     i_r = p["isr"] * e_r
     i = i + i_r * grow
     g = g_h + p["isr"] * de_r / (p["nr"] * p["vt"]) * grow + i_r * d_grow
-    e_b, de_b = exponential(-(v + p["bv"]) / p["vt"])
-    return i - p["ibv"] * e_b, g + p["ibv"] * de_b / p["vt"]
+    knee = p["nbv"] * p["vt"]
+    e_b, de_b = exponential(-(v + p["bv"]) / knee)
+    return i - p["ibv"] * e_b, g + p["ibv"] * de_b / knee
 
 
 def evaluate(
@@ -111,3 +120,11 @@ def capacitance(p: Mapping[str, FloatArray], polarity: FloatArray, v: FloatArray
     c[..., 2, 2] = c[..., 1, 1] = c_d
     c[..., 2, 1] = c[..., 1, 2] = -c_d
     return c
+
+
+def figures(p: Mapping[str, FloatArray], polarity: FloatArray, v: FloatArray) -> dict[str, FloatArray]:
+    """i_a [A] from anode to cathode, v_v [V] across, power_w [W]; each (S, n)."""
+    i, _ = current(p, junctions(v, polarity)[..., 0])
+    across = v[..., 0] - v[..., 1]
+    i = np.where(np.isfinite(across), i, np.nan)
+    return {"i_a": i, "v_v": across, "power_w": i * across}

@@ -49,7 +49,7 @@ def _labels(circuit: Circuit) -> dict[str, str]:
     """Label of each part and port. A declared port is called what the intent file calls it, any other, whose name
     may hold a reference, by the part or net that it was taken from.
     """
-    polarity = dict(zip(circuit.bipolars.names, circuit.bipolars.polarity.tolist(), strict=True))
+    polarity = dict(zip(circuit.transistors.names, circuit.transistors.polarity.tolist(), strict=True))
     on: dict[str, list[str]] = {}
     for port in circuit.ports:
         on.setdefault(port.net, []).append(_public(port))

@@ -87,6 +87,14 @@ class Bench:
         """The stage of that id. Raises KeyError."""
         return self.recognition.stage(ident)
 
+    def family(self, stage: str) -> str:
+        """The device family of a stage: bipolar, jfet, mosfet. Raises KeyError."""
+        return self.circuit.find_device(self.stage(stage).device)[0]
+
+    def place(self, stage: str) -> int:
+        """The row of a stage's device in its family's table. Raises KeyError."""
+        return self.circuit.find_device(self.stage(stage).device)[1]
+
     def group(self, ident: str) -> Group:
         """The group of that id. Raises KeyError."""
         for group in self.recognition.groups:

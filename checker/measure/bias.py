@@ -17,12 +17,12 @@ SOLVED = "certified operating point (Gummel-Poon, node equations)"
 
 
 def _table(bench: Bench, key: str, stage: str) -> FloatArray:
-    return bench.point.bipolar[key][:, bench.stage(stage).index]
+    return bench.point.bipolar[key][:, bench.place(stage)]
 
 
 def require_bias(bench: Bench, stage: str) -> None:
     """Raises CannotTell where a stage has no certified operating point."""
-    values = _table(bench, "ic_a", stage)
+    values = bench.point.transistor["i_out_a"][:, bench.stage(stage).index]
     if not np.isfinite(values[0]):
         reason = bench.stage(stage).reason or "no certified operating point"
         raise CannotTell(datum=f"the operating point of {stage}", supply=reason)
@@ -82,11 +82,11 @@ def junction_temperature(bench: Bench, stage: str) -> Figure:
     """TA + P RthJA, solved together with the bias."""
     require_bias(bench, stage)
     index = bench.stage(stage).index
-    rth = float(bench.circuit.bipolars.rth_kpw[index])
+    rth = float(bench.circuit.transistors.rth_kpw[index])
     if not np.isfinite(rth):
         raise CannotTell(datum=f"thermal resistance of {stage}", supply=f'[[part]] ref = "{stage}" with rth_ja_kpw')
-    tj = bench.heated.bipolar_k[:, index] - ZERO_CELSIUS_K
-    p = bench.heated.bipolar["power_w"][:, index]
+    tj = bench.heated.device_k[bench.family(stage)][:, bench.place(stage)] - ZERO_CELSIUS_K
+    p = bench.heated.transistor["power_w"][:, index]
     ambient = bench.circuit.temperature_k - ZERO_CELSIUS_K
     return figure(
         "tj_c",

@@ -47,7 +47,8 @@ def _holding(bench: Bench, outer: Outer) -> tuple[str, ...]:
     silent = _silent(bench)
     device = outer.entry[0]
     carried = {terminal_net(c, outer.entry), terminal_net(c, outer.exit)}
-    nets = {terminal_net(c, (device, t)) for t in ("collector", "base", "emitter")} - carried
+    kind, j = c.find_device(device)
+    nets = set(c.devices[kind].nodes[j, :3].tolist()) - carried
     near = set(nets)
     for a, b in c.resistors.nodes.tolist():
         for here, there in ((a, b), (b, a)):

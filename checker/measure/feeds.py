@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from checker.measure.bench import Bench
+from checker.stages.terminals import CONTROL
 from checker.trouble import CannotTell
 
 
@@ -11,8 +12,11 @@ def base_reach(bench: Bench, stage: str) -> set[int]:
     c, known = bench.circuit, bench.point.plan.is_known
     index = bench.stage(stage).index
     joins = [row for t in (c.resistors, c.inductors, c.voltages, c.diodes) for row in t.nodes.tolist()]
-    joins += [row[:3] for j, row in enumerate(c.bipolars.nodes.tolist()) if j != index]
-    reached = {int(c.bipolars.nodes[index, 1])}
+    others = c.transistors
+    for j, (kind, row) in enumerate(zip(others.families, others.nodes.tolist(), strict=True)):
+        # The gate of a MOSFET leads nowhere.
+        joins += [row[::2] if kind == "mosfet" else row] if j != index else []
+    reached = {int(others.nodes[index, CONTROL])}
     growing = True
     while growing:
         free = {node for node in reached if not known[node]}

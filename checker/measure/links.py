@@ -8,11 +8,11 @@ from __future__ import annotations
 import numpy as np
 from numpy.typing import NDArray
 
-from checker.circuit.types import Circuit, Port
+from checker.circuit.types import Branches, Circuit, Devices, Port
 from checker.measure.bench import Bench
 from checker.shape import frozen
 from checker.solve.response import Drive, Response, port_drive
-from checker.stages.direction import TERMINALS
+from checker.stages.terminals import NUMBER
 from checker.stages.types import Group, Link
 from checker.words import Terminal
 
@@ -69,13 +69,13 @@ def drive_of(bench: Bench, outer: Outer) -> Drive:
 
 def terminal_net(circuit: Circuit, at: tuple[str, Terminal]) -> int:
     """Net of a device terminal."""
-    row = circuit.bipolars.nodes[circuit.bipolars.names.index(at[0])]
-    return int(row[TERMINALS.index(at[1])])
+    kind, j = circuit.find_device(at[0])
+    return int(circuit.devices[kind].nodes[j, NUMBER[at[1]]])
 
 
 def terminal_index(terminal: Terminal) -> int:
-    """Column of a terminal in a bipolar's block."""
-    return TERMINALS.index(terminal)
+    """Column of a terminal in a transistor's block."""
+    return NUMBER[terminal]
 
 
 def port_current(bench: Bench, response: Response, port: Port, solution: ComplexArray) -> ComplexArray:
@@ -94,7 +94,8 @@ def net_current(response: Response, node: int, solution: ComplexArray) -> Comple
     """Sum of currents from a net into everything on it but ideal sources, (S, F) [A]."""
     c = response.circuit
     total = np.zeros(solution.shape[:2], dtype=complex)
-    for table in (c.resistors, c.capacitors, c.inductors, c.bipolars, c.diodes):
+    tables: list[Branches | Devices] = [c.resistors, c.capacitors, c.inductors, *c.devices.values()]
+    for table in tables:
         for j, terminal in zip(*np.nonzero(table.nodes == node), strict=True):
             total = total + response.current(table.names[int(j)], int(terminal), solution)
     return total
@@ -126,7 +127,7 @@ def current_out(bench: Bench, response: Response, outer: Outer, solution: Comple
         return load_current(bench, bench.port(link.other), solution)
     if link.kind == "direct":
         assert link.terminal  # noqa: S101 - a direct link names the receiving terminal
-        return response.current(link.part, TERMINALS.index(link.terminal), solution)
+        return response.current(link.part, NUMBER[link.terminal], solution)
     return response.current(link.part, _end(response.circuit, link.part, link.stage_node), solution)
 
 
@@ -148,7 +149,8 @@ def cut_output(bench: Bench, response: Response, outer: Outer) -> Response:
             response = response.opened(name)
         return response
     if link.kind == "direct":
-        return response.opened(link.part, TERMINALS.index(link.terminal))
+        assert link.terminal  # noqa: S101 - a direct link names the receiving terminal
+        return response.opened(link.part, NUMBER[link.terminal])
     return response.opened(link.part)
 
 

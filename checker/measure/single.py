@@ -30,8 +30,7 @@ def one_scenario(circuit: Circuit, row: int) -> Circuit:
         voltages=branches(circuit.voltages),
         currents=branches(circuit.currents),
         couplings=replace(circuit.couplings, k=circuit.couplings.k[cut]),
-        bipolars=devices(circuit.bipolars),
-        diodes=devices(circuit.diodes),
+        devices={kind: devices(table) for kind, table in circuit.devices.items()},
         temperature_k=circuit.temperature_k[cut],
         scenarios=circuit.scenarios[cut],
     )

@@ -4,39 +4,18 @@ from __future__ import annotations
 
 import numpy as np
 
-from checker.devices import bipolar
 from checker.measure.bench import Bench, FloatArray
 from checker.measure.bias import require_bias
 from checker.measure.make import figure, first
 from checker.measure.registry import quantity
 from checker.quantity.figure import Figure
-
-
-def _core(bench: Bench) -> dict[str, FloatArray]:
-    """gm, r_pi, ro [S, n], charge capacitances and VT of all devices; kept."""
-    if "small signal" not in bench.kept:
-        point = bench.point
-        placed = point.plan.bipolars
-        at = bipolar.junctions(point.v_v[:, placed.nodes], placed.table.polarity)
-        p = point.assembler.p_bipolar
-        k = bipolar.core(p, at[..., 0], at[..., 1])
-        be, be_bc, bc = bipolar.charges(p, at[..., 0], at[..., 1])
-        bench.kept["small signal"] = {
-            "gm": k.ic_vbe + k.ic_vbc,
-            "g_pi": k.ib_vbe + k.ib_vbc,
-            # Under 1e-15 of gm it is what the blocked collector junction leaves in arithmetic.
-            "g_o": np.where(-k.ic_vbc > 1e-15 * np.abs(k.ic_vbe + k.ic_vbc), -k.ic_vbc, 0.0),
-            "c": be + be_bc + bc,
-            "vt": p["vt"],
-        }
-    kept = bench.kept["small signal"]
-    assert isinstance(kept, dict)  # noqa: S101 - narrows the type
-    return kept
+from checker.solve.admittance import intrinsic
 
 
 def _of(bench: Bench, stage: str, key: str) -> FloatArray:
+    """gm, g_pi, g_o [S] or c [F] of a stage's device, (S,)."""
     require_bias(bench, stage)
-    return _core(bench)[key][:, bench.stage(stage).index]
+    return intrinsic(bench.point, bench.family(stage))[key][:, bench.place(stage)]
 
 
 @quantity("gm_s", "S", "stage", "transconductance dIC/dVBE at constant VCE")
@@ -63,8 +42,8 @@ def r_o(bench: Bench, stage: str) -> Figure:
 def r_e(bench: Bench, stage: str) -> Figure:
     """Declared a hand figure."""
     require_bias(bench, stage)
-    ie = np.abs(bench.point.bipolar["ie_a"][:, bench.stage(stage).index])
-    vt = _of(bench, stage, "vt")
+    ie = np.abs(bench.point.transistor["i_common_a"][:, bench.stage(stage).index])
+    vt = bench.point.assembler.p[bench.family(stage)]["vt"][:, bench.place(stage)]
     return figure(
         "re_ohm",
         stage,

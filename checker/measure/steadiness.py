@@ -17,6 +17,7 @@ from checker.measure.registry import quantity
 from checker.measure.single import nominal_circuit
 from checker.quantity.figure import Figure
 from checker.solve.operating import operating_point
+from checker.stages.terminals import CONTROL
 from checker.stages.wiring import resistors_on
 
 NO_BASE_CURRENT = 1e9
@@ -36,7 +37,7 @@ def _stacked(bench: Bench) -> Mapping[str, FloatArray]:
                 for word, bf in (("low", low), ("high", high), ("none", high * NO_BASE_CURRENT))
             ]
         stack = _without_leakage(with_changes(circuit, scenarios), len(names))
-        ic = np.abs(operating_point(stack, near=bench.nominal_point).bipolar["ic_a"])
+        ic = np.abs(operating_point(stack, near=bench.nominal_point).transistor["i_out_a"])
         rows = 1 + 3 * np.arange(len(names))
         own = np.arange(len(names))
         bench.kept["steadiness"] = {
@@ -55,11 +56,13 @@ def _without_leakage(stack: Circuit, count: int) -> Circuit:
 
 
 def _leakless(stack: Circuit, rows: IntArray, devices: IntArray) -> Circuit:
+    if not stack.bipolars.names:
+        return stack
     params = dict(stack.bipolars.params)
     leak = np.array(params["ise"])
     leak[rows, devices] = 0.0
     params["ise"] = leak
-    return replace(stack, bipolars=replace(stack.bipolars, params=params))
+    return replace(stack, devices={**stack.devices, "bipolar": replace(stack.bipolars, params=params)})
 
 
 def _answered(bench: Bench, stage: str) -> tuple[FloatArray, FloatArray, FloatArray]:
@@ -85,7 +88,7 @@ def _tried(bench: Bench, stage: str, rows: list[int]) -> FloatArray:
     stack = with_changes(circuit, [Scenario(name="nominal"), *scenarios])
     none = 3 + 3 * np.arange(len(rows))
     point = operating_point(_leakless(stack, none, np.full(len(rows), index)), near=bench.nominal_point)
-    return np.abs(point.bipolar["ic_a"][1:, index]).reshape(-1, 3).T
+    return np.abs(point.transistor["i_out_a"][1:, index]).reshape(-1, 3).T
 
 
 def gain_limits(circuit: Circuit, device: str) -> tuple[float, float]:
@@ -131,7 +134,7 @@ def divider_shift(bench: Bench, stage: str) -> Figure:
     if len(base_feeds(bench, stage)) < 2:
         return missing("divider_shift", stage, bench.size, "%", "not applicable: no divider feeds the base")
     _, _, ideal = _answered(bench, stage)
-    ic = np.abs(bench.point.bipolar["ic_a"][:, bench.stage(stage).index])
+    ic = np.abs(bench.point.transistor["i_out_a"][:, bench.stage(stage).index])
     shift = np.abs(ic / ideal - 1.0)
     made = nominal(
         "divider_shift",
@@ -152,9 +155,9 @@ def base_feeds(bench: Bench, stage: str) -> tuple[str, ...]:
     A supply is a net of known voltage, or a net behind a resistor from one with a capacitor to ground (a filter).
     """
     c = bench.circuit
-    base = int(c.bipolars.nodes[bench.stage(stage).index, 1])
+    base = int(c.transistors.nodes[bench.stage(stage).index, CONTROL])
     supplies = _supplies(bench)
-    taken = set(c.bipolars.nodes.ravel().tolist())
+    taken = set(c.transistors.nodes.ravel().tolist())
     near = {base} | {far for _, far in resistors_on(c, base) if far not in taken and far not in supplies}
     return tuple(sorted({name for node in near for name, far in resistors_on(c, node) if far in supplies}))
 

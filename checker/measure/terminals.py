@@ -23,6 +23,7 @@ from checker.measure.small_signal import r_e, r_pi
 from checker.quantity.figure import Figure
 from checker.shape import frozen
 from checker.solve.response import Response
+from checker.stages.terminals import COMMON, NUMBER
 
 MIDDLE = 1
 """f0 in the three frequencies of the bench's edges."""
@@ -96,14 +97,15 @@ def around(bench: Bench, outer: Outer) -> Around:
     direct = outer.input_link.kind == "direct"
     alone_in = cut_input(response, outer).removed([device]) if not direct else out
     alone_out = cut_output(bench, response, outer).removed([device])
-    emitter, base = (terminal_net(bench.circuit, (device, t)) for t in ("emitter", "base"))
+    kind, place = bench.circuit.find_device(device)
+    _, base, emitter = bench.circuit.devices[kind].nodes[place, :3].tolist()
     leaving = terminal_net(bench.circuit, outer.exit)
     s = response.solution(drive_of(bench, outer))
     with np.errstate(divide="ignore", invalid="ignore"):
         load = np.abs(s[0, MIDDLE, outer.output_link.stage_node] / _out(bench, response, outer, s))
     entered = outer.entry[1]
     return Around(
-        emitter=_size(alone_in if entered == "emitter" else out, emitter),
+        emitter=_size(alone_in if NUMBER[entered] == COMMON else out, emitter),
         base=_size(out, base),
         # On a direct link every part on the net belongs to the driving stage: nothing of the base's own is left.
         base_alone=np.inf if direct else _size(alone_in, base),

@@ -6,21 +6,19 @@ sum of currents *leaving* each unknown node through its elements, then one volta
 
 from __future__ import annotations
 
-from collections.abc import Callable, Mapping
+from collections.abc import Mapping
 
 import numpy as np
 from numpy.typing import NDArray
 
-from checker.circuit.types import Circuit
+from checker.circuit.types import Circuit, Devices
 from checker.constants import DEFAULT_AMBIENT_C, ZERO_CELSIUS_K, thermal_voltage_v
-from checker.devices import bipolar, diode
-from checker.shape import frozen
+from checker.devices.family import Family
 from checker.solve.counters import COUNTERS
 from checker.solve.plan import Plan
 
 FloatArray = NDArray[np.float64]
 IntArray = NDArray[np.int64]
-Params = dict[str, FloatArray]
 
 
 class Scatter:
@@ -48,24 +46,25 @@ class Scatter:
         return out
 
 
-@frozen
-class Junctions:
-    """Junction voltages at which devices are linearised: bipolar (S, n, 2), diode (S, n, 1)."""
-
-    bipolar: FloatArray
-    diode: FloatArray
+Junctions = tuple[FloatArray, ...]
+"""Junction voltages at which devices are linearised: (S, n, j) a family of the plan."""
 
 
 class Assembler:
     """Everything of one circuit that stays the same from iteration to iteration."""
 
-    def __init__(self, circuit: Circuit, plan: Plan, t_bipolar_k: FloatArray, t_diode_k: FloatArray) -> None:
-        """`t_bipolar_k`, `t_diode_k`: device temperatures (S, n) [K]."""
+    def __init__(self, circuit: Circuit, plan: Plan, device_k: Mapping[str, FloatArray]) -> None:
+        """`device_k`: device temperatures (S, n) [K] by family."""
         self.circuit = circuit
         self.plan = plan
         self.scenarios = circuit.size
-        self.p_bipolar = _params(circuit.bipolars.params, bipolar.at_temperature, t_bipolar_k, circuit.bipolars.tnom_k)
-        self.p_diode = _params(circuit.diodes.params, diode.at_temperature, t_diode_k, circuit.diodes.tnom_k)
+        self.p = {
+            kind: _params(circuit.devices[kind], placed.model, device_k[kind]) for kind, placed in plan.placed.items()
+        }
+        self._families = [
+            (placed.model, placed.nodes, circuit.devices[kind].polarity, self.p[kind])
+            for kind, placed in plan.placed.items()
+        ]
         self._g_r = 1.0 / circuit.resistors.value
         self._blocks()
         self._node_rows = plan.unknown[plan.unknown >= 0]
@@ -94,11 +93,12 @@ class Assembler:
         self.by_island = Scatter(self._homes(len(sizes)), len(sizes))
 
     def _homes(self, count: int) -> IntArray:
-        """The island of each bipolar, then of each diode; -1 where all its nodes are known or not solved."""
+        """The island of each device, family after family; -1 where all its nodes are known or not solved."""
         owner = np.full(self.plan.n_nodes, -1, dtype=np.int64)
         for index, island in enumerate(self.plan.islands[:count]):
             owner[list(island.nodes)] = index
-        return np.concatenate([owner[p.nodes].max(axis=1, initial=-1) for p in (self.plan.bipolars, self.plan.diodes)])
+        none = np.zeros(0, dtype=np.int64)
+        return np.concatenate([none, *(owner[p.nodes].max(axis=1, initial=-1) for p in self.plan.placed.values())])
 
     def flat(self, row: IntArray, column: IntArray) -> IntArray:
         """Place of (row, column) unknowns in the flat Jacobian; -1 where either is not an unknown."""
@@ -117,12 +117,12 @@ class Assembler:
         for table, rows in ((c.voltages, self.plan.v_row), (c.inductors, self.plan.l_row)):
             live = rows >= 0
             parts += [np.where(live, u[table.nodes[:, 0]], -1), np.where(live, u[table.nodes[:, 1]], -1)]
-        parts += [u[self.plan.bipolars.nodes].ravel(), u[self.plan.diodes.nodes].ravel()]
+        parts += [u[placed.nodes].ravel() for placed in self.plan.placed.values()]
         return np.concatenate(parts)
 
     def _device_dest(self) -> IntArray:
-        out = []
-        for placed in (self.plan.bipolars, self.plan.diodes):
+        out = [np.zeros(0, dtype=np.int64)]
+        for placed in self.plan.placed.values():
             rows = self.plan.unknown[placed.nodes]
             out.append(self.flat(*np.broadcast_arrays(rows[:, :, None], rows[:, None, :])).ravel())
         return np.concatenate(out)
@@ -159,22 +159,16 @@ class Assembler:
 
     def junctions(self, v: FloatArray) -> Junctions:
         """Junction voltages at node voltages `v`."""
-        b, d = self.circuit.bipolars, self.circuit.diodes
-        return Junctions(
-            bipolar=bipolar.junctions(v[:, self.plan.bipolars.nodes], b.polarity),
-            diode=diode.junctions(v[:, self.plan.diodes.nodes], d.polarity),
-        )
+        return tuple(model.junctions(v[:, nodes], polarity) for model, nodes, polarity, _ in self._families)
 
     def start(self) -> Junctions:
         """Junction voltages for the first iteration."""
-        return Junctions(bipolar=bipolar.start(self.p_bipolar), diode=diode.start(self.p_diode))
+        return tuple(model.start(p) for model, _, _, p in self._families)
 
     def limit(self, new: Junctions, old: Junctions) -> Junctions:
-        """Steps held to what the exponentials can follow."""
-        return Junctions(
-            bipolar=bipolar.limit(self.p_bipolar, new.bipolar, old.bipolar),
-            diode=diode.limit(self.p_diode, new.diode, old.diode),
-        )
+        """Steps held to what the equations can follow."""
+        both = zip(self._families, new, old, strict=True)
+        return tuple(model.limit(p, wanted, held) for (model, _, _, p), wanted, held in both)
 
     def contributions(
         self, x: FloatArray, at: Junctions, gmin: float = 0.0, source_scale: float = 1.0
@@ -189,13 +183,10 @@ class Assembler:
             i = np.zeros((self.scenarios, len(rows)))
             i[:, rows >= 0] = x[:, rows[rows >= 0]]
             columns += [i, -i]
-        entries = []
-        for module, placed, p, junction in (
-            (bipolar, self.plan.bipolars, self.p_bipolar, at.bipolar),
-            (diode, self.plan.diodes, self.p_diode, at.diode),
-        ):
-            n, k = placed.nodes.shape
-            e = module.evaluate(p, placed.table.polarity, v[:, placed.nodes], junction, gmin)
+        entries = [np.zeros((self.scenarios, 0))]
+        for (model, nodes, polarity, p), junction in zip(self._families, at, strict=True):
+            n, k = nodes.shape
+            e = model.evaluate(p, polarity, v[:, nodes], junction, gmin)
             columns.append(e.i.reshape(self.scenarios, n * k))
             entries.append(e.g.reshape(self.scenarios, n * k * k))
             COUNTERS.device_evaluations += self.scenarios * n
@@ -222,11 +213,11 @@ class Assembler:
         A device lists an inner node's currents already summed, so there the current of the lead stands for them.
         """
         sized = np.abs(columns)
-        at = columns.shape[1] - sum(placed.nodes.size for placed in (self.plan.bipolars, self.plan.diodes))
-        for placed, leads in ((self.plan.bipolars, bipolar.INNER), (self.plan.diodes, diode.INNER)):
+        at = columns.shape[1] - sum(placed.nodes.size for placed in self.plan.placed.values())
+        for placed in self.plan.placed.values():
             n, k = placed.nodes.shape
             block = sized[:, at : at + n * k].reshape(self.scenarios, n, k)
-            for _, outer, inner in leads:
+            for _, outer, inner in placed.model.INNER:
                 block[..., inner] = np.maximum(block[..., inner], block[..., outer])
             at += n * k
         return self._rows.largest(sized)
@@ -243,7 +234,7 @@ class Assembler:
         i_r = (v[:, c.resistors.nodes[:, 0]] + v[:, c.resistors.nodes[:, 1]]) * self._g_r
         branches = 2 * (c.currents.value.shape[1] + len(self.plan.v_row) + len(self.plan.l_row))
         columns, at = [i_r, i_r, np.zeros((s, branches))], 0
-        for placed in (self.plan.bipolars, self.plan.diodes):
+        for placed in self.plan.placed.values():
             n, k = placed.nodes.shape
             g = np.abs(entries[:, at : at + n * k * k]).reshape(s, n, k, k)
             columns.append(np.einsum("snrc,snc->snr", g, v[:, placed.nodes]).reshape(s, n * k))
@@ -265,11 +256,6 @@ class Assembler:
         return views
 
 
-def _params(
-    params: Mapping[str, FloatArray],
-    move: Callable[[Mapping[str, FloatArray], FloatArray, FloatArray], Params],
-    t_k: FloatArray,
-    tnom_k: FloatArray,
-) -> Params:
+def _params(table: Devices, model: Family, t_k: FloatArray) -> dict[str, FloatArray]:
     """Parameters at temperature; infinite ones stay infinite."""
-    return move(params, t_k, np.broadcast_to(tnom_k, t_k.shape))
+    return model.at_temperature(table.params, t_k, np.broadcast_to(table.tnom_k, t_k.shape))

@@ -144,11 +144,8 @@ def _still(assembler: Assembler, x: FloatArray, dx: FloatArray) -> BoolArray:
 
 def _unlimited(assembler: Assembler, wanted: Junctions, held: Junctions, before: Junctions) -> BoolArray:
     """Islands none of whose junctions was held back, or still moves after the linearisation."""
-    moved = []
-    for new, kept, old in (
-        (wanted.bipolar, held.bipolar, before.bipolar),
-        (wanted.diode, held.diode, before.diode),
-    ):
+    moved = [np.zeros((assembler.scenarios, 0))]
+    for new, kept, old in zip(wanted, held, before, strict=True):
         far = (new != kept) | (np.abs(new - old) > 1e-7 + 1e-7 * np.abs(new))
         moved.append(far.any(axis=-1).astype(float))
     return np.asarray(assembler.by_island.largest(np.concatenate(moved, axis=1)) == 0.0)

@@ -11,7 +11,7 @@ from numpy.typing import NDArray
 
 from checker.circuit.types import Circuit
 from checker.constants import KCL_REL
-from checker.devices import bipolar, diode
+from checker.devices.family import TRANSISTORS
 from checker.shape import frozen
 from checker.solve.assemble import Assembler
 from checker.solve.newton import Solved, solve
@@ -19,6 +19,11 @@ from checker.solve.plan import Plan, make_plan
 
 FloatArray = NDArray[np.float64]
 BoolArray = NDArray[np.bool_]
+
+
+ALIKE = ("i_out_a", "i_control_a", "i_common_a", "v_out_v", "v_control_v", "power_w")
+"""What all transistors have: current into output, control and common terminal, voltage of the first two over the third,
+power. The order is that of a family's `FIGURES`."""
 
 
 @frozen
@@ -41,8 +46,8 @@ class Island:
 class OperatingPoint:
     """`v_v` float64 (S, n_nodes) [V] over nets then inner nodes, nan where not certified.
 
-    `bipolar`: ic_a, ib_a, ie_a (into the terminal, signs as they flow), vbe_v, vce_v, vbc_v at the outer terminals
-    times the polarity, power_w; each (S, n). `diode`: i_a, v_v, power_w. `bipolar_k`, `diode_k`: temperatures used.
+    `devices`: family -> figures of each device, (S, n) a key, as the family's module says (nan where not certified).
+    `device_k`: family -> junction temperatures used (S, n) [K].
     `refused`: island -> why its solution is not printed though it balances.
     `kept`: what later steps derive from the point once (pencils, numbering).
     """
@@ -53,12 +58,34 @@ class OperatingPoint:
     solved: Solved
     v_v: FloatArray
     islands: tuple[Island, ...]
-    bipolar: Mapping[str, FloatArray]
-    diode: Mapping[str, FloatArray]
-    bipolar_k: FloatArray
-    diode_k: FloatArray
+    devices: Mapping[str, Mapping[str, FloatArray]]
+    device_k: Mapping[str, FloatArray]
     refused: Mapping[int, str] = field(default_factory=dict)
     kept: dict[str, Any] = field(default_factory=dict)
+
+    @property
+    def bipolar(self) -> Mapping[str, FloatArray]:
+        """ic_a, ib_a, ie_a (into the terminal, signs as they flow), vbe_v, vce_v, vbc_v at the outer terminals times
+        the polarity, power_w; each (S, n). Empty without bipolars."""
+        return self.devices.get("bipolar", {})
+
+    @property
+    def diode(self) -> Mapping[str, FloatArray]:
+        """i_a, v_v, power_w; each (S, n). Empty without diodes."""
+        return self.devices.get("diode", {})
+
+    @property
+    def transistor(self) -> Mapping[str, FloatArray]:
+        """`ALIKE` of every transistor, (S, n) a key, in the order of `Circuit.transistors`. Currents into the
+        terminals as they flow, voltages times the polarity."""
+        if "transistor" not in self.kept:
+            none = np.zeros((self.circuit.size, 0))
+            own = [(TRANSISTORS[kind]().FIGURES, self.devices[kind]) for kind in TRANSISTORS if kind in self.devices]
+            self.kept["transistor"] = {
+                key: np.concatenate([none, *(table[names[place]] for names, table in own)], axis=1)
+                for place, key in enumerate(ALIKE)
+            }
+        return self.kept["transistor"]  # type: ignore[no-any-return]
 
     def reason(self, net: str) -> str:
         """Why a net has no certified voltage; empty where it has one in scenario 0."""
@@ -75,7 +102,7 @@ def operating_point(
     circuit: Circuit,
     *,
     near: OperatingPoint | None = None,
-    rise_k: tuple[FloatArray, FloatArray] | None = None,
+    rise_k: Mapping[str, FloatArray] | None = None,
     x0: FloatArray | None = None,
     quick: bool = False,
     refuse: Mapping[int, str] | None = None,
@@ -84,38 +111,38 @@ def operating_point(
 
     `near`: a solution of the same topology to start from, scenario by scenario where both have as many, else from its
     scenario 0.
-    `rise_k`: junction temperature rise over ambient of bipolars and diodes, each (S, n) [K]. `x0` (S, U): start there.
+    `rise_k`: junction temperature rise over ambient by family, each (S, n) [K]. `x0` (S, U): start there.
     `quick`: give up early on what does not converge, for trials. `refuse`: islands (by place in the plan) that are no
     rest, with the reason; those that `near` refuses stay refused.
     """
     plan = near.plan if near is not None else make_plan(circuit)
-    ambient = circuit.temperature_k[:, None]
-    rise_b = rise_k[0] if rise_k else np.zeros((1, 1))
-    rise_d = rise_k[1] if rise_k else np.zeros((1, 1))
-    t_b = np.broadcast_to(ambient + rise_b, (circuit.size, len(circuit.bipolars.names))).copy()
-    t_d = np.broadcast_to(ambient + rise_d, (circuit.size, len(circuit.diodes.names))).copy()
-    assembler = Assembler(circuit, plan, t_b, t_d)
+    ambient, rise = circuit.temperature_k[:, None], rise_k or {}
+    device_k = {
+        kind: np.broadcast_to(ambient + rise.get(kind, 0.0), (circuit.size, len(placed.table.names))).copy()
+        for kind, placed in plan.placed.items()
+    }
+    assembler = Assembler(circuit, plan, device_k)
     if x0 is None and near is not None and near.solved.x.shape[0] == circuit.size and near.solved.done.all():
         x0 = near.solved.x
     if x0 is None and near is not None and near.solved.done[0].all():
         x0 = np.repeat(near.solved.x[:1], circuit.size, axis=0)
     solved = solve(assembler, x0, quick=quick)
     refused = {**(near.refused if near is not None else {}), **(refuse or {})}
-    return _collect(circuit, plan, assembler, solved, (t_b, t_d), refused)
+    return _collect(circuit, plan, assembler, solved, device_k, refused)
 
 
 def self_heated(cold: OperatingPoint, *, rounds: int = 8) -> OperatingPoint:
     """The second solution, junctions at their own temperature: TJ = TA + P RthJA where RthJA is known."""
     point = cold
-    rth_b = np.nan_to_num(cold.circuit.bipolars.rth_kpw)
-    rth_d = np.nan_to_num(cold.circuit.diodes.rth_kpw)
     for _ in range(rounds):
-        rise_b = np.minimum(np.nan_to_num(point.bipolar["power_w"]) * rth_b, 500.0)
-        rise_d = np.minimum(np.nan_to_num(point.diode["power_w"]) * rth_d, 500.0)
+        rise = {
+            kind: np.minimum(np.nan_to_num(table["power_w"]) * np.nan_to_num(cold.circuit.devices[kind].rth_kpw), 500.0)
+            for kind, table in point.devices.items()
+        }
         before = point
-        point = operating_point(cold.circuit, near=point, rise_k=(rise_b, rise_d))
-        moved = np.abs(point.bipolar_k - before.bipolar_k)
-        if not moved.size or float(moved.max()) < 0.01:
+        point = operating_point(cold.circuit, near=point, rise_k=rise)
+        moved = [float(np.abs(t - before.device_k[kind]).max(initial=0.0)) for kind, t in point.device_k.items()]
+        if max(moved, default=0.0) < 0.01:
             break
     return point
 
@@ -125,7 +152,7 @@ def _collect(
     plan: Plan,
     assembler: Assembler,
     solved: Solved,
-    device_k: tuple[FloatArray, FloatArray],
+    device_k: Mapping[str, FloatArray],
     refused: Mapping[int, str],
 ) -> OperatingPoint:
     v = assembler.voltages(solved.x)
@@ -164,10 +191,11 @@ def _collect(
         solved=solved,
         v_v=v,
         islands=tuple(islands),
-        bipolar=_bipolar_table(assembler, v),
-        diode=_diode_table(assembler, v),
-        bipolar_k=device_k[0],
-        diode_k=device_k[1],
+        devices={
+            kind: placed.model.figures(assembler.p[kind], circuit.devices[kind].polarity, v[:, placed.nodes])
+            for kind, placed in plan.placed.items()
+        },
+        device_k=device_k,
         refused=refused,
     )
 
@@ -183,34 +211,5 @@ def _sources_agree(circuit: Circuit, plan: Plan, v: FloatArray) -> BoolArray:
 
 def _single(plan: Plan, nodes: set[int]) -> bool:
     """With one transistor at most an island has one state (Nielsen and Willson, Proc. IEEE 68(2), 1980; memory)."""
-    return sum(bool(nodes & {int(x) for x in row}) for row in plan.bipolars.nodes) <= 1
-
-
-def _bipolar_table(assembler: Assembler, v: FloatArray) -> dict[str, FloatArray]:
-    """Terminal figures from the certified voltages (nan stays nan)."""
-    placed = assembler.plan.bipolars
-    p = placed.table.polarity
-    terminals = v[:, placed.nodes]
-    at = bipolar.junctions(terminals, p)
-    k = bipolar.core(assembler.p_bipolar, at[..., 0], at[..., 1])
-    c, b, e = terminals[..., 0], terminals[..., 1], terminals[..., 2]
-    ic, ib = p * k.ic, p * k.ib
-    return {
-        "ic_a": ic,
-        "ib_a": ib,
-        "ie_a": -(ic + ib),
-        "vbe_v": p * (b - e),
-        "vce_v": p * (c - e),
-        "vbc_v": p * (b - c),
-        "power_w": ic * (c - e) + ib * (b - e),
-    }
-
-
-def _diode_table(assembler: Assembler, v: FloatArray) -> dict[str, FloatArray]:
-    placed = assembler.plan.diodes
-    terminals = v[:, placed.nodes]
-    at = assembler.junctions(np.nan_to_num(v)).diode
-    i, _ = diode.current(assembler.p_diode, at[..., 0])
-    across = terminals[..., 0] - terminals[..., 1]
-    i = np.where(np.isfinite(across), i, np.nan)
-    return {"i_a": i, "v_v": across, "power_w": i * across}
+    rows = [row for kind in TRANSISTORS if kind in plan.placed for row in plan.placed[kind].nodes.tolist()]
+    return sum(bool(nodes & set(row)) for row in rows) <= 1

@@ -7,13 +7,13 @@ island by island, islands of one size side by side, so that equal sizes form one
 
 from __future__ import annotations
 
-from collections.abc import Iterator
+from collections.abc import Iterator, Mapping
 
 import numpy as np
 from numpy.typing import NDArray
 
-from checker.circuit.types import Circuit, Devices
-from checker.devices import bipolar, diode
+from checker.circuit.types import NO_DEVICES, Circuit, Devices
+from checker.devices.family import FAMILIES, Family
 from checker.shape import frozen
 
 IntArray = NDArray[np.int64]
@@ -25,6 +25,7 @@ class Placed:
 
     table: Devices
     nodes: IntArray
+    model: Family
 
 
 @frozen
@@ -55,11 +56,11 @@ class IslandPlan:
 @frozen
 class Plan:
     """All of it. `n_nodes` counts nets and inner nodes; `unknown` int64 (n_nodes,) gives each node's place in the
-    unknown vector, -1 where known or not solved; `groups` = (first unknown, number of islands, size)."""
+    unknown vector, -1 where known or not solved; `groups` = (first unknown, number of islands, size). `placed`: the
+    device families that the board has, in the order of `FAMILIES`."""
 
     n_nodes: int
-    bipolars: Placed
-    diodes: Placed
+    placed: Mapping[str, Placed]
     known: tuple[Tree, ...]
     is_known: NDArray[np.bool_]
     islands: tuple[IslandPlan, ...]
@@ -90,17 +91,15 @@ class Sets:
         return a != b
 
 
-def _place(table: Devices, inner: tuple[tuple[str, int, int], ...], k: int, first: int) -> tuple[Placed, int]:
+def _place(table: Devices, model: Family, first: int) -> tuple[Placed, int]:
     """Give inner nodes to the devices whose lead resistance is not zero."""
-    n = len(table.names)
-    nodes = np.zeros((n, k), dtype=np.int64)
-    width = table.nodes.shape[1]
-    nodes[:, :width] = table.nodes
-    for name, outer, inside in inner:
-        has = np.any(table.params[name] > 0.0, axis=0) if n else np.zeros(0, dtype=bool)
+    nodes = np.zeros((len(table.names), model.TERMINALS), dtype=np.int64)
+    nodes[:, : model.OUTER] = table.nodes
+    for name, outer, inside in model.INNER:
+        has = np.any(table.params[name] > 0.0, axis=0)
         nodes[:, inside] = np.where(has, first + np.cumsum(has) - 1, nodes[:, outer])
         first += int(has.sum())
-    return Placed(table=table, nodes=nodes), first
+    return Placed(table=table, nodes=nodes, model=model), first
 
 
 def _grow_known(circuit: Circuit, n: int) -> tuple[tuple[Tree, ...], NDArray[np.bool_], list[int]]:
@@ -124,18 +123,23 @@ def _grow_known(circuit: Circuit, n: int) -> tuple[tuple[Tree, ...], NDArray[np.
     return tuple(tree), is_known, pending
 
 
-def _conductors(circuit: Circuit, bipolars: Placed, diodes: Placed) -> Iterator[tuple[int, int]]:
+def _conductors(circuit: Circuit, placed: Mapping[str, Placed]) -> Iterator[tuple[int, int]]:
     """Every pair of nodes joined for direct current."""
     for table in (circuit.resistors, circuit.inductors, circuit.voltages):
-        for a, b in table.nodes:
-            yield int(a), int(b)
-    for row in diodes.nodes:
-        yield int(row[0]), int(row[2])
-        yield int(row[2]), int(row[1])
-    for row in bipolars.nodes:
-        # A base at a known voltage still lets collector and emitter act on each other.
-        for a, b in ((0, 4), (1, 5), (2, 6), (4, 5), (5, 6), (4, 6)):
-            yield int(row[a]), int(row[b])
+        for a, b in table.nodes.tolist():
+            yield a, b
+    for each in placed.values():
+        for row in each.nodes.tolist():
+            for a, b in each.model.PATHS:
+                yield row[a], row[b]
+
+
+def _controls(placed: Mapping[str, Placed]) -> Iterator[tuple[int, int]]:
+    """Every pair of nodes of which the first steers the second and draws nothing."""
+    for each in placed.values():
+        for row in each.nodes.tolist():
+            for a, b in each.model.CONTROLS:
+                yield row[a], row[b]
 
 
 def _conflict(circuit: Circuit, tree: tuple[Tree, ...], is_known: NDArray[np.bool_], left: list[int]) -> str:
@@ -155,17 +159,18 @@ def _conflict(circuit: Circuit, tree: tuple[Tree, ...], is_known: NDArray[np.boo
 def make_plan(circuit: Circuit) -> Plan:
     """The DC numbering of a circuit; the same for all its scenarios."""
     n = len(circuit.nets)
-    bipolars, n_total = _place(circuit.bipolars, bipolar.INNER, bipolar.TERMINALS, n)
-    diodes, n_total = _place(circuit.diodes, diode.INNER, diode.TERMINALS, n_total)
-    tree, is_known, left = _grow_known(circuit, n_total)
-    pairs = list(_conductors(circuit, bipolars, diodes))
-    islands, isolated = _islands(circuit, pairs, tree, is_known, left, n_total)
-    return _number(circuit, bipolars, diodes, tree, is_known, islands, isolated, n_total)
+    placed: dict[str, Placed] = {}
+    for kind, model in FAMILIES.items():
+        if circuit.devices.get(kind, NO_DEVICES).names:
+            placed[kind], n = _place(circuit.devices[kind], model(), n)
+    tree, is_known, left = _grow_known(circuit, n)
+    islands, isolated = _islands(circuit, placed, tree, is_known, left, n)
+    return _number(circuit, placed, tree, is_known, islands, isolated, n)
 
 
 def _islands(
     circuit: Circuit,
-    pairs: list[tuple[int, int]],
+    placed: Mapping[str, Placed],
     tree: tuple[Tree, ...],
     is_known: NDArray[np.bool_],
     left: list[int],
@@ -174,6 +179,7 @@ def _islands(
     sets = Sets(n)
     anchored: set[int] = set()
     touched: set[int] = set()
+    pairs = list(_conductors(circuit, placed))
     for a, b in pairs:
         touched.update((a, b))
         if not is_known[a] and not is_known[b]:
@@ -181,22 +187,39 @@ def _islands(
     for a, b in pairs:
         if a != b and is_known[a] != is_known[b]:
             anchored.add(sets.find(b if is_known[a] else a))
+    free = [node for node in range(n) if not is_known[node]]
+    adrift = [node for node in free if node in touched and sets.find(node) not in anchored]
+    steering = [(a, b) for a, b in _controls(placed) if not is_known[a]]
+    for a, b in steering:
+        # What a gate steers must stand in one matrix with it, though no current ties the two.
+        if not is_known[b] and a in touched:
+            sets.join(a, b)
     members: dict[int, list[int]] = {}
-    for node in range(n):
-        if not is_known[node] and node in touched:
+    for node in free:
+        if node in touched:
             members.setdefault(sets.find(node), []).append(node)
-    isolated = tuple(node for node in range(n) if not is_known[node] and node not in touched)
+    isolated = tuple(node for node in free if node not in touched)
     blocked = _blocked(circuit, sets, is_known)
+    loose = _loose(circuit, sets, adrift, [(a, b) for a, b in steering if a not in touched])
     loop = _conflict(circuit, tree, is_known, left)
     out = []
     for root, nodes in members.items():
         inside = set(nodes)
         v_rows, l_rows, trouble = _branches(circuit, left, inside, is_known)
-        if root not in anchored:
-            trouble = trouble or f"no DC path ties {circuit.nets[min(nodes)]} to ground or a supply"
-        trouble = blocked.get(root, "") or trouble or loop
+        trouble = blocked.get(root, "") or trouble or loose.get(root, "") or loop
         out.append(IslandPlan(nodes=tuple(nodes), voltages=v_rows, inductors=l_rows, trouble=trouble))
     return out, isolated
+
+
+def _loose(circuit: Circuit, sets: Sets, adrift: list[int], open_gates: list[tuple[int, int]]) -> dict[int, str]:
+    """Islands without an answer because a net floats: its own, or that of a gate which steers it."""
+    out: dict[int, str] = {}
+    for node in adrift:
+        name = circuit.nets[node] if node < len(circuit.nets) else "a net"
+        out.setdefault(sets.find(node), f"no DC path ties {name} to ground or a supply")
+    for gate, steered in open_gates:
+        out.setdefault(sets.find(steered), f"no DC path sets the gate net {circuit.nets[gate]}")
+    return out
 
 
 def _blocked(circuit: Circuit, sets: Sets, is_known: NDArray[np.bool_]) -> dict[int, str]:
@@ -245,8 +268,7 @@ def _branches(
 
 def _number(
     circuit: Circuit,
-    bipolars: Placed,
-    diodes: Placed,
+    placed: Mapping[str, Placed],
     tree: tuple[Tree, ...],
     is_known: NDArray[np.bool_],
     islands: list[IslandPlan],
@@ -272,8 +294,7 @@ def _number(
     ordered = tuple(solvable) + tuple(i for i in islands if i.trouble)
     return Plan(
         n_nodes=n,
-        bipolars=bipolars,
-        diodes=diodes,
+        placed=placed,
         known=tree,
         is_known=is_known,
         islands=ordered,

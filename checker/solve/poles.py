@@ -24,7 +24,7 @@ MARGIN = 1e-6
 
 
 def growing_poles(point: OperatingPoint, without: str = "") -> ComplexArray:
-    """Poles of scenario 0 with positive real part [rad/s]; `without`: a bipolar whose pencil is left out.
+    """Poles of scenario 0 with positive real part [rad/s]; `without`: a device whose pencil is left out.
 
     Devices without bias are left out: their islands have no figures anyway.
     """
@@ -65,8 +65,8 @@ def _pencil(point: OperatingPoint, without: str) -> tuple[FloatArray, FloatArray
             matrix[b, b] += y
             matrix[a, b] -= y
             matrix[b, a] -= y
-    (g_b, c_b), (g_d, c_d) = device_pencils(point)
-    for placed, dg, dc in ((plan.bipolars, g_b, c_b), (plan.diodes, g_d, c_d)):
+    for kind, (dg, dc) in device_pencils(point).items():
+        placed = plan.placed[kind]
         for j, nodes in enumerate(placed.nodes):
             if placed.table.names[j] != without and np.isfinite(dg[0, j]).all():
                 np.add.at(g, np.ix_(nodes, nodes), dg[0, j])

@@ -8,7 +8,7 @@ Unknowns: voltages of nets that no ideal source fixes, then branch currents of f
 
 from __future__ import annotations
 
-from collections.abc import Sequence
+from collections.abc import Mapping, Sequence
 from dataclasses import replace
 
 import numpy as np
@@ -52,7 +52,7 @@ class Response:
     """`z` complex128 (S, F, u, u): inverse of the system matrix `y`; `y_known` (S, F, u, n_net): coupling from nets.
 
     Immutable; `removed`, `shorted`, `opened` return changed copies. `row` (n_net,): unknown of a net, -1 if none.
-    `bipolar_y` (S, F, n, 4, 4), `diode_y` (S, F, n, 2, 2): devices at their terminals.
+    `device_y`: family -> devices at their outer terminals (S, F, n, k, k).
     """
 
     circuit: Circuit
@@ -64,8 +64,7 @@ class Response:
     z: ComplexArray
     y: ComplexArray
     y_known: ComplexArray
-    bipolar_y: ComplexArray
-    diode_y: ComplexArray
+    device_y: Mapping[str, ComplexArray]
 
     # --- solutions ---------------------------------------------------------------------------------------
     def solution(self, drive: Drive) -> ComplexArray:
@@ -105,7 +104,7 @@ class Response:
 
     # --- elements ----------------------------------------------------------------------------------------
     def block(self, part: str) -> Block:
-        """Admittance block of a resistor, capacitor, diode or bipolar. Raises KeyError for another part."""
+        """Admittance block of a resistor, capacitor or semiconductor. Raises KeyError for another part."""
         c = self.circuit
         s = angular(self.f_hz)
         for table, y_of in ((c.resistors, self._y_r), (c.capacitors, self._y_c)):
@@ -113,11 +112,8 @@ class Response:
                 j = table.names.index(part)
                 y = y_of(table, j, s)
                 return Block(nodes=_ends(table, j), y=y[..., None, None] * np.array([[1.0, -1.0], [-1.0, 1.0]]))
-        for devices, y in ((c.bipolars, self.bipolar_y), (c.diodes, self.diode_y)):
-            if part in devices.names:
-                j = devices.names.index(part)
-                return Block(nodes=tuple(int(n) for n in devices.nodes[j]), y=y[:, :, j])
-        raise KeyError(part)
+        kind, j = c.find_device(part)
+        return Block(nodes=tuple(c.devices[kind].nodes[j].tolist()), y=self.device_y[kind][:, :, j])
 
     def _y_r(self, table: Branches, j: int, _s: ComplexArray) -> ComplexArray:
         return np.broadcast_to(1.0 / table.value[:, j, None], (self.z.shape[0], len(self.f_hz))).astype(complex)
@@ -126,7 +122,7 @@ class Response:
         return table.value[:, j, None] * s
 
     def current(self, part: str, terminal: int, solution: ComplexArray) -> ComplexArray:
-        """Current into a part's terminal (0 or 1; bipolar c, b, e, s), complex128 (S, F) [A]."""
+        """Current into a part's terminal (0 or 1; of a semiconductor as in its table), complex128 (S, F) [A]."""
         c = self.circuit
         if part in c.inductors.names:
             row = self.l_row[c.inductors.names.index(part)]
@@ -190,7 +186,7 @@ class Response:
         safe = np.where(y_tt == 0.0, 1.0, y_tt)
         delta = -block.y[..., :, t, None] * block.y[..., None, t, :] / safe[..., None, None]
         out = self._changed(block.nodes, delta)
-        return out._with_device(part, block.y + delta) if part in self.circuit.bipolars.names else out
+        return out._with_device(part, block.y + delta)
 
     def _open_inductor(self, part: str) -> Response:
         row = self.l_row[self.circuit.inductors.names.index(part)]
@@ -212,15 +208,12 @@ class Response:
         raise KeyError(part)
 
     def _with_device(self, name: str, y: ComplexArray) -> Response:
-        c = self.circuit
-        if name in c.bipolars.names:
-            new = self.bipolar_y.copy()
-            new[:, :, c.bipolars.names.index(name)] = y
-            return replace(self, bipolar_y=new)
-        if name in c.diodes.names:
-            new = self.diode_y.copy()
-            new[:, :, c.diodes.names.index(name)] = y
-            return replace(self, diode_y=new)
+        """The block of a semiconductor as it now is; other parts keep none."""
+        for kind, table in self.circuit.devices.items():
+            if name in table.names:
+                new = self.device_y[kind].copy()
+                new[:, :, table.names.index(name)] = y
+                return replace(self, device_y={**self.device_y, kind: new})
         return self
 
     def _changed(self, nodes: tuple[int, ...], delta: ComplexArray) -> Response:
@@ -262,10 +255,9 @@ def small_signal(point: OperatingPoint, f_hz: FloatArray) -> Response:
     """Linearise at the operating point and solve at all frequencies [Hz], (F,)."""
     f = np.asarray(f_hz, dtype=float)
     system = signal_system(point)
-    (g_b, c_b), (g_d, c_d) = device_pencils(point)
-    y_b = outer_admittance(point.plan.bipolars, g_b, c_b, f, 4)
-    y_d = outer_admittance(point.plan.diodes, g_d, c_d, f, 2)
-    y, y_known = system.matrices(f, y_b, y_d)
+    placed, pencils = point.plan.placed, device_pencils(point)
+    device_y = {kind: outer_admittance(placed[kind], g, c, f) for kind, (g, c) in pencils.items()}
+    y, y_known = system.matrices(f, device_y)
     COUNTERS.factorisations += y.shape[0] * y.shape[1] * len(system.islands)
     return Response(
         circuit=point.circuit,
@@ -277,6 +269,5 @@ def small_signal(point: OperatingPoint, f_hz: FloatArray) -> Response:
         z=system.inverse(y),
         y=y,
         y_known=y_known,
-        bipolar_y=y_b,
-        diode_y=y_d,
+        device_y=device_y,
     )

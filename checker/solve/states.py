@@ -12,7 +12,8 @@ import numpy as np
 from numpy.typing import NDArray
 
 from checker.circuit.types import Branches, Circuit, Devices
-from checker.solve.assemble import Assembler, Junctions
+from checker.devices.family import TRANSISTORS
+from checker.solve.assemble import Assembler
 from checker.solve.newton import BY_SOURCES, follow, iterate
 from checker.solve.operating import Island, OperatingPoint, operating_point
 
@@ -38,37 +39,34 @@ def searched(point: OperatingPoint) -> OperatingPoint:
     return _marked(_ramped(point, [k for k, rows in found.items() if len(rows) > 1]), found)
 
 
-def _members(point: OperatingPoint) -> dict[int, list[int]]:
-    """Bipolars of each solved island."""
+def _members(point: OperatingPoint) -> dict[int, list[tuple[str, int]]]:
+    """Transistors of each solved island, as (family, place)."""
     count = len(point.assembler.island_sizes)
-    out: dict[int, list[int]] = {}
+    placed = [(kind, each) for kind, each in point.plan.placed.items() if kind in TRANSISTORS]
+    out: dict[int, list[tuple[str, int]]] = {}
     for k, island in enumerate(point.plan.islands[:count]):
         nodes = set(island.nodes)
-        devices = [j for j, row in enumerate(point.plan.bipolars.nodes.tolist()) if nodes & set(row)]
+        devices = [(kind, j) for kind, each in placed for j, row in enumerate(each.nodes.tolist()) if nodes & set(row)]
         if point.islands[k].ok[0]:
             out[k] = devices
     return out
 
 
-def _seeded(point: OperatingPoint, several: dict[int, list[int]]) -> tuple[FloatArray, NDArray[np.bool_]]:
+def _seeded(point: OperatingPoint, several: dict[int, list[tuple[str, int]]]) -> tuple[FloatArray, NDArray[np.bool_]]:
     """Solutions from every pattern: x (seeds, U) and converged (seeds, islands)."""
     seeds = 2 ** max(len(devices) for devices in several.values())
-    assembler = Assembler(
-        _copies(point.circuit, seeds),
-        point.plan,
-        np.repeat(point.bipolar_k[:1], seeds, axis=0),
-        np.repeat(point.diode_k[:1], seeds, axis=0),
-    )
-    start = assembler.start()
-    junctions = start.bipolar.copy()
+    device_k = {kind: np.repeat(t[:1], seeds, axis=0) for kind, t in point.device_k.items()}
+    assembler = Assembler(_copies(point.circuit, seeds), point.plan, device_k)
+    start = {kind: at.copy() for kind, at in zip(point.plan.placed, assembler.start(), strict=True)}
+    idle_at = {kind: TRANSISTORS[kind]().off(assembler.p[kind]) for kind in start if kind in TRANSISTORS}
     for devices in several.values():
-        for bit, j in enumerate(devices):
+        for bit, (kind, j) in enumerate(devices):
             off = (np.arange(seeds) >> bit) & 1 == 1
-            junctions[off, j, :] = 0.0
+            start[kind][off, j] = idle_at[kind][off, j]
     x = np.zeros((seeds, point.plan.n_unknown))
     idle = np.ones((seeds, len(assembler.island_sizes)), dtype=bool)
     idle[:, list(several)] = False
-    out, done, _ = iterate(assembler, x, Junctions(bipolar=junctions, diode=start.diode), idle, limit=SEED_PASSES)
+    out, done, _ = iterate(assembler, x, tuple(start.values()), idle, limit=SEED_PASSES)
     return out, done & ~idle
 
 
@@ -123,8 +121,7 @@ def _copies(circuit: Circuit, count: int) -> Circuit:
         inductors=branches(circuit.inductors),
         voltages=branches(circuit.voltages),
         currents=branches(circuit.currents),
-        bipolars=devices(circuit.bipolars),
-        diodes=devices(circuit.diodes),
+        devices={kind: devices(table) for kind, table in circuit.devices.items()},
         temperature_k=np.repeat(circuit.temperature_k[:1], count),
         scenarios=circuit.scenarios[:1] * count,
     )

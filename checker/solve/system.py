@@ -6,10 +6,12 @@ net is pinned at one net by 1 S: no current flows there, so differences are unha
 
 from __future__ import annotations
 
+from collections.abc import Mapping
+
 import numpy as np
 from numpy.typing import NDArray
 
-from checker.circuit.types import Branches, Circuit
+from checker.circuit.types import Branches, Circuit, Devices
 from checker.shape import frozen
 from checker.solve.frequencies import angular
 from checker.solve.operating import OperatingPoint
@@ -35,14 +37,14 @@ class SignalSystem:
     pins: tuple[int, ...]
     size: int
 
-    def matrices(self, f_hz: FloatArray, y_b: ComplexArray, y_d: ComplexArray) -> tuple[ComplexArray, ComplexArray]:
-        """System matrix (S, F, u, u) and its coupling from nets (S, F, u, n_net)."""
+    def matrices(self, f_hz: FloatArray, device_y: Mapping[str, ComplexArray]) -> tuple[ComplexArray, ComplexArray]:
+        """System matrix (S, F, u, u) and its coupling from nets (S, F, u, n_net); `device_y` by family."""
         c = self.circuit
         s = angular(f_hz)
         shape = (c.size, len(f_hz))
         n_net = len(c.nets)
         full = np.zeros((*shape, self.size, self.size + n_net), dtype=complex)
-        for a, b, y in self._admittances(s, y_b, y_d):
+        for a, b, y in self._admittances(s, device_y):
             self._stamp(full, a, b, y)
         self._branches(full, s)
         for pin in self.pins:
@@ -50,7 +52,7 @@ class SignalSystem:
         return full[..., : self.size], full[..., self.size :]
 
     def _admittances(
-        self, s: ComplexArray, y_b: ComplexArray, y_d: ComplexArray
+        self, s: ComplexArray, device_y: Mapping[str, ComplexArray]
     ) -> list[tuple[int, int, ComplexArray]]:
         c = self.circuit
         out: list[tuple[int, int, ComplexArray]] = []
@@ -61,8 +63,8 @@ class SignalSystem:
             for j, (a, b) in enumerate(table.nodes.tolist()):
                 for row, column, sign in ((a, a, 1), (b, b, 1), (a, b, -1), (b, a, -1)):
                     out.append((row, column, sign * y[..., j]))
-        for nodes, y in ((c.bipolars.nodes, y_b), (c.diodes.nodes, y_d)):
-            for j, terminals in enumerate(nodes.tolist()):
+        for kind, y in device_y.items():
+            for j, terminals in enumerate(c.devices[kind].nodes.tolist()):
                 for r, a in enumerate(terminals):
                     for k, b in enumerate(terminals):
                         out.append((a, b, y[:, :, j, r, k]))
@@ -165,7 +167,7 @@ def _joins(c: Circuit) -> list[list[int]]:
     """Nets that each element joins; a substrate tied to ground joins nothing of its own."""
     tables = (c.resistors, c.capacitors, c.inductors, c.voltages)
     out = [row for table in tables for row in table.nodes.tolist()]
-    out += [[j for j in row if j > 0] for table in (c.bipolars, c.diodes) for row in table.nodes.tolist()]
+    out += [[j for j in row if j > 0] for table in c.devices.values() for row in table.nodes.tolist()]
     pairs = c.couplings.pair.tolist()
     ends = c.inductors.nodes.tolist()
     # Coupled windings share an island of unknowns though no net joins them.
@@ -214,5 +216,5 @@ def _islands(
 
 def _galvanic(c: Circuit) -> list[list[int]]:
     """Elements through which current can reach a fixed net."""
-    tables = (c.resistors, c.capacitors, c.inductors, c.voltages, c.bipolars, c.diodes)
+    tables: list[Branches | Devices] = [c.resistors, c.capacitors, c.inductors, c.voltages, *c.devices.values()]
     return [row for table in tables for row in table.nodes.tolist()]

@@ -35,8 +35,8 @@ def influence(point: OperatingPoint) -> Influence:
     """From a solution of the nominal scenario alone."""
     circuit = point.circuit
     names = tuple(name for name in circuit.resistors.names if name in circuit.parts)
-    devices = circuit.bipolars.names
-    base = np.log(np.maximum(np.abs(point.bipolar["ic_a"][0]), 1e-30))
+    devices = circuit.transistors.names
+    base = np.log(np.maximum(np.abs(point.transistor["i_out_a"][0]), 1e-30))
     slope = np.zeros((len(names), len(devices)))
     for first in range(0, len(names) if devices else 0, CHUNK):
         part = names[first : first + CHUNK]
@@ -45,6 +45,6 @@ def influence(point: OperatingPoint) -> Influence:
             for n in part
         ]
         stack = operating_point(with_changes(circuit, (Scenario(name="nominal"), *changes)), near=point)
-        moved = np.log(np.maximum(np.abs(stack.bipolar["ic_a"][1:]), 1e-30))
+        moved = np.log(np.maximum(np.abs(stack.transistor["i_out_a"][1:]), 1e-30))
         slope[first : first + len(part)] = np.nan_to_num((moved - base) / np.log1p(NUDGE))
     return Influence(resistors=names, devices=devices, slope=slope)

@@ -1,9 +1,10 @@
 """Where the signal enters a device and where it leaves.
 
-Entry: the whole device is taken out; of the voltages that its surroundings then offer at base, emitter and collector,
-which one drives the junction once the device is back? (Taking out gm alone is not enough: the kept junction
-impedance bridges base and emitter and misleads at RF and in feedback pairs.) Exit: a current injected at the collector
-alone, then at the emitter alone; the larger effect at the output port.
+Words are those of the bipolar; drain, gate and source of a field-effect transistor go the same way. Entry: the whole
+device is taken out; of the voltages that its surroundings then offer at base, emitter and collector, which one drives
+the junction once the device is back? (Taking out gm alone is not enough: the kept junction impedance bridges base and
+emitter and misleads at RF and in feedback pairs.) Exit: a current injected at the collector alone, then at the emitter
+alone; the larger effect at the output port.
 """
 
 from __future__ import annotations
@@ -15,8 +16,6 @@ from checker.shape import frozen
 from checker.stages.role import Part
 from checker.stages.scene import Path, Scene
 from checker.words import Terminal
-
-TERMINALS: tuple[Terminal, Terminal, Terminal] = ("collector", "base", "emitter")
 
 
 @frozen
@@ -35,11 +34,11 @@ def direction(scene: Scene, device: str, part: Part) -> Direction:
     drive_be, effect_ce = entry_weights(scene, device, part.path), exit_weights(scene, device, part.path)
     entries = np.where(drive_be[1] >= drive_be[2], 1, 2)
     exits = np.where(effect_ce[0] >= effect_ce[1], 0, 2)
-    middle = len(entries) // 2
+    middle, words = len(entries) // 2, scene.words(device)
     agreement = float(np.mean((entries == entries[middle]) & (exits == exits[middle])))
     return Direction(
-        entry=TERMINALS[int(entries[middle])],
-        exit=TERMINALS[int(exits[middle])],
+        entry=words[int(entries[middle])],
+        exit=words[int(exits[middle])],
         agreement=agreement,
         entry_margin_db=_margin(drive_be[1][middle], drive_be[2][middle]),
         exit_margin_db=_margin(effect_ce[0][middle], effect_ce[1][middle]),
@@ -52,7 +51,7 @@ def entry_weights(scene: Scene, device: str, path: Path) -> NDArray[np.float64]:
     out = scene.response.removed([device])
     v0 = out.voltages(path.drive)[0][:, terminals]
     z = np.stack([np.stack([out.transfer(a, b)[0] for b in terminals], -1) for a in terminals], -2)
-    y = scene.response.bipolar_y[0, :, scene.devices.index(device), :3, :3]
+    y = scene.admittance(device)
     back = np.linalg.inv(np.eye(3) + z @ y)
     vbe = (back[:, 1, :] - back[:, 2, :]) * v0
     return np.asarray(np.abs(vbe.T), dtype=float)

@@ -2,15 +2,28 @@
 
 from __future__ import annotations
 
+from collections.abc import Mapping
+
 import numpy as np
 
 from checker.quantity.show import show
 from checker.stages.direction import Direction
 from checker.stages.role import Part
 from checker.stages.scene import Scene
+from checker.stages.terminals import COMMON, CONTROL, OUTPUT
 from checker.stages.types import Link
 from checker.stages.wiring import decouplers
 from checker.words import Configuration
+
+HELD: Mapping[Configuration, int] = {
+    "common-base": CONTROL,
+    "common-emitter": COMMON,
+    "common-collector": OUTPUT,
+    "common-gate": CONTROL,
+    "common-source": COMMON,
+    "common-drain": OUTPUT,
+}
+"""The terminal that a configuration holds at signal ground."""
 
 
 def stage_evidence(
@@ -22,7 +35,7 @@ def stage_evidence(
     out = [f"carries the signal from {path}: participation {part.weight[middle]:.2f}"]
     out.append(_way("enters at the", way.entry, way.entry_margin_db, links[0]))
     out.append(_way("leaves at the", way.exit, way.exit_margin_db, links[1]))
-    held = {"common-base": 1, "common-emitter": 2, "common-collector": 0}.get(label)
+    held = HELD.get(label)
     if held is not None:
         out.append(_held(scene, device, held))
     return tuple(out)
@@ -38,7 +51,7 @@ def _way(verb: str, terminal: str, margin_db: float, link: Link | None) -> str:
 def _held(scene: Scene, device: str, terminal: int) -> str:
     """How well the common terminal is held at signal ground: impedance of its net with the device out."""
     node = scene.nodes(device)[terminal]
-    word = ("collector", "base", "emitter")[terminal]
+    word = scene.words(device)[terminal]
     if scene.silent[node]:
         return f"{word} at signal ground on {scene.circuit.nets[node]}"
     out = scene.response.removed([device])

@@ -9,6 +9,7 @@ import numpy as np
 
 from checker.stages.direction import Direction
 from checker.stages.scene import Scene
+from checker.stages.terminals import COMMON, CONTROL, NUMBER, OUTPUT
 from checker.stages.types import Group
 from checker.stages.wiring import resistors_on, through_resistors
 from checker.words import GroupLabel
@@ -26,23 +27,33 @@ def find_groups(scene: Scene, ways: Mapping[str, Direction]) -> tuple[Group, ...
 
 def _biased(scene: Scene, device: str) -> bool:
     """Whether a device has an operating point: without one nothing is said of it, groups included."""
-    return bool(np.isfinite(scene.point.bipolar["ic_a"][0, scene.devices.index(device)]))
+    return bool(np.isfinite(scene.point.transistor["i_out_a"][0, scene.devices.index(device)]))
 
 
 def _labels(scene: Scene, ways: Mapping[str, Direction], p: str, q: str) -> Iterator[tuple[GroupLabel, str, str, str]]:
     for a, b in ((p, q), (q, p)):
         if _mirror(scene, a, b):
-            yield "current-mirror", a, b, f"{a} has base on collector; bases joined, emitters on the same supply"
+            yield (
+                "current-mirror",
+                a,
+                b,
+                _words(scene, a, "{a} has {ctl} on {out}; {ctl}s joined, {com}s on the same supply", b),
+            )
     for a, b in ((p, q), (q, p)):
         yield from _compound(scene, ways, a, b)
-    for joined, outer, place in (("emitter", "collector", 2), ("collector", "emitter", 0)):
+    for joined, outer, place in (("{com}", "{out}", COMMON), ("{out}", "{com}", OUTPUT)):
         if _push_pull(scene, p, q, ways, place):
-            yield "push-pull", p, q, f"opposite polarities, {joined}s joined, {outer}s on opposite supplies"
+            yield (
+                "push-pull",
+                p,
+                q,
+                _words(scene, p, f"opposite polarities, {joined}s joined, {outer}s on opposite supplies"),
+            )
     if _differential(scene, p, q):
-        yield "differential-pair", p, q, "emitters joined to a common tail, bases apart"
+        yield "differential-pair", p, q, _words(scene, p, "{com}s joined to a common tail, {ctl}s apart")
     for a, b in ((p, q), (q, p)):
         if _feeds(scene, ways, a, b):
-            yield "direct-coupled-pair", a, b, f"collector of {a} is the base of {b}"
+            yield "direct-coupled-pair", a, b, _words(scene, a, "{out} of {a} is the {ctl_b} of {b}", b)
 
 
 def _group(label: GroupLabel, first: str, second: str, evidence: str, ways: Mapping[str, Direction]) -> Group:
@@ -60,20 +71,23 @@ def _group(label: GroupLabel, first: str, second: str, evidence: str, ways: Mapp
 
 def _heads(a: str, b: str, ways: Mapping[str, Direction]) -> tuple[str, str]:
     """Of a pair driven on one side, the driven device first."""
-    if b in ways and ways[b].entry == "base" and (a not in ways or ways[a].entry == "emitter"):
+    if _enters(ways, b, CONTROL) and (a not in ways or _enters(ways, a, COMMON)):
         return b, a
     return a, b
 
 
-def _polarity(scene: Scene, device: str) -> float:
-    return float(scene.circuit.bipolars.polarity[scene.devices.index(device)])
+def _words(scene: Scene, a: str, text: str, b: str = "") -> str:
+    """A sentence with the terminal words of a device (and, with _b, of a second) filled in."""
+    out, ctl, com = scene.words(a)
+    out_b, ctl_b, com_b = scene.words(b or a)
+    return text.format(a=a, b=b, out=out, ctl=ctl, com=com, out_b=out_b, ctl_b=ctl_b, com_b=com_b)
 
 
 def _mirror(scene: Scene, a: str, b: str) -> bool:
     """`a` diode-connected (directly), `b` beside it."""
     ca, ba, ea = scene.nodes(a)
     cb, bb, eb = scene.nodes(b)
-    if ca != ba or ba != bb or cb == bb or _polarity(scene, a) != _polarity(scene, b):
+    if ca != ba or ba != bb or cb == bb or scene.polarity(a) != scene.polarity(b):
         return False
     return bool(_supplies(scene, ea) & _supplies(scene, eb))
 
@@ -91,46 +105,46 @@ def _compound(
     """`a` drives `b` directly."""
     ca, _, ea = scene.nodes(a)
     cb, bb, eb = scene.nodes(b)
-    same = _polarity(scene, a) == _polarity(scene, b)
+    same = scene.polarity(a) == scene.polarity(b)
     shared = ca == cb or (scene.silent[ca] and _both_followers(ways, a, b))
     if same and bb in through_resistors(scene, ea) and ea != eb and shared:
-        yield "darlington", a, b, f"emitter of {a} drives the base of {b}"
+        yield "darlington", a, b, _words(scene, a, "{com} of {a} drives the {ctl_b} of {b}", b)
     if not same and bb in through_resistors(scene, ca) and cb in through_resistors(scene, ea) and not scene.silent[ea]:
         yield (
             "complementary-feedback-pair",
             a,
             b,
-            f"collector of {a} drives {b}, whose collector returns to its emitter",
+            _words(scene, a, "{out} of {a} drives {b}, whose {out_b} returns to its {com}", b),
         )
     # A quiet device under a signal device is its current source; two quiet ones are a cascoded source.
-    held = (_enters(ways, b, "emitter") or scene.silent[bb]) and (a in ways or b not in ways)
+    held = (_enters(ways, b, COMMON) or scene.silent[bb]) and (a in ways or b not in ways)
     if eb in through_resistors(scene, ca) and not scene.silent[ca] and ca != bb and held:
-        yield "cascode", a, b, f"collector of {a} feeds the emitter of {b}, whose base is held"
+        yield "cascode", a, b, _words(scene, a, "{out} of {a} feeds the {com_b} of {b}, whose {ctl_b} is held", b)
 
 
 def _both_followers(ways: Mapping[str, Direction], a: str, b: str) -> bool:
-    return a in ways and b in ways and ways[a].exit == "emitter" and ways[b].exit == "emitter"
+    return a in ways and b in ways and NUMBER[ways[a].exit] == NUMBER[ways[b].exit] == COMMON
 
 
-def _enters(ways: Mapping[str, Direction], device: str, terminal: str) -> bool:
-    return device in ways and ways[device].entry == terminal
+def _enters(ways: Mapping[str, Direction], device: str, terminal: int) -> bool:
+    return device in ways and NUMBER[ways[device].entry] == terminal
 
 
 def _push_pull(scene: Scene, p: str, q: str, ways: Mapping[str, Direction], place: int) -> bool:
-    """`place`: of the joined terminals, 0 collectors or 2 emitters; the others stand on different supplies."""
+    """`place`: of the joined terminals, output or common; the others stand on different supplies."""
     joined_p, joined_q = scene.nodes(p)[place], scene.nodes(q)[place]
-    outer_p, outer_q = (_supplies(scene, scene.nodes(device)[2 - place]) for device in (p, q))
-    if _polarity(scene, p) == _polarity(scene, q) or not outer_p or not outer_q or outer_p & outer_q:
+    outer_p, outer_q = (_supplies(scene, scene.nodes(device)[COMMON - place]) for device in (p, q))
+    if scene.polarity(p) == scene.polarity(q) or not outer_p or not outer_q or outer_p & outer_q:
         return False
     joined = bool(through_resistors(scene, joined_p) & through_resistors(scene, joined_q))
-    return joined and not scene.silent[joined_p] and _enters(ways, p, "base") and _enters(ways, q, "base")
+    return joined and not scene.silent[joined_p] and _enters(ways, p, CONTROL) and _enters(ways, q, CONTROL)
 
 
 def _differential(scene: Scene, p: str, q: str) -> bool:
     """Same polarity, emitters on one net or joined through equal resistors to one; bases and collectors apart."""
     cp, bp, ep = scene.nodes(p)
     cq, bq, eq = scene.nodes(q)
-    if _polarity(scene, p) != _polarity(scene, q) or bp == bq or cp == cq == ep:
+    if scene.polarity(p) != scene.polarity(q) or bp == bq or cp == cq == ep:
         return False
     if scene.silent[ep] or scene.silent[eq]:
         return False
@@ -144,6 +158,6 @@ def _differential(scene: Scene, p: str, q: str) -> bool:
 def _feeds(scene: Scene, ways: Mapping[str, Direction], a: str, b: str) -> bool:
     ca, _, _ = scene.nodes(a)
     _, bb, _ = scene.nodes(b)
-    if scene.silent[ca] or a not in ways or b not in ways or ways[a].exit != "collector" or ways[b].entry != "base":
+    if scene.silent[ca] or a not in ways or NUMBER[ways[a].exit] != OUTPUT or not _enters(ways, b, CONTROL):
         return False
     return bb in through_resistors(scene, ca)

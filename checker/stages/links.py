@@ -12,8 +12,9 @@ from collections.abc import Iterator, Mapping
 import numpy as np
 
 from checker.shape import frozen
-from checker.stages.direction import TERMINALS, Direction
+from checker.stages.direction import Direction
 from checker.stages.scene import Path, Scene
+from checker.stages.terminals import NUMBER
 from checker.stages.types import Link
 from checker.words import Terminal
 
@@ -33,20 +34,16 @@ class Step:
 
 def input_link(scene: Scene, device: str, way: Direction, path: Path, found: Mapping[str, Direction]) -> Link | None:
     """The link that feeds a device's entry; None where no single element does."""
-    start = _net(scene, device, way.entry)
-    exits = {name: _net(scene, name, other.exit) for name, other in found.items() if name != device}
+    start = scene.net(device, way.entry)
+    exits = {name: scene.net(name, other.exit) for name, other in found.items() if name != device}
     return _walk(scene, path, start, exits, {device}, upstream=True, own=(device, way.entry))
 
 
 def output_link(scene: Scene, device: str, way: Direction, path: Path, found: Mapping[str, Direction]) -> Link | None:
     """The link through which a device's exit feeds what follows; None where no single element does."""
-    start = _net(scene, device, way.exit)
-    entries = {name: _net(scene, name, other.entry) for name, other in found.items() if name != device}
+    start = scene.net(device, way.exit)
+    entries = {name: scene.net(name, other.entry) for name, other in found.items() if name != device}
     return _walk(scene, path, start, entries, {device}, upstream=False, own=(device, way.exit), found=found)
-
-
-def _net(scene: Scene, device: str, terminal: Terminal) -> int:
-    return scene.nodes(device)[TERMINALS.index(terminal)]
 
 
 def _walk(
@@ -73,7 +70,7 @@ def _walk(
             return None
         used.add(step.part)
         if step.kind == "device":
-            terminal = TERMINALS[step.terminal]
+            terminal = scene.words(step.part)[step.terminal]
             return Link(
                 kind="direct", part=step.part, stage_node=node, far_node=node, other=step.part, terminal=terminal
             )
@@ -90,7 +87,7 @@ def _best(
 ) -> Step | None:
     steps = list(ways_off(scene, node, used))
     if found is not None:
-        steps += [Step(kind="device", part=name, far=node, terminal=TERMINALS.index(found[name].entry)) for name in met]
+        steps += [Step(kind="device", part=name, far=node, terminal=NUMBER[found[name].entry]) for name in met]
     left = [_left_without(scene, path, step) for step in steps]
     if not steps or min(left) > CARRIES:
         return None

@@ -116,7 +116,7 @@ def device_hops(circuit: Circuit, start: int, response: Response) -> dict[int, i
     while True:
         _spread(reached, passive, hop, response)
         fresh: set[int] = set()
-        for c, b, e, _ in circuit.bipolars.nodes.tolist():
+        for c, b, e in circuit.transistors.nodes.tolist():
             exits = {c, e} if b in reached else {c} if e in reached else set()
             fresh |= {node for node in exits if node not in reached and not response.known[node]}
         if not fresh:

@@ -26,7 +26,14 @@ CONFIGURATIONS: Mapping[tuple[Terminal, Terminal], Configuration] = {
     ("base", "collector"): "common-emitter",
     ("emitter", "collector"): "common-base",
     ("base", "emitter"): "common-collector",
+    ("gate", "drain"): "common-source",
+    ("source", "drain"): "common-gate",
+    ("gate", "source"): "common-drain",
 }
+
+
+SPLITTING = ("common-emitter", "common-collector", "common-source", "common-drain")
+"""A device with its signal entering at the control terminal may leave at both others."""
 
 
 def recognise(
@@ -73,7 +80,7 @@ def _carries(part: Part) -> bool:
 
 def _regions(point: OperatingPoint) -> dict[str, Region | None]:
     codes = region_codes(point)[0]
-    names = point.circuit.bipolars.names
+    names = point.circuit.transistors.names
     return {n: REGIONS[int(c)] if np.isfinite(c) else None for n, c in zip(names, codes, strict=True)}
 
 
@@ -84,7 +91,7 @@ def _signal_stage(
     entering = input_link(scene, name, way, part.path, ways)
     leaving = output_link(scene, name, way, part.path, ways)
     label = CONFIGURATIONS.get((way.entry, way.exit), "unclassified")
-    if label in ("common-emitter", "common-collector") and _splits(scene, name, part):
+    if label in SPLITTING and _splits(scene, name, part):
         label = "phase-splitter"
     reason = "" if label != "unclassified" else f"signal both enters and leaves at the {way.entry}"
     return Stage(

@@ -30,22 +30,30 @@ SLOW_HZ = 1e-3
 
 def region_codes(point: OperatingPoint) -> FloatArray:
     """Index into `REGIONS`, float64 (S, n); nan without bias."""
-    placed = point.plan.bipolars
-    v = point.v_v[:, placed.nodes]
-    at = bipolar.junctions(v, placed.table.polarity)
+    codes = np.zeros((point.circuit.size, 0))
+    if "bipolar" in point.plan.placed:
+        codes = np.concatenate([codes, _bipolar_codes(point)], axis=1)
+    with np.errstate(invalid="ignore"):
+        codes = np.where(_cut_off(point), REGIONS.index("cut-off"), codes)
+    return np.where(np.isfinite(point.transistor["i_out_a"]), codes, np.nan)
+
+
+def _bipolar_codes(point: OperatingPoint) -> FloatArray:
+    at = _bipolar_junctions(point)
     vbe, vbc = at[..., 0], at[..., 1]
     with np.errstate(invalid="ignore"):
-        code = np.where(saturation_edge_v(point) < vbc, 1.0, 0.0)
-        code = np.where((vbc > 0.0) & (vbe <= 0.0), 3.0, code)
-        code = np.where(_cut_off(point), 2.0, code)
-    return np.where(np.isfinite(vbe), code, np.nan)
+        code = np.where(saturation_edge_v(point) < vbc, REGIONS.index("saturated"), REGIONS.index("active"))
+        return np.where((vbc > 0.0) & (vbe <= 0.0), REGIONS.index("reverse-active"), code)
+
+
+def _bipolar_junctions(point: OperatingPoint) -> FloatArray:
+    return bipolar.junctions(point.v_v[:, point.plan.placed["bipolar"].nodes], point.circuit.bipolars.polarity)
 
 
 def saturation_edge_v(point: OperatingPoint) -> FloatArray:
     """Inner VBC [V], (S, n), at which IC/IB has fallen to 0.9 of its value at VBC = 0, VBE as it is."""
-    placed = point.plan.bipolars
-    p = point.assembler.p_bipolar
-    at = bipolar.junctions(np.nan_to_num(point.v_v[:, placed.nodes]), placed.table.polarity)
+    p = point.assembler.p["bipolar"]
+    at = np.nan_to_num(_bipolar_junctions(point))
     vbe = np.maximum(at[..., 0], 1e-6)
     base = bipolar.core(p, vbe, np.zeros_like(vbe))
     low, width = np.zeros_like(vbe), vbe
@@ -61,17 +69,18 @@ def saturation_edge_v(point: OperatingPoint) -> FloatArray:
 
 
 def headroom_v(point: OperatingPoint) -> FloatArray:
-    """How far VCE may fall before the device saturates [V], (S, n); negative when it has."""
-    placed = point.plan.bipolars
-    at = bipolar.junctions(point.v_v[:, placed.nodes], placed.table.polarity)
-    return saturation_edge_v(point) - at[..., 1]
+    """How far the output voltage may fall before the device leaves the active region [V], (S, n); negative when it
+    has."""
+    rooms = [np.zeros((point.circuit.size, 0))]
+    if "bipolar" in point.plan.placed:
+        rooms.append(saturation_edge_v(point) - _bipolar_junctions(point)[..., 1])
+    return np.concatenate(rooms, axis=1)
 
 
 def _cut_off(point: OperatingPoint) -> NDArray[np.bool_]:
-    names = point.circuit.bipolars.names
-    ic = np.abs(point.bipolar["ic_a"])
+    ic = np.abs(point.transistor["i_out_a"])
     out = np.zeros(ic.shape, dtype=bool)
-    suspects = [j for j in range(len(names)) if np.nanmin(ic[:, j], initial=np.inf) < 1e-3]
+    suspects = [j for j in range(ic.shape[1]) if np.nanmin(ic[:, j], initial=np.inf) < 1e-3]
     if not suspects:
         return out
     slow = small_signal(point, np.array([SLOW_HZ]))
@@ -81,11 +90,11 @@ def _cut_off(point: OperatingPoint) -> NDArray[np.bool_]:
 
 
 def shorted_current(point: OperatingPoint, slow: Response, j: int) -> FloatArray:
-    """Current [A], (S,), with collector and emitter of bipolar `j` shorted and the device out."""
-    device = point.circuit.bipolars
-    c, b, e = device.nodes[j, :3].tolist()
+    """Current [A], (S,), with output and common terminal of transistor `j` shorted and the device out."""
+    device = point.circuit.transistors
+    c, b, e = device.nodes[j].tolist()
     out = slow.removed([device.names[j]])
-    i = {c: point.bipolar["ic_a"][:, j], b: point.bipolar["ib_a"][:, j], e: point.bipolar["ie_a"][:, j]}
+    i = {node: point.transistor[key][:, j] for node, key in ((c, "i_out_a"), (b, "i_control_a"), (e, "i_common_a"))}
     vce = point.v_v[:, c] - point.v_v[:, e]
     for node, current in i.items():
         vce = vce + np.real(out.transfer(c, node)[:, 0] - out.transfer(e, node)[:, 0]) * current

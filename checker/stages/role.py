@@ -29,7 +29,7 @@ class Part:
 def participation(scene: Scene, device: str) -> Part | None:
     """The strongest path of a device; None where no path exists or none could be computed."""
     best: Part | None = None
-    if not np.isfinite(scene.response.bipolar_y[0, :, scene.devices.index(device)]).all():
+    if not np.isfinite(scene.admittance(device)).all():
         return None
     passive = scene.without_gm(device)
     for path in scene.paths:

@@ -2,14 +2,18 @@
 
 from __future__ import annotations
 
+from collections.abc import Mapping
+
 import numpy as np
 from numpy.typing import NDArray
 
-from checker.circuit.types import Circuit, Port
+from checker.circuit.types import Circuit, Port, Transistors
 from checker.shape import frozen
 from checker.solve.admittance import passive_admittance
 from checker.solve.operating import OperatingPoint
 from checker.solve.response import Drive, Response, port_drive
+from checker.stages.terminals import NUMBER, WORDS
+from checker.words import Terminal
 
 ComplexArray = NDArray[np.complex128]
 LEAK = 1e-9
@@ -37,28 +41,47 @@ class Scene:
     response: Response
     paths: tuple[Path, ...]
     silent: NDArray[np.bool_]
-    passive_y: ComplexArray
+    passive_y: Mapping[str, ComplexArray]
+    transistors: Transistors
 
     def without_gm(self, device: str, response: Response | None = None) -> Response:
-        """The same circuit with one bipolar's controlled current taken out, everything else of it kept."""
-        return (response or self.response).replaced(device, self.passive_y[:, :, self.devices.index(device)])
+        """The same circuit with one transistor's controlled current taken out, everything else of it kept."""
+        kind, j = self.circuit.find_device(device)
+        return (response or self.response).replaced(device, self.passive_y[kind][:, :, j])
 
     def controlled_current(self, device: str, solution: ComplexArray) -> ComplexArray:
-        """gm vbe of a bipolar in a solution, complex128 (S, F) [A], counted into the collector."""
-        j = self.devices.index(device)
-        v = solution[..., self.circuit.bipolars.nodes[j]]
-        active = self.response.bipolar_y[:, :, j, 0] - self.passive_y[:, :, j, 0]
+        """gm times the control voltage in a solution, complex128 (S, F) [A], counted into the output terminal."""
+        kind, j = self.circuit.find_device(device)
+        v = solution[..., self.circuit.devices[kind].nodes[j]]
+        active = self.response.device_y[kind][:, :, j, 0] - self.passive_y[kind][:, :, j, 0]
         return np.asarray(np.einsum("sfc,sfc->sf", active, v))
 
     @property
     def devices(self) -> tuple[str, ...]:
-        """Names of the bipolars."""
-        return self.circuit.bipolars.names
+        """Names of the transistors."""
+        return self.transistors.names
 
     def nodes(self, device: str) -> tuple[int, int, int]:
-        """Collector, base and emitter nets of a device."""
-        c, b, e = self.circuit.bipolars.nodes[self.devices.index(device)][:3].tolist()
+        """Output, control and common net of a device (collector, base, emitter; drain, gate, source)."""
+        c, b, e = self.transistors.nodes[self.devices.index(device)].tolist()
         return c, b, e
+
+    def polarity(self, device: str) -> float:
+        """+1 for NPN and N channel, else -1."""
+        return float(self.transistors.polarity[self.devices.index(device)])
+
+    def words(self, device: str) -> tuple[Terminal, Terminal, Terminal]:
+        """What output, control and common terminal of a device are called."""
+        return WORDS[self.transistors.families[self.devices.index(device)]]
+
+    def net(self, device: str, terminal: Terminal) -> int:
+        """The net of a device's terminal."""
+        return self.nodes(device)[NUMBER[terminal]]
+
+    def admittance(self, device: str) -> ComplexArray:
+        """Admittances between the three terminals, complex128 (F, 3, 3) [S]."""
+        j = self.devices.index(device)
+        return self.response.device_y[self.transistors.families[j]][0, :, self.transistors.places[j], :3, :3]
 
 
 def signal_grounds(circuit: Circuit, response: Response) -> NDArray[np.bool_]:
@@ -78,15 +101,16 @@ def anchored(circuit: Circuit, response: Response) -> Response:
     """
     tables = (circuit.resistors, circuit.capacitors, circuit.inductors, circuit.voltages, circuit.diodes)
     others = {node for table in tables for node in table.nodes.ravel().tolist()}
-    terminals = circuit.bipolars.nodes[:, :3].tolist()
+    transistors = circuit.transistors
+    terminals = transistors.nodes.tolist()
     alone = sorted({node for row in terminals for node in row if node not in others and response.row[node] >= 0})
     if not alone:
         return response
     y = np.zeros((*response.z.shape[:2], len(alone)), dtype=complex)
-    for j, row in enumerate(terminals):
+    for kind, j, row in zip(transistors.families, transistors.places, terminals, strict=True):
         for t, node in enumerate(row):
             if node in alone:
-                y[..., alone.index(node)] += LEAK * np.abs(np.nan_to_num(response.bipolar_y[:, :, j, t, t]))
+                y[..., alone.index(node)] += LEAK * np.abs(np.nan_to_num(response.device_y[kind][:, :, j, t, t]))
     return response.loaded(tuple(alone), y)
 
 
@@ -108,4 +132,5 @@ def make_scene(circuit: Circuit, point: OperatingPoint, response: Response, port
         paths=tuple(paths),
         silent=signal_grounds(circuit, response),
         passive_y=passive_admittance(point, response.f_hz),
+        transistors=circuit.transistors,
     )

@@ -21,7 +21,7 @@ class Link:
     stage_node: int
     far_node: int
     other: str
-    terminal: str = ""
+    terminal: Terminal | Literal[""] = ""
 
 
 @frozen

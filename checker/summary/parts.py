@@ -51,7 +51,7 @@ def _numbers(circuit: Circuit) -> Iterator[tuple[str, str]]:
         table = getattr(circuit, kind)
         for name, value in zip(table.names, table.value[0].tolist(), strict=True):
             yield _owner(name, circuit), f"{kind}{name.removeprefix(_owner(name, circuit))} {value:.{_DIGITS}g}"
-    for devices in (circuit.bipolars, circuit.diodes):
+    for devices in circuit.devices.values():
         for index, name in enumerate(devices.names):
             said = [f"{key} {float(column[0, index]):.{_DIGITS}g}" for key, column in sorted(devices.params.items())]
             yield _owner(name, circuit), " ".join(said)

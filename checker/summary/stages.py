@@ -25,7 +25,7 @@ from checker.record import (
 )
 from checker.setup import Setup
 from checker.stages import types as found
-from checker.stages.direction import TERMINALS
+from checker.stages.terminals import NUMBER
 from checker.summary.ledger import LATER, MIDDLE, Ledger, in_words
 from checker.summary.spread import spans
 from checker.words import Terminal
@@ -126,8 +126,9 @@ def _link(setup: Setup, side: Literal["input", "output"], link: found.Link | Non
 def _connection(setup: Setup, device: str, terminal: Terminal | None) -> Connection | None:
     if terminal is None:
         return None
-    row = setup.circuit.bipolars.nodes[setup.circuit.bipolars.names.index(device)]
-    return Connection(terminal=terminal, net=setup.circuit.nets[int(row[TERMINALS.index(terminal)])])
+    kind, place = setup.circuit.find_device(device)
+    row = setup.circuit.devices[kind].nodes[place]
+    return Connection(terminal=terminal, net=setup.circuit.nets[int(row[NUMBER[terminal]])])
 
 
 def _card(fact: PartFact | None) -> CardUsed | None:
@@ -139,7 +140,7 @@ def _card(fact: PartFact | None) -> CardUsed | None:
 
 
 def _bias(setup: Setup, ledger: Ledger, stage: found.Stage) -> Bias | None:
-    if not math.isfinite(setup.point.bipolar["ic_a"][0, stage.index]):
+    if not math.isfinite(setup.point.transistor["i_out_a"][0, stage.index]):
         ledger.missing(stage.reason or "no certified operating point", "stages", stage.id, "bias")
         return None
     return _own_bias(ledger, stage)
@@ -156,7 +157,7 @@ def _own_bias(ledger: Ledger, stage: found.Stage) -> Bias:
 
 
 def _sign(ledger: Ledger, stage: found.Stage) -> float:
-    return float(ledger.board.circuit.bipolars.polarity[stage.index])
+    return float(ledger.board.circuit.transistors.polarity[stage.index])
 
 
 def _small(ledger: Ledger, stage: found.Stage) -> SmallSignal:

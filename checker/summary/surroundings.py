@@ -149,7 +149,7 @@ def cautions(setup: Setup) -> tuple[str, ...]:
     volts = np.abs(setup.point.v_v[0, : len(setup.circuit.nets)])
     if np.any(volts[np.isfinite(volts)] > HAZARDOUS_V):
         out.append(f"Hazardous voltage: nets above {HAZARDOUS_V:g} V DC. Work on them only as local rules allow.")
-    power = setup.point.bipolar["power_w"][0]
+    power = setup.point.transistor["power_w"][0]
     if np.any(power[np.isfinite(power)] > 0.5):
         out.append(
             "Hot parts: a transistor dissipates more than 0.5 W at rest; it can burn skin and needs its heat led away."

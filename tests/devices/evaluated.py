@@ -5,8 +5,8 @@ from __future__ import annotations
 import numpy as np
 
 from checker.constants import ZERO_CELSIUS_K
-from checker.devices import bipolar, diode
-from tests.bench import BIPOLAR, DIODE
+from checker.devices import bipolar, diode, jfet, mosfet
+from tests.bench import BIPOLAR, DIODE, JFET, MOSFET
 from tests.reference.boards import NPN, PNP, SIGNAL_DIODE, ZENER
 
 BIPOLAR_SETS: dict[str, dict[str, float]] = {
@@ -36,3 +36,32 @@ def diode_params(given: dict[str, float], rows: int, t_c: float = 27.0) -> dict[
     p = {**DIODE, **{k.rstrip("_"): v for k, v in given.items()}}
     t = np.full((rows, 1), t_c + ZERO_CELSIUS_K)
     return diode.at_temperature(columns(p, rows), t, np.full((rows, 1), 27.0 + ZERO_CELSIUS_K))
+
+
+JFET_SETS: dict[str, dict[str, float]] = {
+    "ideal": {},
+    "full": {"vto": -2.8, "beta": 1.28e-3, "lambda": 0.012, "is": 3e-14, "n": 1.1, "rd": 12.0, "rs": 8.0,
+             "cgs": 4e-12, "cgd": 5e-12, "pb": 0.8, "m": 0.4, "vtotc": -2.2e-3, "betatce": -0.5},
+    "doping tail": {"vto": -1.8, "beta": 9e-4, "lambda": 0.02, "b": 0.6, "pb": 0.9},
+}  # fmt: skip
+MOSFET_SETS: dict[str, dict[str, float]] = {
+    "ideal": {},
+    "full": {"vto": 0.9, "kp": 5e-5, "lambda": 0.02, "gamma": 0.55, "phi": 0.65, "w": 40e-6, "l": 4e-6, "rd": 9.0,
+             "rs": 6.0, "is": 2e-14, "n": 1.1, "cbd": 3e-13, "cbs": 4e-13, "cgso": 3e-10, "cgdo": 2e-10,
+             "cgbo": 1e-10, "cox": 1.1e-13},
+    "depletion": {"vto": -2.5, "kp": 1e-3, "lambda": 0.01, "gamma": 0.3},
+    "power": {"vto": 3.0, "kp": 28.0, "lambda": 0.005, "rd": 0.031, "is": 1e-13, "n": 1.2, "cgdo": 4e-11,
+              "cgso": 1.9e-9},
+}  # fmt: skip
+
+
+def jfet_params(given: dict[str, float], rows: int, t_c: float = 27.0) -> dict[str, np.ndarray]:
+    """Complete parameters (rows, 1) at a temperature; nominal 27 degC."""
+    t = np.full((rows, 1), t_c + ZERO_CELSIUS_K)
+    return jfet.at_temperature(columns({**JFET, **given}, rows), t, np.full((rows, 1), 27.0 + ZERO_CELSIUS_K))
+
+
+def mosfet_params(given: dict[str, float], rows: int, t_c: float = 27.0) -> dict[str, np.ndarray]:
+    """Complete parameters (rows, 1) at a temperature; nominal 27 degC."""
+    t = np.full((rows, 1), t_c + ZERO_CELSIUS_K)
+    return mosfet.at_temperature(columns({**MOSFET, **given}, rows), t, np.full((rows, 1), 27.0 + ZERO_CELSIUS_K))

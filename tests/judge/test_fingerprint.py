@@ -29,7 +29,15 @@ def board(names: dict[str, str] | None = None, **changed: PartFact) -> Circuit:
     devices = tuple(renamed.get(ref, ref) for ref, each in facts.items() if each.kind == "bipolar")
     return replace(
         bare,
-        bipolars=replace(bare.bipolars, names=devices, polarity=np.ones(len(devices))),
+        devices={
+            "bipolar": replace(
+                bare.bipolars,
+                names=devices,
+                polarity=np.ones(len(devices)),
+                nodes=np.zeros((len(devices), 4), dtype=np.int64),
+                rth_kpw=np.full(len(devices), np.nan),
+            )
+        },
         parts={renamed.get(ref, ref): each for ref, each in facts.items()},
         rails=(Rail(net="vcc", volts=12.0, source="intent", element=0),),
         ports=(Port(name="antenna", net="in", node=4, role="input", reference_ohm=50.0),),

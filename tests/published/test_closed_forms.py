@@ -105,7 +105,7 @@ def test_small_signal_of_one_milliampere() -> None:
     b.q("Q1", "c", "0", "e", bf=100.0)
     point = bias(b.circuit())
     assert_within(float(point.bipolar["ic_a"][0, 0]), 1e-3, 1e-9)
-    y = small_signal(point, np.array([1e3])).bipolar_y[0, 0, 0]
+    y = small_signal(point, np.array([1e3])).device_y["bipolar"][0, 0, 0]
     assert_within(float(y[0, 1].real), 38.922e-3, 2e-5, K18)
     assert_within(float(1 / y[1, 1].real), 2569.3, 2e-5, K18)
     assert_within(thermal_voltage_v(298.15) / 1e-3, 25.693, 2e-5, K18)

@@ -63,7 +63,8 @@ class Anew:
                     table.nodes[j].tolist(),
                     admittance(table.value[0, j])[:, None, None] * one,
                 )
-        for devices, y in ((c.bipolars, r.bipolar_y), (c.diodes, r.diode_y)):
+        for kind, devices in c.devices.items():
+            y = r.device_y[kind]
             for j, name in enumerate(devices.names):
                 self.blocks[name] = (devices.nodes[j].tolist(), y[0, :, j])
 

@@ -218,7 +218,7 @@ def test_helpers_reach_the_same_answer_as_the_plain_start() -> None:
     assert 0.0 < FIRST_RUNG < 1.0
     for make in ALL:
         point = operating_point(make().bench.circuit())
-        a = Assembler(point.circuit, point.plan, point.bipolar_k, point.diode_k)
+        a = Assembler(point.circuit, point.plan, point.device_k)
         count = sum(g[1] for g in point.plan.groups)
         none = np.zeros((1, count), dtype=bool)
         for helper in (newton.BY_CONDUCTANCE, newton.BY_SOURCES):
@@ -237,7 +237,7 @@ def test_self_heating_closes_its_loop() -> None:
     b.q("Q1", "c", "b", "e", rth=200.0, **NPN)
     cold = _certified(b)
     hot = self_heated(cold)
-    rise = hot.bipolar_k[0, 0] - 298.15
+    rise = hot.device_k["bipolar"][0, 0] - 298.15
     assert rise > 20.0
     np.testing.assert_allclose(rise, hot.bipolar["power_w"][0, 0] * 200.0, atol=0.05)
     assert hot.bipolar["ic_a"][0, 0] > cold.bipolar["ic_a"][0, 0]
