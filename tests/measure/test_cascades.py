@@ -175,7 +175,8 @@ def test_a_direct_link_is_the_receiving_terminal() -> None:
 
 def test_hand_figures_agree_where_they_hold() -> None:
     """Common practice, no source: common base gain rc/re', input re' beside RE, output RC, current gain rc/RL."""
-    netlist = "V1 VCC 0 12\nR1 VCC B 47k\nR2 B 0 10k\nCB B 0 1\nRE E 0 1k\nRC VCC C 4.7k\nC1 IN E 1\nC2 C OUT 1\nQ1 C B E QI\n"
+    netlist = "V1 VCC 0 12\nR1 VCC B 47k\nR2 B 0 10k\nCB B 0 1\nRE E 0 1k\nRC VCC C 4.7k\n"
+    netlist += "C1 IN E 1\nC2 C OUT 1\nQ1 C B E QI\n"
     board = board_from(netlist + IDEAL, intent_text(*PORTS))
     ic, ib = bias(board, "Q1")
     re = VT / (ic + ib)
