@@ -27,6 +27,7 @@ LAYERS: tuple[tuple[str, ...], ...] = (
     ("setup",),
     ("rulekit",),
     ("judge",),
+    ("summary",),
     ("examine",),
     ("remedy", "compare"),
     ("summary",),

@@ -59,7 +59,7 @@ def test_gain_spread_of_a_base_resistor_is_that_of_the_gain() -> None:
 
 @pytest.mark.parametrize("polarity", [1.0, -1.0])
 def test_headroom(polarity: float) -> None:
-    """VBC at the edge, where IC/IB = 0.9 of its value at VBC = 0, same VBE (transport form, BR = 1), less VBC."""
+    """VBC at the edge, where IC/IB = 0.9 of its value at VBC = 0 and the same VBE (transport form), less VBC."""
     text = STAGE if polarity > 0 else mirrored(STAGE.replace("QI", "QN")).replace("QP", "QI")
     board = board_from(text + (IDEAL if polarity > 0 else IDEAL.replace("NPN", "PNP")), NO_BAND)
     vbe, vbc = (float(board.ask(key, "Q1").values[0, 0]) for key in ("vbe_v", "vbc_v"))
