@@ -15,7 +15,7 @@ from checker.words import Gate
 EXISTING = click.Path(exists=True, dir_okay=False, path_type=Path)
 
 netlist = click.argument("netlist", type=EXISTING)
-netlists = click.argument("netlists", metavar="NETLIST...", nargs=-1, required=True, type=EXISTING)
+boards = click.argument("netlists", metavar="NETLIST...", nargs=-1, required=True)
 intent = click.option(
     "--intent",
     type=EXISTING,
@@ -26,6 +26,21 @@ out = click.option(
     type=click.Path(dir_okay=False, path_type=Path),
     help="Write to this file, whole or not at all, instead of standard output.",
 )
+out_or_folder = click.option(
+    "--out",
+    metavar="PATH",
+    help="Write to this file, whole or not at all, instead of standard output; to a folder (or NAME/): every form.",
+)
+since = click.option(
+    "--since", type=EXISTING, metavar="REPORT.json", help="An earlier JSON report: say what is new, cured, unchanged."
+)
+today = click.option(
+    "--today",
+    type=click.DateTime(["%Y-%m-%d"]),
+    callback=lambda _context, _parameter, given: None if given is None else given.date(),
+    help="The day on which acceptances are judged; else the clock's.",
+)
+jobs = click.option("--jobs", type=click.IntRange(1, 256), help="Boards at a time; else one for each processor.")
 form = click.option(
     "--as",
     "form",
