@@ -12,6 +12,9 @@ from checker.report.forms import FORMS
 from checker.trouble import InputTrouble
 from checker.words import Gate
 
+COMPARISON_FORMS = ("text", "markdown", "json")
+"""Forms of a comparison; a test holds them equal to those that there are, whose import would cost every command."""
+
 EXISTING = click.Path(exists=True, dir_okay=False, path_type=Path)
 
 netlist = click.argument("netlist", type=EXISTING)
@@ -48,6 +51,22 @@ form = click.option(
     default="text",
     show_default=True,
     help="Form of the report.",
+)
+comparison_form = click.option(
+    "--as",
+    "form",
+    type=click.Choice(list(COMPARISON_FORMS)),
+    default="text",
+    show_default=True,
+    help="Form of the comparison.",
+)
+tolerance = click.option(
+    "--tolerance",
+    metavar="PERCENT",
+    type=click.FloatRange(0, 100),
+    default=1.0,
+    show_default=True,
+    help="Figures that differ by less count as equal.",
 )
 gate = click.option(
     "--gate",

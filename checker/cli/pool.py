@@ -29,6 +29,7 @@ class Pool(Generic[AnswerT]):
     def __init__(self, task: Callable[[int], AnswerT], lost: Callable[[int, str], AnswerT], workers: int) -> None:
         self.task, self.lost, self.size = task, lost, workers
         self.workers: dict[Connection, tuple[BaseProcess, int]] = {}
+        self.leaving: list[BaseProcess] = []
         self.context: Any = get_context("fork" if _may_fork() else "spawn")
 
     def run(self, count: int, told: Callable[[], None]) -> list[AnswerT]:
@@ -69,13 +70,14 @@ class Pool(Generic[AnswerT]):
     def _next(self, worker: Connection, waiting: list[int]) -> None:
         """Give the worker its next task, or a new worker where it died."""
         process, _ = self.workers[worker]
-        if waiting and process.exitcode is None:
+        if waiting and process.is_alive():
             number = waiting.pop()
             worker.send(number)
             self.workers[worker] = process, number
             return
         del self.workers[worker]
-        worker.close()
+        worker.close()  # a living one reads the end and leaves
+        self.leaving.append(process)
         if waiting:
             self._start(waiting.pop())
 
@@ -83,6 +85,9 @@ class Pool(Generic[AnswerT]):
         for worker, (process, _) in self.workers.items():
             worker.close()
             process.terminate()
+            self.leaving.append(process)
+        for process in self.leaving:
+            process.join()
 
 
 def workers(asked: int | None, count: int) -> int:

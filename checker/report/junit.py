@@ -150,7 +150,8 @@ def _told(findings: Iterable[Finding]) -> str:
 
 
 def _case(case: Case, path: str) -> Iterator[str]:
-    case_opening = f"    <testcase{_attributes(classname=clean(path), name=f'{name(case.subject)}: {clean(case.rule)}')}"
+    title = f"{name(case.subject)}: {clean(case.rule)}"
+    case_opening = f"    <testcase{_attributes(classname=clean(path), name=title)}"
     if not case.result and not case.output:
         yield f"{case_opening}/>"
         return

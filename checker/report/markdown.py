@@ -92,7 +92,7 @@ def _boards(reports: Sequence[Report], bundle: Bundle) -> Iterator[str]:
     faults = [f"{marked(report.netlist.path)}: {marked(fault)}" for report in reports for fault in report.faults]
     lost = [marked(message) for _, message in bundle.without]
     if faults or lost:
-        yield "\n".join(_shortened([f"- {text}" for text in (*faults, *lost)]))
+        yield "\n".join(shortened([f"- {text}" for text in (*faults, *lost)]))
 
 
 def _count(report: Report, severity: Severity) -> int:
@@ -119,7 +119,7 @@ def _rest(reports: Sequence[Report]) -> Iterator[str]:
     )
     for title, lines in kinds:
         if lines:
-            yield folded(f"{title} ({len(lines)})", _shortened([f"- {line}" for line in lines]))
+            yield folded(f"{title} ({len(lines)})", shortened([f"- {line}" for line in lines]))
 
 
 def _on(report: Report, line: str, named: bool) -> str:
@@ -149,7 +149,7 @@ def _stages(report: Report) -> Iterator[str]:
         yield ", ".join(told)
 
 
-def _shortened(lines: list[str]) -> list[str]:
+def shortened(lines: list[str]) -> list[str]:
     """The first lines, as many as `LONGEST` characters hold."""
     kept: list[str] = []
     room = LONGEST

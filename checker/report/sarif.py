@@ -12,7 +12,7 @@ from pathlib import PurePosixPath
 from typing import Any
 from urllib.parse import quote
 
-from checker.record import Accepted, Finding, Location, Report, Unchecked, in_order, judged_on
+from checker.record import Accepted, Finding, Location, Report, Unchecked, in_order
 from checker.record.write import dump, plain
 from checker.report.bundle import Bundle
 from checker.report.catalogue import RuleShown, limit_text
@@ -163,7 +163,7 @@ def _baseline(state: str, compared: bool) -> Json:
 def _result(
     finding: Finding, report: Report, index: Mapping[str, int], state: Json, accepted: tuple[Accepted, ...]
 ) -> Json:
-    on = judged_on(finding.subject, {stage.id for stage in report.stages})
+    on = finding.subject[0] if finding.subject else "board"
     return {
         "ruleId": clean(finding.rule),
         "ruleIndex": index[finding.rule],
