@@ -59,9 +59,7 @@ def renumbered(text: str, intent: str, seed: int) -> tuple[str, str, dict[str, s
         new |= {letter + a: letter + b for a, b in zip(numbers, shuffled, strict=True)}
     other = _ELEMENT.sub(lambda found: new[found[0]], text)
     refs = {before.removeprefix("X"): after.removeprefix("X") for before, after in new.items()}
-    said = re.sub(
-        r'"([A-Z]+\d+)((?:\.\w+)?)"', lambda found: f'"{refs.get(found[1], found[1])}{found[2]}"', intent
-    )
+    said = re.sub(r'"([A-Z]+\d+)((?:\.\w+)?)"', lambda found: f'"{refs.get(found[1], found[1])}{found[2]}"', intent)
     return other, said, refs
 
 
