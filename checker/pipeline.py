@@ -33,6 +33,7 @@ from checker.record import (
     Unchecked,
     WorkingLine,
     in_order,
+    judged_on,
 )
 from checker.setup import Setup, set_up
 from checker.shape import frozen
@@ -94,6 +95,7 @@ def check_board(netlist_path: Path, intent_path: Path | None, *, today: datetime
         findings=accepted.open,
         accepted=accepted.accepted,
         unchecked=(*_unknowns(setup), *_unsolved(stages), *_judged_apart(stages, to_unchecked(examination))),
+        judged=_judged(examination, {stage.id for stage in stages}),
         unavailable=ledger.unavailable,
     )
     return Outcome(report=in_order(report), workings=ledger.workings, incomplete=bool(faults))
@@ -167,6 +169,14 @@ def _unsolved(stages: tuple[Stage, ...]) -> list[Unchecked]:
     return [
         Unchecked(subject=s.id, rule="", datum="operating point", supply=s.reason) for s in stages if s.bias is None
     ]
+
+
+def _judged(examination: Examination, stages: set[str]) -> dict[str, tuple[str, ...]]:
+    """Which rules had an answer, on what."""
+    found: dict[str, dict[str, None]] = {}
+    for each in examination.judged:
+        found.setdefault(each.rule.id, {})[judged_on(each.evidence.subject[:3], stages)] = None
+    return {rule: tuple(on) for rule, on in found.items()}
 
 
 def _remarks(setup: Setup) -> tuple[str, ...]:

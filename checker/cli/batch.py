@@ -2,53 +2,140 @@
 
 from __future__ import annotations
 
+import datetime
 from collections.abc import Sequence
+from dataclasses import replace
+from functools import partial
 from pathlib import Path
 
 from checker.cli.complain import complain
-from checker.cli.status import UNUSABLE
+from checker.cli.status import FAILED, UNUSABLE
 from checker.cli.verdict import exit_status
 from checker.record import Report
-from checker.report.forms import form
 from checker.shape import frozen
 from checker.trouble import InputTrouble
 from checker.words import Gate
 
 
 @frozen
-class Batch:
-    """The reports in the order asked for, and path and message of each netlist that gave none."""
+class Answer:
+    """What became of one netlist: a report, or why there is none; `failed` where that was our own fault, with the
+    traceback in `trace`.
+    """
 
-    reports: tuple[Report, ...]
-    unusable: tuple[tuple[str, str], ...]
-    asked: int
+    path: str
+    report: Report | None = None
+    trouble: str = ""
+    failed: bool = False
+    trace: str = ""
+
+
+@frozen
+class Batch:
+    """The answers in the order asked for."""
+
+    answers: tuple[Answer, ...]
+
+    @property
+    def reports(self) -> tuple[Report, ...]:
+        """Those there are."""
+        return tuple(each.report for each in self.answers if each.report is not None)
+
+    @property
+    def without(self) -> tuple[tuple[str, str], ...]:
+        """Path and message of each netlist that gave no report."""
+        return tuple((each.path, each.trouble) for each in self.answers if each.report is None)
 
     def status(self, gate: Gate, require_checked: float | None) -> int:
         """The worst exit status of all."""
         statuses = [exit_status(report, gate, require_checked) for report in self.reports]
-        return max([*statuses, *[UNUSABLE] * len(self.unusable)])
+        lost = [FAILED if each.failed else UNUSABLE for each in self.answers if each.report is None]
+        return max([*statuses, *lost])
+
+    def since(self, earlier: Sequence[Report]) -> Batch:
+        """The same, each report told how it stands against the earlier one on its netlist. One report against one is
+        the same board wherever its file stood.
+        """
+        from checker.compare.findings import since
+
+        before = {report.netlist.path: report for report in earlier}
+        alone = earlier[0] if len(earlier) == len(self.answers) == 1 else None
+
+        def told(report: Report) -> Report:
+            old = before.get(report.netlist.path, alone)
+            return report if old is None else replace(report, since=since(old, report))
+
+        return Batch(
+            answers=tuple(
+                each if each.report is None else replace(each, report=told(each.report)) for each in self.answers
+            )
+        )
 
 
-def check_all(netlists: Sequence[Path], intent: Path | None) -> Batch:
-    """Check each netlist; what makes one unusable is said on standard error at once."""
+def check_all(
+    netlists: Sequence[Path],
+    intent: Path | None,
+    today: datetime.date | None,
+    jobs: int | None,
+    *,
+    debug: bool,
+) -> Batch:
+    """Check each netlist, several at a time; what kept one from being reported is said on standard error.
+
+    A fault of the program on a lone netlist is raised.
+    """
+    from checker.cli.pool import workers
+
+    count = workers(jobs, len(netlists))
+    task = partial(_nth, tuple(netlists), intent, today)
+    if count == 1:
+        answers = [_one(path, intent, today, alone=len(netlists) == 1) for path in netlists]
+    else:
+        answers = _in_workers(task, netlists, count)
+    for each in answers:
+        if each.report is None:
+            complain(each.trouble)
+            if debug and each.trace:
+                import click
+
+                click.echo(each.trace, err=True, nl=False)
+    return Batch(answers=tuple(answers))
+
+
+def _in_workers(task: partial[Answer], netlists: Sequence[Path], count: int) -> list[Answer]:
+    from checker.cli import pool
+    from checker.cli.progress import Progress
+
+    pool.prepare()
+    import checker.pipeline  # noqa: F401 - forks share what is imported before them
+
+    def lost(number: int, how: str) -> Answer:
+        path = netlists[number].as_posix()
+        return Answer(path=path, trouble=f"{path}: internal failure, {how}", failed=True)
+
+    bar = Progress(len(netlists))
+    try:
+        return pool.Pool(task, lost, count).run(len(netlists), bar.step)
+    finally:
+        bar.end()
+
+
+def _nth(netlists: tuple[Path, ...], intent: Path | None, today: datetime.date | None, number: int) -> Answer:
+    return _one(netlists[number], intent, today, alone=False)
+
+
+def _one(path: Path, intent: Path | None, today: datetime.date | None, *, alone: bool) -> Answer:
     from checker.pipeline import check_board
 
-    reports: list[Report] = []
-    unusable: list[tuple[str, str]] = []
-    for path in netlists:
-        try:
-            reports.append(check_board(path, intent).report)
-        except InputTrouble as problem:
-            complain(str(problem))
-            unusable.append((path.as_posix(), str(problem)))
-    return Batch(reports=tuple(reports), unusable=tuple(unusable), asked=len(netlists))
+    try:
+        return Answer(path=path.as_posix(), report=check_board(path, intent, today=today).report)
+    except InputTrouble as problem:
+        return Answer(path=path.as_posix(), trouble=str(problem))
+    except Exception as problem:
+        if alone:
+            raise
+        import traceback
 
-
-def together(batch: Batch, form_name: str, width: int, colour: bool) -> str:
-    """The reports in one text: texts one after another, JSON of several as one object."""
-    if form_name == "json" and batch.asked > 1:
-        from checker.report.json_form import render_several
-
-        return render_several(batch.reports, batch.unusable)
-    render = form(form_name)
-    return "\n".join(render(report, width=width, colour=colour) for report in batch.reports)
+        trace = "".join(traceback.format_exception(problem))
+        message = f"{path.as_posix()}: internal failure, {type(problem).__name__}: {problem}"
+        return Answer(path=path.as_posix(), trouble=message, failed=True, trace=trace)

@@ -2,39 +2,61 @@
 
 from __future__ import annotations
 
+import datetime
 from pathlib import Path
 
 import click
 
 from checker.cli import options
-from checker.cli.output import coloured, columns, deliver
+from checker.cli.output import coloured, columns, deliver, deliver_all, is_folder
 from checker.words import Gate
 
 
 @click.command("check")
-@options.netlists
+@options.boards
 @options.intent
 @options.form
-@options.out
+@options.out_or_folder
+@options.since
 @options.gate
 @options.require_checked
+@options.today
+@options.jobs
 @options.width
 @options.colour
+@click.pass_obj
 def command(
-    netlists: tuple[Path, ...],
+    settings: dict[str, bool],
+    netlists: tuple[str, ...],
     intent: Path | None,
     form: str,
-    out: Path | None,
+    out: str | None,
+    since: Path | None,
     gate: Gate,
     require_checked: float | None,
+    today: datetime.date | None,
+    jobs: int | None,
     width: int | None,
     colour: str,
 ) -> int:
-    """Find, solve and judge the transistor stages of NETLIST."""
-    from checker.cli.batch import check_all, together
+    """Find, solve and judge the transistor stages of each NETLIST: a file, a folder of them, or a quoted pattern."""
+    from checker.cli.batch import check_all
+    from checker.cli.gather import earlier, gathered
+    from checker.cli.inputs import is_one_file
+    from checker.cli.inputs import netlists as meant
 
-    options.spare_the_input(out, [*netlists, *([intent] if intent else [])])
-    batch = check_all(netlists, intent)
-    if batch.reports:
-        deliver(together(batch, form, columns(width), coloured(colour, out)), out)
+    paths = meant(netlists)
+    target = None if out is None else Path(out)
+    options.spare_the_input(target, [*paths, *([intent] if intent else []), *([since] if since else [])])
+    before = earlier(since)
+    batch = check_all(paths, intent, today, jobs, debug=settings["debug"])
+    batch = batch if before is None else batch.since(before)
+    several = not is_one_file(netlists)
+    if batch.reports or several:
+        every_form = out is not None and is_folder(out)
+        bundle = gathered(batch, several=several, rules=every_form or form == "sarif", gate=gate)
+        if every_form and target is not None:
+            deliver_all(bundle.render_all(width=columns(width)), target)
+        else:
+            deliver(bundle.render(form, width=columns(width), colour=coloured(colour, target)), target)
     return batch.status(gate, require_checked)

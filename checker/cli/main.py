@@ -18,6 +18,7 @@ COMMANDS = {
     "check": "checker.cli.check",
     "specs": "checker.cli.specs",
     "why": "checker.cli.why",
+    "compare": "checker.cli.compare",
     "intent": "checker.cli.intent",
     "rules": "checker.cli.rules",
     "parts": "checker.cli.parts",

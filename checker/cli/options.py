@@ -12,10 +12,13 @@ from checker.report.forms import FORMS
 from checker.trouble import InputTrouble
 from checker.words import Gate
 
+COMPARISON_FORMS = ("text", "markdown", "json")
+"""Forms of a comparison; a test holds them equal to those that there are, whose import would cost every command."""
+
 EXISTING = click.Path(exists=True, dir_okay=False, path_type=Path)
 
 netlist = click.argument("netlist", type=EXISTING)
-netlists = click.argument("netlists", metavar="NETLIST...", nargs=-1, required=True, type=EXISTING)
+boards = click.argument("netlists", metavar="NETLIST...", nargs=-1, required=True)
 intent = click.option(
     "--intent",
     type=EXISTING,
@@ -26,6 +29,21 @@ out = click.option(
     type=click.Path(dir_okay=False, path_type=Path),
     help="Write to this file, whole or not at all, instead of standard output.",
 )
+out_or_folder = click.option(
+    "--out",
+    metavar="PATH",
+    help="Write to this file, whole or not at all, instead of standard output; to a folder (or NAME/): every form.",
+)
+since = click.option(
+    "--since", type=EXISTING, metavar="REPORT.json", help="An earlier JSON report: say what is new, cured, unchanged."
+)
+today = click.option(
+    "--today",
+    type=click.DateTime(["%Y-%m-%d"]),
+    callback=lambda _context, _parameter, given: None if given is None else given.date(),
+    help="The day on which acceptances are judged; else the clock's.",
+)
+jobs = click.option("--jobs", type=click.IntRange(1, 256), help="Boards at a time; else one for each processor.")
 form = click.option(
     "--as",
     "form",
@@ -33,6 +51,22 @@ form = click.option(
     default="text",
     show_default=True,
     help="Form of the report.",
+)
+comparison_form = click.option(
+    "--as",
+    "form",
+    type=click.Choice(list(COMPARISON_FORMS)),
+    default="text",
+    show_default=True,
+    help="Form of the comparison.",
+)
+tolerance = click.option(
+    "--tolerance",
+    metavar="PERCENT",
+    type=click.FloatRange(0, 100),
+    default=1.0,
+    show_default=True,
+    help="Figures that differ by less count as equal.",
 )
 gate = click.option(
     "--gate",

@@ -5,6 +5,7 @@ from __future__ import annotations
 import contextlib
 import os
 import sys
+from collections.abc import Mapping
 from pathlib import Path
 
 import click
@@ -34,6 +35,23 @@ def coloured(when: str, out: Path | None) -> bool:
     if when == "auto":
         return out is None and sys.stdout.isatty() and not os.environ.get("NO_COLOR")
     return when == "always"
+
+
+def is_folder(out: str) -> bool:
+    """Whether `--out` names a folder: one that is there, or a name that ends in a slash."""
+    return out.endswith(("/", os.sep)) or Path(out).is_dir()
+
+
+def deliver_all(texts: Mapping[str, str], folder: Path) -> None:
+    """Put each text into the file of its name in `folder`, which is made where it is missing; each whole or not at
+    all. Raises InputTrouble where that is not possible.
+    """
+    try:
+        folder.mkdir(parents=True, exist_ok=True)
+    except OSError as problem:
+        raise InputTrouble(f"cannot make the folder: {problem.strerror}", file=str(folder)) from None
+    for name, text in texts.items():
+        deliver(text, folder / name)
 
 
 def deliver(text: str, out: Path | None) -> None:

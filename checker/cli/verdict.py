@@ -2,8 +2,10 @@
 
 from __future__ import annotations
 
+from collections.abc import Iterable
+
 from checker.cli.status import CLEAN, FAILED, FOUND
-from checker.record import Report
+from checker.record import Comparison, Finding, Report
 from checker.words import SEVERITIES, Gate
 
 
@@ -19,11 +21,25 @@ def exit_status(report: Report, gate: Gate, require_checked: float | None) -> in
     return FOUND if _gated(report, gate) or _too_little(report, require_checked) else CLEAN
 
 
+def comparison_status(comparison: Comparison, gate: Gate) -> int:
+    """As for a report, but of the findings only those count that are new; a new board of which nothing could be
+    checked fails as ever.
+    """
+    if comparison.old.incomplete or comparison.new.incomplete:
+        return FAILED
+    blind = comparison.new.of > 0 and comparison.new.checked == 0
+    return FOUND if blind or _counting(comparison.new_findings, gate) else CLEAN
+
+
 def _gated(report: Report, gate: Gate) -> bool:
+    return _counting(report.findings, gate)
+
+
+def _counting(findings: Iterable[Finding], gate: Gate) -> bool:
     if gate == "never":
         return False
     counting = SEVERITIES[: SEVERITIES.index(gate) + 1]
-    return any(finding.severity in counting for finding in report.findings)
+    return any(finding.severity in counting for finding in findings)
 
 
 def _too_little(report: Report, require_checked: float | None) -> bool:

@@ -5,6 +5,7 @@ from __future__ import annotations
 from collections import Counter
 from collections.abc import Iterator, Mapping
 
+from checker.compare.match import net_map
 from checker.judge.structure import SYMMETRIC
 from checker.record import Condition, Edit, Part, Report, natural
 
@@ -19,7 +20,7 @@ def edits(
     owned: tuple[Mapping[str, tuple[str, ...]], Mapping[str, tuple[str, ...]]],
 ) -> tuple[Edit, ...]:
     """By part; `owned`: part to its stages, in the old and the new board."""
-    nets = _nets(old, new, pairs)
+    nets = net_map(old.parts, new.parts, pairs, {})
     found: list[Edit] = []
     for before, after in pairs.items():
         found += _of_part(after, old.parts[before], new.parts[after], nets, owned[1].get(after, ()))
@@ -89,21 +90,6 @@ def _rewired(old: Part, new: Part, nets: Mapping[str, str]) -> Iterator[tuple[st
         now = new.pins.get(pin, "—")
         if now != net:
             yield f"{pin} on {old.pins[pin]}", f"{pin} on {now}"
-
-
-def _nets(old: Report, new: Report, pairs: Mapping[str, str]) -> dict[str, str]:
-    """Old net to the new one that most of its pins went to, its own name at a tie."""
-    votes: dict[str, Counter[str]] = {}
-    for before, after in pairs.items():
-        symmetric = old.parts[before].kind in SYMMETRIC
-        there = new.parts[after].pins
-        for pin, net in old.parts[before].pins.items():
-            for candidate in set(there.values()) if symmetric else {there.get(pin, "")} - {""}:
-                votes.setdefault(net, Counter())[candidate] += 1
-    return {
-        net: max(sorted(count, key=natural), key=lambda name: (count[name], name == net))
-        for net, count in votes.items()
-    }
 
 
 def _conditions(report: Report) -> Iterator[tuple[str, str]]:

@@ -7,9 +7,10 @@ found setting its neighbours apart (individualisation and refinement, the usual 
 
 from __future__ import annotations
 
+from collections import Counter
 from collections.abc import Iterable, Mapping
 
-from checker.judge.structure import Drawing, labels
+from checker.judge.structure import SYMMETRIC, Drawing, labels
 from checker.record import Part, Report, natural
 
 NEAR, WIDE, DEEP = 2, 4, 12
@@ -43,6 +44,37 @@ def _public(port: str, parts: Mapping[str, Part]) -> str:
     return "" if port in parts or port.partition(".")[0] in parts else port
 
 
+def net_map(
+    old: Mapping[str, Part], new: Mapping[str, Part], pairs: Mapping[str, str], anchors: Mapping[str, str]
+) -> dict[str, str]:
+    """Old net to the new one that most of its pins went to, its own name at a tie; `anchors` are known beforehand."""
+    votes: dict[str, Counter[str]] = {}
+    for before, after in pairs.items():
+        symmetric = old[before].kind in SYMMETRIC
+        there = new[after].pins
+        for pin, net in old[before].pins.items():
+            for candidate in set(there.values()) if symmetric else {there.get(pin, "")} - {""}:
+                votes.setdefault(net, Counter())[candidate] += 1
+    settled = {
+        net: max(sorted(count, key=natural), key=lambda name: (count[name], name == net))
+        for net, count in votes.items()
+    }
+    return settled | dict(anchors)
+
+
+def _apart(pairs: Iterable[tuple[str, str]]) -> list[tuple[str, str]]:
+    """The pairs, without those that have a part in common with an earlier one."""
+    kept: dict[str, str] = {}
+    for before, after in pairs:
+        if before not in kept and after not in kept.values():
+            kept[before] = after
+    return list(kept.items())
+
+
+def _in_order(pair: tuple[str, str]) -> tuple[object, ...]:
+    return natural(pair[0]), natural(pair[1])
+
+
 class _Matching:
     """The pairs found so far between two boards."""
 
@@ -62,10 +94,7 @@ class _Matching:
             self._refine(steps)
         if self.kept:
             self._by_reference()
-        self._refine(NEAR)
-        if not self.kept:
-            self._refine(1)
-            self._by_reference()
+        self._by_neighbours()
         return self.pairs
 
     def _pair(self, pairs: Iterable[tuple[str, str]]) -> None:
@@ -80,6 +109,42 @@ class _Matching:
             for ref, part in self.old.items()
             if ref not in self.pairs and ref in self.new and ref not in self.taken and self.new[ref].kind == part.kind
         )
+
+    def _by_neighbours(self) -> None:
+        """What an edit beside them keeps from having equal surroundings: parts of one kind that share the most nets,
+        as far as the pairs found so far tell which net is which.
+        """
+        while True:
+            nets = net_map(self.old, self.new, self.pairs, self._anchors())
+            alike = {
+                (before, after): self._shared(before, after, nets)
+                for before in self.old.keys() - self.pairs.keys()
+                for after in self.new.keys() - self.taken
+                if self.old[before].kind == self.new[after].kind
+            }
+            best = max(alike.values(), default=(0, False, 0, False))
+            if not best[0]:
+                return
+            self._pair(_apart(sorted((pair for pair, score in alike.items() if score == best), key=_in_order)))
+
+    def _anchors(self) -> dict[str, str]:
+        """Nets that are one without any part: of one voltage, or with the same port."""
+        old, new = (
+            {**drawn.known, **{net: "port ".join(names) for net, names in drawn.ports.items() if any(names)}}
+            for drawn in self.drawings
+        )
+        there = {what: net for net, what in new.items()}
+        return {net: net if new.get(net) == what else there[what] for net, what in old.items() if what in there}
+
+    def _shared(self, before: str, after: str, nets: Mapping[str, str]) -> tuple[int, bool, int, bool]:
+        """Shared nets that are no supply; whether all are; by name; and whether the parts are equal."""
+        old, new = self.old[before], self.new[after]
+        there = Counter(nets.get(net, "") for net in old.pins.values())
+        shared = there & Counter(new.pins.values())
+        known = self.drawings[1].known
+        free = sum(count for net, count in shared.items() if net not in known)
+        names = len(set(old.pins.values()) & set(new.pins.values()) - known.keys())
+        return free, shared == there, names, old.data == new.data
 
     def _refine(self, steps: int) -> None:
         """Pair what is alone in its class; then set one pair of equals apart and look again."""

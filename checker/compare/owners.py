@@ -101,20 +101,29 @@ def _touching(report: Report, borders: set[str], links: set[str]) -> dict[str, l
 
 
 def _supplies(report: Report) -> set[str]:
-    """Nets that carry a rail's voltage behind a filter."""
+    """Nets that carry a rail's voltage behind a filter: a resistor or coil from it, and a capacitor to where nothing
+    moves. What a stage drives is none, however little it drops.
+    """
     rails = {rail.net: rail.volts for rail in report.rails}
+    driven = {stage.exit.net for stage in report.stages if stage.exit is not None}
+    series = _ends(report, "resistor", "inductor")
+    shunts = _ends(report, "capacitor")
     found: set[str] = set()
-    series = [set(part.pins.values()) for part in report.parts.values() if part.kind in ("resistor", "inductor")]
-    held = {net for part in report.parts.values() if part.kind == "capacitor" for net in part.pins.values()}
     for _ in range(3):  # a filter behind a filter
+        still = {report.ground, *rails}
+        held = {net for ends in shunts if ends & still for net in ends}
         for ends in series:
-            for net in ends - rails.keys() - {report.ground}:
+            for net in (ends & held) - still - driven:
                 volts = report.nets[net].dc_v if net in report.nets else None
-                fed = [rails[end] for end in ends if end in rails]
-                if net in held and fed and volts is not None and abs(volts - fed[0]) <= FILTERED * abs(fed[0]):
+                fed = [rails[end] for end in sorted(ends & rails.keys())]
+                if fed and volts is not None and abs(volts - fed[0]) <= FILTERED * abs(fed[0]):
                     found.add(net)
                     rails[net] = fed[0]
     return found
+
+
+def _ends(report: Report, *kinds: str) -> list[set[str]]:
+    return [set(part.pins.values()) for part in report.parts.values() if part.kind in kinds]
 
 
 def _fed(report: Report, nets: set[str], found: Mapping[str, tuple[str, ...]]) -> tuple[str, ...]:

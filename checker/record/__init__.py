@@ -13,7 +13,7 @@ from checker.record.finding import (
     Unchecked,
     Window,
 )
-from checker.record.order import in_order, natural
+from checker.record.order import in_order, judged_on, natural
 from checker.record.paths import at, reason_for, unexplained
 from checker.record.report import (
     SCHEMA,
@@ -93,6 +93,7 @@ __all__ = [
     "WorkingLine",
     "at",
     "in_order",
+    "judged_on",
     "natural",
     "reason_for",
     "to_json",

@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Iterable, Mapping
+from collections.abc import Collection, Iterable, Mapping, Sequence
 from dataclasses import replace
 from typing import Any
 
@@ -39,6 +39,11 @@ def finding_key(finding: Finding) -> Key:
     )
 
 
+def judged_on(subject: Sequence[str], stages: Collection[str]) -> str:
+    """Which one of a finding's subjects a rule was judged on: the first that is a stage, else the first."""
+    return next((name for name in subject if name in stages), subject[0] if subject else "")
+
+
 def in_order(report: Report) -> Report:
     """The same report with every collection in the order that the contract fixes."""
     return replace(
@@ -59,6 +64,7 @@ def in_order(report: Report) -> Report:
         findings=_by(report.findings, finding_key),
         accepted=_by(report.accepted, lambda accepted: finding_key(accepted.finding)),
         unchecked=_by(report.unchecked, lambda it: (natural(it.subject), it.rule, it.datum, it.supply)),
+        judged={rule: _by(on, natural) for rule, on in sorted(report.judged.items())},
         unavailable=_mapping(report.unavailable),
     )
 

@@ -238,6 +238,8 @@ class Report(Record):
     """In the order of findings."""
     unchecked: tuple[Unchecked, ...] = ()
     """Sorted by subject, rule."""
+    judged: Mapping[str, tuple[str, ...]] = field(default_factory=dict)
+    """Rule id to the stages, ports or parts that it could be judged on, whatever came of it."""
     since: Since | None = None
     """Against an earlier report; null where none was given."""
     unavailable: Mapping[str, str] = field(default_factory=dict)

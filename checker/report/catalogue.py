@@ -66,11 +66,12 @@ def _rule(rule: RuleShown, page: Page) -> list[str]:
     for label, text in (("you see", rule.bench), ("source", rule.source)):
         lines += hanging(f"    {label}".ljust(13), clean(text), page, style="dim") if text else []
     for limit in rule.limits:
-        lines += hanging("    limit    ", _limit(limit), page, style="dim")
+        lines += hanging("    limit    ", limit_text(limit), page, style="dim")
     return lines
 
 
-def _limit(limit: LimitShown) -> str:
+def limit_text(limit: LimitShown) -> str:
+    """Name, default, range and source in one line."""
     default, low, high = (_shown(si, limit.unit) for si in (limit.default, limit.low, limit.high))
     return f"{clean(limit.name)} = {default}, may be {low} to {high}; {clean(limit.source)}"
 

@@ -2,11 +2,10 @@
 
 from __future__ import annotations
 
-from collections.abc import Sequence
-
 from checker.record import Report, in_order, to_json
 from checker.record.read import SEVERAL
 from checker.record.write import dump, plain
+from checker.report.bundle import Bundle
 
 
 def render(report: Report, *, width: int, colour: bool) -> str:  # noqa: ARG001 - one signature for all forms
@@ -14,14 +13,16 @@ def render(report: Report, *, width: int, colour: bool) -> str:  # noqa: ARG001 
     return to_json(report) + "\n"
 
 
-def render_several(reports: Sequence[Report], unusable: Sequence[tuple[str, str]]) -> str:
-    """Several reports as one JSON object; `unusable`: path and message of each netlist that gave none."""
+def render_bundle(bundle: Bundle, *, width: int, colour: bool) -> str:
+    """The report alone where one board was asked for, else all of them as one object."""
+    if not bundle.several:
+        return "".join(render(report, width=width, colour=colour) for report in bundle.reports)
     return (
         dump(
             {
                 "schema": SEVERAL,
-                "reports": [plain(in_order(report)) for report in reports],
-                "unusable": [{"path": path, "message": message} for path, message in unusable],
+                "reports": [plain(in_order(report)) for report in bundle.reports],
+                "unusable": [{"path": path, "message": message} for path, message in bundle.without],
             }
         )
         + "\n"

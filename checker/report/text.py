@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from checker.record import Report, in_order
 from checker.report.layout import Page, finished
-from checker.report.sections import board, findings, lists, opening, stages
+from checker.report.sections import board, findings, lists, opening, since, stages
 
 
 def render(report: Report, *, width: int, colour: bool) -> str:
@@ -13,6 +13,7 @@ def render(report: Report, *, width: int, colour: bool) -> str:
     lines = [
         *opening.opening(report, page),
         *findings.findings(report, page),
+        *since.since(report, page),
         *stages.stages(report, page),
         *board.ports(report, page),
         *board.gains(report, page),

@@ -64,8 +64,9 @@ def test_a_port_taken_from_a_connector_is_no_name(tmp_path: Path) -> None:
 def test_equal_places_are_told_apart_by_a_number(tmp_path: Path) -> None:
     """Two equal channels, each with the same fault, have two fingerprints, and a changed part of one channel gives
     no third."""
-    channel = "R{0}1 +12V C{0} 4.7k\nR{0}2 +12V B{0} 680k\nR{0}3 B{0} 0 120k\n"
-    channel += "R{0}4 E{0} 0 1k\nQ{0} C{0} B{0} E{0} 2N3904\n"
+    channel = (
+        "R{0}1 +12V C{0} 4.7k\nR{0}2 +12V B{0} 680k\nR{0}3 B{0} 0 120k\nR{0}4 E{0} 0 1k\nQ{0} C{0} B{0} E{0} 2N3904\n"
+    )
     text = "two equal channels\n" + channel.format(1) + channel.format(2) + ".end\n"
     intent = '[rails]\n"+12V" = "12 V"\n'
 

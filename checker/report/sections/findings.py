@@ -7,7 +7,7 @@ from dataclasses import replace
 
 from checker.record import Accepted, Bound, Change, Effect, Finding, Location, Remedy, Report, Window
 from checker.report.clean import clean, name
-from checker.report.layout import Page, cells, hanging
+from checker.report.layout import NO_BREAK, Page, cells, hanging
 from checker.report.quantities import given, number, words
 from checker.words import Severity
 
@@ -100,6 +100,11 @@ def _in_brief(finding: Finding) -> Iterator[tuple[str, str]]:
     yield from _when(finding)
     if finding.remedy:
         yield "change", ", ".join(map(_change, finding.remedy.changes))
+
+
+def facts(finding: Finding) -> list[tuple[str, str]]:
+    """Label and text of everything known of a finding, clean, with plain spaces."""
+    return [(label, text.replace(NO_BREAK, " ")) for label, text in _in_full(finding)]
 
 
 def _when(finding: Finding) -> Iterator[tuple[str, str]]:
