@@ -8,6 +8,7 @@ from pathlib import Path
 from checker.cli.complain import complain
 from checker.cli.status import UNUSABLE
 from checker.cli.verdict import exit_status
+from checker.netlist.limits import Reading
 from checker.record import Report
 from checker.report.forms import form
 from checker.shape import frozen
@@ -29,7 +30,7 @@ class Batch:
         return max([*statuses, *[UNUSABLE] * len(self.unusable)])
 
 
-def check_all(netlists: Sequence[Path], intent: Path | None) -> Batch:
+def check_all(netlists: Sequence[Path], intent: Path | None, reading: Reading) -> Batch:
     """Check each netlist; what makes one unusable is said on standard error at once."""
     from checker.pipeline import check_board
 
@@ -37,7 +38,7 @@ def check_all(netlists: Sequence[Path], intent: Path | None) -> Batch:
     unusable: list[tuple[str, str]] = []
     for path in netlists:
         try:
-            reports.append(check_board(path, intent).report)
+            reports.append(check_board(path, intent, reading=reading).report)
         except InputTrouble as problem:
             complain(str(problem))
             unusable.append((path.as_posix(), str(problem)))
