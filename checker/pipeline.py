@@ -21,7 +21,9 @@ from checker.judge.finding import to_findings, to_unchecked
 from checker.judge.limits import limit_values, resolve_limits
 from checker.judge.verdict import Examination, Limits
 from checker.judge.wanted import check_targets
+from checker.netlist.limits import Reading
 from checker.netlist.read import read_netlist
+from checker.netlist.types import Netlist
 from checker.record import (
     Checked,
     Conditions,
@@ -55,14 +57,20 @@ class Outcome:
     incomplete: bool
 
 
-def check_board(netlist_path: Path, intent_path: Path | None, *, today: datetime.date | None = None) -> Outcome:
+def check_board(
+    netlist_path: Path,
+    intent_path: Path | None,
+    *,
+    reading: Reading | None = None,
+    today: datetime.date | None = None,
+) -> Outcome:
     """Read, solve, recognise, judge, mend and report one board.
 
     `intent_path` None: the file beside the netlist, if any. `today` decides which acceptances still hold (default:
-    the clock). Raises InputTrouble for unusable input.
+    the clock). `reading`: folders and limits of the readers. Raises InputTrouble for unusable input.
     """
     rulebook = load_rules()
-    setup = ready(netlist_path, intent_path)
+    setup = ready(netlist_path, intent_path, reading)
     limits = resolve_limits(rulebook.rules, setup.intent)
     check_quantity(setup.intent, QUANTITY_NAMES)
     check_targets(setup.intent.targets, setup.recognition, [port.name for port in setup.ports])
@@ -101,16 +109,21 @@ def check_board(netlist_path: Path, intent_path: Path | None, *, today: datetime
     return Outcome(report=in_order(report), workings=ledger.workings, incomplete=bool(faults))
 
 
-def ready(netlist_path: Path, intent_path: Path | None) -> Setup:
+def ready(netlist_path: Path, intent_path: Path | None, reading: Reading | None = None) -> Setup:
     """Read both files and set the board up."""
-    netlist = read_netlist(netlist_path)
+    netlist = _read(netlist_path, reading)
     where = intent_path or find_intent(netlist_path)
     return set_up(netlist, read_intent(where) if where is not None else Intent())
 
 
-def starter_intent(netlist_path: Path) -> str:
+def _read(path: Path, reading: Reading | None) -> Netlist:
+    how = reading or Reading()
+    return read_netlist(path, include_dirs=how.folders, limits=how.limits)
+
+
+def starter_intent(netlist_path: Path, reading: Reading | None = None) -> str:
     """A starter intent file from what the netlist shows."""
-    setup = set_up(read_netlist(netlist_path), Intent())
+    setup = set_up(_read(netlist_path, reading), Intent())
     lines = [(rail.net, float(rail.volts)) for rail in setup.circuit.rails if rail.source != "element"]
     missing = [(u.nets[0], None) for u in setup.circuit.unknowns if u.datum.startswith("volts") and u.nets]
     found = [(p.name, p.net, p.role or "input", p.reference_ohm) for p in setup.ports]

@@ -11,6 +11,7 @@ from pathlib import Path
 from checker.cli.complain import complain
 from checker.cli.status import FAILED, UNUSABLE
 from checker.cli.verdict import exit_status
+from checker.netlist.limits import Reading
 from checker.record import Report
 from checker.shape import frozen
 from checker.trouble import InputTrouble
@@ -77,6 +78,7 @@ def check_all(
     intent: Path | None,
     today: datetime.date | None,
     jobs: int | None,
+    reading: Reading,
     *,
     debug: bool,
 ) -> Batch:
@@ -87,9 +89,9 @@ def check_all(
     from checker.cli.pool import workers
 
     count = workers(jobs, len(netlists))
-    task = partial(_nth, tuple(netlists), intent, today)
+    task = partial(_nth, tuple(netlists), intent, today, reading)
     if count == 1:
-        answers = [_one(path, intent, today, alone=len(netlists) == 1) for path in netlists]
+        answers = [_one(path, intent, today, reading, alone=len(netlists) == 1) for path in netlists]
     else:
         answers = _in_workers(task, netlists, count)
     for each in answers:
@@ -120,15 +122,17 @@ def _in_workers(task: partial[Answer], netlists: Sequence[Path], count: int) -> 
         bar.end()
 
 
-def _nth(netlists: tuple[Path, ...], intent: Path | None, today: datetime.date | None, number: int) -> Answer:
-    return _one(netlists[number], intent, today, alone=False)
+def _nth(
+    netlists: tuple[Path, ...], intent: Path | None, today: datetime.date | None, reading: Reading, number: int
+) -> Answer:
+    return _one(netlists[number], intent, today, reading, alone=False)
 
 
-def _one(path: Path, intent: Path | None, today: datetime.date | None, *, alone: bool) -> Answer:
+def _one(path: Path, intent: Path | None, today: datetime.date | None, reading: Reading, *, alone: bool) -> Answer:
     from checker.pipeline import check_board
 
     try:
-        return Answer(path=path.as_posix(), report=check_board(path, intent, today=today).report)
+        return Answer(path=path.as_posix(), report=check_board(path, intent, today=today, reading=reading).report)
     except InputTrouble as problem:
         return Answer(path=path.as_posix(), trouble=str(problem))
     except Exception as problem:

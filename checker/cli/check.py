@@ -9,12 +9,14 @@ import click
 
 from checker.cli import options
 from checker.cli.output import coloured, columns, deliver, deliver_all, is_folder
+from checker.netlist.limits import Reading
 from checker.words import Gate
 
 
 @click.command("check")
 @options.boards
 @options.intent
+@options.reading
 @options.form
 @options.out_or_folder
 @options.since
@@ -38,6 +40,7 @@ def command(
     jobs: int | None,
     width: int | None,
     colour: str,
+    reading: Reading,
 ) -> int:
     """Find, solve and judge the transistor stages of each NETLIST: a file, a folder of them, or a quoted pattern."""
     from checker.cli.batch import check_all
@@ -49,7 +52,7 @@ def command(
     target = None if out is None else Path(out)
     options.spare_the_input(target, [*paths, *([intent] if intent else []), *([since] if since else [])])
     before = earlier(since)
-    batch = check_all(paths, intent, today, jobs, debug=settings["debug"])
+    batch = check_all(paths, intent, today, jobs, reading, debug=settings["debug"])
     batch = batch if before is None else batch.since(before)
     several = not is_one_file(netlists)
     if batch.reports or several:

@@ -2,18 +2,30 @@
 
 from __future__ import annotations
 
-from collections.abc import Iterable
+from collections.abc import Callable, Iterable
+from functools import wraps
 from pathlib import Path
-from typing import get_args
+from typing import Any, get_args
 
 import click
 
+from checker.netlist.limits import Reading, ReadLimits
 from checker.report.forms import FORMS
 from checker.trouble import InputTrouble
 from checker.words import Gate
 
 COMPARISON_FORMS = ("text", "markdown", "json")
 """Forms of a comparison; a test holds them equal to those that there are, whose import would cost every command."""
+MOST_NESTING = 1_000
+"""The deepest nesting that the readers can be asked to follow: they recurse."""
+_LIMITS = {
+    "bytes": "read in all, includes counted each time",
+    "parts": "parts as written",
+    "depth": "levels of brackets, includes, subcircuits or expressions",
+    "elements": "elements after subcircuits are expanded",
+    "steps": "steps of one expression",
+}
+"""Field of ReadLimits to what it bounds; the option is `--most-FIELD`."""
 
 EXISTING = click.Path(exists=True, dir_okay=False, path_type=Path)
 
@@ -88,6 +100,32 @@ colour = click.option(
     default="auto",
     help="Colours in the text; auto: on a terminal.",
 )
+
+
+def reading(command: Callable[..., int]) -> Callable[..., int]:
+    """Add the options of every command that reads a netlist; the command gets them as `reading`, a Reading."""
+
+    @wraps(command)
+    def gathered(include_from: tuple[Path, ...], **given: Any) -> int:
+        limits = ReadLimits(**{name: given.pop(f"most_{name}") for name in _LIMITS})
+        return command(reading=Reading(folders=include_from, limits=limits), **given)
+
+    wrapped: Callable[..., int] = gathered
+    for name, what in reversed(_LIMITS.items()):
+        wrapped = click.option(
+            f"--most-{name}",
+            type=click.IntRange(1, MOST_NESTING if name == "depth" else None),
+            default=getattr(ReadLimits(), name),
+            show_default=True,
+            help=f"Refuse a netlist with more: {what}.",
+        )(wrapped)
+    return click.option(
+        "--include-from",
+        metavar="FOLDER",
+        multiple=True,
+        type=click.Path(exists=True, file_okay=False, path_type=Path),
+        help="A folder that .include and .lib may read from, beside the netlist's own; may be repeated.",
+    )(wrapped)
 
 
 def spare_the_input(out: Path | None, inputs: Iterable[Path]) -> None:

@@ -9,6 +9,7 @@ import click
 from checker.cli import options
 from checker.cli.output import coloured, columns, deliver
 from checker.cli.status import CLEAN, FAILED
+from checker.netlist.limits import Reading
 
 
 def list_quantities(context: click.Context, _parameter: click.Parameter, wanted: bool) -> None:
@@ -34,13 +35,14 @@ def list_quantities(context: click.Context, _parameter: click.Parameter, wanted:
 )
 @options.netlist
 @options.intent
+@options.reading
 @options.width
 @options.colour
-def command(netlist: Path, intent: Path | None, width: int | None, colour: str) -> int:
+def command(netlist: Path, intent: Path | None, reading: Reading, width: int | None, colour: str) -> int:
     """Print what each stage of NETLIST does, without judging it."""
     from checker.pipeline import check_board
     from checker.report.specs import render_specs
 
-    outcome = check_board(netlist, intent)
+    outcome = check_board(netlist, intent, reading=reading)
     deliver(render_specs(outcome.report, width=columns(width), colour=coloured(colour, None)), None)
     return FAILED if outcome.incomplete else CLEAN

@@ -96,7 +96,7 @@ def _nodes(parsed: Parsed) -> _Nodes:
             )
             ref = text_of(node, "ref")
             pins[ref][pin] = None
-            lines.setdefault(ref, parsed.lines["net"][index] if index < len(parsed.lines["net"]) else 0)
+            lines.setdefault(ref, parsed.line(tree))
     return _Nodes(nets=nets, pins=pins, lines=lines)
 
 
@@ -123,11 +123,7 @@ def _parts(parsed: Parsed, nodes: _Nodes, name: str, limits: ReadLimits) -> list
     if len(trees) > limits.parts:
         over("parts", limits.parts, f"{len(trees)} parts", file=name)
     table = _pin_table(parsed.root)
-    lines = parsed.lines["comp"]
-    return [
-        _part(tree, nodes, table, name, lines[index] if len(lines) == len(trees) else 0)
-        for index, tree in enumerate(trees)
-    ]
+    return [_part(tree, nodes, table, name, parsed.line(tree)) for tree in trees]
 
 
 def _pin_table(root: Tree) -> _PinTable:

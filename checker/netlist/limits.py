@@ -1,30 +1,43 @@
-"""Bounds on what a netlist may cost to read. Each overflow is one message that names the limit."""
+"""Bounds on what a netlist may cost to read, and the folders it may be read from. Each overflow is one message that
+names the option which raises the bound."""
 
 from __future__ import annotations
 
-from typing import NoReturn
+from dataclasses import field
+from pathlib import Path
+from typing import Literal, NoReturn
 
 from checker.shape import frozen
 from checker.trouble import InputTrouble
+
+Limit = Literal["bytes", "parts", "depth", "elements", "steps"]
 
 
 @frozen
 class ReadLimits:
     """`bytes` read in all, includes counted each time; `parts` as written; `depth` of nesting (brackets,
-    includes, subcircuits, expressions); `expanded` parts after subcircuits; `steps` of one expression. Far
+    includes, subcircuits, expressions); `elements` after subcircuits are expanded; `steps` of one expression. Far
     above any board, low enough that a hostile file ends within seconds."""
 
     bytes: int = 32 * 1024 * 1024
     parts: int = 200_000
     depth: int = 64
-    expanded: int = 1_000_000
+    elements: int = 1_000_000
     steps: int = 10_000
 
 
-def over(limit: str, bound: int, what: str, *, file: str, line: int = 0) -> NoReturn:
+@frozen
+class Reading:
+    """How netlists are read in one run: `folders` beside the netlist's own that includes may name, and limits."""
+
+    folders: tuple[Path, ...] = ()
+    limits: ReadLimits = field(default_factory=ReadLimits)
+
+
+def over(limit: Limit, bound: int, what: str, *, file: str, line: int = 0) -> NoReturn:
     """Raise the `InputTrouble` of an exceeded limit: where, what, the bound, what to do."""
     raise InputTrouble(
-        f"{what}: more than the limit `{limit}` of {bound} allows; raise that limit if the file is trusted",
+        f"{what}: more than the limit of {bound}; if the file is trusted, --most-{limit} raises it",
         file=file,
         line=line,
     )

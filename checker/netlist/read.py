@@ -3,6 +3,9 @@
 from __future__ import annotations
 
 import hashlib
+import sys
+from collections.abc import Iterator
+from contextlib import contextmanager
 from pathlib import Path
 
 from checker.netlist.limits import ReadLimits
@@ -13,6 +16,8 @@ from checker.trouble import InputTrouble
 
 _EXPORT = lazy(r"\(\s*export[\s()]")
 _S_EXPRESSION = lazy(r"\(\s*[\w{]+[\s({]")
+_FRAMES = 12
+"""Calls that one level of nesting takes at most: a parameter within a parameter, an include within an include."""
 
 
 def read_netlist(path: Path, *, include_dirs: tuple[Path, ...] = (), limits: ReadLimits | None = None) -> Netlist:
@@ -35,15 +40,16 @@ def read_netlist(path: Path, *, include_dirs: tuple[Path, ...] = (), limits: Rea
     if not _S_EXPRESSION.match(start):
         from checker.netlist.spice_read import read_spice
 
-        return read_spice(
-            text,
-            name=name,
-            sha256=sha256,
-            path=path,
-            include_dirs=include_dirs,
-            limits=limits,
-            size=len(data),
-        )
+        with _room_for(limits.depth):
+            return read_spice(
+                text,
+                name=name,
+                sha256=sha256,
+                path=path,
+                include_dirs=include_dirs,
+                limits=limits,
+                size=len(data),
+            )
     if not _EXPORT.match(start):
         raise InputTrouble(
             "an S-expression, but not a netlist export (expected `(export ...`); export the netlist",
@@ -53,3 +59,14 @@ def read_netlist(path: Path, *, include_dirs: tuple[Path, ...] = (), limits: Rea
     from checker.netlist.kicad_read import read_kicad
 
     return read_kicad(text, name=name, sha256=sha256, limits=limits)
+
+
+@contextmanager
+def _room_for(depth: int) -> Iterator[None]:
+    """Let the interpreter recurse as deep as the limit promises."""
+    before = sys.getrecursionlimit()
+    sys.setrecursionlimit(max(before, _FRAMES * depth + 1_000))
+    try:
+        yield
+    finally:
+        sys.setrecursionlimit(before)

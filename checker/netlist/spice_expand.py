@@ -109,12 +109,12 @@ class Expansion:
         for element in frame.definition.elements:
             self._card = element.card
             self.expanded += 1
-            if self.expanded > self.limits.expanded:
+            if self.expanded > self.limits.elements:
                 card = element.card
                 over(
-                    "expanded",
-                    self.limits.expanded,
-                    "too many expanded parts",
+                    "elements",
+                    self.limits.elements,
+                    "too many elements after subcircuits are expanded",
                     file=card.file,
                     line=card.line,
                 )

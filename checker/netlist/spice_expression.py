@@ -5,6 +5,7 @@ from __future__ import annotations
 
 import math
 from collections.abc import Callable
+from typing import Literal
 
 from checker.pattern import lazy
 from checker.quantity.spice_number import parse_spice_number
@@ -67,9 +68,9 @@ _FUNCTIONS: dict[str, tuple[int, Callable[..., float]]] = {
 class TooMuch(Trouble):
     """An expression that exceeds the steps or the depth allowed; `limit` names which."""
 
-    def __init__(self, limit: str) -> None:
+    def __init__(self, limit: Literal["steps", "depth"]) -> None:
         super().__init__(f"an expression exceeds the limit {limit}")
-        self.limit = limit
+        self.limit: Literal["steps", "depth"] = limit
 
 
 def evaluate(text: str, lookup: Lookup, *, steps: int, depth: int, level: int = 0) -> float:

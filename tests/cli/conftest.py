@@ -4,13 +4,14 @@ from __future__ import annotations
 
 import sys
 from collections.abc import Callable
-from dataclasses import dataclass, replace
+from dataclasses import dataclass, field, replace
 from pathlib import Path
 from types import ModuleType
 
 import pytest
 
 from checker.cli.main import run
+from checker.netlist.limits import Reading
 from checker.record import Report, WorkingLine
 from checker.trouble import InputTrouble
 from tests.record.invented import report, workings
@@ -31,9 +32,11 @@ class Pipeline:
 
     report: Report
     intents: list[Path | None]
+    readings: list[Reading | None] = field(default_factory=list)
 
-    def check_board(self, netlist: Path, intent: Path | None) -> Outcome:
+    def check_board(self, netlist: Path, intent: Path | None, *, reading: Reading | None = None) -> Outcome:
         self.intents.append(intent)
+        self.readings.append(reading)
         text = netlist.read_text()
         if text == "bad":
             raise InputTrouble("expected a value\x1b[2J, got none", file=netlist.name, line=3)
@@ -42,7 +45,8 @@ class Pipeline:
         shown = replace(self.report, findings=()) if text == "clean" else self.report
         return Outcome(report=shown, workings=workings(), incomplete=shown.incomplete)
 
-    def starter_intent(self, netlist: Path) -> str:
+    def starter_intent(self, netlist: Path, reading: Reading | None = None) -> str:
+        self.readings.append(reading)
         return f"# starter for {netlist.name}\n"
 
 

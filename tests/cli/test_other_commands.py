@@ -13,6 +13,7 @@ import pytest
 import checker
 from checker.cards.types import Card
 from checker.cli.main import COMMANDS, main
+from checker.netlist.limits import Reading, ReadLimits
 from checker.report.specs import render_specs
 from checker.report.why import render_why
 from tests.cli.conftest import Done, Pipeline
@@ -95,7 +96,7 @@ def test_main_leaves_with_the_status() -> None:
 
 
 def test_interruption_from_the_keyboard(pipeline: Pipeline, board: Board, call: Call) -> None:
-    def stop(*_: object) -> None:
+    def stop(*_: object, **__: object) -> None:
         raise KeyboardInterrupt
 
     sys.modules["checker.pipeline"].check_board = stop  # type: ignore[attr-defined]
@@ -117,3 +118,57 @@ def test_a_reader_that_goes_away_is_no_failure() -> None:
     with child.stderr:
         assert child.stderr.read() == b""
     assert child.wait(timeout=60) == 1
+
+
+@pytest.mark.parametrize("command", [["check"], ["specs"], ["why"], ["intent"]])
+def test_every_command_that_reads_a_netlist_takes_folders_and_limits(
+    command: list[str], pipeline: Pipeline, board: Board, call: Call, tmp_path: Path
+) -> None:
+    for name in ("one", "two"):
+        (tmp_path / name).mkdir()
+    subject = ["Q1"] if command == ["why"] else []
+    folders = ["--include-from", str(tmp_path / "one"), "--include-from", str(tmp_path / "two")]
+    limits = ["--most-bytes", "5", "--most-parts", "4", "--most-depth", "3"]
+    limits += ["--most-elements", "2", "--most-steps", "1"]
+    done = call(*command, board("a.net", "clean"), *subject, *folders, *limits)
+    assert done.status in (0, 1), done.err
+    assert pipeline.readings == [
+        Reading(
+            folders=(tmp_path / "one", tmp_path / "two"),
+            limits=ReadLimits(bytes=5, parts=4, depth=3, elements=2, steps=1),
+        )
+    ]
+    pipeline.readings.clear()
+    call(*command, board("a.net", "clean"), *subject)
+    assert pipeline.readings == [Reading()]
+
+
+@pytest.mark.parametrize(
+    "arguments", [["--most-depth", "0"], ["--most-depth", "1001"], ["--most-bytes", "x"], ["--include-from", "none"]]
+)
+def test_folders_and_limits_that_cannot_be(arguments: list[str], pipeline: Pipeline, board: Board, call: Call) -> None:
+    done = call("check", board("a.net", "x"), *arguments)
+    assert (done.status, done.out, pipeline.readings) == (2, "", [])
+
+
+@pytest.mark.parametrize(
+    ("text", "option", "bound"),
+    [
+        ("* t\nR1 a 0 1k\nR2 a 0 1k\n.end\n", "bytes", 20),
+        ("* t\nR1 a 0 1k\nR2 a 0 1k\n.end\n", "parts", 1),
+        ("* t\n.subckt s a\nR1 a 0 1\nR2 a 0 1\n.ends\nX1 a s\n.end\n", "elements", 2),
+        ("* t\nR1 a 0 {((((1))))}\n.end\n", "depth", 2),
+        ("* t\nR1 a 0 {1+1+1+1}\n.end\n", "steps", 3),
+        ('(export (version "E") (components (comp (ref "R1"))))', "depth", 2),
+        ('(export (version "E") (components (comp (ref "R1")) (comp (ref "R2"))))', "parts", 1),
+    ],
+)
+def test_the_message_of_a_limit_names_the_option_that_raises_it(
+    text: str, option: str, bound: int, board: Board, call: Call
+) -> None:
+    path = board("a.net", text)
+    done = call("intent", path, f"--most-{option}", str(bound))
+    assert (done.status, done.out) == (2, "")
+    assert f"limit of {bound};" in done.err and f"--most-{option} raises it" in done.err
+    assert done.err.count("\n") == 1
+    assert call("intent", path, f"--most-{option}", "1000").status == 0

@@ -68,7 +68,7 @@ def test_mutations_give_a_netlist_or_one_message(
     path = tmp_path / "board.net"
     path.write_bytes(data)
     try:
-        netlist = read_netlist(path, limits=ReadLimits(expanded=1_000))
+        netlist = read_netlist(path, limits=ReadLimits(elements=1_000))
     except InputTrouble as trouble:
         assert str(trouble).startswith(path.as_posix() + ":")
         return

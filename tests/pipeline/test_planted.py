@@ -1,4 +1,4 @@
-"""Boards with one planted mistake, in both formats: found where it is, mended by what is proposed, silent when clean."""
+"""Boards with one planted mistake, in both formats: found where it is, mended as proposed, silent when clean."""
 
 from __future__ import annotations
 
