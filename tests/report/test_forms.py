@@ -12,7 +12,7 @@ from checker.record import to_json
 from checker.report.card import render_card
 from checker.report.catalogue import render_rules
 from checker.report.forms import FORMS, form
-from checker.report.json_form import render_several
+from checker.report.bundle import Bundle
 from checker.trouble import InputTrouble
 from tests.record.invented import report
 
@@ -28,7 +28,8 @@ def test_unknown_form_names_those_there_are() -> None:
 
 
 def test_several_reports_in_one_object() -> None:
-    whole = json.loads(render_several([report(), report()], [("bad.net", "bad.net:3: no")]))
+    bundle = Bundle(reports=(report(), report()), without=(("bad.net", "bad.net:3: no"),), several=True)
+    whole = json.loads(bundle.render("json", width=80, colour=False))
     assert whole["schema"] == "stageproof-reports/1"
     assert whole["reports"] == [json.loads(to_json(report()))] * 2
     assert whole["unusable"] == [{"path": "bad.net", "message": "bad.net:3: no"}]
