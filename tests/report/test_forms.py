@@ -9,10 +9,10 @@ import pytest
 
 from checker.cards.types import Card, Ratings
 from checker.record import to_json
+from checker.report.bundle import Bundle
 from checker.report.card import render_card
 from checker.report.catalogue import render_rules
 from checker.report.forms import FORMS, form
-from checker.report.bundle import Bundle
 from checker.trouble import InputTrouble
 from tests.record.invented import report
 
