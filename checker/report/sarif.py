@@ -42,7 +42,7 @@ def render_bundle(bundle: Bundle, *, width: int, colour: bool) -> str:  # noqa: 
     run = {
         "tool": {"driver": {"name": "Stageproof", **version, "rules": rules}},
         "invocations": [_invocation(bundle, reports, index)],
-        "artifacts": [_artifact(report) for report in reports],
+        "artifacts": [_artifact(report) for report in _distinct(reports)],
         "results": [result for report in reports for result in _results(report, index, compared)],
     }
     return dump({"$schema": SCHEMA, "version": "2.1.0", "runs": [run]}) + "\n"
@@ -64,7 +64,8 @@ def _rules(known: Sequence[RuleShown], reports: Sequence[Report]) -> list[Json]:
     made = {rule.id: _rule(rule) for rule in known}
     for report in reports:
         for finding in _all(report):
-            made.setdefault(finding.rule, {"id": clean(finding.rule), "shortDescription": _text(finding.why or "—")})
+            rule = clean(finding.rule)
+            made.setdefault(rule, {"id": rule, "shortDescription": _text(finding.why or "—")})
     return [made[rule] for rule in sorted(made)]
 
 
@@ -116,7 +117,9 @@ def _gap(gap: Unchecked, report: Report, index: Mapping[str, int]) -> Json:
     supply = f"; supply {clean(gap.supply)}" if gap.supply else ""
     rule = gap.rule or "every rule"
     text = f"{name(gap.subject)} was not judged by {clean(rule)}: {clean(gap.datum)} is missing{supply}"
-    about = {"associatedRule": {"id": clean(gap.rule), "index": index[gap.rule]}} if gap.rule in index else {}
+    about = (
+        {"associatedRule": {"id": clean(gap.rule), "index": index[clean(gap.rule)]}} if clean(gap.rule) in index else {}
+    )
     where = next((stage.location for stage in report.stages if stage.id == gap.subject), None)
     return {
         "level": "warning",
@@ -124,6 +127,11 @@ def _gap(gap: Unchecked, report: Report, index: Mapping[str, int]) -> Json:
         "locations": [_place(where, gap.subject, report)],
         **about,
     }
+
+
+def _distinct(reports: Sequence[Report]) -> list[Report]:
+    """One a netlist: the standard wants no artifact twice."""
+    return list({report.netlist.path: report for report in reports}.values())
 
 
 def _artifact(report: Report) -> Json:
@@ -166,7 +174,7 @@ def _result(
     on = finding.subject[0] if finding.subject else "board"
     return {
         "ruleId": clean(finding.rule),
-        "ruleIndex": index[finding.rule],
+        "ruleIndex": index[clean(finding.rule)],
         "kind": "fail",
         "level": LEVELS[finding.severity],
         "message": {"text": escaped(_told(finding))},

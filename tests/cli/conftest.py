@@ -5,6 +5,7 @@ from __future__ import annotations
 import sys
 from collections.abc import Callable
 from dataclasses import dataclass, field, replace
+from datetime import date
 from pathlib import Path
 from types import ModuleType
 
@@ -32,11 +33,20 @@ class Pipeline:
 
     report: Report
     intents: list[Path | None]
+    days: list[date | None] = field(default_factory=list)
     readings: list[Reading | None] = field(default_factory=list)
 
-    def check_board(self, netlist: Path, intent: Path | None, *, reading: Reading | None = None) -> Outcome:
+    def check_board(
+        self,
+        netlist: Path,
+        intent: Path | None,
+        *,
+        reading: Reading | None = None,
+        today: date | None = None,
+    ) -> Outcome:
         self.intents.append(intent)
         self.readings.append(reading)
+        self.days.append(today)
         text = netlist.read_text()
         if text == "bad":
             raise InputTrouble("expected a value\x1b[2J, got none", file=netlist.name, line=3)
@@ -53,7 +63,7 @@ class Pipeline:
 @pytest.fixture
 def pipeline(monkeypatch: pytest.MonkeyPatch) -> Pipeline:
     """The stand-in, installed."""
-    made = Pipeline(report=report(), intents=[])
+    made = Pipeline(report=report(), intents=[], days=[])
     module = ModuleType("checker.pipeline")
     module.check_board = made.check_board  # type: ignore[attr-defined]
     module.starter_intent = made.starter_intent  # type: ignore[attr-defined]
