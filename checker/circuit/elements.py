@@ -5,8 +5,8 @@ from __future__ import annotations
 import math
 from typing import Final
 
-from checker.circuit.devices import bare_fact
 from checker.circuit.draft import Draft, Table
+from checker.circuit.entry import bare_fact
 from checker.circuit.types import PartFact, PartKind
 from checker.circuit.values import part_value
 from checker.netlist.types import Part

@@ -6,9 +6,9 @@ from __future__ import annotations
 import re
 from typing import Final
 
-from checker.circuit.devices import bare_fact
 from checker.circuit.draft import Draft, LoosePin
 from checker.circuit.elements import two_ends
+from checker.circuit.entry import bare_fact
 from checker.circuit.types import Unknown
 from checker.netlist.types import Part
 
