@@ -24,7 +24,7 @@ def bias_label(scene: Scene, device: str, region: Region | None) -> tuple[Config
     circuit = scene.circuit
     if resistors_between(circuit, c, b) and resistors_between(circuit, b, e) and not scene.silent[c]:
         return "vbe-multiplier", f"a divider from {output} to {common} holds the {control}"
-    if _self_biased(scene, device):
+    if region in ("active", "ohmic") and _self_biased(scene, device):
         return "current-source", f"{region}, its {control} at the far end of its own {common} resistor"
     if region == "ohmic" and _without_drain_voltage(scene, device):
         return "variable-resistor", "next to no voltage from drain to source; the gate sets the channel's resistance"
@@ -59,7 +59,7 @@ def switch_evidence(scene: Scene, device: str, regions: dict[str, Region]) -> tu
     rest = regions.get("")
     c, b, e = scene.nodes(device)
     _, control, common = scene.words(device)
-    if rest not in SWITCHED or not _emitter_fixed(scene, e) or c == b:
+    if rest not in SWITCHED or not _emitter_fixed(scene, e) or b in (c, e):
         return None
     if decouplers(scene, b) or not resistors_on(scene.circuit, b):
         return None
