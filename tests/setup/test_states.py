@@ -5,8 +5,6 @@ from __future__ import annotations
 import numpy as np
 import pytest
 
-from checker.circuit.changes import with_changes
-from checker.circuit.types import Change, Scenario
 from checker.setup import Setup
 from checker.solve.operating import operating_point
 from tests.whole import intent_text, mirrored, set_up_from
@@ -50,16 +48,15 @@ def test_a_trigger_is_searched(volts: float, rests: int, first_on: bool) -> None
     (island,) = [i for i in setup.point.islands if "A" in i.nets]
     assert (island.states, island.exhaustive, bool(island.ok[0])) == (rests, True, True)
     ic = dict(zip(setup.circuit.bipolars.names, setup.point.bipolar["ic_a"][0], strict=True))
-    assert (ic["Q1"] > 1e-3) is first_on
-    assert (ic["Q2"] > 1e-3) is not first_on
+    assert bool(ic["Q1"] > 1e-3) is first_on
+    assert bool(ic["Q2"] > 1e-3) is not first_on
 
 
 def test_the_second_rest_is_there() -> None:
     """Come to 2.6 V from 6 V, a small step at a time: the trigger still holds its other state, and balances."""
     point = trigger(6.0).point
-    for volts in np.linspace(6.0, 2.6, 18):
-        scenario = Scenario(name="nominal", changes=(Change(part="V2", property="v_v", value=float(volts)),))
-        point = operating_point(with_changes(point.circuit, (scenario,)), near=point)
+    for volts in (5.0, 4.0, 3.5, 3.0, 2.6):
+        point = operating_point(trigger(volts).circuit, near=point)
     assert all(island.ok.all() for island in point.islands)
     ic = dict(zip(point.circuit.bipolars.names, point.bipolar["ic_a"][0], strict=True))
     assert ic["Q1"] > 1e-3 > ic["Q2"]

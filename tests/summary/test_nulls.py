@@ -43,10 +43,9 @@ def test_boards_of_every_kind(case: Case) -> None:
 @pytest.mark.parametrize(
     ("netlist", "words"),
     [
-        (NO_MODEL, "UNHEARD_OF"),
+        (NO_MODEL, "model of Q1"),
         ("XJ1 +V 0 CONN_01X02\nRC +V C 1k\nRB +V B 100k\nQ1 C B 0 QN\n", "+V"),
         ("V1 VCC 0 5\nR1 VCC A 1k\nR2 VCC C 1k\nR3 A X 10k\nR4 C Y 10k\nQ1 A Y 0 QN\nQ2 C X 0 QN\n", "2 rests"),
-        ("V1 VCC 0 5\nC1 VCC A 1u\nC2 A B 1u\nQ1 VCC B 0 QN\n", "no DC path"),
     ],
 )
 def test_what_is_missing_is_named(netlist: str, words: str) -> None:
@@ -56,6 +55,14 @@ def test_what_is_missing_is_named(netlist: str, words: str) -> None:
     told = [*report.unavailable.values(), *(f"{u.subject} {u.datum} {u.supply}" for u in report.unchecked)]
     assert any(words in each for each in told), told
     assert report.checked.stages < report.checked.of
+
+
+def test_a_net_between_capacitors_has_no_voltage() -> None:
+    report = outcome_from("V1 VCC 0 5\nC1 VCC A 1u\nC2 A B 1u\nR1 B 0 1k\n", "").report
+    assert report.nets["A"].dc_v is None
+    assert report.nets["B"].dc_v == 0.0
+    assert "no DC voltage" in report.unavailable["nets/A/dc_v"]
+    assert_every_figure_is_there_or_explained(report)
 
 
 def test_a_board_without_transistors() -> None:
