@@ -71,15 +71,13 @@ class Board:
 
     def kind_of(self, subject: str) -> Subject:
         """What a subject is: a stage, group, port, pair of ports or part. A port may share a part's name."""
-        if "->" in subject:
-            return "gain"
         if any(stage.id == subject for stage in self.recognition.stages):
             return "stage"
         if any(group.id == subject for group in self.recognition.groups):
             return "group"
         if any(port.name == subject for port in self.ports):
             return "port"
-        return "part"
+        return "gain" if "->" in subject and subject not in self.bench.facts else "part"
 
     def ask(self, quantity: str, subject: str) -> Figure:
         """A figure. Raises CannotTell for a missing datum, KeyError for a quantity the subject does not have."""
