@@ -22,6 +22,7 @@ from checker.circuit.elements import (
 )
 from checker.circuit.grounds import find_ground
 from checker.circuit.identity import BIPOLAR, DIODE, card_by_value, intended_card
+from checker.circuit.logic import add_logic
 from checker.circuit.notes import Notes
 from checker.circuit.order import natural_key
 from checker.circuit.others import (
@@ -116,6 +117,7 @@ def build_circuit(netlist: Netlist, intent: Intent) -> Circuit:
     add_rails(draft)
     add_ports(draft)
     add_drives(draft)
+    add_logic(draft)
     if ground.found:
         find_unsupplied(draft)
     else:
