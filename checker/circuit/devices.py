@@ -10,6 +10,7 @@ from dataclasses import fields, replace
 from typing import Final, Literal
 
 from checker.cards.types import Ratings
+from checker.circuit.compound import parts_of
 from checker.circuit.draft import Draft, DraftDevice
 from checker.circuit.identity import BIPOLAR, DIODE, Identity, card_by_value, generic, identify, special
 from checker.circuit.models import Parameters, bipolar_parameters, diode_parameters
@@ -56,8 +57,10 @@ def add_bipolar(draft: Draft, part: Part) -> None:
     parameters = bipolar_parameters(known.written, area=part.params.get("area", 1.0), count=part.params.get("m", 1.0))
     _tell_unused(draft, known, parameters)
     for unit in units:
-        order = (unit.nets["C"], unit.nets["B"], unit.nets["E"], _substrate(draft, unit))
-        _place(draft, "bipolar", part, unit, order, known, parameters)
+        for inner, each in parts_of(draft, part, unit, known):
+            order = (inner.nets["C"], inner.nets["B"], inner.nets["E"], _substrate(draft, unit))
+            own = parameters if each is known else bipolar_parameters(each.written, area=1.0, count=1.0)
+            _place(draft, "bipolar", part, inner, order, each, own)
 
 
 def add_diode(draft: Draft, part: Part) -> None:

@@ -37,7 +37,7 @@ _LETTERS: Final = frozenset({"U", "IC", "A", "M", "N", "MCU", "MOD", "DD", "X", 
 _MAX_NAME: Final = 60
 
 
-def _names(part: Part) -> tuple[str, ...]:
+def type_names(part: Part) -> tuple[str, ...]:
     """What the part may be called: first word of the value, whole value, the symbol."""
     value = part.value[:_MAX_NAME]
     texts = (re.split(r"[\s(/,]", value, maxsplit=1)[0], value, symbol_name(part)[:_MAX_NAME])
@@ -45,7 +45,7 @@ def _names(part: Part) -> tuple[str, ...]:
 
 
 def _is(pattern: re.Pattern[str], part: Part) -> bool:
-    return any(pattern.fullmatch(name) for name in _names(part))
+    return any(pattern.fullmatch(name) for name in type_names(part))
 
 
 def _library(part: Part) -> str:
