@@ -12,15 +12,11 @@ from typing import Final
 
 from checker.circuit.draft import Draft, DraftDevice
 from checker.circuit.families import type_names
+from checker.circuit.parameters import OPAMP
 from checker.circuit.parts import symbol_name
 from checker.constants import DEFAULT_AMBIENT_C, ZERO_CELSIUS_K
 from checker.netlist.types import Part, Pin
 from checker.shape import frozen
-
-GAIN: Final = 1e5
-"""Open-loop gain of every type (typical of general-purpose amplifiers)."""
-ROUT_OHM: Final = 75.0
-"""Open-loop output resistance of every type."""
 
 
 @frozen
@@ -144,14 +140,15 @@ def _add(draft: Draft, part: Part, unit: Unit, kind: Kind) -> None:
     device = DraftDevice(
         nets=tuple(nets[role] for role in (_PLUS, _MINUS, _OUT, "top", "bottom")),
         polarity=1.0,
-        params={"gain": GAIN, "gbw": kind.gbw_hz, "rout": ROUT_OHM, "high": kind.high_v, "low": kind.low_v},
+        params={**OPAMP, "gbw": kind.gbw_hz, "high": kind.high_v, "low": kind.low_v},
         tnom_k=DEFAULT_AMBIENT_C + ZERO_CELSIUS_K,
         rth_kpw=float("nan"),
     )
     draft.place("opamp", part.ref + unit.suffix, device)
-    draft.driven_pins.update((part.ref, pin.number) for pin in part.pins if draft.net(pin.net) == nets[_OUT])
+    drawn = {nets[_OUT], nets["top"], nets["bottom"]}
+    draft.driven_pins.update((part.ref, pin.number) for pin in part.pins if draft.net(pin.net) in drawn)
     text = (
-        f"operational amplifier of {kind.gbw_hz / 1e6:g} MHz and gain {GAIN:g}, whose output stops {kind.high_v:g} V "
+        f"operational amplifier of {kind.gbw_hz / 1e6:g} MHz and gain {OPAMP['gain']:g}, whose output stops {kind.high_v:g} V "
         f"below and {kind.low_v:g} V above its supplies"
     )
     draft.notes.add("parts", text if kind is not GENERIC else f"{text} (type not known)", part.ref)
