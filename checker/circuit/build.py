@@ -24,7 +24,7 @@ from checker.circuit.grounds import find_ground
 from checker.circuit.identity import BIPOLAR, DIODE, card_by_value, intended_card
 from checker.circuit.logic import add_logic
 from checker.circuit.notes import Notes
-from checker.circuit.opamps import add_opamps
+from checker.circuit.opamps import add_opamps, check_supplies
 from checker.circuit.order import natural_key
 from checker.circuit.others import (
     add_closed,
@@ -115,8 +115,9 @@ def build_circuit(netlist: Netlist, intent: Intent) -> Circuit:
             )
         elif kind in _VALUED or not add_declared(draft, part):
             _ADDERS[kind](draft, part)
-    add_rails(draft)
     add_opamps(draft)
+    add_rails(draft)
+    check_supplies(draft)
     add_ports(draft)
     add_drives(draft)
     add_logic(draft)

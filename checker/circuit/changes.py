@@ -127,8 +127,8 @@ def state_scenarios(circuit: Circuit, intent: Intent) -> tuple[Scenario, ...]:
 
     The nominal scenario is not among them. Raises InputTrouble for a rail that the circuit does not know.
     """
-    states = (*circuit.states, *intent.states)
-    return tuple(Scenario(name=state.name, kind="state", changes=_changes(circuit, state)) for state in states)
+    said = (Scenario(name=state.name, kind="state", changes=_changes(circuit, state)) for state in intent.states)
+    return (*circuit.states, *said)
 
 
 def nominal() -> Scenario:

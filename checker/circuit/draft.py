@@ -12,8 +12,8 @@ from checker.circuit.notes import Notes
 from checker.circuit.order import natural_key
 from checker.circuit.parameters import PARAMETERS
 from checker.circuit.ties import Ties
-from checker.circuit.types import PartFact, Rail, Unknown
-from checker.intent.types import Intent, PartIntent, StateIntent
+from checker.circuit.types import PartFact, Rail, Scenario, Unknown
+from checker.intent.types import Intent, PartIntent
 from checker.netlist.types import Netlist, Part
 from checker.shape import frozen
 from checker.words import PortRole
@@ -131,8 +131,8 @@ class Draft:
     """Pin as a state names it ("U1.7", "U1.OUT") -> net."""
     driven_pins: set[tuple[str, str]] = field(default_factory=set)
     """The same pins as (part, number)."""
-    states: list[StateIntent] = field(default_factory=list)
-    """States that the board itself suggests, besides those of the intent."""
+    states: list[Scenario] = field(default_factory=list)
+    """States and corners that the board itself suggests, besides those of the intent."""
     lines: dict[str, float | None] = field(default_factory=dict)
     """Net at an end of a lossless line -> its characteristic impedance [ohm]."""
     coaxial_parts: list[Part] = field(default_factory=list)

@@ -17,6 +17,7 @@ _TWO_LEVEL: Final = re.compile(
     r"|(?:NE|LM|SE|NA|TLC|ICM|LMC|CSS|KA|MC1|SA)?7?55[56]\w*"  # timers
     r"|(?:LM|LP|UA)?(?:2901|2903|3302|393|339|311)[A-Z]{0,3}|TLV3[245]\d\d\w*|TL331\w*"  # comparators
     r"|(?:PCA96|PCF85|TCA95|MCP23|TLC59|MAX72|MAX69)\d+\w*"  # expanders and drivers of lamps
+    r"|(?:MAX|ST|SP|ADM|TRSF?|SN75|LT1)(?:2[0-4]\d|3(?:2[2-4]\d|38\d)|185|485)\w*|FT(?:232|230|231)\w*|CP210\w*|CH340\w*"
     r"|(?:TC44|MIC44|MCP14|UCC27|IR[S]?2)\d+\w*|A498[38]\w*",  # drivers of gates
     re.IGNORECASE,
 )

@@ -13,9 +13,8 @@ from checker.circuit.draft import Draft
 from checker.circuit.drives import DRIVEN_OHM, OPEN_OHM, drive_name
 from checker.circuit.families import is_controller, is_two_level, pulls_down_only
 from checker.circuit.order import natural_key
-from checker.intent.types import StateIntent
+from checker.circuit.types import Change, Scenario
 from checker.netlist.types import Part, Pin
-from checker.quantity.value import Origin
 
 LOW: Final = "logic low"
 HIGH: Final = "logic high"
@@ -36,20 +35,19 @@ def add_logic(draft: Draft) -> None:
     if draft.netlist.format != "kicad":
         return
     spoken = {label for state in draft.intent.states for label in state.pins}
-    low: dict[str, float | str] = {}
-    high: dict[str, float | str] = {}
+    low: list[Change] = []
+    high: list[Change] = []
     for net, drivers in sorted(_drivers(draft, spoken).items(), key=lambda entry: natural_key(entry[0])):
         way, part, pin, volts = min(drivers, key=lambda one: (one[0] == "port", natural_key(one[1].ref)))
         label = f"{part.ref}.{pin.number}"
         _drive(draft, label, net, way)
         draft.driven_pins.update((one.ref, other.number) for _, one, other, _ in drivers)
-        low[label] = "low"
-        high[label] = "open" if way == "sink" else volts
+        low += _levels(label, 0.0)
+        high += _levels(label, None if way == "sink" else volts)
         _note(draft, way, part, volts)
     if low:
-        origin = Origin(kind="assumed")
-        draft.states.append(StateIntent(name=LOW, origin=origin, pins=low))
-        draft.states.append(StateIntent(name=HIGH, origin=origin, pins=high))
+        draft.states.append(Scenario(name=LOW, kind="state", changes=tuple(low)))
+        draft.states.append(Scenario(name=HIGH, kind="state", changes=tuple(high)))
 
 
 def _drivers(draft: Draft, spoken: set[str]) -> dict[str, list[tuple[Way, Part, Pin, float]]]:
@@ -102,6 +100,17 @@ def _drive(draft: Draft, label: str, net: str, way: Way) -> None:
     name = drive_name(label)
     draft.tie(name, f"{name}.n", draft.ground, 0.0)
     draft.wire("resistors", f"{name}.r", f"{name}.n", net, OPEN_OHM if way == "port" else DRIVEN_OHM)
+
+
+def _levels(label: str, volts: float | None) -> list[Change]:
+    """What sets a pin to a level; None: open."""
+    name = drive_name(label)
+    if volts is None:
+        return [Change(part=f"{name}.r", property="r_ohm", value=OPEN_OHM)]
+    return [
+        Change(part=f"{name}.r", property="r_ohm", value=DRIVEN_OHM),
+        Change(part=name, property="v_v", value=volts),
+    ]
 
 
 def _note(draft: Draft, way: Way, part: Part, volts: float) -> None:

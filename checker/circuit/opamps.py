@@ -135,7 +135,7 @@ def add_opamps(draft: Draft) -> None:
 def _add(draft: Draft, part: Part, unit: Unit, kind: Kind) -> None:
     nets = {role: draft.net(net) for role, net in unit.nets.items()}
     present = draft.present()
-    if nets[_OUT] not in present or draft.known_volts(nets[_OUT]) is not None:
+    if nets[_OUT] not in present or draft.known_volts(nets[_OUT]) is not None or nets["top"] == nets["bottom"]:
         return
     device = DraftDevice(
         nets=tuple(nets[role] for role in (_PLUS, _MINUS, _OUT, "top", "bottom")),
@@ -145,13 +145,28 @@ def _add(draft: Draft, part: Part, unit: Unit, kind: Kind) -> None:
         rth_kpw=float("nan"),
     )
     draft.place("opamp", part.ref + unit.suffix, device)
-    drawn = {nets[_OUT], nets["top"], nets["bottom"]}
-    draft.driven_pins.update((part.ref, pin.number) for pin in part.pins if draft.net(pin.net) in drawn)
+    draft.driven_pins.update((part.ref, pin.number) for pin in part.pins if draft.net(pin.net) in nets.values())
     text = (
         f"operational amplifier of {kind.gbw_hz / 1e6:g} MHz and gain {OPAMP['gain']:g}, whose output stops {kind.high_v:g} V "
         f"below and {kind.low_v:g} V above its supplies"
     )
     draft.notes.add("parts", text if kind is not GENERIC else f"{text} (type not known)", part.ref)
+
+
+def check_supplies(draft: Draft) -> None:
+    """Name every amplifier that nothing feeds: without its supplies there are no limits to its output."""
+    for name, device in draft.devices["opamp"].items():
+        ref = name if name in draft.facts else name.rsplit(".", 1)[0]
+        for net in device.nets[3:]:
+            feeds = [wire for table, wire in draft.elements_on(net) if table != "capacitors"]
+            if draft.known_volts(net) is None and not feeds and not _by_device(draft, net):
+                draft.loose(ref, (device.nets[2], net), f"the supply of {ref} on {net}", f'[rails] "{net}" = "…"')
+
+
+def _by_device(draft: Draft, net: str) -> bool:
+    """Whether a device other than an amplifier ends on a net."""
+    tables = (table for kind, table in draft.devices.items() if kind != "opamp")
+    return any(net in device.nets for table in tables for device in table.values())
 
 
 def units_of(part: Part, *, spice: bool) -> tuple[Unit, ...]:

@@ -15,7 +15,6 @@ import numpy as np
 from numpy.typing import NDArray
 
 from checker.cards.types import Card, Ratings
-from checker.intent.types import StateIntent
 from checker.quantity.value import Origin, Value
 from checker.shape import frozen
 from checker.words import PortRole
@@ -202,7 +201,8 @@ class Circuit:
     """Everything a solve needs. S scenarios, n nodes; `nets[0]` is ground.
 
     `devices`: family -> table, for the families of `checker.devices.family` that the board has.
-    `states`: conditions that the board itself suggests (levels of logic), besides those of the intent.
+    `states`: conditions that the board itself suggests (levels of logic, ends of potentiometers), besides those of
+    the intent.
     """
 
     nets: tuple[str, ...]
@@ -220,7 +220,7 @@ class Circuit:
     parts: Mapping[str, PartFact] = field(default_factory=dict)
     unknowns: tuple[Unknown, ...] = ()
     assumptions: tuple[str, ...] = ()
-    states: tuple[StateIntent, ...] = ()
+    states: tuple[Scenario, ...] = ()
     band_hz: tuple[float, float] | None = None
 
     @property
