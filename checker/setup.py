@@ -81,7 +81,7 @@ def set_up(netlist: Netlist, intent: Intent) -> Setup:
         point,
         small_signal(point, f_look),
         ports,
-        _state_regions(circuit, point, states),
+        _state_regions(circuit, point, tuple(state for state in states if state.kind == "state")),
         oscillating=_oscillating(point, growing),
     )
     moves = influence(point)

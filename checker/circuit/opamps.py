@@ -68,9 +68,7 @@ KINDS: Final = (
 )
 """The first that fits counts."""
 GENERIC: Final = Kind(pattern="", gbw_hz=1e6, high_v=1.5, low_v=1.5)
-_OTHER: Final = re.compile(
-    r"LM(?:386|38\d|13700|3900|3080|311|339|393)\w*|CA3080\w*|TDA\w+|LM13600\w*", re.IGNORECASE
-)
+_OTHER: Final = re.compile(r"LM(?:386|38\d|13700|3900|3080|311|339|393)\w*|CA3080\w*|TDA\w+|LM13600\w*", re.IGNORECASE)
 """Amplifiers of other sorts that stand in the same libraries."""
 
 _PLUS, _MINUS, _OUT = "plus", "minus", "out"
