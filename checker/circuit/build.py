@@ -15,6 +15,7 @@ from checker.circuit.elements import (
     add_coupling,
     add_current,
     add_declared,
+    add_ends,
     add_passive,
     add_potentiometer,
     add_voltage,
@@ -115,6 +116,7 @@ def build_circuit(netlist: Netlist, intent: Intent) -> Circuit:
             )
         elif kind in _VALUED or not add_declared(draft, part):
             _ADDERS[kind](draft, part)
+    add_ends(draft)
     add_opamps(draft)
     add_rails(draft)
     check_supplies(draft)

@@ -131,6 +131,8 @@ class Draft:
     """Pin as a state names it ("U1.7", "U1.OUT") -> net."""
     driven_pins: set[tuple[str, str]] = field(default_factory=set)
     """The same pins as (part, number)."""
+    tracks: dict[str, float] = field(default_factory=dict)
+    """Potentiometer -> its whole resistance [ohm]."""
     states: list[Scenario] = field(default_factory=list)
     """States and corners that the board itself suggests, besides those of the intent."""
     lines: dict[str, float | None] = field(default_factory=dict)
