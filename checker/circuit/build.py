@@ -23,6 +23,7 @@ from checker.circuit.elements import (
 )
 from checker.circuit.grounds import find_ground
 from checker.circuit.identity import BIPOLAR, DIODE, card_by_value, intended_card
+from checker.circuit.loads import add_loads
 from checker.circuit.logic import add_logic
 from checker.circuit.notes import Notes
 from checker.circuit.opamps import add_opamps, check_supplies
@@ -40,6 +41,7 @@ from checker.circuit.parts import Kind, classify
 from checker.circuit.ports import add_ports
 from checker.circuit.rails import add_rails
 from checker.circuit.supplies import find_unsupplied
+from checker.circuit.switches import add_contacts
 from checker.circuit.types import Circuit, PartKind
 from checker.circuit.values import written_value
 from checker.constants import DEFAULT_AMBIENT_C, ZERO_CELSIUS_K
@@ -118,6 +120,8 @@ def build_circuit(netlist: Netlist, intent: Intent) -> Circuit:
             _ADDERS[kind](draft, part)
     add_ends(draft)
     add_opamps(draft)
+    add_contacts(draft)
+    add_loads(draft)
     add_rails(draft)
     check_supplies(draft)
     add_ports(draft)

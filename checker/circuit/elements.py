@@ -11,6 +11,7 @@ from checker.circuit.draft import Draft, Table
 from checker.circuit.types import Change, PartFact, PartKind, Scenario
 from checker.circuit.values import part_value
 from checker.netlist.types import Part
+from checker.pattern import lazy
 from checker.quantity.parse import parse_engineering
 from checker.quantity.value import Value
 from checker.trouble import InputTrouble, NotAQuantity
@@ -19,7 +20,7 @@ MOST_TRACKS: Final = 6
 """Potentiometers of a board whose ends are looked at; more would be mostly the panel of an instrument."""
 END_SHARE: Final = 2e-3
 """Resistance left at the end of a track, of the whole (makers allow some 0.1 to 1 %; common practice, no source)."""
-_TRIMMER: Final = re.compile(r"TRIM|PRESET|BOURNS_3\d{3}", re.IGNORECASE)
+_TRIMMER: Final = lazy(r"TRIM|PRESET|BOURNS_3\d{3}", re.IGNORECASE)
 _UNITS: Final[dict[str, tuple[str, Table, PartKind, str]]] = {
     "resistor": ("ohm", "resistors", "resistor", "value"),
     "capacitor": ("F", "capacitors", "capacitor", "value"),

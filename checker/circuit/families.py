@@ -10,8 +10,9 @@ from typing import Final
 
 from checker.circuit.parts import symbol_name
 from checker.netlist.types import Part
+from checker.pattern import lazy
 
-_TWO_LEVEL: Final = re.compile(
+_TWO_LEVEL: Final = lazy(
     r"(?:SN|MC|CD|HEF|HCF|TC|MM|M|NC7|U)?(?:74|54)[A-Z]{0,4}(?:[123]G)?\d{1,5}(?:[A-Z]{1,6}\d?)?"  # 7400 logic
     r"|(?:CD|HEF|HCF|TC|MC1)?4[05]\d{2,3}(?:U?B\w{0,3})?"  # 4000 logic
     r"|(?:NE|LM|SE|NA|TLC|ICM|LMC|CSS|KA|MC1|SA)?7?55[56]\w*"  # timers
@@ -21,17 +22,17 @@ _TWO_LEVEL: Final = re.compile(
     r"|(?:TC44|MIC44|MCP14|UCC27|IR[S]?2)\d+\w*|A498[38]\w*",  # drivers of gates
     re.IGNORECASE,
 )
-_OPEN_COLLECTOR: Final = re.compile(
+_OPEN_COLLECTOR: Final = lazy(
     r"(?:LM|LP|UA)?(?:2901|2903|3302|393|339|311)[A-Z]{0,3}|TL331\w*|ULN2[08]\d\d\w*|TPIC6\w+", re.IGNORECASE
 )
-_CONTROLLER: Final = re.compile(
+_CONTROLLER: Final = lazy(
     r"AT(?:MEGA|TINY|XMEGA|90|SAM|89)\w*|PIC(?:12|16|18|24|32)\w*|DSPIC\w*|STM(?:32|8)\w*|GD32\w*|CH32\w*"
     r"|ESP[-_]?(?:8266|32|WROOM|12|07|01)\w*|(?:RP20\d\d|RASPBERRY|NRF5\d|MSP430|MSPM0|LPC\d|MKL?\d|SAM[DC3]\d|EFM|K20DX)\w*"
     r"|\w*(?:ARDUINO|TEENSY|PRO[-_ ]?MI(?:CRO|NI)|BLUE_?PILL|NUCLEO|WEMOS|DAISY|PI_?PICO|FEATHER|XIAO)\w*",
     re.IGNORECASE,
 )
-_LOGIC_LIBRARY: Final = re.compile(r"74\w*|4[x0]{3}\w*|logic\w*|timer\w*|comparator|interface_expansion", re.IGNORECASE)
-_CONTROLLER_LIBRARY: Final = re.compile(
+_LOGIC_LIBRARY: Final = lazy(r"74\w*|4[x0]{3}\w*|logic\w*|timer\w*|comparator|interface_expansion", re.IGNORECASE)
+_CONTROLLER_LIBRARY: Final = lazy(
     r"MCU\w*|atmel|cpu\w*|CPLD\w*|FPGA\w*|microcontrollers?|espressif", re.IGNORECASE
 )
 _LETTERS: Final = frozenset({"U", "IC", "A", "M", "N", "MCU", "MOD", "DD", "X", ""})

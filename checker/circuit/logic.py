@@ -15,6 +15,7 @@ from checker.circuit.families import is_controller, is_two_level, pulls_down_onl
 from checker.circuit.order import natural_key
 from checker.circuit.types import Change, Scenario
 from checker.netlist.types import Part, Pin
+from checker.pattern import lazy
 
 LOW: Final = "logic low"
 HIGH: Final = "logic high"
@@ -23,11 +24,11 @@ Way = Literal["output", "port", "sink"]
 _OUTPUT: Final = frozenset({"output", "3state", "tri_state", "tristate"})
 _BOTH: Final = frozenset({"bidi", "bidirectional", "passive", "unspecified", ""})
 _SINK: Final = frozenset({"opencol", "open_collector", "opencollector"})
-_SUPPLY: Final = re.compile(
+_SUPPLY: Final = lazy(
     r"[AD]?V(?:CC|DD|SS|EE|BAT|IN|REF)\w*|\+?\d(?:V\d|[.]\d)?V?|[AD]?GND\w*|GROUND|AREF|\w*XTAL\w*|R(?:E)?SE?T|~?RESET~?",
     re.IGNORECASE,
 )
-_PLUS: Final = re.compile(r"[AD]?V(?:CC|DD)\w*|V\+|VS|VIN|VBAT|\+?(?:3V3|5V|3[.]3V)", re.IGNORECASE)
+_PLUS: Final = lazy(r"[AD]?V(?:CC|DD)\w*|V\+|VS|VIN|VBAT|\+?(?:3V3|5V|3[.]3V)", re.IGNORECASE)
 
 
 def add_logic(draft: Draft) -> None:

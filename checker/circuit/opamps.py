@@ -16,6 +16,7 @@ from checker.circuit.parameters import OPAMP
 from checker.circuit.parts import symbol_name
 from checker.constants import DEFAULT_AMBIENT_C, ZERO_CELSIUS_K
 from checker.netlist.types import Part, Pin
+from checker.pattern import lazy
 from checker.shape import frozen
 
 
@@ -68,7 +69,7 @@ KINDS: Final = (
 )
 """The first that fits counts."""
 GENERIC: Final = Kind(pattern="", gbw_hz=1e6, high_v=1.5, low_v=1.5)
-_OTHER: Final = re.compile(r"LM(?:386|38\d|13700|3900|3080|311|339|393)\w*|CA3080\w*|TDA\w+|LM13600\w*", re.IGNORECASE)
+_OTHER: Final = lazy(r"LM(?:386|38\d|13700|3900|3080|311|339|393)\w*|CA3080\w*|TDA\w+|LM13600\w*", re.IGNORECASE)
 """Amplifiers of other sorts that stand in the same libraries."""
 
 _PLUS, _MINUS, _OUT = "plus", "minus", "out"
@@ -122,11 +123,22 @@ def kind_of(part: Part) -> Kind | None:
 def add_opamps(draft: Draft) -> None:
     """Put every amplifier in the draft whose pins and supplies are known, in place of its loose pins."""
     loose = {pin.part for pin in draft.loose_pins}
-    for part in draft.netlist.parts:
-        kind = kind_of(part) if part.ref in loose and not part.do_not_fit else None
-        if kind is None:
-            continue
-        for unit in units_of(part, spice=draft.netlist.format == "spice"):
+    found = [
+        (part, kind)
+        for part in draft.netlist.parts
+        if part.ref in loose and not part.do_not_fit and (kind := kind_of(part)) is not None
+    ]
+    spice = draft.netlist.format == "spice"
+    units = {part.ref: units_of(part, spice=spice) for part, _ in found}
+    supplies = {(draft.net(u.nets["top"]), draft.net(u.nets["bottom"])) for each in units.values() for u in each}
+    for part, kind in found:
+        own = units[part.ref]
+        if not own and not spice and len(supplies) == 1:
+            ((top, bottom),) = supplies
+            own = units_of(part, spice=False, feed=(top, bottom))
+            if own:
+                draft.notes.add("parts", "shows no supply pins; taken as fed like the other amplifiers", part.ref)
+        for unit in own:
             _add(draft, part, unit, kind)
 
 
@@ -145,8 +157,8 @@ def _add(draft: Draft, part: Part, unit: Unit, kind: Kind) -> None:
     draft.place("opamp", part.ref + unit.suffix, device)
     draft.driven_pins.update((part.ref, pin.number) for pin in part.pins if draft.net(pin.net) in nets.values())
     text = (
-        f"operational amplifier of {kind.gbw_hz / 1e6:g} MHz and gain {OPAMP['gain']:g}, whose output stops {kind.high_v:g} V "
-        f"below and {kind.low_v:g} V above its supplies"
+        f"operational amplifier of {kind.gbw_hz / 1e6:g} MHz and gain {OPAMP['gain']:g}, whose output stops "
+        f"{kind.high_v:g} V below and {kind.low_v:g} V above its supplies"
     )
     draft.notes.add("parts", text if kind is not GENERIC else f"{text} (type not known)", part.ref)
 
@@ -167,8 +179,11 @@ def _by_device(draft: Draft, net: str) -> bool:
     return any(net in device.nets for table in tables for device in table.values())
 
 
-def units_of(part: Part, *, spice: bool) -> tuple[Unit, ...]:
-    """The amplifiers of a part, each with all five nets; empty where the pins are in doubt."""
+def units_of(part: Part, *, spice: bool, feed: tuple[str, str] | None = None) -> tuple[Unit, ...]:
+    """The amplifiers of a part, each with all five nets; empty where the pins are in doubt.
+
+    `feed`: nets of the supplies for a part that shows no pins for them.
+    """
     if spice:
         if len(part.pins) != len(_ORDER):
             return ()
@@ -176,8 +191,12 @@ def units_of(part: Part, *, spice: bool) -> tuple[Unit, ...]:
     pins = {pin.number: pin for pin in part.pins}
     for layout, top, bottom in _LAYOUTS:
         roles = {number: role for unit in layout for number, role in unit.items()} | {top: "top", bottom: "bottom"}
-        if pins.keys() >= {top, bottom} and _agree(pins, roles, several=len(layout) > 1):
-            return tuple(_by_layout(pins, layout, top, bottom))
+        nets = feed
+        if feed is None and pins.keys() >= {top, bottom}:
+            nets = pins[top].net, pins[bottom].net
+        shown = feed is None or not pins.keys() & {top, bottom}
+        if nets is not None and shown and _agree(pins, roles, several=len(layout) > 1):
+            return tuple(_by_layout(pins, layout, *nets))
     return _by_names(part)
 
 
@@ -200,8 +219,7 @@ def _agree(pins: Mapping[str, Pin], roles: Mapping[str, str], *, several: bool) 
 def _by_layout(pins: Mapping[str, Pin], layout: tuple[Mapping[str, str], ...], top: str, bottom: str) -> Iterator[Unit]:
     for place, unit in enumerate(layout):
         if unit.keys() <= pins.keys():
-            nets = {role: pins[number].net for number, role in unit.items()}
-            nets |= {"top": pins[top].net, "bottom": pins[bottom].net}
+            nets = {role: pins[number].net for number, role in unit.items()} | {"top": top, "bottom": bottom}
             yield Unit(suffix="" if len(layout) == 1 else f".{chr(ord('A') + place)}", nets=nets)
 
 

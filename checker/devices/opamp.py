@@ -31,6 +31,7 @@ INNER = (("rout", 2, 5),)
 """Output resistance, outer terminal, inner terminal."""
 PATHS = ((2, 5), (5, 3), (5, 4))
 CONTROLS = ((0, 5), (1, 5))
+TIED = ()
 PLUS, MINUS, OUT, TOP, BOTTOM, INSIDE = range(6)
 INNER_S: Final = 1.0
 """Conductance G behind the inner output [S]: its ohm stands outside the feedback's error only."""
