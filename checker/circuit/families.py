@@ -32,9 +32,7 @@ _CONTROLLER: Final = lazy(
     re.IGNORECASE,
 )
 _LOGIC_LIBRARY: Final = lazy(r"74\w*|4[x0]{3}\w*|logic\w*|timer\w*|comparator|interface_expansion", re.IGNORECASE)
-_CONTROLLER_LIBRARY: Final = lazy(
-    r"MCU\w*|atmel|cpu\w*|CPLD\w*|FPGA\w*|microcontrollers?|espressif", re.IGNORECASE
-)
+_CONTROLLER_LIBRARY: Final = lazy(r"MCU\w*|atmel|cpu\w*|CPLD\w*|FPGA\w*|microcontrollers?|espressif", re.IGNORECASE)
 _LETTERS: Final = frozenset({"U", "IC", "A", "M", "N", "MCU", "MOD", "DD", "X", ""})
 _MAX_NAME: Final = 60
 

@@ -39,9 +39,7 @@ _RELAYS: Final[Mapping[str, tuple[tuple[str, str], tuple[tuple[str, str, str], .
 """Type -> coil pins, (common, closed at rest, open at rest) of each contact set."""
 _OLD: Final = {"C": "common", "R": "rest", "T": "work"}
 """Pin names of an old editor library: C1 common, R1 at rest, T1 at work."""
-_VOLTS: Final = lazy(
-    r"(?<![A-Z0-9.])(?:DC)?[-_ ]?(\d{1,2}(?:[.,]\d)?) ?V(?:DC)?(?![A-Z0-9])|DC(\d{1,2})(?!\d)", re.I
-)
+_VOLTS: Final = lazy(r"(?<![A-Z0-9.])(?:DC)?[-_ ]?(\d{1,2}(?:[.,]\d)?) ?V(?:DC)?(?![A-Z0-9])|DC(\d{1,2})(?!\d)", re.I)
 
 
 @frozen
