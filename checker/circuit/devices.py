@@ -11,12 +11,13 @@ from typing import Final, Literal
 
 from checker.cards.types import Ratings
 from checker.circuit.compound import parts_of
+from checker.circuit.conflicts import agreement_of
 from checker.circuit.draft import Draft, DraftDevice
-from checker.circuit.identity import BIPOLAR, DIODE, Identity, card_by_value, generic, identify, special
+from checker.circuit.identity import BIPOLAR, DIODE, Identity, card_by_value, generic, hints_of, identify, special
 from checker.circuit.models import Parameters, bipolar_parameters, diode_parameters
 from checker.circuit.parts import symbol_name
 from checker.circuit.pins import Unit, kicad_terminals, letter_of, spice_terminals
-from checker.circuit.types import PartFact, PartKind
+from checker.circuit.types import Agreement, PartFact, PartKind
 from checker.netlist.types import Part
 from checker.pattern import lazy
 from checker.quantity.parse import parse_engineering
@@ -209,7 +210,22 @@ def _place(
         gain_min=gain_min,
         gain_max=gain_max,
         footprint=part.footprint,
+        agreement=_agreement(draft, part, unit, known),
     )
+
+
+def _agreement(draft: Draft, part: Part, unit: Unit, known: Identity) -> Agreement:
+    """Whether symbol, number and package fit; asked once a part, and only of exports that show pads and packages."""
+    if draft.netlist.format == "spice":
+        text = "pin order, polarity and package of parts are not checked: SPICE text shows neither pads nor packages"
+        draft.notes.add("pins", text)
+        return Agreement(judged=False)
+    inner = known.card is not None and known.card.name.endswith("(driver)")
+    again = unit.suffix not in ("", ".A") and not (known.card is not None and known.card.driver)
+    if known.kind not in BIPOLAR or inner or again:
+        return Agreement(judged=False)
+    kinds = tuple((who, kind) for who, kind in hints_of(part) if kind in BIPOLAR)
+    return agreement_of(part, known.card, kinds)
 
 
 def _gain(draft: Draft, name: str, known: Identity, values: Mapping[str, float]) -> tuple[float | None, float | None]:

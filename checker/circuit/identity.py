@@ -94,7 +94,7 @@ def identify(draft: Draft, part: Part, family: Collection[CardKind]) -> Identity
     model = draft.netlist.models.get((part.model or part.value).lower())
     if model is not None and model.kind in _MODEL_KIND:
         return Identity(kind=_MODEL_KIND[model.kind], card=card, model=model, source=f".model {model.name}")
-    hints = _hints(part)
+    hints = hints_of(part)
     if card is not None:
         _compare(draft, part, card, hints, family)
         if draft.netlist.format == "spice":
@@ -123,7 +123,7 @@ def special(part: Part) -> str | None:
     return None
 
 
-def _hints(part: Part) -> list[tuple[str, CardKind]]:
+def hints_of(part: Part) -> list[tuple[str, CardKind]]:
     """What else tells the kind: (who says so, kind), the most trustworthy first."""
     found: list[tuple[str, CardKind]] = []
     fields = f"{part.fields.get('Sim.Device', '')} {part.fields.get('Sim.Type', '')}"

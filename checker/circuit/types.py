@@ -145,6 +145,19 @@ class Port:
 
 
 @frozen
+class Agreement:
+    """Whether symbol, part number and package of a transistor fit, by question ("pin-order", "part-polarity",
+    "package-mismatch"): what is `wrong`, in a sentence; what is `unknown`, as (datum, what to supply).
+
+    `judged`: False where the export has no pads and packages at all, so that nothing is asked.
+    """
+
+    wrong: Mapping[str, str] = field(default_factory=dict)
+    unknown: Mapping[str, tuple[str, str]] = field(default_factory=dict)
+    judged: bool = True
+
+
+@frozen
 class PartFact:
     """What is known of one part: kind, terminals by name -> net, value, card, ratings, where it stands."""
 
@@ -159,6 +172,7 @@ class PartFact:
     gain_min: float | None = None
     gain_max: float | None = None
     footprint: str = ""
+    agreement: Agreement = field(default_factory=lambda: Agreement(judged=False))
 
 
 @frozen

@@ -62,7 +62,8 @@ def seat(point: OperatingPoint, pole: complex) -> NDArray[np.int64]:
     except np.linalg.LinAlgError:
         return np.zeros(0, dtype=np.int64)
     share = np.abs(left * (c @ right)) + np.abs(right * (c.T @ left))
-    return names[(share >= 0.1 * share.max(initial=0.0)) & (names < point.plan.n_nodes)]
+    held = (share >= 0.1 * share.max(initial=0.0)) & (names < point.plan.n_nodes)
+    return np.asarray(names[held], dtype=np.int64)
 
 
 def _live(point: OperatingPoint, without: str) -> tuple[FloatArray, FloatArray, NDArray[np.int64]]:
