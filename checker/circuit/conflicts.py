@@ -26,6 +26,8 @@ _SURFACE: Final = frozenset(
 )
 _SMALL_CANS: Final = frozenset({"TO-92", "TO-18", "TO-39", "TO-72"})
 """Leaded outlines in which one type number is often sold: no conflict among these."""
+_NAME: Final = 5
+"""Leading characters of a type number by which a footprint is known to be made for it."""
 _SYMMETRIC: Final = ("njf", "pjf")
 """Kinds whose drain and source may be exchanged (data sheets of most junction FETs say so)."""
 
@@ -70,6 +72,8 @@ def _compare_pads(
     shown = pads_of_symbol(part)
     if true is None:
         unknown[ORDER] = f"the pin order of {card.name} in {package}", "a card that lists this package"
+    elif _made_for(part):
+        unknown[ORDER] = f"how the footprint {part.footprint.rpartition(':')[2]} numbers its pads", "its drawing"
     elif not shown or not shown.keys() <= true.keys():
         unknown[ORDER] = f"which pad of {part.ref} is which terminal by its symbol", "pin names on the symbol"
     else:
@@ -81,6 +85,12 @@ def _compare_pads(
             unknown[ORDER] = makers, "the maker's drawing; makers of this type differ"
         else:
             wrong[ORDER] = _sentence(part, card, package, shown, true)
+
+
+def _made_for(part: Part) -> bool:
+    """Whether a footprint bears the part's own name: its pads may be numbered to suit the symbol."""
+    name, own = part.footprint.rpartition(":")[2].upper(), part.value.upper()[:_NAME]
+    return len(own) == _NAME and own in name
 
 
 def _counted_from_the_other_end(card: Card, package: str, shown: Mapping[str, str]) -> bool:

@@ -224,7 +224,7 @@ def _agreement(draft: Draft, part: Part, unit: Unit, known: Identity) -> Agreeme
     again = unit.suffix not in ("", ".A") and not (known.card is not None and known.card.driver)
     if known.kind not in BIPOLAR or inner or again:
         return Agreement(judged=False)
-    kinds = tuple((who, kind) for who, kind in hints_of(part) if kind in BIPOLAR)
+    kinds = tuple((who, kind) for who, kind in hints_of(part) if kind in BIPOLAR and who != "the description")
     return agreement_of(part, known.card, kinds)
 
 
