@@ -2,9 +2,10 @@
 
 from __future__ import annotations
 
-from collections.abc import Callable
+from collections.abc import Callable, Mapping
 from typing import Final
 
+from checker.cards.types import Card
 from checker.circuit.assemble import assemble
 from checker.circuit.devices import add_bipolar, add_diode, add_fet, bare_fact, leave_out
 from checker.circuit.draft import Draft
@@ -99,16 +100,19 @@ _VALUED: Final[tuple[Kind, ...]] = ("resistor", "capacitor", "inductor", "potent
 """Kinds whose adder takes the intent's value itself."""
 
 
-def build_circuit(netlist: Netlist, intent: Intent) -> Circuit:
+def build_circuit(netlist: Netlist, intent: Intent, own_cards: Mapping[str, Card] | None = None) -> Circuit:
     """The circuit of a board, with one scenario, the nominal one.
 
     Node 0 is ground; elements and nets are in natural order of their names, so that the order of lines in
-    the file changes nothing. Nets on which no element ends have no node; `Unknown.nets` names only nets that
-    have one. Raises InputTrouble where the intent names a net, part, pin or card that does not exist.
+    the file changes nothing. `own_cards`: the project's, by squeezed name; they outrank the library. Nets on which
+    no element ends have no node; `Unknown.nets` names only nets that have one. Raises InputTrouble where the intent
+    names a net, part, pin or card that does not exist.
     """
     notes = Notes()
     ground = find_ground(netlist, intent, notes)
-    draft = Draft(netlist=netlist, intent=intent, ground=ground.name, merged=ground.keys, notes=notes)
+    draft = Draft(
+        netlist=netlist, intent=intent, ground=ground.name, merged=ground.keys, own_cards=own_cards or {}, notes=notes
+    )
     draft.touches.update(draft.net(pin.net) for part in netlist.parts for pin in part.pins)
     _check_names(draft)
     for kind, part in _sorted(netlist, draft):

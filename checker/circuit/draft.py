@@ -8,6 +8,7 @@ from collections.abc import Iterable, Mapping
 from dataclasses import dataclass, field
 from typing import Final, Literal
 
+from checker.cards.types import Card
 from checker.circuit.notes import Notes
 from checker.circuit.order import natural_key
 from checker.circuit.parameters import PARAMETERS
@@ -101,6 +102,8 @@ class Draft:
     intent: Intent
     ground: str
     merged: frozenset[str]
+    own_cards: Mapping[str, Card] = field(default_factory=dict)
+    """The project's own cards by squeezed name."""
     notes: Notes = field(default_factory=Notes)
     ties: Ties = field(default_factory=Ties)
     resistors: dict[str, Wire] = field(default_factory=dict)

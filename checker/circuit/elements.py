@@ -4,10 +4,13 @@ from __future__ import annotations
 
 import math
 import re
+from dataclasses import replace
 from typing import Final
 
+from checker.cards.types import Ratings
 from checker.circuit.devices import bare_fact
 from checker.circuit.draft import Draft, Table
+from checker.circuit.sizes import ratings_of
 from checker.circuit.types import Change, PartFact, PartKind, Scenario
 from checker.circuit.values import part_value
 from checker.netlist.types import Part
@@ -114,7 +117,7 @@ def add_potentiometer(draft: Draft, part: Part) -> None:
     """A potentiometer at mid travel as two resistors; one drawn with two pins as its whole resistance."""
     value = part_value(draft, part, "ohm")
     ends, wiper = _track(part)
-    draft.facts[part.ref] = bare_fact(draft, part, "resistor")
+    draft.facts[part.ref] = replace(bare_fact(draft, part, "resistor"), value=value)
     if value is None or value.si == 0.0:
         draft.loose(part.ref, [pin.net for pin in part.pins], f"value of {part.ref}", "a value in ohm")
     elif len(ends) != 2:
@@ -270,12 +273,15 @@ def _without_value(draft: Draft, part: Part, kind: str, ends: tuple[str, str]) -
 
 
 def _fact(draft: Draft, part: Part, kind: PartKind, ends: tuple[str, str], value: Value | None) -> PartFact:
+    ratings, whence = ratings_of(part, kind) if draft.netlist.format == "kicad" else (Ratings(), "")
     return PartFact(
         ref=part.ref,
         kind=kind,
         terminals={"1": draft.net(ends[0]), "2": draft.net(ends[1])},
         origin=part.origin,
         value=value,
+        ratings=ratings,
+        ratings_source=whence,
         footprint=part.footprint,
     )
 

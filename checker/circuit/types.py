@@ -169,6 +169,7 @@ class PartFact:
     card: Card | None = None
     model_source: str = ""
     ratings: Ratings = field(default_factory=Ratings)
+    ratings_source: str = ""
     gain_min: float | None = None
     gain_max: float | None = None
     footprint: str = ""

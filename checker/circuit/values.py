@@ -45,11 +45,12 @@ def part_value(draft: Draft, part: Part, unit: str) -> Value | None:
     si, tolerance = found
     if said is not None and said.tolerance is not None:
         tolerance = said.tolerance
-    if tolerance is None and si > 0.0:
+    assumed = tolerance is None and si > 0.0
+    if assumed:
         tolerance = TOLERANCE[unit]
         draft.notes.add("tolerances", f"{NAMES[unit]} without a written tolerance: ±{tolerance * 100:g} %")
     origin = part.origin if intended is None or said is None else said.origin
-    return Value(si=si, unit=unit, text=part.value, tolerance=tolerance, origin=origin)
+    return Value(si=si, unit=unit, text=part.value, tolerance=tolerance, origin=origin, assumed_tolerance=assumed)
 
 
 def _workshop(draft: Draft, part: Part, unit: str) -> tuple[float, float | None] | None:
