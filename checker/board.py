@@ -5,6 +5,7 @@ from __future__ import annotations
 import numpy as np
 
 # Importing a measure registers its quantities.
+import checker.measure.agreement
 import checker.measure.bias
 import checker.measure.capacitors
 import checker.measure.corners

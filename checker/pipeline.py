@@ -8,6 +8,9 @@ from pathlib import Path
 
 from checker import __version__
 from checker.board import QUANTITY_NAMES, Board
+from checker.cards.own import find_cards, read_cards
+from checker.circuit.build import build_circuit
+from checker.circuit.types import PartFact
 from checker.constants import ZERO_CELSIUS_K
 from checker.examine import examine
 from checker.intent.checks import check_quantity
@@ -110,10 +113,21 @@ def check_board(
 
 
 def ready(netlist_path: Path, intent_path: Path | None, reading: Reading | None = None) -> Setup:
-    """Read both files and set the board up."""
+    """Read netlist, intent and the project's own cards, and set the board up."""
     netlist = _read(netlist_path, reading)
     where = intent_path or find_intent(netlist_path)
-    return set_up(netlist, read_intent(where) if where is not None else Intent())
+    cards = find_cards(netlist_path)
+    own = read_cards(cards) if cards is not None else None
+    return set_up(netlist, read_intent(where) if where is not None else Intent(), own)
+
+
+def part_values(netlist_path: Path, intent_path: Path | None, reading: Reading | None = None) -> tuple[PartFact, ...]:
+    """What is known of every resistor, capacitor and inductor, in the order of their names; nothing is solved."""
+    netlist = _read(netlist_path, reading)
+    where = intent_path or find_intent(netlist_path)
+    circuit = build_circuit(netlist, read_intent(where) if where is not None else Intent())
+    kinds = ("resistor", "capacitor", "inductor")
+    return tuple(fact for fact in circuit.parts.values() if fact.kind in kinds)
 
 
 def _read(path: Path, reading: Reading | None) -> Netlist:

@@ -2,11 +2,12 @@
 
 from __future__ import annotations
 
-from collections.abc import Sequence
+from collections.abc import Mapping, Sequence
 
 import numpy as np
 
 from checker.board import Board
+from checker.cards.types import Card
 from checker.circuit.build import build_circuit
 from checker.circuit.changes import state_scenarios, with_changes
 from checker.circuit.types import Change, Circuit, Port, Scenario
@@ -68,9 +69,9 @@ class Setup:
         return corner_scenarios(point.circuit, self.intent.ambient, influence(point))[1:]
 
 
-def set_up(netlist: Netlist, intent: Intent) -> Setup:
+def set_up(netlist: Netlist, intent: Intent, own_cards: Mapping[str, Card] | None = None) -> Setup:
     """Build the circuit, solve its nominal, find the stages, and choose the scenarios."""
-    circuit = build_circuit(netlist, intent)
+    circuit = build_circuit(netlist, intent, own_cards)
     point = searched(operating_point(circuit))
     growing = growing_poles(point)
     point = settled(point, growing)
@@ -81,7 +82,7 @@ def set_up(netlist: Netlist, intent: Intent) -> Setup:
         point,
         small_signal(point, f_look),
         ports,
-        _state_regions(circuit, point, states),
+        _state_regions(circuit, point, tuple(state for state in states if state.kind == "state")),
         oscillating=_oscillating(point, growing),
     )
     moves = influence(point)

@@ -33,6 +33,7 @@ _MODELS: Final = {
     "pmos": mosfet_model,
 }
 _RATINGS: Final = ("v_max_v", "v_control_max_v", "i_max_a", "p_max_w", "tj_max_c", "rth_ja_kpw")
+_RESISTORS: Final = ("r1", "r2", "be1", "be2")
 _OWN: Final = ("aliases", "packages", "note", "source")
 """What a row does not take over from the row it is like."""
 
@@ -89,7 +90,18 @@ def card_from(row: Mapping[str, Any], group: str = "") -> Card:
         aliases=tuple(row.get("aliases", ())),
         assumed=bool(row.get("assumed", False)),
         note=row.get("note", ""),
+        resistors={key: float(row[key]) for key in _RESISTORS if row.get(key)},
+        driver=_driver(row, name),
+        free_wheel=bool(row.get("free_wheel", False)),
     )
+
+
+def _driver(row: Mapping[str, Any], name: str) -> Card | None:
+    """The first transistor of a Darlington: what its own figures leave open is as in the second; no ratings."""
+    if "driver" not in row:
+        return None
+    own = {key: value for key, value in row.items() if key not in ("driver", "packages", "aliases", *_RATINGS)}
+    return card_from({**own, **row["driver"], "name": f"{name} (driver)"})
 
 
 def _grouped(name: str, group: str) -> str:

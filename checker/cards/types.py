@@ -30,6 +30,9 @@ class Card:
     `gain_min`, `gain_max`: spread of the current gain of this gain group (bipolar). `packages`: package
     family ("TO-92", "SOT-23", ...) -> pad number -> terminal letter ("B", "C", "E", "A", "K", "D", "G", "S");
     of a dual device with its unit ("B1", "E2"; "K1A2" where a pad serves two).
+    `resistors` [ohm], built in: of a pre-biased transistor `r1` in the base lead and `r2` from base to emitter; of a
+    Darlington `be1` and `be2` from base to emitter of its two transistors. `driver`: the first transistor of a
+    Darlington, whose second one the card itself describes. `free_wheel`: a diode from emitter to collector is built in.
     `assumed`: a generic card stood in for an unknown part. `source`: where the figures come from, in words.
     """
 
@@ -44,3 +47,6 @@ class Card:
     aliases: tuple[str, ...] = ()
     assumed: bool = False
     note: str = ""
+    resistors: Mapping[str, float] = field(default_factory=dict)
+    driver: Card | None = None
+    free_wheel: bool = False

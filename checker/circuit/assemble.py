@@ -56,6 +56,7 @@ def assemble(draft: Draft, temperature_k: float) -> Circuit:
             )
         ),
         assumptions=draft.notes.lines(),
+        states=tuple(draft.states),
         band_hz=None if draft.intent.band is None else (draft.intent.band.low_hz, draft.intent.band.high_hz),
     )
 

@@ -2,9 +2,10 @@
 
 from __future__ import annotations
 
-from collections.abc import Callable
+from collections.abc import Callable, Mapping
 from typing import Final
 
+from checker.cards.types import Card
 from checker.circuit.assemble import assemble
 from checker.circuit.devices import add_bipolar, add_diode, add_fet
 from checker.circuit.draft import Draft
@@ -15,6 +16,7 @@ from checker.circuit.elements import (
     add_coupling,
     add_current,
     add_declared,
+    add_ends,
     add_passive,
     add_potentiometer,
     add_voltage,
@@ -23,7 +25,10 @@ from checker.circuit.elements import (
 from checker.circuit.entry import bare_fact, leave_out
 from checker.circuit.grounds import find_ground
 from checker.circuit.identity import BIPOLAR, DIODE, card_by_value, intended_card
+from checker.circuit.loads import add_loads
+from checker.circuit.logic import add_logic
 from checker.circuit.notes import Notes
+from checker.circuit.opamps import add_opamps, check_supplies
 from checker.circuit.order import natural_key
 from checker.circuit.others import (
     add_closed,
@@ -38,6 +43,7 @@ from checker.circuit.parts import Kind, classify
 from checker.circuit.ports import add_ports
 from checker.circuit.rails import add_rails
 from checker.circuit.supplies import find_unsupplied
+from checker.circuit.switches import add_contacts
 from checker.circuit.types import Circuit, PartKind
 from checker.circuit.values import written_value
 from checker.constants import DEFAULT_AMBIENT_C, ZERO_CELSIUS_K
@@ -95,16 +101,19 @@ _VALUED: Final[tuple[Kind, ...]] = ("resistor", "capacitor", "inductor", "potent
 """Kinds whose adder takes the intent's value itself."""
 
 
-def build_circuit(netlist: Netlist, intent: Intent) -> Circuit:
+def build_circuit(netlist: Netlist, intent: Intent, own_cards: Mapping[str, Card] | None = None) -> Circuit:
     """The circuit of a board, with one scenario, the nominal one.
 
     Node 0 is ground; elements and nets are in natural order of their names, so that the order of lines in
-    the file changes nothing. Nets on which no element ends have no node; `Unknown.nets` names only nets that
-    have one. Raises InputTrouble where the intent names a net, part, pin or card that does not exist.
+    the file changes nothing. `own_cards`: the project's, by squeezed name; they outrank the library. Nets on which
+    no element ends have no node; `Unknown.nets` names only nets that have one. Raises InputTrouble where the intent
+    names a net, part, pin or card that does not exist.
     """
     notes = Notes()
     ground = find_ground(netlist, intent, notes)
-    draft = Draft(netlist=netlist, intent=intent, ground=ground.name, merged=ground.keys, notes=notes)
+    draft = Draft(
+        netlist=netlist, intent=intent, ground=ground.name, merged=ground.keys, own_cards=own_cards or {}, notes=notes
+    )
     draft.touches.update(draft.net(pin.net) for part in netlist.parts for pin in part.pins)
     _check_names(draft)
     for kind, part in _sorted(netlist, draft):
@@ -114,9 +123,15 @@ def build_circuit(netlist: Netlist, intent: Intent) -> Circuit:
             )
         elif kind in _VALUED or not add_declared(draft, part):
             _ADDERS[kind](draft, part)
+    add_ends(draft)
+    add_opamps(draft)
+    add_contacts(draft)
+    add_loads(draft)
     add_rails(draft)
+    check_supplies(draft)
     add_ports(draft)
     add_drives(draft)
+    add_logic(draft)
     if ground.found:
         find_unsupplied(draft)
     else:

@@ -122,12 +122,13 @@ class _Columns:
 
 
 def state_scenarios(circuit: Circuit, intent: Intent) -> tuple[Scenario, ...]:
-    """One scenario a state of the intent: driven pins, open pins, absent rails (0 V through their own
-    source).
+    """One scenario a state of the board itself and of the intent: driven pins, open pins, absent rails (0 V
+    through their own source).
 
     The nominal scenario is not among them. Raises InputTrouble for a rail that the circuit does not know.
     """
-    return tuple(Scenario(name=state.name, kind="state", changes=_changes(circuit, state)) for state in intent.states)
+    said = (Scenario(name=state.name, kind="state", changes=_changes(circuit, state)) for state in intent.states)
+    return (*circuit.states, *said)
 
 
 def nominal() -> Scenario:

@@ -5,6 +5,7 @@ from __future__ import annotations
 import re
 from typing import Final
 
+from checker.circuit.compound import parts_of
 from checker.circuit.draft import Draft
 from checker.circuit.entry import leave_out, place_device
 from checker.circuit.identity import (
@@ -65,8 +66,10 @@ def add_bipolar(draft: Draft, part: Part) -> None:
     parameters = bipolar_parameters(known.written, area=part.params.get("area", 1.0), count=part.params.get("m", 1.0))
     _tell_unused(draft, known, parameters)
     for unit in units:
-        order = (unit.nets["C"], unit.nets["B"], unit.nets["E"], _substrate(draft, unit))
-        place_device(draft, "bipolar", part, unit, order, known, parameters)
+        for inner, each in parts_of(draft, part, unit, known):
+            order = (inner.nets["C"], inner.nets["B"], inner.nets["E"], _substrate(draft, unit))
+            own = parameters if each is known else bipolar_parameters(each.written, area=1.0, count=1.0)
+            place_device(draft, "bipolar", part, inner, order, each, own)
 
 
 def add_diode(draft: Draft, part: Part) -> None:

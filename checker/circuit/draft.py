@@ -8,11 +8,12 @@ from collections.abc import Iterable, Mapping
 from dataclasses import dataclass, field
 from typing import Final, Literal
 
+from checker.cards.types import Card
 from checker.circuit.notes import Notes
 from checker.circuit.order import natural_key
 from checker.circuit.parameters import PARAMETERS
 from checker.circuit.ties import Ties
-from checker.circuit.types import PartFact, Rail, Unknown
+from checker.circuit.types import PartFact, Rail, Scenario, Unknown
 from checker.intent.types import Intent, PartIntent
 from checker.netlist.types import Netlist, Part
 from checker.shape import frozen
@@ -101,6 +102,8 @@ class Draft:
     intent: Intent
     ground: str
     merged: frozenset[str]
+    own_cards: Mapping[str, Card] = field(default_factory=dict)
+    """The project's own cards by squeezed name."""
     notes: Notes = field(default_factory=Notes)
     ties: Ties = field(default_factory=Ties)
     resistors: dict[str, Wire] = field(default_factory=dict)
@@ -131,6 +134,10 @@ class Draft:
     """Pin as a state names it ("U1.7", "U1.OUT") -> net."""
     driven_pins: set[tuple[str, str]] = field(default_factory=set)
     """The same pins as (part, number)."""
+    tracks: dict[str, float] = field(default_factory=dict)
+    """Potentiometer -> its whole resistance [ohm]."""
+    states: list[Scenario] = field(default_factory=list)
+    """States and corners that the board itself suggests, besides those of the intent."""
     lines: dict[str, float | None] = field(default_factory=dict)
     """Net at an end of a lossless line -> its characteristic impedance [ohm]."""
     coaxial_parts: list[Part] = field(default_factory=list)

@@ -3,17 +3,27 @@
 from __future__ import annotations
 
 import math
+import re
+from dataclasses import replace
 from typing import Final
 
+from checker.cards.types import Ratings
 from checker.circuit.draft import Draft, Table
 from checker.circuit.entry import bare_fact
-from checker.circuit.types import PartFact, PartKind
+from checker.circuit.sizes import ratings_of
+from checker.circuit.types import Change, PartFact, PartKind, Scenario
 from checker.circuit.values import part_value
 from checker.netlist.types import Part
+from checker.pattern import lazy
 from checker.quantity.parse import parse_engineering
 from checker.quantity.value import Value
 from checker.trouble import InputTrouble, NotAQuantity
 
+MOST_TRACKS: Final = 6
+"""Potentiometers of a board whose ends are looked at; more would be mostly the panel of an instrument."""
+END_SHARE: Final = 2e-3
+"""Resistance left at the end of a track, of the whole (makers allow some 0.1 to 1 %; common practice, no source)."""
+_TRIMMER: Final = lazy(r"TRIM|PRESET|BOURNS_3\d{3}", re.IGNORECASE)
 _UNITS: Final[dict[str, tuple[str, Table, PartKind, str]]] = {
     "resistor": ("ohm", "resistors", "resistor", "value"),
     "capacitor": ("F", "capacitors", "capacitor", "value"),
@@ -107,7 +117,7 @@ def add_potentiometer(draft: Draft, part: Part) -> None:
     """A potentiometer at mid travel as two resistors; one drawn with two pins as its whole resistance."""
     value = part_value(draft, part, "ohm")
     ends, wiper = _track(part)
-    draft.facts[part.ref] = bare_fact(draft, part, "resistor")
+    draft.facts[part.ref] = replace(bare_fact(draft, part, "resistor"), value=value)
     if value is None or value.si == 0.0:
         draft.loose(part.ref, [pin.net for pin in part.pins], f"value of {part.ref}", "a value in ohm")
     elif len(ends) != 2:
@@ -116,9 +126,27 @@ def add_potentiometer(draft: Draft, part: Part) -> None:
         draft.notes.add("parts", "potentiometer taken at mid travel, linear", part.ref)
         draft.wire("resistors", f"{part.ref}.a", ends[0], wiper, value.si / 2)
         draft.wire("resistors", f"{part.ref}.b", wiper, ends[1], value.si / 2)
+        if not _TRIMMER.search(f"{part.symbol} {part.value} {part.description} {part.footprint}"):
+            draft.tracks[part.ref] = value.si
     else:
         draft.notes.add("parts", "variable resistor taken at its written value", part.ref)
         draft.wire("resistors", part.ref, *ends, value.si)
+
+
+def add_ends(draft: Draft) -> None:
+    """Both ends of every potentiometer as corners; a trimmer is set once and stays where it was set."""
+    if len(draft.tracks) > MOST_TRACKS:
+        draft.notes.add("parts", "so many potentiometers: mid travel alone is looked at", *draft.tracks)
+        return
+    for ref, ohm in draft.tracks.items():
+        for name, share in (("0 %", 0.0), ("100 %", 1.0)):
+            arms = (f"{ref}.a", share), (f"{ref}.b", 1.0 - share)
+            changes = tuple(
+                Change(part=arm, property="r_ohm", value=ohm * min(max(part, END_SHARE), 1.0 - END_SHARE))
+                for arm, part in arms
+                if arm in draft.resistors
+            )
+            draft.states.append(Scenario(name=f"{ref} at {name}", kind="corner", changes=changes))
 
 
 def _track(part: Part) -> tuple[tuple[str, ...], str]:
@@ -245,12 +273,15 @@ def _without_value(draft: Draft, part: Part, kind: str, ends: tuple[str, str]) -
 
 
 def _fact(draft: Draft, part: Part, kind: PartKind, ends: tuple[str, str], value: Value | None) -> PartFact:
+    ratings, whence = ratings_of(part, kind) if draft.netlist.format == "kicad" else (Ratings(), "")
     return PartFact(
         ref=part.ref,
         kind=kind,
         terminals={"1": draft.net(ends[0]), "2": draft.net(ends[1])},
         origin=part.origin,
         value=value,
+        ratings=ratings,
+        ratings_source=whence,
         footprint=part.footprint,
     )
 

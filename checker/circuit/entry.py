@@ -8,11 +8,12 @@ from dataclasses import fields, replace
 from typing import Final, Literal
 
 from checker.cards.types import Ratings
+from checker.circuit.conflicts import agreement_of
 from checker.circuit.draft import Draft, DraftDevice
-from checker.circuit.identity import BIPOLAR, Identity, polarity_of
+from checker.circuit.identity import BIPOLAR, Identity, hints_of, polarity_of
 from checker.circuit.models import Parameters
 from checker.circuit.pins import Unit, letter_of
-from checker.circuit.types import PartFact, PartKind
+from checker.circuit.types import Agreement, PartFact, PartKind
 from checker.netlist.types import Part
 
 ASSUMED_SPREAD: Final = (0.5, 2.0)
@@ -75,7 +76,22 @@ def place_device(
         gain_min=gain_min,
         gain_max=gain_max,
         footprint=part.footprint,
+        agreement=_agreement(draft, part, unit, known),
     )
+
+
+def _agreement(draft: Draft, part: Part, unit: Unit, known: Identity) -> Agreement:
+    """Whether symbol, number and package fit; asked once a part, and only of exports that show pads and packages."""
+    if draft.netlist.format == "spice":
+        text = "pin order, polarity and package of parts are not checked: SPICE text shows neither pads nor packages"
+        draft.notes.add("pins", text)
+        return Agreement(judged=False)
+    inner = known.card is not None and known.card.name.endswith("(driver)")
+    again = unit.suffix not in ("", ".A") and not (known.card is not None and known.card.driver)
+    if known.kind not in BIPOLAR or inner or again:
+        return Agreement(judged=False)
+    kinds = tuple((who, kind) for who, kind in hints_of(part) if kind in BIPOLAR and who != "the description")
+    return agreement_of(part, known.card, kinds)
 
 
 def _gain(draft: Draft, name: str, known: Identity, values: Mapping[str, float]) -> tuple[float | None, float | None]:

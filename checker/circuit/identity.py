@@ -8,6 +8,7 @@ from dataclasses import replace
 from typing import Final
 
 from checker.cards.find import find_card, generic_card
+from checker.cards.load import squeeze
 from checker.cards.types import Card, CardKind
 from checker.circuit.draft import Draft
 from checker.circuit.parts import symbol_name
@@ -63,11 +64,15 @@ class Identity:
 
 
 def intended_card(draft: Draft, part: Part) -> Card | None:
-    """The card that the intent names for a part. Raises InputTrouble for a card that does not exist."""
+    """The card that the intent names for a part, else the project's own card of its value or model.
+
+    Raises InputTrouble for a card that does not exist.
+    """
     said = draft.said(part.ref)
     if said is None or not said.card:
-        return None
-    card = find_card(said.card)
+        names = (part.model, part.value) if draft.own_cards else ()
+        return next((draft.own_cards[squeeze(name)] for name in names if squeeze(name) in draft.own_cards), None)
+    card = draft.own_cards.get(squeeze(said.card)) or find_card(said.card)
     if card is None:
         message = f"[[part]] {part.ref!r}: no card is called {said.card!r}; see `stageproof parts`"
         raise InputTrouble(message, file=said.origin.file, line=said.origin.line)
@@ -100,7 +105,7 @@ def identify(draft: Draft, part: Part, family: Collection[CardKind]) -> Identity
     model = draft.netlist.models.get((part.model or part.value).lower())
     if model is not None and model.kind in _MODEL_KIND:
         return Identity(kind=_MODEL_KIND[model.kind], card=card, model=model, source=f".model {model.name}")
-    hints = _hints(part)
+    hints = hints_of(part)
     if card is not None:
         _compare(draft, part, card, hints, family)
         if draft.netlist.format == "spice":
@@ -145,7 +150,7 @@ def special(part: Part) -> str | None:
     return None
 
 
-def _hints(part: Part) -> list[tuple[str, CardKind]]:
+def hints_of(part: Part) -> list[tuple[str, CardKind]]:
     """What else tells the kind: (who says so, kind), the most trustworthy first."""
     found: list[tuple[str, CardKind]] = []
     fields = f"{part.fields.get('Sim.Device', '')} {part.fields.get('Sim.Type', '')}"

@@ -130,11 +130,15 @@ MOSFET: Final[Mapping[str, float]] = {
 """`vto` is counted positive for enhancement of either polarity, `channel` is +1 for N and -1 for P, `l` is the
 effective length, `cox` [F] the oxide over the whole channel."""
 
+OPAMP: Final[Mapping[str, float]] = {"gain": 1e5, "gbw": 1e6, "rout": 75.0, "high": 1.5, "low": 1.5}
+"""Open-loop gain, gain-bandwidth product [Hz], output resistance [ohm], what the output keeps from its supplies [V]."""
+
 PARAMETERS: Final[Mapping[str, Mapping[str, float]]] = {
     "bipolar": BIPOLAR,
     "jfet": JFET,
     "mosfet": MOSFET,
     "diode": DIODE,
+    "opamp": OPAMP,
 }
 """Every device family of a board with the parameters of its table and their defaults."""
 

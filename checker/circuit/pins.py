@@ -34,6 +34,7 @@ _FOURTH: Final = {"bipolar": "S", "fet": "B", "diode": ""}
 """Substrate or body, where an element names it."""
 _ORDER: Final = {"bipolar": "CBE", "fet": "DGS", "diode": "AK"}
 """Terminal order of SPICE elements."""
+_TERMINALS: Final = frozenset("BCEGDS")
 _WANTED: Final = {"bipolar": frozenset("CBE"), "fet": frozenset("DGS"), "diode": frozenset("AK")}
 
 
@@ -80,6 +81,20 @@ def _pads_of_card(part: Part, card: Card, notes: Notes) -> Mapping[str, str] | N
     ((package, pads),) = card.packages.items()
     notes.add("pins", f"no footprint; pads as in {package}, the only package of its card", part.ref)
     return pads
+
+
+def pads_of_symbol(part: Part) -> dict[str, str]:
+    """Pad number -> terminal letter as the symbol has it: by pin functions, else simulation pins, else its name.
+
+    Empty where nothing tells; pads numbered by letter tell nothing of the package.
+    """
+    by_function = {pin.number: letter_of(pin.function.removesuffix(f"_{pin.number}"))[0] for pin in part.pins}
+    named = {pad: letter for pad, letter in by_function.items() if letter in _TERMINALS and pad.isdigit()}
+    if named:
+        return named
+    pads = {pin.number for pin in part.pins}
+    other = _simulation_pins(part, "bipolar") or _symbol_order(part) or {}
+    return {pad: letter for pad, letter in other.items() if pad in pads and letter in _TERMINALS and pad.isdigit()}
 
 
 def terminals_of(text: str) -> list[tuple[str, str]]:

@@ -15,12 +15,16 @@ from checker.pattern import lazy
 
 _TAIL: Final = (
     r"(?:[AD]|[_-](?:IN|OUT|[A-D]|ANA(?:LOG)?|DIG(?:ITAL)?|FUSED|RAW|SUPPLY"
-    r"|RF|AUDIO|MCU|USB|MAIN|AUX|PWR|REG))?"
+    r"|RF|AUDIO|MCU|USB|MAIN|AUX|PWR|REG|LED|IO|LOGIC|CORE))?"
 )
 _NUMBER: Final = r"(?P<whole>\d{1,3})(?:V(?P<part>\d{1,2})|[.,](?P<point>\d{1,2})V(?:DC)?|V(?:DC)?)"
 _NAMED: Final = lazy(rf"(?P<sign>[+\-PN]|PLUS|MINUS)?V?{_NUMBER}{_TAIL}", re.IGNORECASE)
-_AFTER_WORD: Final = lazy(rf"(?:V(?:CC|DD|BUS|BAT|IN)|[AD]V(?:CC|DD))[_-]?(?P<sign>\+?){_NUMBER}{_TAIL}", re.IGNORECASE)
+_AFTER_WORD: Final = lazy(
+    rf"(?:V(?:CC|DD|BUS|BAT|IN|REG|SYS)?|[AD]V(?:CC|DD)|REG|SYS|PWR|SUPPLY|P)[_-]?(?P<sign>\+?){_NUMBER}{_TAIL}",
+    re.IGNORECASE,
+)
 _BARE: Final = lazy(r"(?P<sign>[+-])(?P<whole>\d{1,3})" + _TAIL, re.IGNORECASE)
+_SIGNED: Final = lazy(rf"V(?P<sign>[+-])(?P<whole>\d{{1,3}})V?{_TAIL}", re.IGNORECASE)
 _V33: Final = lazy(rf"V33{_TAIL}", re.IGNORECASE)
 _USUAL: Final = frozenset({5, 6, 8, 9, 10, 12, 13, 15, 18, 24, 28, 30, 36, 48})
 """Supply voltages in use; a signed number that names a net without a V is a supply only if it is one of
@@ -58,7 +62,7 @@ def volts_of_name(name: str) -> float | None:
         fraction = found["part"] or found["point"] or "0"
         volts = float(f"{found['whole']}.{fraction}")
         return -volts if (found["sign"] or "").upper() in ("-", "N", "MINUS") else volts
-    found = _BARE.fullmatch(text)
+    found = _BARE.fullmatch(text) or _SIGNED.fullmatch(text)
     if found is not None and int(found["whole"]) in _USUAL:
         return float(found["sign"] + found["whole"])
     return None

@@ -15,7 +15,9 @@ from checker.pattern import lazy
 
 _SERIES: Final = lazy(r"(?:[A-Z]{1,3})?(?P<family>78|79)[LMST]?(?P<volts>\d\d)(?!\d)", re.IGNORECASE)
 _FAMILY: Final = lazy(r"1117|1086|29(?:31|37|40|50|51|85)|3985|17[0-9]{2}-|3819|LDO|REGULATOR", re.IGNORECASE)
-_ENDING: Final = lazy(r"[-_](?P<whole>\d{1,2})[.-](?P<part>\d)(?!\d)|[-_](?P<two>[1-5]\d)(?:02)?(?!\d)")
+_ENDING: Final = lazy(
+    r"[-_](?P<whole>\d{1,2})[.-](?P<part>\d)(?!\d)|(?:[-_]|(?<=\d)V)(?P<two>[1-5]\d)(?:02)?(?!\d)", re.IGNORECASE
+)
 _OUTPUTS: Final = frozenset({"VO", "OUT", "VOUT", "OUTPUT", "O"})
 _GROUNDS: Final = frozenset({"GND", "COM", "GROUND", "VSS"})
 

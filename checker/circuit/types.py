@@ -145,6 +145,19 @@ class Port:
 
 
 @frozen
+class Agreement:
+    """Whether symbol, part number and package of a transistor fit, by question ("pin-order", "part-polarity",
+    "package-mismatch"): what is `wrong`, in a sentence; what is `unknown`, as (datum, what to supply).
+
+    `judged`: False where the export has no pads and packages at all, so that nothing is asked.
+    """
+
+    wrong: Mapping[str, str] = field(default_factory=dict)
+    unknown: Mapping[str, tuple[str, str]] = field(default_factory=dict)
+    judged: bool = True
+
+
+@frozen
 class PartFact:
     """What is known of one part: kind, terminals by name -> net, value, card, ratings, where it stands."""
 
@@ -156,9 +169,11 @@ class PartFact:
     card: Card | None = None
     model_source: str = ""
     ratings: Ratings = field(default_factory=Ratings)
+    ratings_source: str = ""
     gain_min: float | None = None
     gain_max: float | None = None
     footprint: str = ""
+    agreement: Agreement = field(default_factory=lambda: Agreement(judged=False))
 
 
 @frozen
@@ -201,6 +216,8 @@ class Circuit:
     """Everything a solve needs. S scenarios, n nodes; `nets[0]` is ground.
 
     `devices`: family -> table, for the families of `checker.devices.family` that the board has.
+    `states`: conditions that the board itself suggests (levels of logic, ends of potentiometers), besides those of
+    the intent.
     """
 
     nets: tuple[str, ...]
@@ -218,6 +235,7 @@ class Circuit:
     parts: Mapping[str, PartFact] = field(default_factory=dict)
     unknowns: tuple[Unknown, ...] = ()
     assumptions: tuple[str, ...] = ()
+    states: tuple[Scenario, ...] = ()
     band_hz: tuple[float, float] | None = None
 
     @property

@@ -7,6 +7,7 @@ import re
 from typing import Final
 
 from checker.circuit.draft import Draft
+from checker.circuit.wound import coded_henry, tapered_ohm, wound_henry
 from checker.netlist.types import Part
 from checker.pattern import lazy
 from checker.quantity.parse import parse_engineering
@@ -20,6 +21,7 @@ _RANGE: Final = lazy(
     r"(?P<low>\d+(?:\.\d+)?\s*[a-zµ]{0,2})\s*(?:-|\.\.|to)\s*(?P<high>\d+(?:\.\d+)?)\s*(?P<unit>[a-zµΩ]{0,4})",
     re.IGNORECASE,
 )
+_POTENTIOMETERS: Final = frozenset({"RV", "VR", "P", "POT", "TR"})
 NAMES: Final = {"ohm": "resistors", "F": "capacitors", "H": "inductors"}
 
 
@@ -32,6 +34,8 @@ def part_value(draft: Draft, part: Part, unit: str) -> Value | None:
         intended = {"ohm": said.resistance_ohm, "F": said.capacitance_f, "H": said.inductance_h}[unit]
     found = written_value(part, unit) if intended is None else (intended, None)
     if found is None:
+        found = _workshop(draft, part, unit)
+    if found is None:
         middle = _middle(part.value, unit)
         if middle is not None:
             draft.notes.add("values", f"{part.value} taken at the middle of its range", part.ref)
@@ -41,11 +45,27 @@ def part_value(draft: Draft, part: Part, unit: str) -> Value | None:
     si, tolerance = found
     if said is not None and said.tolerance is not None:
         tolerance = said.tolerance
-    if tolerance is None and si > 0.0:
+    assumed = tolerance is None and si > 0.0
+    if assumed:
         tolerance = TOLERANCE[unit]
         draft.notes.add("tolerances", f"{NAMES[unit]} without a written tolerance: ±{tolerance * 100:g} %")
     origin = part.origin if intended is None or said is None else said.origin
-    return Value(si=si, unit=unit, text=part.value, tolerance=tolerance, origin=origin)
+    return Value(si=si, unit=unit, text=part.value, tolerance=tolerance, origin=origin, assumed_tolerance=assumed)
+
+
+def _workshop(draft: Draft, part: Part, unit: str) -> tuple[float, float | None] | None:
+    """Turns on a core, a coded inductance, a potentiometer with its taper."""
+    if unit == "H":
+        wound = wound_henry(f"{part.value} {part.fields.get('Turns', '')}")
+        if wound is not None:
+            draft.notes.add("values", f"turns on a {wound[1]} core, by its inductance factor (from memory)", part.ref)
+            return wound[0], None
+        coded = coded_henry(part.value)
+        return None if coded is None else (coded, None)
+    if unit == "ohm" and part.letter.upper() in _POTENTIOMETERS:
+        ohm = tapered_ohm(part.value)
+        return None if ohm is None else (ohm, None)
+    return None
 
 
 def _middle(text: str, unit: str) -> float | None:

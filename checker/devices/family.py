@@ -113,6 +113,12 @@ def _mosfet() -> TransistorFamily:
     return mosfet
 
 
+def _opamp() -> Family:
+    from checker.devices import opamp
+
+    return opamp
+
+
 TRANSISTORS: Final[Mapping[str, Callable[[], TransistorFamily]]] = {
     "bipolar": _bipolar,
     "jfet": _jfet,
@@ -120,5 +126,5 @@ TRANSISTORS: Final[Mapping[str, Callable[[], TransistorFamily]]] = {
 }
 """Families with an output, a control and a common terminal, in the order of `Circuit.transistors`."""
 
-FAMILIES: Final[Mapping[str, Callable[[], Family]]] = {**TRANSISTORS, "diode": _diode}
+FAMILIES: Final[Mapping[str, Callable[[], Family]]] = {**TRANSISTORS, "diode": _diode, "opamp": _opamp}
 """Every family, in the order in which the solver stacks them."""

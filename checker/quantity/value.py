@@ -19,10 +19,14 @@ class Origin:
 
 @frozen
 class Value:
-    """One quantity in SI. `tolerance` is a fraction (0.01 is 1 %), None where nothing says."""
+    """One quantity in SI.
+
+    `tolerance` is a fraction (0.01 is 1 %), None where nothing says; `assumed_tolerance` where nothing wrote it.
+    """
 
     si: float
     unit: str
     text: str
     tolerance: float | None
     origin: Origin
+    assumed_tolerance: bool = False

@@ -210,6 +210,9 @@ def _sources_agree(circuit: Circuit, plan: Plan, v: FloatArray) -> BoolArray:
 
 
 def _single(plan: Plan, nodes: set[int]) -> bool:
-    """With one transistor at most an island has one state (Nielsen and Willson, Proc. IEEE 68(2), 1980; memory)."""
+    """With one transistor at most an island has one state (Nielsen and Willson, Proc. IEEE 68(2), 1980; memory); with
+    an amplifier nothing is proved."""
+    if "opamp" in plan.placed and any(nodes & set(row) for row in plan.placed["opamp"].nodes.tolist()):
+        return False
     rows = [row for kind in TRANSISTORS if kind in plan.placed for row in plan.placed[kind].nodes.tolist()]
     return sum(bool(nodes & set(row)) for row in rows) <= 1

@@ -16,12 +16,14 @@ from checker.devices.family import TRANSISTORS
 from checker.solve.assemble import Assembler
 from checker.solve.newton import BY_SOURCES, follow, iterate
 from checker.solve.operating import Island, OperatingPoint, operating_point
+from checker.solve.poles import seat
 
 FloatArray = NDArray[np.float64]
 
 MOST_DEVICES = 8
 """Islands of more transistors are not enumerated; their search stays partial."""
 SEED_PASSES = 60
+NO_REST = "an amplifier's output is balanced between its two limits, which is no rest; a state must say which"
 SAME_V = 1e-6
 """Solutions closer than this at every node are one [V]."""
 
@@ -127,16 +129,27 @@ def _copies(circuit: Circuit, count: int) -> Circuit:
     )
 
 
+def _tipping(point: OperatingPoint, real: NDArray[np.complex128]) -> set[int]:
+    """Islands with an amplifier that sits in a growing real pole: a trigger balanced between its limits."""
+    if "opamp" not in point.plan.placed:
+        return set()
+    inner = set(point.plan.placed["opamp"].nodes[:, -1].tolist())
+    held = {int(node) for pole in real for node in seat(point, pole) if int(node) in inner}
+    return {k for k, island in enumerate(point.plan.islands) if held & set(island.nodes) and point.islands[k].ok[0]}
+
+
 def settled(point: OperatingPoint, growing: NDArray[np.complex128]) -> OperatingPoint:
     """The same point with balances that are no rest refused: islands of several rests while a real pole grows."""
-    if not np.any(np.abs(growing.imag) <= 1e-6 * np.abs(growing)):
+    real = growing[np.abs(growing.imag) <= 1e-6 * np.abs(growing)]
+    if not real.size:
         return point
     several = {k: island for k, island in enumerate(point.islands) if island.states > 1 and island.ok[0]}
-    if not several:
-        return point
     reasons = {
         k: f"{i.states} rests, and the balance between them is none; a state must say which" for k, i in several.items()
     }
+    reasons |= {k: NO_REST for k in _tipping(point, real) if k not in reasons}
+    if not reasons:
+        return point
     refused = operating_point(point.circuit, near=point, refuse=reasons)
     islands = tuple(
         replace(new, states=old.states, exhaustive=old.exhaustive)

@@ -66,7 +66,10 @@ def _owner(name: str, circuit: Circuit) -> str:
 
 
 def _said(fact: PartFact) -> list[str]:
-    """What rules and corners take from the part beyond its elements."""
+    """What rules and corners take from the part beyond its elements. Of ratings, those of semiconductors alone: no rule
+    asks for a resistor's, and only one format shows its size."""
     tolerance = fact.value.tolerance if fact.value is not None else None
+    if fact.kind not in ("bipolar", "fet", "diode"):
+        return [str(tolerance)]
     ratings = [f"{each.name} {getattr(fact.ratings, each.name)}" for each in fields(fact.ratings)]
     return [f"{tolerance} {fact.gain_min} {fact.gain_max}", *ratings]

@@ -81,7 +81,6 @@ def test_known_values(value: str, name: str, kind: str) -> None:
         "BF245A/B/C",
         "2N3906 NPN",  # contradicts itself
         "2N3904 PNP",
-        *("TIP120", "PDTC114E"),  # Darlington and built-in resistors: one plain transistor would be wrong
         "2N3904" * 1000,
         "\x00\u202e2N3904",
     ],
@@ -217,3 +216,27 @@ def test_pin_map(value: str, footprint: str, pins: dict[str, str] | None) -> Non
     card = find_card(value)
     assert card is not None
     assert pin_map(card, footprint) == pins
+
+
+@pytest.mark.parametrize(
+    ("name", "r1", "r2"),
+    [
+        ("PDTC114ET", 10e3, 10e3),
+        ("DTA143ZE", 4.7e3, 47e3),
+        ("MUN5212DW1T1G", 22e3, 22e3),
+        ("MMUN2215LT1G", 10e3, None),
+        ("DTC144EUA", 47e3, 47e3),
+    ],
+)
+def test_base_resistors_by_the_code_in_the_name(name: str, r1: float, r2: float | None) -> None:
+    """114E 10 k/10 k, 143Z 4.7 k/47 k, 144E 47 k/47 k; 5212 22 k/22 k, 2215 10 k alone (makers' codes, from memory)."""
+    card = find_card(name)
+    assert card is not None
+    assert card.resistors == ({"r1": r1} if r2 is None else {"r1": r1, "r2": r2})
+
+
+def test_a_darlington_has_a_driver() -> None:
+    card = find_card("TIP122")
+    assert card is not None and card.driver is not None and card.driver.driver is None
+    assert card.ratings.v_max_v == 100 and card.driver.ratings.v_max_v is None
+    assert card.resistors == {"be1": 8e3, "be2": 120.0}

@@ -218,7 +218,7 @@ def test_a_dual_is_two_devices() -> None:
     ("value", "description", "datum"),
     [
         ("XD1", "NPN Darlington transistor", "a model of the Darlington Q1"),
-        ("MUN5212", "NPN", "the base resistors of Q1"),
+        ("RN2409", "NPN", "the base resistors of Q1"),
         ("XP1", "NPN phototransistor", "the light on Q1"),
     ],
 )

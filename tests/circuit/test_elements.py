@@ -195,3 +195,22 @@ def test_a_coil_whose_pins_cannot_be_told_stops() -> None:
     relay = kicad_part("K1", "my:RELAY", "HJR", {"1": "x", "2": "+12V", "5": "c"})
     with pytest.raises(InputTrouble, match=r"toml:7: .*'K1'"):
         kicad(relay, resistor("R1", "c", "GND"), intent=intent)
+
+
+def test_both_ends_of_a_potentiometer_are_corners() -> None:
+    pins = {"1": "top", "2": "wiper", "3": "GND"}
+    circuit = kicad(
+        kicad_part("RV1", "Device:R_POT", "10k", pins), resistor("R1", "top", "GND"), resistor("R2", "wiper", "GND")
+    )
+    assert [(state.name, state.kind) for state in circuit.states] == [
+        ("RV1 at 0 %", "corner"),
+        ("RV1 at 100 %", "corner"),
+    ]
+    zero = {change.part: change.value for change in circuit.states[0].changes}
+    assert zero == {"RV1.a": pytest.approx(10e3 * 2e-3), "RV1.b": pytest.approx(10e3 * 0.998)}
+
+
+def test_a_trimmer_stays_where_it_is_set() -> None:
+    pins = {"1": "top", "2": "wiper", "3": "GND"}
+    trimmer = kicad_part("RV1", "Device:R_POT_TRIM", "10k", pins)
+    assert kicad(trimmer, resistor("R1", "top", "GND"), resistor("R2", "wiper", "GND")).states == ()

@@ -32,10 +32,17 @@ def expected(rule: str) -> dict[str, Any]:
     return tomllib.loads((CIRCUITS / rule / "expect.toml").read_text("utf-8"))
 
 
+def board_of(rule: str, kind: str) -> Path:
+    """A circuit in SPICE text, or as an export where pads and packages matter."""
+    found = [CIRCUITS / rule / f"{kind}.{form}" for form in ("cir", "net")]
+    (path,) = (each for each in found if each.exists())
+    return path
+
+
 @cache
 def examined(rule: str, kind: str) -> Examination:
     """One of the rule's circuits, judged by all rules."""
-    setup = ready(CIRCUITS / rule / f"{kind}.cir", None)
+    setup = ready(board_of(rule, kind), None)
     every = load_rules().rules
     return examine(setup.board(setup.scenarios), every, resolve_limits(every, setup.intent))
 
@@ -48,8 +55,8 @@ def evidence(rule: str, kind: str) -> list[Judged]:
 
 def test_every_rule_has_its_circuits_and_no_others_lie_there() -> None:
     assert sorted(path.name for path in CIRCUITS.iterdir()) == sorted(IDS)
-    names = {"expect.toml", "intent.toml", *(f"{kind}.cir" for kind in KINDS)}
     for rule in IDS:
+        names = {"expect.toml", "intent.toml", *(board_of(rule, kind).name for kind in KINDS)}
         assert {path.name for path in (CIRCUITS / rule).iterdir()} == names
 
 
