@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from functools import cache
 from pathlib import Path
 
 import pytest
@@ -46,6 +47,7 @@ def test_the_sections_are_equal_and_not_empty(board: str) -> None:
         assert {**a, "location": None} == {**b, "location": None}
 
 
+@cache
 def both(board: str) -> tuple[dict[str, object], dict[str, object]]:
     """The report of each format, SPICE text first."""
     folder: Path = SAMPLES / board
