@@ -102,7 +102,7 @@ CASES = {
         depletion_mos=True,
     ),
     "J7": Self(
-        # VDS is .1 V under VGS - VP: ohmic by a hair, derived; the book's 7.556 mA, .3666 V and 3.266 V take it as active.
+        # VDS is .1 V under VGS - VP: ohmic by a hair, derived; the book's 7.556 mA, .3666 V, 3.266 V take it as active.
         source=f"{BOYLESTAD}, Ex 7.8 p. 431, the same with 150 ohm: the gate goes positive",
         idss=6e-3, vp=-3.0, vdd=18.0, rd=1.8e3, rs=150.0, vg=1.5, id_a=7.5525e-3, vgs=0.36713, vds=3.2727,
         depletion_mos=True, where="ohmic",
