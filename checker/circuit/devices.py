@@ -5,13 +5,11 @@ from __future__ import annotations
 
 import math
 import re
-from collections.abc import Mapping, Sequence
+from collections.abc import Iterable, Mapping, Sequence
 from dataclasses import fields, replace
 from typing import Final, Literal
 
 from checker.cards.types import Ratings
-from checker.circuit.compound import parts_of
-from checker.circuit.conflicts import agreement_of
 from checker.circuit.draft import Draft, DraftDevice
 from checker.circuit.identity import BIPOLAR, DIODE, Identity, card_by_value, generic, hints_of, identify, special
 from checker.circuit.models import Parameters, bipolar_parameters, diode_parameters
@@ -58,10 +56,19 @@ def add_bipolar(draft: Draft, part: Part) -> None:
     parameters = bipolar_parameters(known.written, area=part.params.get("area", 1.0), count=part.params.get("m", 1.0))
     _tell_unused(draft, known, parameters)
     for unit in units:
-        for inner, each in parts_of(draft, part, unit, known):
+        for inner, each in _inside(draft, part, unit, known):
             order = (inner.nets["C"], inner.nets["B"], inner.nets["E"], _substrate(draft, unit))
             own = parameters if each is known else bipolar_parameters(each.written, area=1.0, count=1.0)
             _place(draft, "bipolar", part, inner, order, each, own)
+
+
+def _inside(draft: Draft, part: Part, unit: Unit, known: Identity) -> Iterable[tuple[Unit, Identity]]:
+    """The transistors of one unit: itself, or what a pre-biased or Darlington transistor holds."""
+    if known.model is not None or known.card is None or not (known.card.resistors or known.card.driver):
+        return ((unit, known),)
+    from checker.circuit.compound import parts_of
+
+    return parts_of(draft, part, unit, known, known.card)
 
 
 def add_diode(draft: Draft, part: Part) -> None:
@@ -224,6 +231,8 @@ def _agreement(draft: Draft, part: Part, unit: Unit, known: Identity) -> Agreeme
     again = unit.suffix not in ("", ".A") and not (known.card is not None and known.card.driver)
     if known.kind not in BIPOLAR or inner or again:
         return Agreement(judged=False)
+    from checker.circuit.conflicts import agreement_of
+
     kinds = tuple((who, kind) for who, kind in hints_of(part) if kind in BIPOLAR and who != "the description")
     return agreement_of(part, known.card, kinds)
 
