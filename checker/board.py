@@ -23,10 +23,11 @@ from checker.measure.ports import gain_subject
 from checker.measure.registry import REGISTRY, Subject
 from checker.measure.terminals import rule_of_thumb
 from checker.quantity.figure import Figure
-from checker.stages.terminals import NUMBER
+from checker.stages.region import REGIONS
+from checker.stages.terminals import NUMBER, TERMS, Terms
 from checker.stages.types import Recognition, Stage
 from checker.trouble import Trouble
-from checker.words import Terminal
+from checker.words import Region, Terminal
 
 QUANTITY_NAMES = tuple(sorted({name for name, subject in REGISTRY if subject in ("stage", "group", "gain")}))
 """What a target may name."""
@@ -71,15 +72,13 @@ class Board:
 
     def kind_of(self, subject: str) -> Subject:
         """What a subject is: a stage, group, port, pair of ports or part. A port may share a part's name."""
-        if "->" in subject:
-            return "gain"
         if any(stage.id == subject for stage in self.recognition.stages):
             return "stage"
         if any(group.id == subject for group in self.recognition.groups):
             return "group"
         if any(port.name == subject for port in self.ports):
             return "port"
-        return "part"
+        return "gain" if "->" in subject and subject not in self.bench.facts else "part"
 
     def ask(self, quantity: str, subject: str) -> Figure:
         """A figure. Raises CannotTell for a missing datum, KeyError for a quantity the subject does not have."""
@@ -115,13 +114,24 @@ class Board:
         return self._bias_parts.get(stage, ())
 
     def resistors_at(self, stage: str, terminal: Terminal) -> tuple[str, ...]:
-        """Resistors of the board on a terminal's net, sorted; none on ground or a supply, which all share."""
+        """Resistors of the board on a terminal's net, sorted; none on ground or a supply, which all share.
+
+        Collector, base and emitter also stand for drain, gate and source.
+        """
         node = int(self.circuit.transistors.nodes[self.bench.stage(stage).index, NUMBER[terminal]])
         if self.bench.point.plan.is_known[node]:
             return ()
         r = self.circuit.resistors
         names = (r.names[j] for j in np.flatnonzero((r.nodes == node).any(axis=1)).tolist())
         return tuple(sorted(name for name in names if name in self.circuit.parts))
+
+    def terms(self, stage: str) -> Terms:
+        """How the terminals and rest figures of a stage's device are called."""
+        return TERMS[self.bench.family(stage)]
+
+    def region_code(self, region: Region) -> float:
+        """The value of `region_code` that stands for a region."""
+        return float(REGIONS.index(region))
 
     def port(self, name: str) -> Port:
         """The port of that name. Raises KeyError."""

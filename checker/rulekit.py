@@ -20,9 +20,10 @@ from checker.intent.types import TargetIntent
 from checker.quantity.figure import Figure
 from checker.quantity.show import show
 from checker.shape import frozen
+from checker.stages.terminals import Terms
 from checker.stages.types import Recognition, Stage
 from checker.trouble import CannotTell
-from checker.words import Configuration, Relation, Role, Severity, Terminal
+from checker.words import Configuration, Region, Relation, Role, Severity, Terminal
 
 __all__ = [
     "LINEAR",
@@ -60,10 +61,13 @@ LINEAR: tuple[Configuration, ...] = (
     "common-emitter",
     "common-base",
     "common-collector",
+    "common-source",
+    "common-gate",
+    "common-drain",
     "phase-splitter",
     "current-source",
 )
-"""Labels of bipolar stages that are meant to rest in the active region."""
+"""Labels of stages that are meant to rest in the active region."""
 
 NOT_APPLICABLE = "not applicable"
 """A figure without any value whose reason starts so is clean, not unchecked."""
@@ -96,6 +100,14 @@ class Board(Protocol):
     def capacitors(self) -> tuple[CapacitorUse, ...]: ...
     def bias_parts(self, stage: str) -> tuple[str, ...]: ...
     def resistors_at(self, stage: str, terminal: Terminal) -> tuple[str, ...]: ...
+    def terms(self, stage: str) -> Terms:
+        """How the terminals and rest figures of a stage's device are called."""
+        ...
+
+    def region_code(self, region: Region) -> float:
+        """The value of `region_code` that stands for a region."""
+        ...
+
     def port(self, name: str) -> Port: ...
     def stage_at_port(self, name: str) -> Stage | None: ...
 
@@ -271,7 +283,7 @@ def levers(parts: Iterable[str], direction: Direction = "any") -> tuple[Lever, .
     return tuple(Lever(part=part, property="r_ohm", direction=direction) for part in parts)
 
 
-def where_code(figure: Figure, codes: Figure, wanted: tuple[int, ...], otherwise: float) -> Figure:
+def where_code(figure: Figure, codes: Figure, wanted: tuple[float, ...], otherwise: float) -> Figure:
     """`figure` in the scenarios in which the coded figure has one of the `wanted` codes, `otherwise` (which should
     pass) in the others, nan where the code is unknown; both (S, 1)."""
     coded = np.asarray(codes.values, dtype=np.float64)

@@ -46,28 +46,28 @@ def _rests(
             f"what {stage.id} is for: it {words}, and no signal path through it was found",
             "[[port]] entries where the signal enters and leaves, or an [[accepted]] entry",
         )
+    terms = board.terms(stage.id)
+    across, drive, current = terms.symbols
     turn = tuple(dict.fromkeys((*turned, *board.bias_parts(stage.id))))
     return [
         Evidence(
             check=check,
             subject=(stage.id, *turn)[:2],
-            message=f"{stage.id} {words}: VCE {{vce}}, VBE {{vbe}}, IC {{ic}}",
-            figures={name: board.ask(f"{name}_{unit}", stage.id) for name, unit in _SHOWN},
+            message=f"{stage.id} {words}: {across} {{across}}, {drive} {{drive}}, {current} {{current}}",
+            figures={name: board.ask(getattr(terms, name), stage.id) for name in ("across", "drive", "current")},
             levers=levers(turn),
             goal=goal,
         )
     ]
 
 
-_SHOWN = (("vce", "v"), ("vbe", "v"), ("ic", "a"))
-
-
 class SaturatedAtRest(Rule[Stage]):
     """IC RC exceeds what the supply leaves: the collector sits at the emitter, and one half of the signal
     is gone.
 
-    Saturated: VBC > 0 and IC/IB under 0.9 of its value at VBC = 0 (certified operating point). Switches
-    rest so on purpose and are not asked. A stage that merely comes close is judged by its swing, not here.
+    Saturated: VBC > 0 and IC/IB under 0.9 of its value at VBC = 0 (certified operating point). A
+    field-effect transistor: VDS under the overdrive VGS - VTH, the ohmic region. Switches rest so on
+    purpose and are not asked. A stage that merely comes close is judged by its swing, not here.
     """
 
     id = "saturated-at-rest"
@@ -92,10 +92,12 @@ class SaturatedAtRest(Rule[Stage]):
         """One check of the headroom, wherever the device is not cut off or reversed."""
         headroom = board.ask("headroom_v", subject.id)
         region = board.ask("region_code", subject.id)
-        check = require(where_code(headroom, region, (0, 1), inf), "at least", limits["headroom_v"])
+        terms = board.terms(subject.id)
+        asked = (board.region_code("active"), board.region_code(terms.on))
+        check = require(where_code(headroom, region, asked, inf), "at least", limits["headroom_v"])
         goal = require(headroom, "at least", _ROOM)
-        at_collector = board.resistors_at(subject.id, "collector")
-        return _rests(board, subject, check, goal, "rests in saturation", at_collector)
+        words = "rests in saturation" if terms.on == "saturated" else "rests in the ohmic region"
+        return _rests(board, subject, check, goal, words, board.resistors_at(subject.id, "collector"))
 
 
 class CutOffAtRest(Rule[Stage]):
@@ -126,11 +128,10 @@ class CutOffAtRest(Rule[Stage]):
 
     def judge(self, board: Board, subject: Stage, limits: Mapping[str, Bound]) -> Iterable[Evidence]:
         """One check of the collector current where the region is cut-off."""
-        current = magnitude(board.ask("ic_a", subject.id))
-        check = require(
-            where_code(current, board.ask("region_code", subject.id), (2,), inf), "at least", limits["ic_a"]
-        )
-        vce = board.ask("vce_v", subject.id)
+        terms, off = board.terms(subject.id), (board.region_code("cut-off"),)
+        current = magnitude(board.ask(terms.current, subject.id))
+        check = require(where_code(current, board.ask("region_code", subject.id), off, inf), "at least", limits["ic_a"])
+        vce = board.ask(terms.across, subject.id)
         goal = require(vce, "at most", Bound.at(_DRAWN_DOWN * abs(vce.nominal), "V", "a quarter for the load"))
         return _rests(board, subject, check, goal, "is cut off at rest", ())
 
@@ -139,8 +140,9 @@ class ReverseActive(Rule[Stage]):
     """Collector and emitter are exchanged, or their rails are: the device runs backwards with a current
     gain of a few, and its emitter junction takes the reverse voltage that it breaks down under at 5 to 7 V.
 
-    Reverse-active: base-collector junction forward, base-emitter junction not. A muting transistor used
-    backwards on purpose looks the same; accept it.
+    Reverse-active: base-collector junction forward, base-emitter junction not. A MOSFET the wrong way round
+    conducts through its body diode, whatever its gate does. A muting transistor used backwards on purpose
+    looks the same; accept it.
     """
 
     id = "reverse-active"
@@ -155,13 +157,14 @@ class ReverseActive(Rule[Stage]):
         """One check of the collector-emitter voltage where the region is reverse-active; no value mends
         it.
         """
-        vce = board.ask("vce_v", subject.id)
-        check = require(where_code(vce, board.ask("region_code", subject.id), (3,), inf), "at least", _FORWARD)
+        terms = board.terms(subject.id)
+        backwards = (board.region_code(terms.backwards),)
+        sense = board.ask(terms.sense, subject.id)
+        check = require(where_code(sense, board.ask("region_code", subject.id), backwards, inf), "at least", _FORWARD)
+        words = f"runs backwards, as with {terms.output} and {terms.common} exchanged"
         return [
             replace(evidence, subject=(subject.id,), levers=())
-            for evidence in _rests(
-                board, subject, check, None, "runs backwards, as with collector and emitter exchanged", ()
-            )
+            for evidence in _rests(board, subject, check, None, words, ())
         ]
 
 
@@ -253,14 +256,14 @@ class BetaDependentBias(Rule[Stage]):
 
 
 class NoBasePath(Rule[Stage]):
-    """A base that touches capacitors alone gets no direct current: leakage decides where it drifts to.
+    """A base or gate that touches capacitors alone gets no direct current: leakage decides where it drifts to.
 
     Structure: a path of resistors, windings, sources or junctions other than the device's own from the base
     to a net of known voltage. A pin of a circuit that has no model may supply it; then it cannot tell.
     """
 
     id = "no-base-path"
-    summary = "every base has a path for its direct current"
+    summary = "every base and gate has a path for its direct current"
     theme = "bias"
     weight = "must-fix"
     bench = "the stage works for a moment after touching the base, then drifts to a rail"
@@ -273,6 +276,6 @@ class NoBasePath(Rule[Stage]):
             Evidence(
                 check=require(board.ask("base_dc_path", subject.id), "equals", _PATH),
                 subject=(subject.id,),
-                message=f"the base of {subject.id} has no path for direct current",
+                message=f"the {board.terms(subject.id).control} of {subject.id} has no path for direct current",
             )
         ]

@@ -24,7 +24,7 @@ class BaseNotGrounded(Rule[Stage]):
         "Zin = re' + Zbase/(beta + 1); Bell, 5th ed., examples 6.10 and 6.11 (27.5 ohm, 133 "
         "with the capacitor; 391 ohm, 8.6 without; as transcribed)"
     )
-    applies = Applies(kind="stage", configurations=("common-base",))
+    applies = Applies(kind="stage", configurations=("common-base", "common-gate"))
     limits = (
         Limit(
             name="loss_db",
@@ -43,9 +43,8 @@ class BaseNotGrounded(Rule[Stage]):
             Evidence(
                 check=require(board.ask("base_ground_loss_db", subject.id), "at most", limits["loss_db"]),
                 subject=(*bypass[:2], subject.id),
-                message=f"the base of {subject.id} is not at signal ground: {{value}} of gain is lost "
-                f"at {{frequency}}, at "
-                "most {limit} wanted",
+                message=f"the {board.terms(subject.id).control} of {subject.id} is not at signal ground: {{value}} of "
+                "gain is lost at {frequency}, at most {limit} wanted",
                 levers=tuple(Lever(part=part, property="c_f", direction="up") for part in bypass),
             )
         ]

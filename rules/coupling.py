@@ -77,6 +77,8 @@ class BypassLoss(Rule[CapacitorUse]):
         configurations=(
             "common-emitter",
             "common-collector",
+            "common-source",
+            "common-drain",
             "phase-splitter",
             "current-source",
             "unclassified",

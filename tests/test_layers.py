@@ -39,7 +39,7 @@ LAYERS: tuple[tuple[str, ...], ...] = (
 
 LEVEL = {room: level for level, rooms in enumerate(LAYERS) for room in rooms}
 REPORT_MAY_USE = {"record", "shape", "words", "quantity", "trouble", "report"}
-RUN_TIME_PACKAGES = {"numpy", "click", "sexpdata", "scipy"}
+RUN_TIME_PACKAGES = {"numpy", "click", "scipy"}
 """scipy only inside a function, for the sparse solution of large islands."""
 
 

@@ -13,8 +13,12 @@ from checker.setup import Setup
 DAY = datetime.date(2025, 1, 1)
 MODELS = """.model QN NPN(IS=1e-14 BF=200 VAF=100 TF=0.4n CJE=8p CJC=4p RB=10)
 .model QP PNP(IS=1e-14 BF=200 VAF=100 TF=0.4n CJE=8p CJC=4p RB=10)
+.model JN NJF(VTO=-3 BETA=1m LAMBDA=0.01 IS=1e-14 CGS=4p CGD=3p)
+.model JP PJF(VTO=-3 BETA=1m LAMBDA=0.01 IS=1e-14 CGS=4p CGD=3p)
+.model MN NMOS(VTO=2 KP=50m LAMBDA=0.01 W=1 L=1 CGSO=30p CGDO=5p)
+.model MP PMOS(VTO=-2 KP=50m LAMBDA=0.01 W=1 L=1 CGSO=30p CGDO=5p)
 """
-"""Two invented transistors of equal figures."""
+"""Invented transistors, those of one kind of equal figures."""
 
 
 def intent_text(
@@ -57,13 +61,16 @@ def outcome_from(netlist: str, intent: str = "", *, title: bool = True) -> Outco
         return check_board(written(Path(folder), text, intent), None, today=DAY)
 
 
+OTHER = {"QN": "QP", "QP": "QN", "JN": "JP", "JP": "JN", "MN": "MP", "MP": "MN"}
+
+
 def mirrored(netlist: str) -> str:
-    """The same circuit with every polarity reversed: NPN for PNP, and sources, diodes turned round."""
+    """The same circuit with every polarity reversed: NPN for PNP, N channel for P, and sources, diodes turned round."""
     out = []
     for line in netlist.strip().splitlines():
         words = line.split()
         if words[0][0] in "VID" and not words[0].startswith("VIN"):
             words[1], words[2] = words[2], words[1]
-        words = [{"QN": "QP", "QP": "QN"}.get(word, word) for word in words]
+        words = [OTHER.get(word, word) for word in words]
         out.append(" ".join(words))
     return "\n".join(out) + "\n"

@@ -7,7 +7,7 @@ from typing import Final
 
 from checker.cards.types import Card
 from checker.circuit.assemble import assemble
-from checker.circuit.devices import add_bipolar, add_diode, add_fet, bare_fact, leave_out
+from checker.circuit.devices import add_bipolar, add_diode, add_fet
 from checker.circuit.draft import Draft
 from checker.circuit.drives import add_drives
 from checker.circuit.elements import (
@@ -22,6 +22,7 @@ from checker.circuit.elements import (
     add_voltage,
     two_ends,
 )
+from checker.circuit.entry import bare_fact, leave_out
 from checker.circuit.grounds import find_ground
 from checker.circuit.identity import BIPOLAR, DIODE, card_by_value, intended_card
 from checker.circuit.notes import Notes

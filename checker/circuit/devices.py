@@ -1,30 +1,39 @@
-"""Bipolars and diodes in the draft, with ratings and gain spread; what is missing where one cannot be
-solved."""
+"""Bipolars, field-effect transistors and diodes in the draft; what is missing where one cannot be solved."""
 
 from __future__ import annotations
 
-import math
 import re
-from collections.abc import Iterable, Mapping, Sequence
-from dataclasses import fields, replace
-from typing import Final, Literal
+from collections.abc import Iterable
+from typing import Final
 
-from checker.cards.types import Ratings
-from checker.circuit.draft import Draft, DraftDevice
-from checker.circuit.identity import BIPOLAR, DIODE, Identity, card_by_value, generic, hints_of, identify, special
-from checker.circuit.models import Parameters, bipolar_parameters, diode_parameters
+from checker.circuit.draft import Draft
+from checker.circuit.entry import leave_out, place_device
+from checker.circuit.identity import (
+    BIPOLAR,
+    DIODE,
+    FET,
+    JUNCTION_FET,
+    Identity,
+    card_by_value,
+    generic,
+    identify,
+    polarity_of,
+    special,
+)
+from checker.circuit.models import (
+    Parameters,
+    bipolar_parameters,
+    diode_parameters,
+    jfet_parameters,
+    mosfet_parameters,
+)
 from checker.circuit.parts import symbol_name
-from checker.circuit.pins import Unit, kicad_terminals, letter_of, spice_terminals
-from checker.circuit.types import Agreement, PartFact, PartKind
+from checker.circuit.pins import Unit, kicad_terminals, spice_terminals
 from checker.netlist.types import Part
 from checker.pattern import lazy
 from checker.quantity.parse import parse_engineering
 from checker.trouble import NotAQuantity
 
-ASSUMED_SPREAD: Final = (0.5, 2.0)
-"""Gain limits as multiples of the model's gain, where no card gives a gain group (common practice, no
-source)."""
-_NO_FET: Final = ("a bipolar model", "field-effect transistors are not solved yet")
 _SUPPRESSOR: Final = lazy(
     r"(?:(?P<standoff>SM[ABC]J|SMF|SA|[35]KP)|(?:P[46](?:KE|SM[AB])|1[.,]5(?:KE|SMC)))(?P<volts>\d+(?:\.\d+)?)A?(?![\dC])",
     re.IGNORECASE,
@@ -32,6 +41,7 @@ _SUPPRESSOR: Final = lazy(
 """One-way suppressors by type number, after their stand-off or their breakdown voltage (common practice)."""
 _ABOVE_STANDOFF: Final = 1.17
 """Nominal breakdown over stand-off voltage of such parts: their tables give 1.11 to 1.23 (from memory)."""
+_MODEL_WANTED: Final = 'a .model, a known part number, or [[part]] card = "…"'
 _VOLTS: Final = lazy(r"\d+(?:\.\d+)?V\d*|\d+[.,]?\d* ?V", re.IGNORECASE)
 
 
@@ -42,7 +52,7 @@ def add_bipolar(draft: Draft, part: Part) -> None:
     if known is None or lacking is not None:
         datum, supply = lacking or (
             f"model of {part.ref}",
-            'a .model, a known part number, or [[part]] card = "…"',
+            _MODEL_WANTED,
         )
         leave_out(draft, part, "bipolar", datum, supply)
         return
@@ -59,7 +69,7 @@ def add_bipolar(draft: Draft, part: Part) -> None:
         for inner, each in _inside(draft, part, unit, known):
             order = (inner.nets["C"], inner.nets["B"], inner.nets["E"], _substrate(draft, unit))
             own = parameters if each is known else bipolar_parameters(each.written, area=1.0, count=1.0)
-            _place(draft, "bipolar", part, inner, order, each, own)
+            place_device(draft, "bipolar", part, inner, order, each, own)
 
 
 def _inside(draft: Draft, part: Part, unit: Unit, known: Identity) -> Iterable[tuple[Unit, Identity]]:
@@ -96,38 +106,52 @@ def add_diode(draft: Draft, part: Part) -> None:
     parameters = diode_parameters(written, area=part.params.get("area", 1.0), count=part.params.get("m", 1.0))
     _tell_unused(draft, known, parameters)
     for unit in units:
-        _place(draft, "diode", part, unit, (unit.nets["A"], unit.nets["K"]), known, parameters)
+        place_device(draft, "diode", part, unit, (unit.nets["A"], unit.nets["K"]), known, parameters)
 
 
 def add_fet(draft: Draft, part: Part) -> None:
-    """Name a field-effect transistor as unsolved, unless its part number is a bipolar's."""
+    """Put a field-effect transistor (or each of a dual) in the draft, or say what is missing."""
     card = card_by_value(part)
     if card is not None and card.kind in BIPOLAR:
         draft.notes.add("models", f"{card.name} is a bipolar; the part number is used, not the symbol", part.ref)
         add_bipolar(draft, part)
         return
-    leave_out(draft, part, "fet", *_NO_FET)
+    known = identify(draft, part, FET)
+    lacking = _lacking_fet(part, known)
+    if known is None or lacking is not None:
+        leave_out(draft, part, "fet", *(lacking or (f"model of {part.ref}", _MODEL_WANTED)))
+        return
+    units = _terminals(draft, part, "fet", known)
+    if not units:
+        leave_out(draft, part, "fet", f"pin order of {part.ref}", "pin names D, G, S on the symbol, or Sim.Pins")
+        return
+    count = part.params.get("m", 1.0)
+    if known.kind in JUNCTION_FET:
+        parameters = jfet_parameters(known.written, area=part.params.get("area", 1.0), count=count)
+    else:
+        polarity = polarity_of(known.kind)
+        size = part.params if known.model is not None else {}
+        parameters = mosfet_parameters(known.written, polarity=polarity, size=size, count=count)
+    _tell_unused(draft, known, parameters)
+    for unit in units:
+        order = (unit.nets["D"], unit.nets["G"], unit.nets["S"])
+        if known.kind in JUNCTION_FET:
+            place_device(draft, "jfet", part, unit, order, known, parameters)
+        else:
+            body = unit.nets.get("B", unit.nets["S"])
+            place_device(draft, "mosfet", part, unit, (*order, body), known, parameters)
 
 
-def leave_out(draft: Draft, part: Part, kind: PartKind, datum: str, supply: str, *, blocks_dc: bool = True) -> None:
-    """Record a part that cannot be solved; a FET's gate is taken as drawing no current."""
-    nets = [pin.net for pin in part.pins if kind != "fet" or letter_of(pin.function)[0] != "G"]
-    if kind == "fet" and draft.netlist.format == "spice":
-        nets = [pin.net for place, pin in enumerate(part.pins) if place != 1]
-    draft.loose(part.ref, nets, datum, supply, blocks_dc=blocks_dc)
-    draft.foreign.update(draft.net(pin.net) for pin in part.pins)
-    draft.facts[part.ref] = bare_fact(draft, part, kind)
-
-
-def bare_fact(draft: Draft, part: Part, kind: PartKind) -> PartFact:
-    """A fact of which only pins and place are known; pins go by number."""
-    return PartFact(
-        ref=part.ref,
-        kind=kind,
-        terminals={pin.number: draft.net(pin.net) for pin in part.pins},
-        origin=part.origin,
-        footprint=part.footprint,
-    )
+def _lacking_fet(part: Part, known: Identity | None) -> tuple[str, str] | None:
+    """(datum, supply) where a part is of a sort that neither Shichman-Hodges model describes."""
+    if known is None:
+        text = f"{part.description} {symbol_name(part)} {part.value}"
+        igbt = re.search(r"\bIGBT|insulated", text, re.IGNORECASE)
+        return (f"a model of the IGBT {part.ref}", "nothing: such parts are not modelled") if igbt else None
+    if known.kind not in FET:
+        return f"a field-effect model of {part.ref}", _MODEL_WANTED
+    level = known.model.params.get("level", 1.0) if known.model is not None else 1.0
+    return None if level == 1.0 else (f"a level-1 model of {part.ref}", "a .model of level 1, or a known part number")
 
 
 def _lacking(draft: Draft, part: Part, known: Identity | None) -> tuple[str, str] | None:
@@ -182,79 +206,3 @@ def _tell_unused(draft: Draft, known: Identity, parameters: Parameters) -> None:
     if known.model is not None and parameters.unused:
         text = f".model {known.model.name}: not used: {', '.join(parameters.unused)}"
         draft.notes.add("models", text)
-
-
-def _place(
-    draft: Draft,
-    kind: Literal["bipolar", "diode"],
-    part: Part,
-    unit: Unit,
-    nets: Sequence[str],
-    known: Identity,
-    parameters: Parameters,
-) -> None:
-    """Enter one device and its fact."""
-    name = part.ref + unit.suffix
-    ratings = _ratings(draft, part, known)
-    device = DraftDevice(
-        nets=tuple(draft.net(net) for net in nets),
-        polarity=-1.0 if known.kind == "pnp" else 1.0,
-        params=parameters.values,
-        tnom_k=parameters.tnom_k,
-        rth_kpw=math.nan if ratings.rth_ja_kpw is None else ratings.rth_ja_kpw,
-    )
-    draft.place(kind, name, device)
-    used = set(device.nets)
-    gain_min, gain_max = _gain(draft, name, known, parameters.values)
-    draft.facts[name] = PartFact(
-        ref=name,
-        kind="bipolar" if known.kind in BIPOLAR else "diode",
-        terminals={letter: draft.net(net) for letter, net in unit.nets.items() if draft.net(net) in used},
-        origin=part.origin,
-        card=known.card,
-        model_source=known.source,
-        ratings=ratings,
-        gain_min=gain_min,
-        gain_max=gain_max,
-        footprint=part.footprint,
-        agreement=_agreement(draft, part, unit, known),
-    )
-
-
-def _agreement(draft: Draft, part: Part, unit: Unit, known: Identity) -> Agreement:
-    """Whether symbol, number and package fit; asked once a part, and only of exports that show pads and packages."""
-    if draft.netlist.format == "spice":
-        text = "pin order, polarity and package of parts are not checked: SPICE text shows neither pads nor packages"
-        draft.notes.add("pins", text)
-        return Agreement(judged=False)
-    inner = known.card is not None and known.card.name.endswith("(driver)")
-    again = unit.suffix not in ("", ".A") and not (known.card is not None and known.card.driver)
-    if known.kind not in BIPOLAR or inner or again:
-        return Agreement(judged=False)
-    from checker.circuit.conflicts import agreement_of
-
-    kinds = tuple((who, kind) for who, kind in hints_of(part) if kind in BIPOLAR and who != "the description")
-    return agreement_of(part, known.card, kinds)
-
-
-def _gain(draft: Draft, name: str, known: Identity, values: Mapping[str, float]) -> tuple[float | None, float | None]:
-    """Limits of the current gain of this type, from the card, else assumed around the model's."""
-    if known.kind not in BIPOLAR:
-        return None, None
-    stated = None if known.card is None or known.card.assumed else known.card
-    low = values["bf"] * ASSUMED_SPREAD[0] if stated is None or stated.gain_min is None else stated.gain_min
-    high = values["bf"] * ASSUMED_SPREAD[1] if stated is None or stated.gain_max is None else stated.gain_max
-    if stated is None or stated.gain_min is None or stated.gain_max is None:
-        times = f"{ASSUMED_SPREAD[0]:g} and {ASSUMED_SPREAD[1]:g} times"
-        draft.notes.add("tolerances", f"unstated limits of current gain taken as {times} the model's", name)
-    return low, high
-
-
-def _ratings(draft: Draft, part: Part, known: Identity) -> Ratings:
-    """The card's ratings, overridden by the intent's."""
-    ratings = known.card.ratings if known.card is not None else Ratings()
-    said = draft.said(part.ref)
-    if said is None:
-        return ratings
-    names = {entry.name for entry in fields(Ratings)}
-    return replace(ratings, **{name: value for name, value in said.ratings.items() if name in names})

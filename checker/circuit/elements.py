@@ -8,8 +8,8 @@ from dataclasses import replace
 from typing import Final
 
 from checker.cards.types import Ratings
-from checker.circuit.devices import bare_fact
 from checker.circuit.draft import Draft, Table
+from checker.circuit.entry import bare_fact
 from checker.circuit.types import Change, PartFact, PartKind, Scenario
 from checker.circuit.values import part_value
 from checker.netlist.types import Part

@@ -18,6 +18,8 @@ from checker.shape import frozen
 from checker.trouble import InputTrouble
 
 BIPOLAR: Final[tuple[CardKind, ...]] = ("npn", "pnp")
+JUNCTION_FET: Final[tuple[CardKind, ...]] = ("njf", "pjf")
+FET: Final[tuple[CardKind, ...]] = (*JUNCTION_FET, "nmos", "pmos")
 DIODE: Final[tuple[CardKind, ...]] = ("diode", "zener", "led")
 _MODEL_KIND: Final[Mapping[str, CardKind]] = {
     "npn": "npn",
@@ -29,6 +31,10 @@ _MODEL_KIND: Final[Mapping[str, CardKind]] = {
     "nmos": "nmos",
     "pmos": "pmos",
 }
+_FET_WORD: Final = lazy(
+    r"(?<![A-Z])([NP])[-_ ]?(?:channel|ch)?(?:[\s-]+[\w-]+){0,4}?[\s_-]*(JFET|JF|D?MOS|FET)", re.IGNORECASE
+)
+_FET_WORD_LAST: Final = lazy(r"(JFET|MOS(?:FET)?|FET)_?([NP])(?![A-Z])", re.IGNORECASE)
 _WORD: Final = lazy(r"NPN|PNP", re.IGNORECASE)
 _JIS: Final = lazy(r"Q?2S([ABCD])\d", re.IGNORECASE)
 """2SA and 2SB are PNP, 2SC and 2SD NPN (JIS C 7012, from memory)."""
@@ -90,7 +96,7 @@ def card_by_value(part: Part) -> Card | None:
 
 
 def identify(draft: Draft, part: Part, family: Collection[CardKind]) -> Identity | None:
-    """Model and card of a bipolar or diode; None where not even the kind is known.
+    """Model and card of a semiconductor; None where not even the kind is known.
 
     `.model` outranks the card for the model, never for ratings. The value outranks the symbol. Where no card
     fits, the generic card of the kind stands in, marked `assumed`.
@@ -113,9 +119,25 @@ def generic(draft: Draft, part: Part, kind: CardKind) -> Identity:
     """The generic card of a kind in place of an unknown part, noted."""
     card = replace(generic_card(kind), assumed=True)
     name = part.model or part.value
-    shown = kind.upper() if kind in BIPOLAR else "LED" if kind == "led" else kind
+    shown = kind.upper() if kind in (*BIPOLAR, *FET) else "LED" if kind == "led" else kind
     draft.notes.add("models", f"no card for {name!r}; generic {shown} figures used", part.ref)
     return Identity(kind=kind, card=card, source=f"generic {shown} card")
+
+
+def polarity_of(kind: CardKind) -> float:
+    """-1 for PNP and P channel, else +1."""
+    return -1.0 if kind in ("pnp", "pjf", "pmos") else 1.0
+
+
+def _fet_word(text: str) -> CardKind | None:
+    """The kind of field-effect transistor that a text names: "Q_NMOS_GDS", "N-channel JFET", "MOSFET_P"."""
+    found, last = _FET_WORD.search(text), _FET_WORD_LAST.search(text)
+    if found is None and last is None:
+        return None
+    channel, sort = found.groups() if found is not None else last.groups()[::-1]  # type: ignore[union-attr]
+    if channel.upper() == "N":
+        return "njf" if sort.upper().startswith("J") else "nmos"
+    return "pjf" if sort.upper().startswith("J") else "pmos"
 
 
 def special(part: Part) -> str | None:
@@ -137,7 +159,10 @@ def hints_of(part: Part) -> list[tuple[str, CardKind]]:
     for who, text in texts:
         word = _WORD.search(text)
         japanese = _JIS.match(text)
-        if word is not None:
+        fet = _fet_word(text)
+        if fet is not None:
+            found.append((who, fet))
+        elif word is not None:
             found.append((who, "npn" if word[0].upper() == "NPN" else "pnp"))
         elif japanese is not None:
             found.append((who, "pnp" if japanese[1].upper() in "AB" else "npn"))

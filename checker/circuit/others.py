@@ -6,9 +6,9 @@ from __future__ import annotations
 import re
 from typing import Final
 
-from checker.circuit.devices import bare_fact
 from checker.circuit.draft import Draft, LoosePin
 from checker.circuit.elements import two_ends
+from checker.circuit.entry import bare_fact
 from checker.circuit.types import Unknown
 from checker.netlist.types import Part
 
@@ -57,18 +57,13 @@ def add_connector(draft: Draft, part: Part) -> None:
     """A connector without a defined impedance: its pins are open, noted where they reach elements."""
     draft.facts[part.ref] = bare_fact(draft, part, "connector")
     draft.plain_connectors.append(part)
-    _pins(draft, part, "connector", "", "")
+    _pins(draft, part, connector=True)
 
 
 def add_unmodelled(draft: Draft, part: Part) -> None:
     """A part without a model; which of its pins matter is decided once the board is complete."""
     draft.facts[part.ref] = bare_fact(draft, part, "unmodelled")
-    name = part.value or part.model
-    shown = f"{part.ref} ({name})" if name else part.ref
-    supply = 'its level in a [[state]], e.g. pins = {{ "{pin}" = "2.5 V" }}, or its net under [rails]'
-    if part.letter.upper() in _COILS or len({pin.net for pin in part.pins}) == 2:
-        supply = f'[[part]] ref = "{part.ref}" with resistance, inductance or capacitance'
-    _pins(draft, part, "", f"what {shown} does at {{pin}}", supply)
+    _pins(draft, part, connector=False)
 
 
 def add_controlled(draft: Draft, part: Part) -> None:
@@ -87,19 +82,25 @@ def add_line(draft: Draft, part: Part) -> None:
     draft.loose(part.ref, nets, f"a solved model of {part.ref}", "transmission lines are not solved yet")
 
 
-def _pins(draft: Draft, part: Part, kind: str, datum: str, supply: str) -> None:
+def _pins(draft: Draft, part: Part, *, connector: bool) -> None:
+    name = part.value or part.model
+    shown = f"{part.ref} ({name})" if name else part.ref
+    whole = part.letter.upper() in _COILS or len({pin.net for pin in part.pins}) == 2
     for pin in part.pins:
-        label = f"{part.ref}.{pin.number}"
-        if kind != "connector" and not _is_safe(pin.kind):
+        if not connector and not _is_safe(pin.kind):
             draft.foreign.add(draft.net(pin.net))
+        level = (
+            f'its level in a [[state]], e.g. pins = {{ "{part.ref}.{pin.number}" = "2.5 V" }}, or its net under [rails]'
+        )
+        kind = "passive" if part.letter.upper() in _NO_INPUTS else pin.kind
         draft.loose_pins.append(
             LoosePin(
                 part=part.ref,
                 pin=pin.number,
                 net=draft.net(pin.net),
-                kind=kind or ("passive" if part.letter.upper() in _NO_INPUTS else pin.kind),
-                datum=datum.format(pin=f"pin {pin.number}"),
-                supply=supply.format(pin=label),
+                kind="connector" if connector else kind,
+                datum=f"what {shown} does at pin {pin.number}",
+                supply=f'[[part]] ref = "{part.ref}" with resistance, inductance or capacitance' if whole else level,
             )
         )
 

@@ -29,11 +29,13 @@ _WORDS: Final = {
 }
 _FUNCTION: Final = lazy(r"([A-Z]+?)[_ ]?(\d*)")
 _COMPOUND: Final = lazy(r"(?:[AK]\d){2}")
-_SUFFIX: Final = lazy(r"_([BCES]{3,4})$", re.IGNORECASE)
-_ORDER: Final = {"bipolar": "CBE", "diode": "AK"}
+_SUFFIX: Final = lazy(r"_([BCES]{3,4}|[DGS]{3}|[DGSB]{4})$", re.IGNORECASE)
+_FOURTH: Final = {"bipolar": "S", "fet": "B", "diode": ""}
+"""Substrate or body, where an element names it."""
+_ORDER: Final = {"bipolar": "CBE", "fet": "DGS", "diode": "AK"}
 """Terminal order of SPICE elements."""
 _TERMINALS: Final = frozenset("BCEGDS")
-_WANTED: Final = {"bipolar": frozenset("CBE"), "diode": frozenset("AK")}
+_WANTED: Final = {"bipolar": frozenset("CBE"), "fet": frozenset("DGS"), "diode": frozenset("AK")}
 
 
 @frozen
@@ -45,8 +47,8 @@ class Unit:
 
 
 def spice_terminals(part: Part, kind: str) -> tuple[Unit, ...]:
-    """Terminals of a SPICE element by position: C B E (S), or A K; empty where pins are missing."""
-    letters = _ORDER[kind] + ("S" if kind == "bipolar" else "")
+    """Terminals of a SPICE element by position: C B E (S), D G S (B), or A K; empty where pins are missing."""
+    letters = _ORDER[kind] + _FOURTH[kind]
     nets = {letter: pin.net for letter, pin in zip(letters, part.pins, strict=False)}
     return (Unit(suffix="", nets=nets),) if _WANTED[kind] <= nets.keys() else ()
 
@@ -54,7 +56,7 @@ def spice_terminals(part: Part, kind: str) -> tuple[Unit, ...]:
 def kicad_terminals(part: Part, kind: str, card: Card | None, notes: Notes) -> tuple[Unit, ...]:
     """Terminals of a schematic part; empty where nothing tells them apart.
 
-    `kind` is "bipolar" or "diode". A disagreement between symbol and card about the pads is noted.
+    `kind` is "bipolar", "fet" or "diode". A disagreement between symbol and card about the pads is noted.
     """
     wanted = _WANTED[kind]
     units = () if kind == "diode" and len(part.pins) > 2 else _by_function(part, wanted) or _by_number(part, wanted)

@@ -42,7 +42,9 @@ class _Groups:
             self._join((wire.second,), live=wire.value != 0.0)
         for kind, devices in draft.devices.items():
             for name, device in devices.items():
-                self._join(device.nets[:3], device=name if kind in TRANSISTOR_FAMILIES else "")
+                # The gate of a MOSFET brings no current.
+                nets = device.nets[:3:2] if kind == "mosfet" else device.nets[:3]
+                self._join(nets, device=name if kind in TRANSISTOR_FAMILIES else "")
 
     def _root(self, net: str) -> str:
         while self._above.get(net, net) != net:

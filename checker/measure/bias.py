@@ -7,17 +7,24 @@ import numpy as np
 from checker.constants import ZERO_CELSIUS_K
 from checker.measure.bench import Bench, FloatArray
 from checker.measure.feeds import base_reach, require_not_fed
-from checker.measure.make import figure, first
+from checker.measure.make import figure, first, missing
 from checker.measure.registry import quantity
 from checker.quantity.figure import Figure
-from checker.stages.region import REGIONS, headroom_v, region_codes
+from checker.stages.region import REGIONS, headroom_v, is_reversed, region_codes
 from checker.trouble import CannotTell
 
-SOLVED = "certified operating point (Gummel-Poon, node equations)"
+SOLVED = "certified operating point (device and node equations)"
 
 
-def _table(bench: Bench, key: str, stage: str) -> FloatArray:
-    return bench.point.bipolar[key][:, bench.place(stage)]
+def _table(bench: Bench, key: str, stage: str, *, as_drawn: bool = False) -> FloatArray:
+    """A figure of the stage's device; with drain and source exchanged, as seen with their words exchanged too."""
+    table, place = bench.point.devices[bench.family(stage)], bench.place(stage)
+    values = table[key][:, place]
+    if key not in ("id_a", "vds_v", "vgs_v") or as_drawn:
+        return values
+    turned = is_reversed(bench.point, stage)
+    other = {"id_a": table["is_a"], "vds_v": -table["vds_v"], "vgs_v": table["vgs_v"] - table["vds_v"]}[key]
+    return np.where(turned, other[:, place], values)
 
 
 def require_bias(bench: Bench, stage: str) -> None:
@@ -28,11 +35,18 @@ def require_bias(bench: Bench, stage: str) -> None:
         raise CannotTell(datum=f"the operating point of {stage}", supply=reason)
 
 
+KINDS = {"bipolar": "a bipolar", "jfet": "a field-effect transistor", "mosfet": "a field-effect transistor"}
+
+
 def _plain(name: str, key: str, unit: str, meaning: str, formula: str) -> None:
     @quantity(name, unit, "stage", meaning)
     def measure(bench: Bench, stage: str) -> Figure:
         require_bias(bench, stage)
-        return figure(name, stage, _table(bench, key, stage), unit, formula=formula, source=SOLVED)
+        if key not in bench.point.devices[bench.family(stage)]:
+            return missing(name, stage, bench.size, unit, f"not applicable: {stage} is {KINDS[bench.family(stage)]}")
+        return figure(
+            name, stage, _table(bench, key, stage, as_drawn=name == "forward_v"), unit, formula=formula, source=SOLVED
+        )
 
 
 _plain("ic_a", "ic_a", "A", "collector current, into the terminal", "IC from the node equations")
@@ -40,7 +54,12 @@ _plain("ib_a", "ib_a", "A", "base current, into the terminal", "IB from the node
 _plain("vce_v", "vce_v", "V", "collector to emitter, times -1 for PNP", "VC - VE")
 _plain("vbe_v", "vbe_v", "V", "base to emitter, times -1 for PNP", "VB - VE")
 _plain("vbc_v", "vbc_v", "V", "base to collector, times -1 for PNP", "VB - VC")
-_plain("power_w", "power_w", "W", "dissipation at rest", "IC (VC - VE) + IB (VB - VE)")
+_plain("id_a", "id_a", "A", "drain current, into the terminal", "ID from the node equations")
+_plain("ig_a", "ig_a", "A", "gate current, into the terminal", "IG from the node equations")
+_plain("vds_v", "vds_v", "V", "drain to source, times -1 for P channel; never negative", "VD - VS")
+_plain("vgs_v", "vgs_v", "V", "gate to source, times -1 for P channel", "VG - VS")
+_plain("forward_v", "vds_v", "V", "drain to source as drawn, times -1 for P channel; negative: reversed", "VD - VS")
+_plain("power_w", "power_w", "W", "dissipation at rest", "sum of terminal currents times voltages")
 
 
 def _kept(bench: Bench, key: str) -> FloatArray:
@@ -52,7 +71,9 @@ def _kept(bench: Bench, key: str) -> FloatArray:
     return value
 
 
-@quantity("region_code", "", "stage", "0 active, 1 saturated, 2 cut-off, 3 reverse-active")
+@quantity(
+    "region_code", "", "stage", "index: active, saturated, cut-off, reverse-active, ohmic, body-, gate-conducting"
+)
 def region_code(bench: Bench, stage: str) -> Figure:
     """Region as an index into `REGIONS`, so that it can be compared over scenarios."""
     require_bias(bench, stage)
@@ -60,7 +81,13 @@ def region_code(bench: Bench, stage: str) -> Figure:
     if REGIONS[int(codes[0])] == "cut-off":
         # At rest means with everything connected: an open connector on the base leaves that undecided.
         require_not_fed(bench, stage, base_reach(bench, stage))
-    return figure("region_code", stage, codes, "", formula="|IC| against the shorted current, VBC, IC/IB")
+    return figure(
+        "region_code",
+        stage,
+        codes,
+        "",
+        formula="current against the shorted current, VBC and IC/IB, VDS against VGS - VTH",
+    )
 
 
 def region_words(bench: Bench, stage: str, scenario: int) -> str:
@@ -69,12 +96,15 @@ def region_words(bench: Bench, stage: str, scenario: int) -> str:
     return REGIONS[int(code)] if np.isfinite(code) else ""
 
 
-@quantity("headroom_v", "V", "stage", "how far VCE may fall before the stage saturates")
+@quantity("headroom_v", "V", "stage", "how far VCE or VDS may fall before the stage leaves the active region")
 def headroom(bench: Bench, stage: str) -> Figure:
-    """VBC at the edge of saturation minus VBC."""
+    """VBC at the edge of saturation minus VBC; |VDS| of the channel minus the overdrive."""
     require_bias(bench, stage)
     values = _kept(bench, "headroom")[:, bench.stage(stage).index]
-    return figure("headroom_v", stage, values, "V", formula="VBC where IC/IB is 0.9 of its value at VBC = 0, minus VBC")
+    formula = "|VDS| - (VGS - VTH)"
+    if bench.family(stage) == "bipolar":
+        formula = "VBC where IC/IB is 0.9 of its value at VBC = 0, minus VBC"
+    return figure("headroom_v", stage, values, "V", formula=formula)
 
 
 @quantity("tj_c", "degC", "stage", "junction temperature of the self-heated solution")

@@ -11,6 +11,7 @@ from numpy.typing import NDArray
 
 from checker.measure.bench import Bench
 from checker.measure.links import ComplexArray, Outer, cut_input, drive_of
+from checker.solve.frequencies import angular
 from checker.solve.response import Response
 
 FloatArray = NDArray[np.float64]
@@ -34,7 +35,24 @@ def source_voltage(bench: Bench, response: Response, outer: Outer) -> ComplexArr
         if port.emf >= 0:
             return np.ones(response.z.shape[:2], dtype=complex)
         return response.voltages(drive)[..., port.node]
-    return cut_input(response, outer).voltages(drive)[..., link.far_node]
+    cut = cut_input(response, outer)
+    if link.kind == "winding":
+        return _induced(cut, outer, cut.solution(drive))
+    return cut.voltages(drive)[..., link.far_node]
+
+
+def _induced(cut: Response, outer: Outer, solution: ComplexArray) -> ComplexArray:
+    """Open-circuit voltage of a winding over ground, (S, F) [V]: its far end's, and s M i of the windings beside it."""
+    c, link = cut.circuit, outer.input_link
+    own = c.inductors.names.index(link.part)
+    total = np.zeros(solution.shape[:2], dtype=complex)
+    for j, pair in enumerate(c.couplings.pair.tolist()):
+        if own in pair:
+            other = pair[1 - pair.index(own)]
+            mutual = c.couplings.k[:, j] * np.sqrt(c.inductors.value[:, own] * c.inductors.value[:, other])
+            total = total + mutual[:, None] * cut.current(c.inductors.names[other], 0, solution)
+    way = 1.0 if int(c.inductors.nodes[own, 0]) == link.stage_node else -1.0
+    return np.asarray(way * angular(cut.f_hz) * total + solution[..., link.far_node])
 
 
 def transfer(bench: Bench, response: Response, outer: Outer) -> ComplexArray:

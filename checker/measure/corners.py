@@ -18,6 +18,8 @@ from checker.measure.registry import Subject, quantity
 from checker.quantity.figure import Figure
 
 PER_DECADE = 8
+MOST_PASSES = 10
+"""Every other pass cuts the bracket in sixteen: five of them leave 1e-6 of a step of the grid."""
 Magnitude = Callable[[FloatArray], FloatArray]
 
 
@@ -38,6 +40,8 @@ def corners(
 ) -> tuple[float, float]:
     """Low and high corner [Hz]; nan for none. `on_grid`: |T| on `grid`; `ref` = |T| at `f_ref`."""
     level = ref / np.sqrt(2.0)
+    if not (np.isfinite(level) and level > 0.0):
+        return float("nan"), float("nan")
     out = []
     for step in (-1, 1):
         order = np.flatnonzero(grid < f_ref)[::-1] if step < 0 else np.flatnonzero(grid > f_ref)
@@ -52,18 +56,19 @@ def corners(
 
 
 def _refine(magnitude: Magnitude, inside: float, outside: float, level: float) -> float:
-    """Cut the bracket in sixteen, and again around where a cubic through the crossing says it is, until it is 1e-6
-    wide; then read the crossing off the chord."""
-    a, b = np.log(inside), np.log(outside)
-    x = np.linspace(a, b, 17)
-    while True:
+    """Cut the bracket in sixteen, and in turn around where a cubic through the crossing says it is, until it is 1e-6
+    wide; then read the crossing off the chord. Both ends are known: |T| of other batches differs in the last bits."""
+    x = np.linspace(np.log(inside), np.log(outside), 17)
+    for attempt in range(MOST_PASSES):
         y = np.log(magnitude(np.exp(x)) / level)
-        first = int(np.argmax(y < 0.0))
+        crossed = np.flatnonzero(~(y[1:-1] >= 0.0))
+        first = 1 + int(crossed[0]) if len(crossed) else 16
         a, b = x[first - 1], x[first]
         if abs(b - a) < 16.0 * CORNER_REL:
-            ya, yb = y[first - 1], y[first]
-            return float(np.exp(a + (b - a) * ya / (ya - yb)))
-        x = _closer(x, y, first)
+            break
+        x = _closer(x, y, first) if attempt % 2 == 0 else np.linspace(a, b, 17)
+    ya, yb = y[first - 1], y[first]
+    return float(np.exp(a + (b - a) * (np.clip(ya / (ya - yb), 0.0, 1.0) if ya != yb else 0.5)))
 
 
 def _at_zero(y: FloatArray, x: FloatArray) -> float:

@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from checker.measure.bench import Bench
-from checker.stages.terminals import CONTROL
+from checker.stages.terminals import CONTROL, WORDS
 from checker.trouble import CannotTell
 
 
@@ -28,10 +28,11 @@ def base_reach(bench: Bench, stage: str) -> set[int]:
 
 def require_not_fed(bench: Bench, stage: str, reached: set[int]) -> None:
     """Raises CannotTell where a connector or a part without a model touches one of these nets, and so may feed it."""
+    base = WORDS[bench.family(stage)][CONTROL]
     nets = {bench.circuit.nets[node] for node in reached if not bench.point.plan.is_known[node]}
     for unknown in bench.circuit.unknowns:
         if nets & set(unknown.nets):
-            raise CannotTell(f"what {unknown.ref} does at pin {unknown.pin} for the base of {stage}", unknown.supply)
+            raise CannotTell(f"what {unknown.ref} does at pin {unknown.pin} for the {base} of {stage}", unknown.supply)
     driven = {port.net for port in bench.ports if port.declared}
     for ref, fact in bench.facts.items():
         if fact.kind not in ("connector", "unmodelled"):
@@ -39,4 +40,4 @@ def require_not_fed(bench: Bench, stage: str, reached: set[int]) -> None:
         for pin, net in fact.terminals.items():
             if net in nets - driven:
                 supply = f'[[port]] part = "{ref}", pin = "{pin}", or a [[state]] that drives it'
-                raise CannotTell(f"what {ref} pin {pin} feeds to the base of {stage}", supply)
+                raise CannotTell(f"what {ref} pin {pin} feeds to the {base} of {stage}", supply)

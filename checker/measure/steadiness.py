@@ -108,6 +108,8 @@ def gain_limits(circuit: Circuit, device: str) -> tuple[float, float]:
 def gain_spread_ratio(bench: Bench, stage: str) -> Figure:
     """Each device moved alone, at the nominal temperature."""
     require_bias(bench, stage)
+    if bench.family(stage) != "bipolar":
+        return missing("gain_spread_ratio", stage, bench.size, "", "not applicable: no current gain")
     low, high, _ = _answered(bench, stage)
     ratio = np.maximum(high, low) / np.minimum(high, low)
     bf = gain_limits(bench.circuit, stage)
@@ -131,6 +133,8 @@ def gain_spread_ratio(bench: Bench, stage: str) -> Figure:
 def divider_shift(bench: Bench, stage: str) -> Figure:
     """|IC/IC(IB = 0) - 1| where a divider feeds the base; at nominal gain (scenario 0)."""
     require_bias(bench, stage)
+    if bench.family(stage) != "bipolar":
+        return missing("divider_shift", stage, bench.size, "%", "not applicable: no base current")
     if len(base_feeds(bench, stage)) < 2:
         return missing("divider_shift", stage, bench.size, "%", "not applicable: no divider feeds the base")
     _, _, ideal = _answered(bench, stage)

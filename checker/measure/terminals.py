@@ -23,8 +23,17 @@ from checker.measure.small_signal import r_e, r_pi
 from checker.quantity.figure import Figure
 from checker.shape import frozen
 from checker.solve.response import Response
-from checker.stages.terminals import COMMON, NUMBER
+from checker.stages.terminals import COMMON, CONTROL, NUMBER
 
+LIKE = {
+    "common-base": "common-base",
+    "common-emitter": "common-emitter",
+    "common-collector": "common-collector",
+    "common-gate": "common-base",
+    "common-source": "common-emitter",
+    "common-drain": "common-collector",
+}
+"""Configurations by the bipolar one of the same formulas."""
 MIDDLE = 1
 """f0 in the three frequencies of the bench's edges."""
 
@@ -135,57 +144,68 @@ def rule_of_thumb(bench: Bench, stage: str) -> dict[str, Figure]:
 
     Common practice, no source: common base gain rc/re', input re' || RE, output RC, current gain rc/RL; common emitter
     gain -rc/(re' + Ze), input (beta + 1)(re' + Ze) || RB, output RC; common collector gain r/(r + re'),
-    input (beta + 1)(re' + r) || RB, output (re' + RS/(beta + 1)) || RE.
+    input (beta + 1)(re' + r) || RB, output (re' + RS/(beta + 1)) || RE. Field-effect transistors: 1/gm for re', and no
+    current into the gate.
     """
     outer = outer_of(bench, stage)
-    label = bench.stage(stage).configuration
-    if region_words(bench, stage, 0) != "active":
+    label = LIKE.get(bench.stage(stage).configuration)
+    if region_words(bench, stage, 0) != "active" or isinstance(outer, str) or label is None:
         return {}
-    if isinstance(outer, str) or label not in ("common-base", "common-emitter", "common-collector"):
-        return {}
+    a = around(bench, outer)
+    if bench.family(stage) != "bipolar":
+        return _written(
+            stage, *_hands(label, a, 1.0 / _gm(bench, stage), np.inf, ("1/gm", "RD", "rd", "RS", "Zs", "RG"))
+        )
     re = first(r_e(bench, stage).values.real)
     beta = first(r_pi(bench, stage).values.real) * _gm(bench, stage)
-    a = around(bench, outer)
-    rc_words = (("rc", a.exit_loaded, "ohm"), ("re'", re, "ohm"))
-    if label == "common-base":
-        return _written(
-            stage,
-            ("voltage_gain", a.exit_loaded / re, "", "rc/re'", rc_words),
-            ("input_impedance_ohm", beside(re, a.emitter), "ohm", "re' || RE", (("RE", a.emitter, "ohm"), rc_words[1])),
-            ("output_impedance_ohm", a.exit_alone, "ohm", "RC", ()),
-            ("current_gain", a.exit_loaded / a.load, "", "rc/RL", (("RL", a.load, "ohm"), rc_words[0])),
-        )
-    if label == "common-emitter":
-        lead = re + a.emitter
-        words = (*rc_words, ("Ze", a.emitter, "ohm"))
-        return _written(
-            stage,
-            ("voltage_gain", -a.exit_loaded / lead, "", "-rc/(re' + Ze)", words),
-            _base_input(a, beta, lead),
-            ("output_impedance_ohm", a.exit_alone, "ohm", "RC", ()),
-        )
-    r = a.exit_loaded
-    back = beside(re + a.base / (beta + 1.0), a.exit_alone)
-    return _written(
-        stage,
-        ("voltage_gain", r / (r + re), "", "r/(r + re')", (("r", r, "ohm"), rc_words[1])),
-        _base_input(a, beta, re + r),
-        ("output_impedance_ohm", back, "ohm", "(re' + RS/(beta + 1)) || RE", (("RS", a.base, "ohm"),)),
-    )
+    return _written(stage, *_hands(label, a, re, beta, ("re'", "RC", "rc", "RE", "Ze", "RB")))
 
 
 Hand = tuple[str, float, str, str, tuple[tuple[str, float, str], ...]]
 
 
-def _base_input(a: Around, beta: float, lead: float) -> Hand:
-    z = beside((beta + 1.0) * lead, a.base_alone)
+def _hands(label: str, a: Around, re: float, beta: float, words: tuple[str, ...]) -> tuple[Hand, ...]:
+    """The hand formulas of a label; `re` resistance of the common terminal, `beta` current gain [inf at a gate]."""
+    own, big, small, tail, lead_word, _ = words
+    numbers = ((small, a.exit_loaded, "ohm"), (own, re, "ohm"))
+    if label == "common-base":
+        return (
+            ("voltage_gain", a.exit_loaded / re, "", f"{small}/{own}", numbers),
+            (
+                "input_impedance_ohm",
+                beside(re, a.emitter),
+                "ohm",
+                f"{own} || {tail}",
+                ((tail, a.emitter, "ohm"), numbers[1]),
+            ),
+            ("output_impedance_ohm", a.exit_alone, "ohm", big, ()),
+            ("current_gain", a.exit_loaded / a.load, "", f"{small}/RL", (("RL", a.load, "ohm"), numbers[0])),
+        )
+    if label == "common-emitter":
+        lead = re + a.emitter
+        formula = f"-{small}/({own} + {lead_word})"
+        return (
+            ("voltage_gain", -a.exit_loaded / lead, "", formula, (*numbers, (lead_word, a.emitter, "ohm"))),
+            _control_input(a, beta, lead, words),
+            ("output_impedance_ohm", a.exit_alone, "ohm", big, ()),
+        )
+    r = a.exit_loaded
+    back = beside(re + a.base / (beta + 1.0), a.exit_alone)
+    formula = f"{own} || {tail}" if np.isinf(beta) else f"({own} + RS/(beta + 1)) || {tail}"
     return (
-        "input_impedance_ohm",
-        z,
-        "ohm",
-        "(beta + 1)(re' + Ze) || RB",
-        (("beta", beta, ""), ("Ze + re'", lead, "ohm")),
+        ("voltage_gain", r / (r + re), "", f"r/(r + {own})", (("r", r, "ohm"), numbers[1])),
+        _control_input(a, beta, re + r, words),
+        ("output_impedance_ohm", back, "ohm", formula, () if np.isinf(beta) else (("RS", a.base, "ohm"),)),
     )
+
+
+def _control_input(a: Around, beta: float, lead: float, words: tuple[str, ...]) -> Hand:
+    own, _, _, _, lead_word, divider = words
+    if np.isinf(beta):
+        return ("input_impedance_ohm", a.base_alone, "ohm", divider, ())
+    z = beside((beta + 1.0) * lead, a.base_alone)
+    numbers = (("beta", beta, ""), (f"{lead_word} + {own}", lead, "ohm"))
+    return ("input_impedance_ohm", z, "ohm", f"(beta + 1)({own} + {lead_word}) || {divider}", numbers)
 
 
 def _written(stage: str, *hands: Hand) -> dict[str, Figure]:
@@ -204,18 +224,23 @@ def _gm(bench: Bench, stage: str) -> float:
     return first(gm(bench, stage).values.real)
 
 
-@quantity("base_ground_loss_db", "dB", "stage", "gain lost because the base of a common-base stage is not at ground")
+@quantity(
+    "base_ground_loss_db",
+    "dB",
+    "stage",
+    "gain lost because base or gate is not at ground",
+)
 def base_ground_loss(bench: Bench, stage: str) -> Figure:
     """|v(out)/v(in)| with the base grounded over the same in place; at both band edges and f0.
 
     From the input reference, so that a source of unknown impedance, taken as a current, hides nothing.
     """
     outer = outer_of(bench, stage)
-    if isinstance(outer, str) or bench.stage(stage).configuration != "common-base":
-        why = outer if isinstance(outer, str) else "not applicable: not a common-base stage"
+    if isinstance(outer, str) or LIKE.get(bench.stage(stage).configuration) != "common-base":
+        why = outer if isinstance(outer, str) else "not applicable: not a common-base or common-gate stage"
         return missing("base_ground_loss_db", stage, bench.size, "dB", why)
     response = bench.response(bench.edges_hz)
-    base = terminal_net(bench.circuit, (outer.entry[0], "base"))
+    base = int(bench.circuit.transistors.nodes[bench.stage(stage).index, CONTROL])
     drive, node = drive_of(bench, outer), outer.output_link.stage_node
     into = outer.input_link.stage_node
     held, drawn = response.grounded(base).voltages(drive), response.voltages(drive)

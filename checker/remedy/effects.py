@@ -19,7 +19,7 @@ from checker.remedy.candidates import Trial, drawn
 from checker.rulekit import CannotTell, Relation
 from checker.trouble import Unsolved
 
-MAIN = ("ic_a", "vce_v", "voltage_gain_db", "input_impedance_ohm", "low_corner_hz")
+MAIN = ("ic_a", "id_a", "vce_v", "vds_v", "voltage_gain_db", "input_impedance_ohm", "low_corner_hz")
 _UNITS = {"r_ohm": "ohm", "c_f": "F", "l_h": "H"}
 _FELT = 0.01
 """Relative change under which a main figure is not worth a line."""

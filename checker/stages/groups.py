@@ -83,11 +83,16 @@ def _words(scene: Scene, a: str, text: str, b: str = "") -> str:
     return text.format(a=a, b=b, out=out, ctl=ctl, com=com, out_b=out_b, ctl_b=ctl_b, com_b=com_b)
 
 
+def _alike(scene: Scene, a: str, b: str) -> bool:
+    """Of one polarity, and both bipolar or both not."""
+    return scene.polarity(a) == scene.polarity(b) and scene.words(a) == scene.words(b)
+
+
 def _mirror(scene: Scene, a: str, b: str) -> bool:
     """`a` diode-connected (directly), `b` beside it."""
     ca, ba, ea = scene.nodes(a)
     cb, bb, eb = scene.nodes(b)
-    if ca != ba or ba != bb or cb == bb or scene.polarity(a) != scene.polarity(b):
+    if ca != ba or ba != bb or cb == bb or not _alike(scene, a, b):
         return False
     return bool(_supplies(scene, ea) & _supplies(scene, eb))
 
@@ -144,7 +149,7 @@ def _differential(scene: Scene, p: str, q: str) -> bool:
     """Same polarity, emitters on one net or joined through equal resistors to one; bases and collectors apart."""
     cp, bp, ep = scene.nodes(p)
     cq, bq, eq = scene.nodes(q)
-    if scene.polarity(p) != scene.polarity(q) or bp == bq or cp == cq == ep:
+    if not _alike(scene, p, q) or bp == bq or cp == cq == ep:
         return False
     if scene.silent[ep] or scene.silent[eq]:
         return False

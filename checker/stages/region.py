@@ -1,29 +1,51 @@
-"""Operating region of bipolars, as the report defines it.
+"""Operating region of transistors, as the report defines it.
 
 Cut-off: |IC| under 1e-3 of what would flow with collector and emitter shorted and the device out (surroundings
 linearised at the operating point, exact where they are linear). Saturated: VBC > 0 and IC/IB under 0.9 of its value at
-the same VBE with VBC = 0. Reverse-active: VBC forward, VBE not. Else active.
+the same VBE with VBC = 0. Reverse-active: VBC forward, VBE not. Else active. Field-effect transistors: active when
+|VDS| of the channel >= VOV > 0, ohmic below; body-conducting, gate-conducting where that junction carries over 1 % of
+the shorted current. Source is the more negative end (N channel).
 """
 
 from __future__ import annotations
 
+from collections.abc import Mapping
+
 import numpy as np
 from numpy.typing import NDArray
 
+from checker.circuit.types import TRANSISTOR_FAMILIES
 from checker.devices import bipolar
 from checker.solve.operating import OperatingPoint
 from checker.solve.response import Response, small_signal
 from checker.words import Region
 
 FloatArray = NDArray[np.float64]
-REGIONS: tuple[Region, ...] = ("active", "saturated", "cut-off", "reverse-active")
+REGIONS: tuple[Region, ...] = (
+    "active",
+    "saturated",
+    "cut-off",
+    "reverse-active",
+    "ohmic",
+    "body-conducting",
+    "gate-conducting",
+)
 CUT_OFF = 1e-3
+SUSPECT_A = 1e-3
+"""Only devices of less current than this are asked whether they are cut off [A]."""
 SATURATED = 0.9
 UNLIMITED_A = 1e-3
 """Stands for the shorted current where nothing but the device limits it: a collector and an emitter both at supplies,
 or at one through a coil. Cut off is then what carries under a microampere."""
 LEAST_OHM = 1e-3
 """Under this the surroundings are a short for direct current (a coil at `SLOW_HZ` is not quite 0)."""
+JUNCTION_CONDUCTS = 1e-2
+"""Part of the shorted current from which a gate or body junction counts as conducting."""
+NOTICED_A = 1e-12
+"""Junction currents below this are leakage and are not looked at [A]."""
+REVERSED_V = 1e-6
+"""A drain closer to its source than this is not called reversed [V]."""
+FETS = ("jfet", "mosfet")
 SLOW_HZ = 1e-3
 """The frequency that stands for direct current in a linearised circuit: capacitors of a board are open there."""
 
@@ -33,8 +55,10 @@ def region_codes(point: OperatingPoint) -> FloatArray:
     codes = np.zeros((point.circuit.size, 0))
     if "bipolar" in point.plan.placed:
         codes = np.concatenate([codes, _bipolar_codes(point)], axis=1)
-    with np.errstate(invalid="ignore"):
-        codes = np.where(_cut_off(point), REGIONS.index("cut-off"), codes)
+    for kind in FETS:
+        if kind in point.plan.placed:
+            codes = np.concatenate([codes, _fet_codes(point.devices[kind])], axis=1)
+    _judge_small_currents(point, codes)
     return np.where(np.isfinite(point.transistor["i_out_a"]), codes, np.nan)
 
 
@@ -44,6 +68,19 @@ def _bipolar_codes(point: OperatingPoint) -> FloatArray:
     with np.errstate(invalid="ignore"):
         code = np.where(saturation_edge_v(point) < vbc, REGIONS.index("saturated"), REGIONS.index("active"))
         return np.where((vbc > 0.0) & (vbe <= 0.0), REGIONS.index("reverse-active"), code)
+
+
+def _fet_codes(table: Mapping[str, FloatArray]) -> FloatArray:
+    """By the channel alone."""
+    with np.errstate(invalid="ignore"):
+        code = np.where(table["channel_v"] >= table["vov_v"], REGIONS.index("active"), REGIONS.index("ohmic"))
+        return np.where(table["vov_v"] <= 0.0, REGIONS.index("cut-off"), code).astype(float)
+
+
+def is_reversed(point: OperatingPoint, device: str) -> NDArray[np.bool_]:
+    """Whether a field-effect transistor has its drain at the more negative end (N channel), (S,)."""
+    kind, j = point.circuit.find_device(device)
+    return np.asarray(point.devices[kind]["vds_v"][:, j] < -REVERSED_V)
 
 
 def _bipolar_junctions(point: OperatingPoint) -> FloatArray:
@@ -74,19 +111,43 @@ def headroom_v(point: OperatingPoint) -> FloatArray:
     rooms = [np.zeros((point.circuit.size, 0))]
     if "bipolar" in point.plan.placed:
         rooms.append(saturation_edge_v(point) - _bipolar_junctions(point)[..., 1])
+    tables = [point.devices[kind] for kind in FETS if kind in point.devices]
+    rooms += [table["channel_v"] - np.maximum(table["vov_v"], 0.0) for table in tables]
     return np.concatenate(rooms, axis=1)
 
 
-def _cut_off(point: OperatingPoint) -> NDArray[np.bool_]:
-    ic = np.abs(point.transistor["i_out_a"])
-    out = np.zeros(ic.shape, dtype=bool)
-    suspects = [j for j in range(ic.shape[1]) if np.nanmin(ic[:, j], initial=np.inf) < 1e-3]
+def _judge_small_currents(point: OperatingPoint, codes: FloatArray) -> None:
+    """Write cut-off, and conduction of gate and body, into `codes` (S, n): all against the shorted current."""
+    names = point.circuit.transistors.names
+    current = np.abs(point.transistor["i_out_a"])
+    gate, body = _junction_currents(point)
+    with np.errstate(invalid="ignore"):
+        small = (current < SUSPECT_A) | (gate > NOTICED_A) | (body > NOTICED_A)
+    suspects = [j for j in range(len(names)) if small[:, j].any()]
     if not suspects:
-        return out
+        return
     slow = small_signal(point, np.array([SLOW_HZ]))
     for j in suspects:
-        out[:, j] = ic[:, j] < CUT_OFF * shorted_current(point, slow, j)
-    return out
+        shorted = shorted_current(point, slow, j)
+        with np.errstate(invalid="ignore"):
+            for word, where in (
+                ("cut-off", current[:, j] < CUT_OFF * shorted),
+                ("gate-conducting", gate[:, j] > JUNCTION_CONDUCTS * shorted),
+                ("body-conducting", body[:, j] > JUNCTION_CONDUCTS * shorted),
+            ):
+                codes[where, j] = REGIONS.index(word)
+
+
+def _junction_currents(point: OperatingPoint) -> tuple[FloatArray, FloatArray]:
+    """Forward current of gate and body junctions of every transistor, (S, n) [A]; 0 for bipolars."""
+    gates, bodies = [np.zeros((point.circuit.size, 0))], [np.zeros((point.circuit.size, 0))]
+    for kind in TRANSISTOR_FAMILIES:
+        if kind in point.plan.placed:
+            table, count = point.devices[kind], len(point.circuit.devices[kind].names)
+            none = np.zeros((point.circuit.size, count))
+            gates.append(table["ig_a"] * point.circuit.devices[kind].polarity if kind in FETS else none)
+            bodies.append(table["body_a"] if kind in FETS else none)
+    return np.concatenate(gates, axis=1), np.concatenate(bodies, axis=1)
 
 
 def shorted_current(point: OperatingPoint, slow: Response, j: int) -> FloatArray:

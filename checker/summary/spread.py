@@ -11,7 +11,7 @@ from checker.stages import types as found
 from checker.summary.ledger import MIDDLE, Ledger
 from checker.trouble import CannotTell
 
-SPREAD = ("ic_a", "vce_v", "voltage_gain_db", "input_impedance_ohm", "output_impedance_ohm")
+SPREAD = ("ic_a", "id_a", "vce_v", "vds_v", "voltage_gain_db", "input_impedance_ohm", "output_impedance_ohm")
 """Figures whose range is reported; complex ones by their magnitude, signal figures at f0."""
 
 

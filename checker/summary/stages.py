@@ -14,6 +14,7 @@ from checker.record import (
     CardUsed,
     Complex,
     Connection,
+    FetBias,
     Group,
     Location,
     SmallSignal,
@@ -25,6 +26,7 @@ from checker.record import (
 )
 from checker.setup import Setup
 from checker.stages import types as found
+from checker.stages.region import is_reversed
 from checker.stages.terminals import NUMBER
 from checker.summary.ledger import LATER, MIDDLE, Ledger, in_words
 from checker.summary.spread import spans
@@ -139,21 +141,26 @@ def _card(fact: PartFact | None) -> CardUsed | None:
     return CardUsed(name=fact.card.name, source=fact.model_source or fact.card.source, assumed=fact.card.assumed)
 
 
-def _bias(setup: Setup, ledger: Ledger, stage: found.Stage) -> Bias | None:
+def _bias(setup: Setup, ledger: Ledger, stage: found.Stage) -> Bias | FetBias | None:
     if not math.isfinite(setup.point.transistor["i_out_a"][0, stage.index]):
         ledger.missing(stage.reason or "no certified operating point", "stages", stage.id, "bias")
         return None
     return _own_bias(ledger, stage)
 
 
-def _own_bias(ledger: Ledger, stage: found.Stage) -> Bias:
-    keys = ("ic_a", "ib_a", "vce_v", "vbe_v", "headroom_v", "power_w", "tj_c")
+def _own_bias(ledger: Ledger, stage: found.Stage) -> Bias | FetBias:
+    terms = ledger.board.terms(stage.id)
+    keys = (terms.current, terms.bias, terms.across, terms.drive, "headroom_v", "power_w", "tj_c")
     values = {key: ledger.real_at(key, stage.id, "stages", stage.id, "bias", key) for key in keys}
     polarity = _sign(ledger, stage)
-    for key in ("ic_a", "ib_a"):
+    for key in (terms.current, terms.bias):
         current = values[key]
         values[key] = None if current is None else polarity * current
-    return Bias(region=ledger.board.region_words(stage.id) or None, **values)
+    region = ledger.board.region_words(stage.id) or None
+    if terms.current == "ic_a":
+        return Bias(region=region, **values)
+    turned = bool(is_reversed(ledger.board.bench.point, stage.device)[0])
+    return FetBias(region=region, reversed=turned, **values)
 
 
 def _sign(ledger: Ledger, stage: found.Stage) -> float:

@@ -101,14 +101,6 @@ def test_a_model_of_another_level_is_not_solved() -> None:
     assert [unknown.datum for unknown in circuit.unknowns] == ["a Gummel-Poon model of Q1"]
 
 
-def test_a_field_effect_transistor_is_listed_and_blocks_drain_and_source_only() -> None:
-    parts = [spice_part(f"R{place}", f"{net} 0", 1e3) for place, net in enumerate("dgs", start=1)]
-    circuit = spice(spice_part("J1", "d g s", model="J310", text="J310"), *parts)
-    (unknown,) = circuit.unknowns
-    assert (unknown.ref, unknown.datum, unknown.nets) == ("J1", "a bipolar model", ("d", "s"))
-    assert circuit.parts["J1"].kind == "fet"
-
-
 def test_a_transistor_on_rails_alone_is_still_listed() -> None:
     circuit = spice(spice_part("J1", "a 0 0", model="J"), volts("V1", "a 0", 5.0))
     assert [(unknown.ref, unknown.nets, unknown.blocks_dc) for unknown in circuit.unknowns] == [("J1", (), False)]

@@ -119,3 +119,12 @@ def test_what_the_reader_did_not_understand_is_not_used(ref: str, nets: str, blo
 def test_a_relay_asks_for_its_coil() -> None:
     circuit = around(kicad_part("K1", "my:RELAY", "HJR", {"1": "a", "2": "b", "3": "GND"}))
     assert all('[[part]] ref = "K1"' in unknown.supply for unknown in unknown_at(circuit, "K1"))
+
+
+@pytest.mark.parametrize("name", ["{2*r}", "{pin.__class__}", "{", "{0}"])
+def test_a_name_in_braces_is_only_a_name(name: str) -> None:
+    # Once taken for a place to fill in, which ended in a traceback.
+    circuit = spice(spice_part("U9", "a b 0", text=name), spice_part("R1", "a 0", 1e3), spice_part("R2", "b 0", 1e3))
+    assert {unknown.datum for unknown in unknown_at(circuit, "U9")} == {
+        f"what U9 ({name}) does at pin {n}" for n in "12"
+    }

@@ -9,6 +9,9 @@ import pytest
 from numpy.testing import assert_allclose
 
 from checker.board import Board
+from checker.measure.chain import source_voltage
+from checker.measure.chain import transfer as measured
+from checker.measure.links import Outer, outer_of
 from tests.measure.nodal import IDEAL, VT, Nodal
 from tests.whole import board_from, intent_text
 
@@ -193,3 +196,49 @@ def test_hand_figures_agree_where_they_hold() -> None:
     for key, value in wanted.items():
         allowed = 0.032 if key == "current_gain" else 0.011
         assert abs(board.ask(key, "Q1").values[0, 1]) == pytest.approx(value, rel=allowed)
+
+
+WOUND = """V1 VCC 0 12
+R1 VCC BB 47k
+R2 BB 0 10k
+CD BB 0 1
+LP IN 0 100m
+LS {ends} 400m
+K1 LP LS 0.95
+RE E 0 1k
+RC VCC C 4.7k
+C2 C OUT 1
+Q1 C B E QI
+"""
+
+
+@pytest.mark.parametrize(("ends", "way"), [("B BB", 1.0), ("BB B", -1.0)])
+def test_a_winding_feeds_a_stage(ends: str, way: float) -> None:
+    """Cut, it shows e = s M/(RS + s LP) of the port's e.m.f.; T = v(OUT)/e has no corner of the transformer's first
+    winding in it, only those of its leakage against the stage."""
+    netlist = WOUND.format(ends=ends) + IDEAL
+    board = board_from(netlist, intent_text(*PORTS, band=("300 Hz", "30 kHz")))
+    stage = board.recognition.stage("Q1")
+    assert stage.input_link is not None
+    assert (stage.input_link.kind, stage.input_link.part) == ("winding", "LS")
+    ic, ib = bias(board, "Q1")
+    rc = RC * RL / (RC + RL)
+    z_in = VT / ib + (ic / ib + 1.0) * RE
+    gain = rc * ic / (VT + (ic + ib) * RE)
+
+    def transfer(f_hz: float) -> float:
+        """|v(OUT)|/|e| with the winding's own impedance, as seen from the base, before the stage's input."""
+        s = 2j * np.pi * f_hz
+        m = 0.95 * np.sqrt(0.1 * 0.4)
+        z_source = s * 0.4 - (s * m) ** 2 / (RS + s * 0.1)
+        return abs(gain * z_in / (z_in + z_source))
+
+    outer = outer_of(board.bench, "Q1")
+    assert isinstance(outer, Outer)
+    f = np.array([300.0, 3e3, 30e3])
+    response = board.bench.nominal_response(f)
+    s = 2j * np.pi * f
+    e = way * s * 0.95 * np.sqrt(0.1 * 0.4) / (RS + s * 0.1)
+    # The far end is held by 1 F: 5e-4 ohm beside kilohms.
+    assert_allclose(source_voltage(board.bench, response, outer)[0], e, rtol=1e-6)
+    assert_allclose(np.abs(measured(board.bench, response, outer)[0]), [transfer(x) for x in f], rtol=1e-5)

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import math
+from pathlib import Path
 from typing import Any
 
 import pytest
@@ -253,3 +254,22 @@ def test_too_many_bytes(read: Read) -> None:
 def test_an_expression_too_long_is_one_message(read: Read) -> None:
     with pytest.raises(InputTrouble, match=r"^board\.net:2: .*limit of 10000;.*--most-steps"):
         read("* p\nR1 a 0 {" + "1+" * 20_000 + "1}\n")
+
+
+def test_a_raised_depth_is_kept_to(read: Read) -> None:
+    # Every kind of nesting at once, 900 deep; the interpreter alone would stop at about a hundred.
+    levels = 900
+    chain = "".join(f".param p{n}={{p{n + 1}+1}}\n" for n in range(levels)) + f".param p{levels}=1\n"
+    inner = (
+        "".join(f".subckt s{n} a\nX1 a s{n + 1}\n.ends\n" for n in range(levels))
+        + f".subckt s{levels} a\nR1 a 0 {{p0}}\n.ends\n"
+    )
+    for index in range(levels):
+        Path(f"f{index}.lib").write_text(f".include f{index + 1}.lib\n")
+    Path(f"f{levels}.lib").write_text("R2 b 0 1k\n")
+    text = f"* deep\n{chain}{inner}.include f0.lib\nX1 a s0\nR3 b 0 {{{'(' * levels}7{')' * levels}}}\n.end\n"
+    netlist = read(text, limits=ReadLimits(depth=1_000))
+    found = {part.ref.rpartition(".")[2]: part.number for part in netlist.parts}
+    assert found == {"R1": levels + 1.0, "R2": 1e3, "R3": 7.0}
+    with pytest.raises(InputTrouble, match="--most-depth"):
+        read(text)

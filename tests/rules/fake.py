@@ -10,8 +10,10 @@ from checker.circuit.types import Circuit, PartFact, Port, Scenario
 from checker.quantity.figure import Figure, Working
 from checker.quantity.value import Origin
 from checker.rulekit import CannotTell, CapacitorUse, TargetIntent
+from checker.stages.region import REGIONS
+from checker.stages.terminals import TERMS, Terms
 from checker.stages.types import Recognition, Stage
-from checker.words import Configuration, Terminal
+from checker.words import Configuration, Region, Terminal
 from tests.bench import Bench
 
 NOMINAL = Scenario(name="nominal")
@@ -107,6 +109,14 @@ class FakeBoard:
     def resistors_at(self, stage: str, terminal: Terminal) -> tuple[str, ...]:  # noqa: ARG002
         """As in `small_circuit`."""
         return {"collector": ("R3",), "base": ("R1", "R2"), "emitter": ("R4",)}[terminal]
+
+    def terms(self, stage: str) -> Terms:  # noqa: ARG002
+        """Every stage given is a bipolar."""
+        return TERMS["bipolar"]
+
+    def region_code(self, region: Region) -> float:
+        """As the board has it."""
+        return float(REGIONS.index(region))
 
     def port(self, name: str) -> Port:
         """The port given."""

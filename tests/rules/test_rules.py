@@ -77,7 +77,7 @@ def test_a_capacitor_is_judged_by_its_own_job(rule: str, use: str) -> None:
 
 def test_the_base_capacitor_of_a_common_base_stage_is_left_to_its_own_rule() -> None:
     assert "common-base" not in RULES["bypass-loss"].applies.configurations
-    assert RULES["base-not-grounded"].applies.configurations == ("common-base",)
+    assert RULES["base-not-grounded"].applies.configurations == ("common-base", "common-gate")
 
 
 def resting(code: float, configuration: Configuration, ic: float = 1e-3) -> list[Evidence]:

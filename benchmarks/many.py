@@ -1,0 +1,64 @@
+"""A hundred boards in one call against a hundred calls of one board.
+
+    python benchmarks/many.py             print both times and their ratio (wanted: at most 0.25)
+    python benchmarks/many.py 20          as many boards as said
+
+The boards are the sample boards in turn, each with a title and values of its own, so that nothing is computed twice.
+The single calls run one after another, as a script in continuous integration would run them. It prints and never fails
+on a time.
+"""
+
+from __future__ import annotations
+
+import re
+import shutil
+import subprocess
+import sys
+import tempfile
+import time
+from pathlib import Path
+
+ROOT = Path(__file__).resolve().parents[1]
+SAMPLES = ROOT / "sample_schematics"
+COMMAND = [str(Path(sys.executable).parent / "stageproof"), "check", "--gate", "never"]
+
+
+def lay_out(folder: Path, count: int) -> list[Path]:
+    """`count` boards with their intent files; their paths."""
+    names = sorted(path.name for path in SAMPLES.iterdir() if path.is_dir())
+    paths = []
+    for number in range(count):
+        name = names[number % len(names)]
+        text = (SAMPLES / name / f"{name}.cir").read_text("utf-8")
+        path = folder / f"board{number}.cir"
+        path.write_text(re.sub(r"(?m)^(R1 .* [\d.]+)(k?)$", rf"\g<1>{number:04d}\2", _pointed(text)), "utf-8")
+        shutil.copy(SAMPLES / name / f"{name}.intent.toml", folder / f"board{number}.intent.toml")
+        paths.append(path)
+    return paths
+
+
+def _pointed(text: str) -> str:
+    """R1 with a decimal point, so that digits behind it change it by little."""
+    return re.sub(r"(?m)^(R1 .* \d+)(k?)$", r"\1.0\2", text)
+
+
+def seconds(command: list[str]) -> float:
+    """Wall time of one run [s]. Raises CalledProcessError where it fails."""
+    start = time.perf_counter()
+    subprocess.run(command, check=True, capture_output=True, timeout=3600)
+    return time.perf_counter() - start
+
+
+def main() -> None:
+    """Measure and print the ratio."""
+    count = int(sys.argv[1]) if len(sys.argv) > 1 else 100
+    with tempfile.TemporaryDirectory() as folder:
+        paths = lay_out(Path(folder), count)
+        seconds([*COMMAND, str(paths[0])])  # fills the byte code cache
+        together = seconds([*COMMAND, "--as", "json", folder])
+        apart = sum(seconds([*COMMAND, "--as", "json", str(path)]) for path in paths)
+    print(f"{count} boards: one call {together:.1f} s, single calls {apart:.1f} s, ratio {together / apart:.3f}")
+
+
+if __name__ == "__main__":
+    main()
