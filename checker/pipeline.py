@@ -3,12 +3,13 @@
 from __future__ import annotations
 
 import datetime
+from collections.abc import Mapping
 from dataclasses import replace
 from pathlib import Path
 
 from checker import __version__
 from checker.board import QUANTITY_NAMES, Board
-from checker.cards.own import find_cards, read_cards
+from checker.cards.types import Card
 from checker.circuit.build import build_circuit
 from checker.circuit.types import PartFact
 from checker.constants import ZERO_CELSIUS_K
@@ -116,9 +117,18 @@ def ready(netlist_path: Path, intent_path: Path | None, reading: Reading | None 
     """Read netlist, intent and the project's own cards, and set the board up."""
     netlist = _read(netlist_path, reading)
     where = intent_path or find_intent(netlist_path)
-    cards = find_cards(netlist_path)
-    own = read_cards(cards) if cards is not None else None
-    return set_up(netlist, read_intent(where) if where is not None else Intent(), own)
+    return set_up(netlist, read_intent(where) if where is not None else Intent(), _own_cards(netlist_path))
+
+
+def _own_cards(netlist_path: Path) -> Mapping[str, Card] | None:
+    """The project's own cards: NAME.cards.toml beside the netlist, else cards.toml; None where neither is there."""
+    names = (netlist_path.stem + ".cards.toml", "cards.toml")
+    found = next((path for name in names if (path := netlist_path.with_name(name)).is_file()), None)
+    if found is None:
+        return None
+    from checker.cards.own import read_cards
+
+    return read_cards(found)
 
 
 def part_values(netlist_path: Path, intent_path: Path | None, reading: Reading | None = None) -> tuple[PartFact, ...]:

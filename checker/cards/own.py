@@ -42,14 +42,6 @@ _LISTS: Final[Mapping[str, int]] = {"gain": 5, "ft": 3, "vbe": 2}
 _TEXTS: Final = frozenset({"name", "like", "source", "note"})
 
 
-def find_cards(netlist: Path) -> Path | None:
-    """The card file of a netlist: NAME.cards.toml, else cards.toml in its folder; None where there is none."""
-    for path in (netlist.with_name(netlist.stem + ".cards.toml"), netlist.with_name("cards.toml")):
-        if path.is_file():
-            return path
-    return None
-
-
 def read_cards(path: Path) -> Mapping[str, Card]:
     """Squeezed name -> card. Raises InputTrouble, naming the file, for what is not as the module's example."""
     import tomllib

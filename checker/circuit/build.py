@@ -25,10 +25,7 @@ from checker.circuit.elements import (
 from checker.circuit.entry import bare_fact, leave_out
 from checker.circuit.grounds import find_ground
 from checker.circuit.identity import BIPOLAR, DIODE, card_by_value, intended_card
-from checker.circuit.loads import add_loads
-from checker.circuit.logic import add_logic
 from checker.circuit.notes import Notes
-from checker.circuit.opamps import add_opamps, check_supplies
 from checker.circuit.order import natural_key
 from checker.circuit.others import (
     add_closed,
@@ -43,7 +40,6 @@ from checker.circuit.parts import Kind, classify
 from checker.circuit.ports import add_ports
 from checker.circuit.rails import add_rails
 from checker.circuit.supplies import find_unsupplied
-from checker.circuit.switches import add_contacts
 from checker.circuit.types import Circuit, PartKind
 from checker.circuit.values import written_value
 from checker.constants import DEFAULT_AMBIENT_C, ZERO_CELSIUS_K
@@ -124,20 +120,30 @@ def build_circuit(netlist: Netlist, intent: Intent, own_cards: Mapping[str, Card
         elif kind in _VALUED or not add_declared(draft, part):
             _ADDERS[kind](draft, part)
     add_ends(draft)
-    add_opamps(draft)
-    add_contacts(draft)
-    add_loads(draft)
-    add_rails(draft)
-    check_supplies(draft)
-    add_ports(draft)
-    add_drives(draft)
-    add_logic(draft)
+    _add_surroundings(draft)
     if ground.found:
         find_unsupplied(draft)
     else:
         _no_ground(draft)
     settle(draft)
     return assemble(draft, _temperature_k(netlist, intent))
+
+
+def _add_surroundings(draft: Draft) -> None:
+    """Rails, ports, driven pins, and what parts without a model do at their pins."""
+    if all(pin.kind == "connector" for pin in draft.loose_pins):
+        add_rails(draft)
+        add_ports(draft)
+        add_drives(draft)
+        return
+    from checker.circuit.boundaries import add_boundaries, add_logic, check_supplies
+
+    add_boundaries(draft)
+    add_rails(draft)
+    check_supplies(draft)
+    add_ports(draft)
+    add_drives(draft)
+    add_logic(draft)
 
 
 def _sorted(netlist: Netlist, draft: Draft) -> list[tuple[Kind, Part]]:

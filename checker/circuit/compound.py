@@ -14,16 +14,13 @@ from checker.circuit.pins import Unit
 from checker.netlist.types import Part
 
 
-def parts_of(draft: Draft, part: Part, unit: Unit, known: Identity) -> Iterator[tuple[Unit, Identity]]:
+def parts_of(draft: Draft, part: Part, unit: Unit, known: Identity, card: Card) -> Iterator[tuple[Unit, Identity]]:
     """The transistors that one unit of a part holds, after its built-in resistors and diode are in the draft.
 
-    A plain transistor, or one with a `.model` of its own, is itself. A pre-biased one has its base on an inner net
+    `card` has built-in parts. A pre-biased transistor has its base on an inner net
     behind R1; a Darlington is ".A", the driver, and ".B", with their common net between them.
     """
-    card = known.card
-    if card is None or known.model is not None or not (card.resistors or card.driver):
-        yield unit, known
-    elif card.driver is None:
+    if card.driver is None:
         yield _pre_biased(draft, part, unit, card), known
     else:
         yield from _darlington(draft, part, unit, known, card)

@@ -40,7 +40,8 @@ def agreement_of(part: Part, card: Card | None, kinds: tuple[tuple[str, CardKind
     if card is None or card.assumed:
         datum = f"which part {part.ref} is", "a part number with a card, or [[part]] card"
         return Agreement(wrong={}, unknown=dict.fromkeys((ORDER, POLARITY, PACKAGE), datum))
-    other = next((f"{who} is {kind.upper()}" for who, kind in kinds if kind != card.kind), "")
+    # The first letter is the polarity: a junction FET drawn with an insulated gate is another matter.
+    other = next((f"{who} is {kind.upper()}" for who, kind in kinds if kind[0] != card.kind[0]), "")
     if other:
         wrong[POLARITY] = f"{name}: {card.name} is {card.kind.upper()}, but {other}"
     package = package_of(part.footprint)

@@ -3,9 +3,9 @@
 from __future__ import annotations
 
 import re
+from collections.abc import Iterable
 from typing import Final
 
-from checker.circuit.compound import parts_of
 from checker.circuit.draft import Draft
 from checker.circuit.entry import leave_out, place_device
 from checker.circuit.identity import (
@@ -66,10 +66,19 @@ def add_bipolar(draft: Draft, part: Part) -> None:
     parameters = bipolar_parameters(known.written, area=part.params.get("area", 1.0), count=part.params.get("m", 1.0))
     _tell_unused(draft, known, parameters)
     for unit in units:
-        for inner, each in parts_of(draft, part, unit, known):
+        for inner, each in _inside(draft, part, unit, known):
             order = (inner.nets["C"], inner.nets["B"], inner.nets["E"], _substrate(draft, unit))
             own = parameters if each is known else bipolar_parameters(each.written, area=1.0, count=1.0)
             place_device(draft, "bipolar", part, inner, order, each, own)
+
+
+def _inside(draft: Draft, part: Part, unit: Unit, known: Identity) -> Iterable[tuple[Unit, Identity]]:
+    """The transistors of one unit: itself, or what a pre-biased or Darlington transistor holds."""
+    if known.model is not None or known.card is None or not (known.card.resistors or known.card.driver):
+        return ((unit, known),)
+    from checker.circuit.compound import parts_of
+
+    return parts_of(draft, part, unit, known, known.card)
 
 
 def add_diode(draft: Draft, part: Part) -> None:

@@ -10,7 +10,6 @@ from typing import Final
 from checker.cards.types import Ratings
 from checker.circuit.draft import Draft, Table
 from checker.circuit.entry import bare_fact
-from checker.circuit.sizes import ratings_of
 from checker.circuit.types import Change, PartFact, PartKind, Scenario
 from checker.circuit.values import part_value
 from checker.netlist.types import Part
@@ -273,7 +272,11 @@ def _without_value(draft: Draft, part: Part, kind: str, ends: tuple[str, str]) -
 
 
 def _fact(draft: Draft, part: Part, kind: PartKind, ends: tuple[str, str], value: Value | None) -> PartFact:
-    ratings, whence = ratings_of(part, kind) if draft.netlist.format == "kicad" else (Ratings(), "")
+    ratings, whence = Ratings(), ""
+    if draft.netlist.format == "kicad":
+        from checker.circuit.sizes import ratings_of
+
+        ratings, whence = ratings_of(part, kind)
     return PartFact(
         ref=part.ref,
         kind=kind,

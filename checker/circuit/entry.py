@@ -8,9 +8,8 @@ from dataclasses import fields, replace
 from typing import Final, Literal
 
 from checker.cards.types import Ratings
-from checker.circuit.conflicts import agreement_of
 from checker.circuit.draft import Draft, DraftDevice
-from checker.circuit.identity import BIPOLAR, Identity, hints_of, polarity_of
+from checker.circuit.identity import BIPOLAR, DIODE, FET, Identity, hints_of, polarity_of
 from checker.circuit.models import Parameters
 from checker.circuit.pins import Unit, letter_of
 from checker.circuit.types import Agreement, PartFact, PartKind
@@ -88,9 +87,12 @@ def _agreement(draft: Draft, part: Part, unit: Unit, known: Identity) -> Agreeme
         return Agreement(judged=False)
     inner = known.card is not None and known.card.name.endswith("(driver)")
     again = unit.suffix not in ("", ".A") and not (known.card is not None and known.card.driver)
-    if known.kind not in BIPOLAR or inner or again:
+    if known.kind in DIODE or inner or again:
         return Agreement(judged=False)
-    kinds = tuple((who, kind) for who, kind in hints_of(part) if kind in BIPOLAR and who != "the description")
+    from checker.circuit.conflicts import agreement_of
+
+    family = BIPOLAR if known.kind in BIPOLAR else FET
+    kinds = tuple((who, kind) for who, kind in hints_of(part) if kind in family and who != "the description")
     return agreement_of(part, known.card, kinds)
 
 

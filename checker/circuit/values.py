@@ -7,7 +7,6 @@ import re
 from typing import Final
 
 from checker.circuit.draft import Draft
-from checker.circuit.wound import coded_henry, tapered_ohm, wound_henry
 from checker.netlist.types import Part
 from checker.pattern import lazy
 from checker.quantity.parse import parse_engineering
@@ -55,6 +54,8 @@ def part_value(draft: Draft, part: Part, unit: str) -> Value | None:
 
 def _workshop(draft: Draft, part: Part, unit: str) -> tuple[float, float | None] | None:
     """Turns on a core, a coded inductance, a potentiometer with its taper."""
+    from checker.circuit.wound import coded_henry, tapered_ohm, wound_henry
+
     if unit == "H":
         wound = wound_henry(f"{part.value} {part.fields.get('Turns', '')}")
         if wound is not None:

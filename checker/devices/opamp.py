@@ -113,9 +113,11 @@ def capacitance(p: Mapping[str, FloatArray], _polarity: FloatArray, v: FloatArra
 
 
 def figures(p: Mapping[str, FloatArray], _polarity: FloatArray, v: FloatArray) -> dict[str, FloatArray]:
-    """v_v: output to ground [V]; i_a: current that the output delivers [A]; `swing`: -1..1, place of the output within
-    its range (beyond 0.99 it rests at a limit); each (S, n)."""
+    """v_v: output to ground [V]; i_a: current that the output delivers [A]; power_w: what it dissipates between supply
+    and output [W]; `swing`: -1..1, place of the output in its range (beyond 0.99 it rests at a limit); each (S, n)."""
     f, _, _, _ = _output(p, v, v[..., PLUS] - v[..., MINUS])
     half = np.maximum(0.5 * (v[..., TOP] - p["high"] - v[..., BOTTOM] - p["low"]), LEAST_HALF_V)
     middle = 0.5 * (v[..., TOP] - p["high"] + v[..., BOTTOM] + p["low"])
-    return {"v_v": v[..., OUT], "i_a": INNER_S * (f - v[..., INSIDE]), "swing": (f - middle) / half}
+    i = INNER_S * (f - v[..., INSIDE])
+    power = i * (np.where(i > 0.0, v[..., TOP], v[..., BOTTOM]) - v[..., OUT])
+    return {"v_v": v[..., OUT], "i_a": i, "power_w": power, "swing": (f - middle) / half}

@@ -154,11 +154,17 @@ def shorted_current(point: OperatingPoint, slow: Response, j: int) -> FloatArray
     """Current [A], (S,), with output and common terminal of transistor `j` shorted and the device out."""
     device = point.circuit.transistors
     c, b, e = device.nodes[j].tolist()
-    out = slow.removed([device.names[j]])
-    i = {node: point.transistor[key][:, j] for node, key in ((c, "i_out_a"), (b, "i_control_a"), (e, "i_common_a"))}
+    block = slow.block(device.names[j])
+    nodes = (c, b, e, *block.nodes[3:])
+    z = np.stack([np.stack([slow.transfer(to, of)[:, 0] for of in nodes], -1) for to in nodes], -2)
+    y = block.y[:, 0]
+    # The device taken out of its own few nets: Z' = Z + Z (1 - Y Z)^-1 Y Z (Sherman, Morrison and Woodbury).
+    lost = np.asarray(~(np.isfinite(z).all(axis=(-1, -2)) & np.isfinite(y).all(axis=(-1, -2))), dtype=bool)
+    z[lost], y = 0.0, np.where(lost[:, None, None], 0.0, y)
+    out = np.real(z + z @ np.linalg.solve(np.eye(len(nodes)) - y @ z, y @ z))
     vce = point.v_v[:, c] - point.v_v[:, e]
-    for node, current in i.items():
-        vce = vce + np.real(out.transfer(c, node)[:, 0] - out.transfer(e, node)[:, 0]) * current
-    z = np.real(out.between(c, e)[:, 0])
+    for place, key in ((0, "i_out_a"), (1, "i_control_a"), (2, "i_common_a")):
+        vce = vce + (out[:, 0, place] - out[:, 2, place]) * point.transistor[key][:, j]
+    r = out[:, 0, 0] - out[:, 0, 2] - out[:, 2, 0] + out[:, 2, 2]
     with np.errstate(divide="ignore", invalid="ignore"):
-        return np.where(z > LEAST_OHM, np.abs(vce / z), UNLIMITED_A)
+        return np.where(lost, np.nan, np.where(r > LEAST_OHM, np.abs(vce / r), UNLIMITED_A))

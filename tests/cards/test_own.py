@@ -6,7 +6,7 @@ from pathlib import Path
 
 import pytest
 
-from checker.cards.own import find_cards, read_cards
+from checker.cards.own import read_cards
 from checker.intent.types import Intent
 from checker.pipeline import ready
 from checker.trouble import InputTrouble
@@ -57,9 +57,7 @@ def test_it_outranks_the_library_and_serves_the_board(tmp_path: Path) -> None:
 def test_the_file_beside_the_netlist_is_read(tmp_path: Path) -> None:
     board = tmp_path / "board.cir"
     board.write_text("* own\nV1 vcc 0 5\nR1 vcc b 100k\nR2 vcc c 1k\nQ1 c b 0 HOUSE-NPN-1\n.end\n", "utf-8")
-    assert find_cards(board) is None
     written(tmp_path, GOOD)
-    assert find_cards(board) == tmp_path / "cards.toml"
     card = ready(board, None).circuit.parts["Q1"].card
     assert card is not None and card.name == "HOUSE-NPN-1"
 

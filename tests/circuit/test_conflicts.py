@@ -81,3 +81,11 @@ def test_a_description_alone_accuses_nobody() -> None:
 )
 def test_packages(value: str, footprint: str, *, wrong: bool) -> None:
     assert ("package-mismatch" in agreement(value, "BEC", footprint).wrong) == wrong
+
+
+def test_a_junction_fet_in_a_symbol_of_its_channel_is_no_conflict() -> None:
+    pins = {"1": "d|D", "2": "g|G", "3": "s|S"}
+    for symbol, wrong in (("Device:Q_NMOS_DGS", False), ("Device:Q_PMOS_DGS", True)):
+        part = kicad_part("Q1", symbol, "J310", pins, footprint=TO92)
+        circuit = kicad(part, *(resistor(f"R{n}", n, "GND") for n in "dgs"))
+        assert ("part-polarity" in circuit.parts["Q1"].agreement.wrong) == wrong

@@ -83,3 +83,12 @@ def test_the_pole_lies_at_gbw_over_gain() -> None:
     c = opamp.capacitance(P, POLARITY, terminals("active"))[0, 0]
     assert opamp.INNER_S / (2 * np.pi * c[5, 5]) == pytest.approx(3e6 / 1e5)
     assert np.count_nonzero(c) == 1
+
+
+def test_dissipation_is_that_of_the_load_current() -> None:
+    """1 mA from +12 V at 2 V out: 10 mW; into -12 V the drop counts from below."""
+    v = terminals("active")
+    v[..., opamp.INSIDE] = opamp._output(P, v, v[..., 0] - v[..., 1])[0] - 1e-3
+    assert opamp.figures(P, POLARITY, v)["power_w"][0, 0] == pytest.approx(10e-3)
+    v[..., opamp.INSIDE] += 2e-3
+    assert opamp.figures(P, POLARITY, v)["power_w"][0, 0] == pytest.approx(14e-3)
