@@ -109,7 +109,9 @@ def _in_workers(task: partial[Answer], netlists: Sequence[Path], count: int) -> 
     from checker.cli.progress import Progress
 
     pool.prepare()
-    import checker.pipeline  # noqa: F401 - forks share what is imported before them
+    from checker.pipeline import warm_up
+
+    warm_up()
 
     def lost(number: int, how: str) -> Answer:
         path = netlists[number].as_posix()
