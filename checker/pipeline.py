@@ -9,6 +9,7 @@ from pathlib import Path
 
 from checker import __version__
 from checker.board import QUANTITY_NAMES, Board
+from checker.cards.find import find_card
 from checker.cards.types import Card
 from checker.circuit.build import build_circuit
 from checker.circuit.types import PartFact
@@ -111,6 +112,15 @@ def check_board(
         unavailable=ledger.unavailable,
     )
     return Outcome(report=in_order(report), workings=ledger.workings, incomplete=bool(faults))
+
+
+def warm_up() -> None:
+    """Load what every board needs, once, before the process is forked; forks then share it."""
+    import gc
+
+    load_rules()
+    find_card("2N3904")
+    gc.freeze()  # or each fork's first collection would copy every page
 
 
 def ready(netlist_path: Path, intent_path: Path | None, reading: Reading | None = None) -> Setup:

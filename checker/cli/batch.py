@@ -86,9 +86,7 @@ def check_all(
 
     A fault of the program on a lone netlist is raised.
     """
-    from checker.cli.pool import workers
-
-    count = workers(jobs, len(netlists))
+    count = 1 if len(netlists) == 1 else _workers(jobs, len(netlists))
     task = partial(_nth, tuple(netlists), intent, today, reading)
     if count == 1:
         answers = [_one(path, intent, today, reading, alone=len(netlists) == 1) for path in netlists]
@@ -104,12 +102,20 @@ def check_all(
     return Batch(answers=tuple(answers))
 
 
+def _workers(jobs: int | None, boards: int) -> int:
+    from checker.cli.pool import workers  # its imports cost a lone board more than they bring
+
+    return workers(jobs, boards)
+
+
 def _in_workers(task: partial[Answer], netlists: Sequence[Path], count: int) -> list[Answer]:
     from checker.cli import pool
     from checker.cli.progress import Progress
 
     pool.prepare()
-    import checker.pipeline  # noqa: F401 - forks share what is imported before them
+    from checker.pipeline import warm_up
+
+    warm_up()
 
     def lost(number: int, how: str) -> Answer:
         path = netlists[number].as_posix()

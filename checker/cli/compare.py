@@ -9,6 +9,7 @@ import click
 
 from checker.cli import options
 from checker.cli.output import coloured, columns, deliver
+from checker.netlist.limits import Reading
 from checker.words import Gate
 
 
@@ -21,6 +22,7 @@ from checker.words import Gate
 @options.gate
 @options.tolerance
 @options.today
+@options.reading
 @options.width
 @options.colour
 def command(
@@ -32,6 +34,7 @@ def command(
     gate: Gate,
     tolerance: float,
     today: datetime.date | None,
+    reading: Reading,
     width: int | None,
     colour: str,
 ) -> int:
@@ -46,7 +49,7 @@ def command(
     from checker.report.comparison import comparison_form
 
     options.spare_the_input(out, [path for path in (Path(old), Path(new)) if path.is_file()])
-    before, after = (read_side(side, intent, today) for side in (old, new))
+    before, after = (read_side(side, intent, today, reading) for side in (old, new))
     comparison = compare_reports(before, after, names=(old, new), tolerance=tolerance / 100.0)
     render = comparison_form(form)
     deliver(render(comparison, width=columns(width), colour=coloured(colour, out)), out)

@@ -20,6 +20,8 @@ def gathered(batch: Batch, *, several: bool, rules: bool, gate: Gate) -> Bundle:
 
 def earlier(since: Path | None) -> tuple[Report, ...] | None:
     """The reports in the file given by --since, None without one. Raises InputTrouble where it holds none."""
+    if since is None:
+        return None
     from checker.cli.side import read_reports
 
-    return None if since is None else read_reports(since)
+    return read_reports(since)

@@ -2,7 +2,6 @@
 
 from __future__ import annotations
 
-import glob
 import os
 from collections.abc import Iterable, Iterator
 from pathlib import Path
@@ -41,6 +40,8 @@ def _meant(argument: str) -> list[Path]:
         return _some(argument, _below(path), f"no netlist in this folder ({', '.join(sorted(SUFFIXES))})")
     if path.exists():
         return [path]
+    import glob  # costs start-up time, and most calls name files
+
     if glob.has_magic(argument):
         hits = (Path(hit) for hit in glob.iglob(argument, recursive=True))  # noqa: PTH207 - the pattern may be absolute
         return _some(argument, (hit for hit in hits if hit.is_file()), "no file matches this pattern")

@@ -22,7 +22,8 @@ MOST_FILES: Final = 500
 """Files of a netlist's folder that are read."""
 MOST_TOTAL: Final = 40_000_000
 """Bytes of them together."""
-INTENT: Final = "intent.toml"
+COMPANIONS: Final = ("intent", "cards")
+"""Files that belong to a netlist: NAME.WORD.toml, or WORD.toml in its folder."""
 _PLAIN: Final = ("100644", "100755")
 """Modes of plain files; links and submodules are not followed."""
 
@@ -67,7 +68,9 @@ def lay_out(revision: Revision, folder: Path, intent: str | None) -> tuple[Path,
     """
     here = revision.path.parent
     entries = _entries(revision.commit, here)
-    wanted = [revision.path, *(revision.path.with_name(name) for name in (f"{revision.path.stem}.intent.toml", INTENT))]
+    companions = (f"{revision.path.stem}.{word}.toml" for word in COMPANIONS)
+    names = (*companions, *(f"{word}.toml" for word in COMPANIONS))
+    wanted = [revision.path, *map(revision.path.with_name, names)]
     first = _blob(revision.commit, revision.path, entries)
     if first.lstrip()[:1] != b"(":  # text may include what lies beside it; an export stands alone
         wanted += sorted(entries)[:MOST_FILES]

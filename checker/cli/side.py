@@ -4,9 +4,11 @@ from __future__ import annotations
 
 import contextlib
 import datetime
+from dataclasses import replace
 from pathlib import Path
 
 from checker.cli.revision import Revision, find_revision, lay_out
+from checker.netlist.limits import Reading
 from checker.record import Report
 from checker.trouble import InputTrouble
 
@@ -14,26 +16,26 @@ MOST_BYTES = 100_000_000
 """A larger JSON report is none of ours."""
 
 
-def read_side(text: str, intent: Path | None, today: datetime.date | None) -> Report:
+def read_side(text: str, intent: Path | None, today: datetime.date | None, reading: Reading) -> Report:
     """The report that `text` names, made from the netlist where it is no report yet.
 
     A file of that name counts before a revision. Raises InputTrouble for what is neither.
     """
     path = Path(text)
     if path.is_file():
-        return _of_file(path, intent, today)
+        return _of_file(path, intent, today, reading)
     revision = find_revision(text)
     if revision is not None:
-        return _of_revision(revision, intent, today)
+        return _of_revision(revision, intent, today, reading)
     raise InputTrouble("no such file; give a netlist, a JSON report, or REVISION:PATH", file=text)
 
 
-def _of_file(path: Path, intent: Path | None, today: datetime.date | None) -> Report:
+def _of_file(path: Path, intent: Path | None, today: datetime.date | None, reading: Reading) -> Report:
     if _is_json(path):
         return read_report(path)
     from checker.pipeline import check_board
 
-    return check_board(path, intent, today=today).report
+    return check_board(path, intent, today=today, reading=reading).report
 
 
 def read_report(path: Path) -> Report:
@@ -67,12 +69,16 @@ def _is_json(path: Path) -> bool:
         return stream.read(4096).removeprefix(b"\xef\xbb\xbf").lstrip()[:1] == b"{"
 
 
-def _of_revision(revision: Revision, intent: Path | None, today: datetime.date | None) -> Report:
-    """Read in a folder laid out as the repository, so that every path in the report is one of the repository's."""
+def _of_revision(revision: Revision, intent: Path | None, today: datetime.date | None, reading: Reading) -> Report:
+    """Read in a folder laid out as the repository, so that every path in the report is one of the repository's.
+
+    Folders named by --include-from are those of the working tree.
+    """
+    there = replace(reading, folders=tuple(folder.resolve() for folder in reading.folders))
     import tempfile
 
     with tempfile.TemporaryDirectory(prefix="stageproof-") as folder:
         wanted = None if intent is None else intent.as_posix()
         netlist, said = lay_out(revision, Path(folder), wanted)
         with contextlib.chdir(folder):
-            return _of_file(netlist, said, today)
+            return _of_file(netlist, said, today, there)

@@ -3,10 +3,14 @@
 from __future__ import annotations
 
 from collections.abc import Iterable
+from typing import TYPE_CHECKING
 
 from checker.cli.status import CLEAN, FAILED, FOUND
-from checker.record import Comparison, Finding, Report
+from checker.record import Finding, Report
 from checker.words import SEVERITIES, Gate
+
+if TYPE_CHECKING:
+    from checker.record.comparison import Comparison
 
 
 def exit_status(report: Report, gate: Gate, require_checked: float | None) -> int:

@@ -7,7 +7,8 @@ from collections.abc import Iterator, Mapping
 
 from checker.compare.match import net_map
 from checker.judge.structure import SYMMETRIC
-from checker.record import Condition, Edit, Part, Report, natural
+from checker.record import Part, Report, natural
+from checker.record.comparison import Condition, Edit
 
 SAME_VALUE = 1e-9
 """Fraction within which two values are one, written differently."""

@@ -6,9 +6,9 @@ import math
 from collections.abc import Iterator
 from dataclasses import fields
 
-from checker.record import Complex, Moved, Stage
+from checker.record import Complex, Stage
 from checker.record.base import Record, key_of
-from checker.record.comparison import Figure
+from checker.record.comparison import Figure, Moved
 
 FLOORS = {"v": 1e-3, "a": 1e-9, "w": 1e-9}
 """Unit to what counts as nothing: figures near zero have no share to go by."""

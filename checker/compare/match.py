@@ -16,7 +16,7 @@ from checker.record import Part, Report, natural
 NEAR, WIDE, DEEP = 2, 4, 12
 """Steps out: the fingerprints' own, a stage's surroundings, and across a whole chain of stages."""
 KEPT = 0.5
-"""References count as kept where this share of them has equal surroundings in both boards."""
+"""References count as kept where this share of the parts has equal surroundings and values under them."""
 MOST_ROUNDS = 200
 """Refinements at one depth; past that equal parts are paired in the order of their references, which costs no time."""
 
@@ -85,7 +85,8 @@ class _Matching:
         self.taken: set[str] = set()
         near = [labels(each, NEAR) for each in self.drawings]
         common = [ref for ref in self.old if ref in self.new and near[0][ref] == near[1][ref]]
-        self.kept = len(common) >= KEPT * max(1, min(len(self.old), len(self.new)))
+        same = sum(self.old[ref].data == self.new[ref].data for ref in common)
+        self.kept = same >= KEPT * max(1, min(len(self.old), len(self.new)))
         if self.kept:
             self._pair((ref, ref) for ref in common)
 

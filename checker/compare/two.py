@@ -11,7 +11,8 @@ from checker.compare.figures import moved, moved_stage
 from checker.compare.findings import new_name, sort_findings
 from checker.compare.match import match_parts
 from checker.compare.owners import owners
-from checker.record import Bias, Changed, Comparison, Condition, Edit, FetBias, Moved, Report, Side, SmallSignal, Stage
+from checker.record import Bias, FetBias, Report, SmallSignal, Stage
+from checker.record.comparison import Changed, Comparison, Condition, Edit, Moved, Side
 from checker.shape import frozen
 
 AT_REST = frozenset(each.name for kind in (Bias, FetBias, SmallSignal) for each in fields(kind))

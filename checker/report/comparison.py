@@ -5,7 +5,8 @@ from __future__ import annotations
 from collections.abc import Callable
 from importlib import import_module
 
-from checker.record import Changed, Comparison, Complex, Edit, Moved
+from checker.record import Complex
+from checker.record.comparison import Changed, Comparison, Edit, Moved
 from checker.record.write import dump, plain
 from checker.report.clean import clean, name
 from checker.report.layout import NO_BREAK

@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from collections.abc import Iterator
 
-from checker.record import Changed, Comparison
+from checker.record.comparison import Changed, Comparison
 from checker.report.comparison import edited, row, titled, traced, verdict
 from checker.report.markdown import finding_block, shortened
 from checker.report.markup import fitted, folded, marked, table

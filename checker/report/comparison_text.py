@@ -2,7 +2,8 @@
 
 from __future__ import annotations
 
-from checker.record import Changed, Comparison, Finding
+from checker.record import Finding
+from checker.record.comparison import Changed, Comparison
 from checker.report.clean import clean, name
 from checker.report.comparison import edited, row, titled, traced, verdict
 from checker.report.layout import Page, finished, hanging, table

@@ -166,6 +166,19 @@ def test_paths_of_a_hostile_tree_stay_inside(tmp_path: Path) -> None:
         revision._write(tmp_path / "in", revision.PurePosixPath("link/x"), b"")
 
 
+def test_what_belongs_to_an_export_comes_with_it_and_nothing_else(repository: Path) -> None:
+    """An export includes nothing, so of its folder only the files that belong to it are read."""
+    for name in ("x.net", "x.intent.toml", "intent.toml", "x.cards.toml", "cards.toml", "y.net", "y.cards.toml"):
+        (repository / "boards" / name).write_text("(export)")
+    git("add", "-A")
+    git("commit", "-qm", "exports")
+    found = find_revision("HEAD:boards/x.net")
+    assert found is not None
+    assert revision.lay_out(found, repository / "there", None) == (Path("boards/x.net"), None)
+    laid = {path.name for path in (repository / "there" / "boards").iterdir()}
+    assert laid == {"x.net", "x.intent.toml", "intent.toml", "x.cards.toml", "cards.toml"}
+
+
 def test_tolerance(repository: Path, call: Call) -> None:
     lay(repository, TEXT, INTENT, name="a")
     lay(repository, TEXT.replace("R4 VF COL1 4.7k", "R4 VF COL1 4.8k"), INTENT, name="b")
