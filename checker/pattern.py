@@ -7,9 +7,7 @@ from typing import Any, cast
 
 
 class _Lazy:
-    """Stands for a compiled pattern until something is asked of it."""
-
-    __slots__ = ("_flags", "_made", "_text")
+    """Stands for a compiled pattern until something is asked of it; what was asked once is answered directly."""
 
     def __init__(self, text: str, flags: int) -> None:
         self._text = text
@@ -19,7 +17,9 @@ class _Lazy:
     def __getattr__(self, name: str) -> Any:
         if self._made is None:
             self._made = re.compile(self._text, self._flags)
-        return getattr(self._made, name)
+        answer = getattr(self._made, name)
+        setattr(self, name, answer)
+        return answer
 
 
 def lazy(text: str, flags: int | re.RegexFlag = 0) -> re.Pattern[str]:

@@ -9,7 +9,7 @@ ever, and so do static types.
 from __future__ import annotations
 
 from dataclasses import MISSING, Field, FrozenInstanceError, dataclass
-from typing import Any, TypeVar, dataclass_transform
+from typing import Any, NoReturn, TypeVar, dataclass_transform
 
 T = TypeVar("T")
 
@@ -17,17 +17,22 @@ _SLOT = object.__setattr__
 
 
 def _init(self: Any, **given: Any) -> None:
-    for name, each in self.__dataclass_fields__.items():
-        if name in given:
-            _SLOT(self, name, given.pop(name))
-        elif each.default is not MISSING:
-            _SLOT(self, name, each.default)
-        elif each.default_factory is not MISSING:
-            _SLOT(self, name, each.default_factory())
-        else:
-            raise TypeError(f"{type(self).__name__} needs {name}")
-    if given:
-        raise TypeError(f"{type(self).__name__} has no field {', '.join(given)}")
+    # A large board makes a million of these: one loop over what is set, and questions only where something is odd.
+    filled = self.__frozen_defaults__ | given
+    for name, make in self.__frozen_factories__.items():
+        if name not in filled:
+            filled[name] = make()
+    if filled.keys() != self.__dataclass_fields__.keys():
+        _refuse(self, filled)
+    for name, value in filled.items():
+        _SLOT(self, name, value)
+
+
+def _refuse(self: Any, filled: dict[str, Any]) -> NoReturn:
+    fields = self.__dataclass_fields__
+    if missing := [name for name in fields if name not in filled]:
+        raise TypeError(f"{type(self).__name__} needs {', '.join(missing)}")
+    raise TypeError(f"{type(self).__name__} has no field {', '.join(name for name in filled if name not in fields)}")
 
 
 def _setattr(self: Any, name: str, _value: Any) -> None:
@@ -68,6 +73,11 @@ def frozen(kind: type[T]) -> type[T]:
     Raises TypeError at a call that lacks a field or names one it does not have, as a dataclass would.
     """
     made: Any = dataclass(slots=True, kw_only=True, init=False, eq=False, repr=False, match_args=False)(kind)
+    fields = made.__dataclass_fields__
+    made.__frozen_defaults__ = {name: each.default for name, each in fields.items() if each.default is not MISSING}
+    made.__frozen_factories__ = {
+        name: each.default_factory for name, each in fields.items() if each.default_factory is not MISSING
+    }
     made.__init__ = _init
     made.__setattr__ = _setattr
     made.__delattr__ = _delattr

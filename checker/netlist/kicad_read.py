@@ -40,12 +40,12 @@ def read_kicad(text: str, *, name: str, sha256: str, limits: ReadLimits) -> Netl
 
     Raises `InputTrouble` for damaged text, no component list, or a limit exceeded.
     """
-    parsed = parse(text, name=name, depth=limits.depth)
+    parsed = parse(text, name=name, limits=limits)
     root = parsed.root
     if not child(root, "components"):
         raise InputTrouble("the export has no (components ...) list; export the netlist again", file=name, line=1)
     remarks = list(_version_remark(root, name))
-    nodes = _nodes(parsed)
+    nodes = _nodes(parsed, name, limits)
     parts = _parts(parsed, nodes, name, limits)
     parts = _told_apart(parts, remarks)
     remarks += _lost_nodes(parts, nodes, name)
@@ -74,9 +74,11 @@ def _title(root: Tree) -> str:
     return text_of(child(sheets[0], "title_block"), "title") if sheets else ""
 
 
-def _nodes(parsed: Parsed) -> _Nodes:
+def _nodes(parsed: Parsed, name: str, limits: ReadLimits) -> _Nodes:
     """Nets with unique keys, and the pins of each reference in the order of the file."""
     trees = children(child(parsed.root, "nets"), "net")
+    if sum(len(tree) for tree in trees) > limits.elements:
+        over("elements", limits.elements, "too many nets and pins", file=name)
     codes = [text_of(tree, "code") or str(index) for index, tree in enumerate(trees, start=1)]
     names = [text_of(tree, "name") for tree in trees]
     nets: dict[str, Net] = {}

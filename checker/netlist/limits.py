@@ -15,9 +15,10 @@ Limit = Literal["bytes", "parts", "depth", "elements", "steps"]
 
 @frozen
 class ReadLimits:
-    """`bytes` read in all, includes counted each time; `parts` as written; `depth` of nesting (brackets,
-    includes, subcircuits, expressions); `elements` after subcircuits are expanded; `steps` of one expression. Far
-    above any board, low enough that a hostile file ends within seconds."""
+    """`bytes` read in all, includes counted each time; `parts` as written, other cards counted like them; `depth` of
+    nesting (brackets, includes, subcircuits, expressions); `elements` after subcircuits are expanded, nets and pins,
+    words of one card; `steps` of one expression. Far above any board, low enough that a hostile file ends within
+    half a minute."""
 
     bytes: int = 32 * 1024 * 1024
     parts: int = 200_000

@@ -9,7 +9,7 @@ from __future__ import annotations
 
 import re
 
-from checker.netlist.limits import over
+from checker.netlist.limits import ReadLimits, over
 from checker.pattern import lazy
 from checker.shape import frozen
 from checker.trouble import InputTrouble
@@ -19,6 +19,8 @@ Tree = list["Tree | str"]
 
 _TOKEN = lazy(r'(\()|(\))|"([^"\\]*+(?:\\.[^"\\]*+)*+)"|([^\s()"]++)|(")', re.DOTALL | re.ASCII)
 _OPEN, _CLOSE, _QUOTED, _BARE = 1, 2, 3, 4
+_MOST_LISTS = 5
+"""Lists that an element may take on an average: a pin takes four or five, and what has more is no export."""
 _LISTED = 2
 """Lists at this depth are the components and the nets: their lines are kept."""
 _ESCAPE = lazy(r"\\(.)", re.DOTALL)
@@ -37,8 +39,10 @@ class Parsed:
         return self.lines.get(id(tree), 0)
 
 
-def parse(text: str, *, name: str, depth: int) -> Parsed:
-    """Parse one S-expression. Raises `InputTrouble` with the line for unbalanced, unended or too deep text."""
+def parse(text: str, *, name: str, limits: ReadLimits) -> Parsed:
+    """Parse one S-expression. Raises `InputTrouble` with the line for unbalanced or unended text and for more than the
+    limits `depth` and `elements` allow."""
+    most = _MOST_LISTS * limits.elements
     forest: Tree = []
     current, above = forest, []
     lines: dict[int, int] = {}
@@ -54,8 +58,11 @@ def parse(text: str, *, name: str, depth: int) -> Parsed:
                 at = match.start()
                 line, counted = line + text.count("\n", counted, at), at
                 lines[id(inner)] = line
-            elif len(above) > depth:
-                over("depth", depth, "brackets nested too deep", file=name, line=_line(text, match))
+            if len(above) > limits.depth:
+                over("depth", limits.depth, "brackets nested too deep", file=name, line=_line(text, match))
+            most -= 1
+            if most < 0:
+                over("elements", limits.elements, "too many lists", file=name, line=_line(text, match))
         elif kind == _CLOSE:
             if not above:
                 raise _trouble("a closing bracket without an opening one", name, text, match)

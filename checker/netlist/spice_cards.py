@@ -18,6 +18,7 @@ from checker.trouble import InputTrouble, NotAQuantity
 
 _DOT = lazy(r"\.([A-Za-z]+)[\s=]*(.*)", re.DOTALL)
 _TEMPERATURE = lazy(r"(?<![\w.])temp\s*=\s*(\S+)", re.IGNORECASE)
+_WORD_END = lazy(r"[\s=,]+")
 _COMMANDS = frozenset(
     {"ac", "dc", "op", "tran", "run", "plot", "print", "write", "set", "save", "quit", "exit", "let", "echo"}
     | {"meas", "noise", "tf", "source", "destroy", "linearize"}
@@ -75,6 +76,11 @@ class CardReader:
 
     def take(self, card: Card) -> None:
         """One card: a dot card by its word, else an element of the innermost definition."""
+        self.parts += 1
+        if self.parts > self.limits.parts:
+            over("parts", self.limits.parts, "too many elements and cards", file=card.file, line=card.line)
+        if len(card.text) > self.limits.elements and len(_WORD_END.split(card.text)) > self.limits.elements:
+            over("elements", self.limits.elements, "too many words in one card", file=card.file, line=card.line)
         found = _DOT.fullmatch(card.text)
         if found is None:
             self.element(card)
@@ -96,9 +102,6 @@ class CardReader:
         if not word[0].isalpha() or word.lower() in _COMMANDS:
             self.remark(card, f"the line {card.text[:40]!r} is not understood and passed over")
             return
-        self.parts += 1
-        if self.parts > self.limits.parts:
-            over("parts", self.limits.parts, "too many elements", file=card.file, line=card.line)
         self.open[-1].cards.append(card)
 
     def param(self, card: Card, rest: str) -> None:
@@ -207,7 +210,7 @@ class CardReader:
         self.bytes_left -= max(len(data), 1)
         if self.bytes_left < 0:
             over("bytes", self.limits.bytes, "too many bytes to read", file=card.file, line=card.line)
-        cards, remarks = cards_of(decode(data, found.shown), file=found.shown)
+        cards, remarks = cards_of(decode(data, found.shown), file=found.shown, limits=self.limits)
         self.deck.remarks += remarks
         self.files.append(found.real)
         self.read(cards, section=section)

@@ -8,6 +8,7 @@ from __future__ import annotations
 
 import re
 
+from checker.netlist.limits import ReadLimits, over
 from checker.netlist.types import Remark
 from checker.pattern import lazy
 from checker.quantity.value import Origin
@@ -35,9 +36,9 @@ class Card:
         return Remark(text=text, origin=self.origin, parts=parts)
 
 
-def cards_of(text: str, *, file: str, first_line: int = 1) -> tuple[list[Card], list[Remark]]:
+def cards_of(text: str, *, file: str, limits: ReadLimits, first_line: int = 1) -> tuple[list[Card], list[Remark]]:
     """The cards of one file up to `.end`, and remarks on what was passed over. `first_line`: number of the
-    first line of `text` in the file."""
+    first line of `text` in the file. Raises `InputTrouble` for more cards than the limit `parts` allows."""
     pieces: list[tuple[int, list[str]]] = []
     remarks: list[Remark] = []
     control = ended = 0
@@ -58,6 +59,8 @@ def cards_of(text: str, *, file: str, first_line: int = 1) -> tuple[list[Card], 
             ended = number
         elif bare[0] != "+":
             pieces.append((number, [bare]))
+            if len(pieces) > limits.parts:
+                over("parts", limits.parts, "too many elements and cards", file=file, line=number)
         elif pieces:
             pieces[-1][1].append(bare[1:])
         else:

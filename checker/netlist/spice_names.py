@@ -17,6 +17,8 @@ _INSTANCE = lazy(r"[Xx]([A-Za-z].*)", re.DOTALL)
 def plain_reference(name: str) -> str:
     """`Q_Q21` and `V_Vin` without their prefix, `XU1` as `U1`; any other name as it is. `R_load` stays, since
     a person may well have written that."""
+    if name[1:2] not in ("_", "§") and name[:1] not in ("X", "x"):
+        return name
     separated = _SEPARATED.fullmatch(name)
     if separated:
         letter, rest = separated.groups()
@@ -32,7 +34,7 @@ def references(names: Sequence[str]) -> tuple[list[str], list[int]]:
     positions of the names that repeat an earlier one, which get a suffix."""
     plain = [plain_reference(name) for name in names]
     raw_uses = Counter({name.lower() for name in names})
-    plain_uses = Counter(text.lower() for text in {name.lower(): plain_reference(name) for name in names}.values())
+    plain_uses = Counter({name.lower(): short.lower() for name, short in zip(names, plain, strict=True)}.values())
     result: list[str] = []
     repeated: list[int] = []
     taken: set[str] = set()

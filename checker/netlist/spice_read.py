@@ -60,7 +60,7 @@ def _declared(text: str, name: str, path: Path, include_dirs: tuple[Path, ...], 
     deck = Deck(root=Definition(name=""))
     first, _, others = text.partition("\n")
     skipped = _title(deck, first, others, name)
-    cards, remarks = cards_of(others if skipped else text, file=name, first_line=2 if skipped else 1)
+    cards, remarks = cards_of(others if skipped else text, file=name, limits=limits, first_line=2 if skipped else 1)
     deck.remarks += remarks
     reader = CardReader(deck, Folders(path, include_dirs), path, limits, size)
     reader.read(cards)

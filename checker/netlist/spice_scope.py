@@ -69,7 +69,8 @@ class Scope:
         if text and text[0] in _QUOTES:
             inner = text[1:-1] if text[-1] == _QUOTES[text[0]] and len(text) > 1 else text[1:]
             return self._evaluate(inner, level)
-        if _NAME.fullmatch(text) and self.knows(text.lower()):
+        # Numbers are many, and none begins as a name does.
+        if not text[:1].isdigit() and _NAME.fullmatch(text) and self.knows(text.lower()):
             return self.value(text.lower(), level)
         try:
             return parse_spice_number(text)

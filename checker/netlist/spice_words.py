@@ -13,6 +13,9 @@ _PIECE = lazy(
     r"|[^\s=(),{}'\"](?:[^\s=(),{}]|\{[^{}\s]*\}|(?<=-)\([^\s()]*\))*"
     r"|\S"
 )
+_MARK = lazy(r"[={}'\"]|-\(")
+"""What makes a card more than words between blanks, brackets and commas; most cards have none."""
+_BLANKED = str.maketrans("(),", "   ")
 _REST = lazy(r"[^\s=(),{}]*")
 _VALUE_RUN = lazy(r"[^\s(),{}'\"=]*")
 _BLANKS = lazy(r"\s*")
@@ -35,6 +38,8 @@ class Words:
 
 def split_words(text: str, *, decimal_comma: bool = False) -> Words:
     """Split a card. With `decimal_comma`, a lone `4,7uH` from the fourth word on stays one word."""
+    if not (_MARK.search(text) or (decimal_comma and "," in text)):
+        return Words(positional=_kept(text.translate(_BLANKED).split()), named={}, groups={})
     positional: list[str] = []
     named: dict[str, str] = {}
     groups: dict[str, tuple[str, ...]] = {}
@@ -53,8 +58,12 @@ def split_words(text: str, *, decimal_comma: bool = False) -> Words:
             positional.append(text[found.start() : at])
         elif piece not in "=(),":
             positional.append(piece)
-    kept = tuple(word for word in positional if word.lower() != "params:")
-    return Words(positional=kept, named=named, groups=groups)
+    return Words(positional=_kept(positional), named=named, groups=groups)
+
+
+def _kept(words: list[str]) -> tuple[str, ...]:
+    """The words but for `params:`, which only says that pairs follow."""
+    return tuple(word for word in words if word[-1] != ":" or word.lower() != "params:")
 
 
 def _value(text: str, at: int) -> tuple[str, int]:

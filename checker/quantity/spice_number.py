@@ -33,6 +33,9 @@ _NUMBER = lazy(
 )
 _DECIMAL = lazy(r"[+-]?\d*\.?\d+(?:[eE][+-]?\d+)?", re.ASCII)
 """What `float` reads as it stands: most numbers of a large file, on a short path."""
+_WHOLE = lazy(r"[+-]?\d*\.?\d+", re.ASCII)
+_SHORT = {letter: _SUFFIXES[letter.lower()] for letter in "tgkmunpfTGKMUNPF"}
+"""Letters that, behind a plain number, are all there is to it: the short path of the other numbers."""
 _INFIX = lazy(r"([+-]?)(\d*)(meg|[tgxkmunpfr])(\d{1,3})([a-z%]*)", re.IGNORECASE)
 
 
@@ -45,6 +48,8 @@ def parse_spice_number(text: str) -> float:
     """
     if text[-1:].isdigit() and _DECIMAL.fullmatch(text):
         return _finite(float(text), text)
+    if text[-1:] in _SHORT and _WHOLE.fullmatch(text, 0, len(text) - 1):
+        return _finite(float(text[:-1] + _SHORT[text[-1]]), text)
     folded = plain(text)
     found = _NUMBER.fullmatch(folded)
     if found is not None:

@@ -7,6 +7,7 @@ import sexpdata  # type: ignore[import-untyped]
 from hypothesis import given
 from hypothesis import strategies as st
 
+from checker.netlist.limits import ReadLimits
 from checker.netlist.sexpr import Tree, parse
 from checker.trouble import InputTrouble
 
@@ -33,7 +34,7 @@ def plain(item: Item) -> Tree | str:
 
 @given(items=st.lists(TREES, max_size=6), gap=st.sampled_from([" ", "\n", "\t\r\n "]))
 def test_what_is_written_is_read(items: list[Item], gap: str) -> None:
-    assert parse(written(items, gap), name="x", depth=64).root == plain(items)
+    assert parse(written(items, gap), name="x", limits=ReadLimits()).root == plain(items)
 
 
 @given(items=st.lists(st.recursive(st.text("abcxyz", min_size=2, max_size=5), st.lists, max_leaves=20), max_size=6))
@@ -47,7 +48,7 @@ def test_a_library_reads_the_same_trees(items: list[Tree | str]) -> None:
         return [atoms(each) for each in tree] if isinstance(tree, list) else tree.value()  # type: ignore[attr-defined]
 
     # The library turns () and nil alike into an empty list.
-    assert parse(text, name="x", depth=64).root == atoms(sexpdata.loads(text))
+    assert parse(text, name="x", limits=ReadLimits()).root == atoms(sexpdata.loads(text))
 
 
 @pytest.mark.parametrize(
@@ -63,15 +64,15 @@ def test_a_library_reads_the_same_trees(items: list[Tree | str]) -> None:
     ],
 )
 def test_escapes(quoted: str, text: str) -> None:
-    assert parse(f"({quoted})", name="x", depth=2).root == [text]
+    assert parse(f"({quoted})", name="x", limits=ReadLimits(depth=2)).root == [text]
 
 
 def test_a_quote_ends_a_bare_atom() -> None:
-    assert parse('(a"b c"d)', name="x", depth=2).root == ["a", "b c", "d"]
+    assert parse('(a"b c"d)', name="x", limits=ReadLimits(depth=2)).root == ["a", "b c", "d"]
 
 
 def test_lines_of_lists_of_the_third_level() -> None:
-    parsed = parse("(a\n\n(b (c\n(d))\n(c))\n (e (f)))", name="x", depth=9)
+    parsed = parse("(a\n\n(b (c\n(d))\n(c))\n (e (f)))", name="x", limits=ReadLimits())
     b, e = parsed.root[1], parsed.root[2]
     assert [parsed.line(tree) for tree in (b[1], b[2], e[1])] == [3, 5, 6]  # type: ignore[arg-type]
     assert parsed.line(b) == 0  # type: ignore[arg-type]
@@ -82,5 +83,5 @@ def test_lines_of_lists_of_the_third_level() -> None:
 )
 def test_what_is_damaged_is_named_with_its_line(text: str, line: int) -> None:
     with pytest.raises(InputTrouble) as caught:
-        parse(text, name="x", depth=4)
+        parse(text, name="x", limits=ReadLimits(depth=4))
     assert (caught.value.file, caught.value.line) == ("x", line)
