@@ -66,7 +66,12 @@ def _owner(name: str, circuit: Circuit) -> str:
 
 
 def _said(fact: PartFact) -> list[str]:
-    """What rules and corners take from the part beyond its elements."""
+    """What rules and corners take from the part beyond its elements. Of ratings, those of semiconductors alone: no rule
+    asks for a resistor's, and only one format shows its size."""
     tolerance = fact.value.tolerance if fact.value is not None else None
-    ratings = [f"{each.name} {getattr(fact.ratings, each.name)}" for each in fields(fact.ratings)]
+    if fact.kind not in ("bipolar", "fet", "diode"):
+        return [str(tolerance)]
+    # Ratings of passive parts are shown, and taken by no rule yet.
+    judged = fact.kind in ("bipolar", "fet", "diode")
+    ratings = [f"{each.name} {getattr(fact.ratings, each.name)}" for each in fields(fact.ratings) if judged]
     return [f"{tolerance} {fact.gain_min} {fact.gain_max}", *ratings]

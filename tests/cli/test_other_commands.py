@@ -67,7 +67,7 @@ def test_help_lists_every_command_and_no_other(call: Call) -> None:
     done = call("--help")
     assert done.status == 0
     listed = [line.split()[0] for line in done.out.partition("Commands:\n")[2].splitlines()]
-    assert listed == list(COMMANDS) == ["check", "specs", "why", "intent", "rules", "parts"]
+    assert listed == list(COMMANDS) == ["check", "specs", "why", "compare", "intent", "rules", "parts"]
 
 
 def test_no_command_prints_help_to_standard_error(call: Call) -> None:
