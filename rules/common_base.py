@@ -37,7 +37,10 @@ class BaseNotGrounded(Rule[Stage]):
     )
 
     def judge(self, board: Board, subject: Stage, limits: Mapping[str, Bound]) -> Iterable[Evidence]:
-        """One check of the gain that the base costs."""
+        """One check of the gain that the base costs; the second half of a pair has its base driven on purpose."""
+        paired = {g.id for g in board.recognition.groups if g.configuration == "differential-pair"}
+        if paired & set(subject.groups):
+            return ()
         bypass = [use.part for use in board.capacitors() if use.stage == subject.id and use.use == "bypass"]
         return [
             Evidence(

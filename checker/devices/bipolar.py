@@ -88,9 +88,9 @@ def start(p: Mapping[str, FloatArray]) -> FloatArray:
     return np.stack([crit, np.zeros_like(crit)], axis=-1)
 
 
-def off(p: Mapping[str, FloatArray]) -> FloatArray:
-    """Junction voltages (S, n, 2) of a transistor that does not conduct."""
-    return np.zeros((*p["is"].shape, 2))
+def ends(p: Mapping[str, FloatArray]) -> tuple[FloatArray, FloatArray]:
+    """Junction voltages (S, n, 2) of a transistor that conducts, and of one that does not."""
+    return start(p), np.zeros((*p["is"].shape, 2))
 
 
 def junctions(v: FloatArray, polarity: FloatArray) -> FloatArray:

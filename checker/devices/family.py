@@ -79,8 +79,9 @@ class TransistorFamily(Family, Protocol):
         """Its names in `figures` for current into output, control and common terminal, voltage from output to common
         and from control to common, and power."""
 
-    def off(self, p: Params, /) -> FloatArray:
-        """Junction voltages (S, n, j) of a device that does not conduct: a seed of the search for other rests."""
+    def ends(self, p: Params, /) -> tuple[FloatArray, FloatArray]:
+        """Junction voltages (S, n, j) of a device that conducts as a closed switch, and of one that does not: seeds of
+        the search for other rests."""
 
     def small_signal(self, p: Params, polarity: FloatArray, v: FloatArray, /) -> dict[str, FloatArray]:
         """Intrinsic gm, g_pi, g_o [S] and c, all capacitance at the control terminal [F], each (S, n)."""

@@ -76,9 +76,10 @@ def start(p: Mapping[str, FloatArray]) -> FloatArray:
     return np.stack([0.5 * p["vto"], p["vto"] - 1.0], axis=-1)
 
 
-def off(p: Mapping[str, FloatArray]) -> FloatArray:
-    """(vgs, vgd) of a transistor that does not conduct."""
-    return np.stack([p["vto"] - 1.0, p["vto"] - 1.0], axis=-1)
+def ends(p: Mapping[str, FloatArray]) -> tuple[FloatArray, FloatArray]:
+    """(vgs, vgd), each (S, n, 2), of a channel fully open, and of one that is pinched off."""
+    none = np.zeros_like(p["vto"])
+    return np.stack([none, none - 0.1], axis=-1), np.stack([p["vto"] - 1.0, p["vto"] - 1.0], axis=-1)
 
 
 def junctions(v: FloatArray, polarity: FloatArray) -> FloatArray:

@@ -87,9 +87,13 @@ def start(p: Mapping[str, FloatArray]) -> FloatArray:
     return np.stack([p["vto"] + 1.0, np.full_like(p["vto"], 2.0), np.zeros_like(p["vto"])], axis=-1)
 
 
-def off(p: Mapping[str, FloatArray]) -> FloatArray:
-    """(vgs, vds, vbs) of a transistor that does not conduct."""
-    return np.stack([p["vto"] - 1.0, np.full_like(p["vto"], 2.0), np.zeros_like(p["vto"])], axis=-1)
+def ends(p: Mapping[str, FloatArray]) -> tuple[FloatArray, FloatArray]:
+    """(vgs, vds, vbs), each (S, n, 3), of a channel wide open, and of one that does not conduct."""
+    none = np.zeros_like(p["vto"])
+    return (
+        np.stack([p["vto"] + 3.0, none + 0.05, none], axis=-1),
+        np.stack([p["vto"] - 1.0, none + 2.0, none], axis=-1),
+    )
 
 
 def junctions(v: FloatArray, polarity: FloatArray) -> FloatArray:

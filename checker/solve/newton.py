@@ -36,7 +36,8 @@ BoolArray = NDArray[np.bool_]
 @frozen
 class Solved:
     """`x` (S, U); `done` (S, islands): converged without helpers; `step` (S, islands) [V]: the last full undamped
-    correction; `kcl` (S, islands): worst current balance; `condition` and `sign` (S, islands): of the Jacobian."""
+    correction; `kcl` (S, islands): worst current balance; `condition` and `sign` (S, islands): of the Jacobian.
+    `helper` (S, islands): place in `HELPERS` of what brought the island there."""
 
     x: FloatArray
     done: BoolArray
@@ -44,6 +45,13 @@ class Solved:
     kcl: FloatArray
     condition: FloatArray
     sign: FloatArray
+    helper: NDArray[np.int64]
+
+
+SOLVES_REL = 1e-9
+"""A least-squares step counts as a solution if it leaves no more than this part of the right side."""
+HELPERS = ("plain", "conductance", "sources")
+"""The ladder of hard starts, in order."""
 
 
 def solve(assembler: Assembler, x0: FloatArray | None = None, *, quick: bool = False) -> Solved:
@@ -56,20 +64,22 @@ def solve(assembler: Assembler, x0: FloatArray | None = None, *, quick: bool = F
     count = sum(g[1] for g in plan.groups)
     x = np.zeros(shape) if x0 is None else x0.copy()
     done = np.zeros((shape[0], count), dtype=bool)
+    helper = np.zeros(done.shape, dtype=np.int64)
     if count:
         start = assembler.start() if x0 is None else assembler.junctions(assembler.voltages(x))
         x, done, _ = iterate(assembler, x, start, done, limit=QUICK_ITERATIONS if quick else MAX_ITERATIONS)
-        for helper in (BY_CONDUCTANCE, BY_SOURCES):
+        for place, ladder in enumerate((BY_CONDUCTANCE, BY_SOURCES), start=1):
             if quick or done.all():
                 break
-            x, done = follow(assembler, x, done, helper)
-    solved = _certify(assembler, x, done)
+            helper[~done] = place
+            x, done = follow(assembler, x, done, ladder)
+    solved = _certify(assembler, x, done, helper)
     restless = solved.done & (solved.kcl > KCL_REL)
     if restless.any():
         # The voltages stand, but a steep device turns their last step into current: one more pass settles it.
         at = assembler.junctions(assembler.voltages(x))
         x, _, _ = iterate(assembler, x, at, ~restless, limit=1)
-        solved = _certify(assembler, x, done)
+        solved = _certify(assembler, x, done, helper)
     return solved
 
 
@@ -116,7 +126,8 @@ def newton_step(assembler: Assembler, f: FloatArray, flat: FloatArray) -> FloatA
 
 
 def _solve_stack(a: FloatArray, b: FloatArray) -> FloatArray:
-    """Stacked solve; a singular member is replaced by its least-squares step, the others are unharmed."""
+    """Stacked solve; a singular member gets its least-squares step where that solves it, else nan; the others are
+    unharmed. (A step that leaves a residual would look like standing still.)"""
     try:
         return np.asarray(np.linalg.solve(a, b), dtype=float)
     except np.linalg.LinAlgError:
@@ -125,7 +136,9 @@ def _solve_stack(a: FloatArray, b: FloatArray) -> FloatArray:
             try:
                 out[where] = np.linalg.solve(a[where], b[where])
             except np.linalg.LinAlgError:
-                out[where] = np.linalg.lstsq(a[where], b[where], rcond=None)[0]
+                step = np.linalg.lstsq(a[where], b[where], rcond=None)[0]
+                left = np.abs(a[where] @ step - b[where]).max()
+                out[where] = step if left <= SOLVES_REL * np.abs(b[where]).max() else np.nan
         return out
 
 
@@ -202,7 +215,7 @@ def follow(assembler: Assembler, x: FloatArray, done: BoolArray, helper: _Helper
     return np.where(expand(assembler, reached), state[0], x), reached
 
 
-def _certify(assembler: Assembler, x: FloatArray, done: BoolArray) -> Solved:
+def _certify(assembler: Assembler, x: FloatArray, done: BoolArray, helper: NDArray[np.int64]) -> Solved:
     """One more full step without any helper from `x`; its size and the current balance there are the proof.
 
     Currents too small for their balance to be resolved at a node's voltage count as the smallest that could be.
@@ -221,7 +234,7 @@ def _certify(assembler: Assembler, x: FloatArray, done: BoolArray) -> Solved:
     step_isl = per_island(assembler, step)
     within = per_island(assembler, np.where(node, step / (STEP_ABS_V + STEP_REL * np.abs(x)), 0.0)) <= 1.0
     kcl = per_island(assembler, balance)
-    return Solved(x=x, done=done & within, step=step_isl, kcl=kcl, condition=condition, sign=sign)
+    return Solved(x=x, done=done & within, step=step_isl, kcl=kcl, condition=condition, sign=sign, helper=helper)
 
 
 def _conditions(assembler: Assembler, flat: FloatArray) -> tuple[FloatArray, FloatArray]:
@@ -242,6 +255,16 @@ def _conditions(assembler: Assembler, flat: FloatArray) -> tuple[FloatArray, Flo
         empty = np.zeros((assembler.scenarios, 0))
         return empty, empty
     return _first_row(conditions, assembler.scenarios), _first_row(signs, assembler.scenarios)
+
+
+def signs(assembler: Assembler, x: FloatArray) -> FloatArray:
+    """Sign of det J at `x` (S, U), (S, islands), with each branch equation's own -1 taken out: a stable rest has +1."""
+    _, entries = assembler.contributions(x, assembler.junctions(assembler.voltages(x)))
+    out = [np.linalg.slogdet(block)[0] for block in assembler.block_views(assembler.jacobian(entries))]
+    count = len(assembler.island_sizes)
+    branches = np.array([len(i.voltages) + len(i.inductors) for i in assembler.plan.islands[:count]])
+    raw = np.concatenate(out, axis=1) if out else np.zeros((x.shape[0], 0))
+    return np.asarray(raw * (1.0 - 2.0 * (branches % 2)))
 
 
 def _first_row(values: list[FloatArray], scenarios: int) -> FloatArray:

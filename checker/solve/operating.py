@@ -138,6 +138,7 @@ def self_heated(cold: OperatingPoint, *, rounds: int = 8) -> OperatingPoint:
         rise = {
             kind: np.minimum(np.nan_to_num(table["power_w"]) * np.nan_to_num(cold.circuit.devices[kind].rth_kpw), 500.0)
             for kind, table in point.devices.items()
+            if "power_w" in table
         }
         before = point
         point = operating_point(cold.circuit, near=point, rise_k=rise)

@@ -13,8 +13,9 @@ from numpy.typing import NDArray
 
 from checker.circuit.types import Branches, Circuit, Devices
 from checker.devices.family import TRANSISTORS
+from checker.shape import frozen
 from checker.solve.assemble import Assembler
-from checker.solve.newton import BY_SOURCES, follow, iterate
+from checker.solve.newton import BY_SOURCES, follow, iterate, signs
 from checker.solve.operating import Island, OperatingPoint, operating_point
 from checker.solve.poles import seat
 
@@ -34,11 +35,18 @@ def searched(point: OperatingPoint) -> OperatingPoint:
     several = {k: d for k, d in members.items() if 2 <= len(d) <= MOST_DEVICES}
     if not several:
         return point
-    x, good = _seeded(point, several)
-    found = {k: _distinct(point, k, x, good) for k in several}
-    if all(len(rows) <= 1 for rows in found.values()):
-        return _marked(point, found)
-    return _marked(_ramped(point, [k for k, rows in found.items() if len(rows) > 1]), found)
+    x, good, sign = _seeded(point, several)
+    found = {k: _counted(point, k, x, good, sign) for k in several}
+    many = [k for k, count in found.items() if count.rests > 1]
+    return _marked(_ramped(point, many) if many else point, found)
+
+
+@frozen
+class _Count:
+    """What is known of an island's solutions: `rests` at least, `whole` where the signs say that none is missing."""
+
+    rests: int
+    whole: bool
 
 
 def _members(point: OperatingPoint) -> dict[int, list[tuple[str, int]]]:
@@ -54,32 +62,39 @@ def _members(point: OperatingPoint) -> dict[int, list[tuple[str, int]]]:
     return out
 
 
-def _seeded(point: OperatingPoint, several: dict[int, list[tuple[str, int]]]) -> tuple[FloatArray, NDArray[np.bool_]]:
-    """Solutions from every pattern: x (seeds, U) and converged (seeds, islands)."""
+def _seeded(
+    point: OperatingPoint, several: dict[int, list[tuple[str, int]]]
+) -> tuple[FloatArray, NDArray[np.bool_], FloatArray]:
+    """Solutions from every pattern: x (seeds, U), converged (seeds, islands), and sign of det J there."""
     seeds = 2 ** max(len(devices) for devices in several.values())
     device_k = {kind: np.repeat(t[:1], seeds, axis=0) for kind, t in point.device_k.items()}
     assembler = Assembler(_copies(point.circuit, seeds), point.plan, device_k)
     start = {kind: at.copy() for kind, at in zip(point.plan.placed, assembler.start(), strict=True)}
-    idle_at = {kind: TRANSISTORS[kind]().off(assembler.p[kind]) for kind in start if kind in TRANSISTORS}
+    ends = {kind: TRANSISTORS[kind]().ends(assembler.p[kind]) for kind in start if kind in TRANSISTORS}
     for devices in several.values():
         for bit, (kind, j) in enumerate(devices):
-            off = (np.arange(seeds) >> bit) & 1 == 1
-            start[kind][off, j] = idle_at[kind][off, j]
+            off = (np.arange(seeds) >> bit) & 1
+            for here, seed in enumerate(ends[kind]):
+                start[kind][off == here, j] = seed[off == here, j]
     x = np.zeros((seeds, point.plan.n_unknown))
     idle = np.ones((seeds, len(assembler.island_sizes)), dtype=bool)
     idle[:, list(several)] = False
     out, done, _ = iterate(assembler, x, tuple(start.values()), idle, limit=SEED_PASSES)
-    return out, done & ~idle
+    return out, done & ~idle, signs(assembler, out)
 
 
-def _distinct(point: OperatingPoint, island: int, x: FloatArray, good: NDArray[np.bool_]) -> list[FloatArray]:
-    """Different solutions of an island, each (n,), the point's own among them."""
+def _counted(point: OperatingPoint, island: int, x: FloatArray, good: NDArray[np.bool_], sign: FloatArray) -> _Count:
+    """Different solutions of an island, the point's own among them, by the sign of det J.
+
+    The signs of all solutions sum to +1: p rests found and n balances prove max(p, n + 1) rests.
+    """
     rows = _rows(point, island)
-    kept = [point.solved.x[0, rows]]
-    for solution in x[good[:, island]][:, rows]:
-        if all(float(np.max(np.abs(solution - other))) > SAME_V for other in kept):
-            kept.append(solution)
-    return kept
+    kept = [(point.solved.x[0, rows], float(signs(point.assembler, point.solved.x)[0, island]))]
+    for solution, its_sign in zip(x[good[:, island]][:, rows], sign[good[:, island], island].tolist(), strict=True):
+        if all(float(np.max(np.abs(solution - other))) > SAME_V for other, _ in kept):
+            kept.append((solution, its_sign))
+    positive, negative = (sum(s * want > 0.0 for _, s in kept) for want in (1.0, -1.0))
+    return _Count(rests=max(positive, negative + 1), whole=positive - negative == 1)
 
 
 def _rows(point: OperatingPoint, island: int) -> list[int]:
@@ -98,13 +113,22 @@ def _ramped(point: OperatingPoint, islands: list[int]) -> OperatingPoint:
     return operating_point(point.circuit, near=point, x0=x)
 
 
-def _marked(point: OperatingPoint, found: dict[int, list[FloatArray]]) -> OperatingPoint:
-    """Islands with the number of rests. An odd number of solutions holds one balance less than rests than half."""
-    islands: list[Island] = list(point.islands)
-    for k, rows in found.items():
-        # n solutions whose signs sum to one: (n + 1)/2 are rests, the others balance points between them.
-        islands[k] = replace(islands[k], states=(len(rows) + 1) // 2, exhaustive=True)
-    return replace(point, islands=tuple(islands))
+def _marked(point: OperatingPoint, found: dict[int, _Count]) -> OperatingPoint:
+    """Islands with the number of rests; a balance between rests, which its negative sign gives away, is refused."""
+    sign = signs(point.assembler, point.solved.x)
+    fallen = {k: count.rests for k, count in found.items() if count.rests > 1 and sign[0, k] < 0.0}
+    out = point if not fallen else operating_point(point.circuit, near=point, refuse=_reasons(fallen))
+    islands: list[Island] = list(out.islands)
+    for k, count in found.items():
+        islands[k] = replace(islands[k], states=count.rests, exhaustive=count.whole)
+    return replace(out, islands=tuple(islands))
+
+
+def _reasons(rests: dict[int, int]) -> dict[int, str]:
+    """Why the solution of each of these islands is not printed, by its number of rests."""
+    return {
+        k: f"{count} rests, and the balance between them is none; a state must say which" for k, count in rests.items()
+    }
 
 
 def _copies(circuit: Circuit, count: int) -> Circuit:
@@ -144,9 +168,7 @@ def settled(point: OperatingPoint, growing: NDArray[np.complex128]) -> Operating
     if not real.size:
         return point
     several = {k: island for k, island in enumerate(point.islands) if island.states > 1 and island.ok[0]}
-    reasons = {
-        k: f"{i.states} rests, and the balance between them is none; a state must say which" for k, i in several.items()
-    }
+    reasons = _reasons({k: i.states for k, i in several.items()})
     reasons |= {k: NO_REST for k in _tipping(point, real) if k not in reasons}
     if not reasons:
         return point
