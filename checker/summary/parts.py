@@ -71,5 +71,7 @@ def _said(fact: PartFact) -> list[str]:
     tolerance = fact.value.tolerance if fact.value is not None else None
     if fact.kind not in ("bipolar", "fet", "diode"):
         return [str(tolerance)]
-    ratings = [f"{each.name} {getattr(fact.ratings, each.name)}" for each in fields(fact.ratings)]
+    # Ratings of passive parts are shown, and taken by no rule yet.
+    judged = fact.kind in ("bipolar", "fet", "diode")
+    ratings = [f"{each.name} {getattr(fact.ratings, each.name)}" for each in fields(fact.ratings) if judged]
     return [f"{tolerance} {fact.gain_min} {fact.gain_max}", *ratings]
