@@ -15,6 +15,8 @@ from multiprocessing.process import BaseProcess
 from pathlib import Path
 from typing import Any, Generic, TypeVar
 
+from checker.cli.threads import one_thread
+
 AnswerT = TypeVar("AnswerT")
 PATIENCE_S = 1.0
 """How often a worker without work looks whether its parent is still there."""
@@ -101,8 +103,7 @@ def prepare() -> None:
     module is taken from the working folder by a worker that is started anew.
     """
     os.environ["PYTHONSAFEPATH"] = "1"
-    for name in ("OPENBLAS_NUM_THREADS", "OMP_NUM_THREADS", "MKL_NUM_THREADS"):
-        os.environ.setdefault(name, "1")
+    one_thread()
 
 
 def _may_fork() -> bool:
