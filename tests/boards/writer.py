@@ -145,7 +145,7 @@ def placed_parts(text: str) -> list[Placed]:
 
 def _design(name: str, title: str) -> Iterator[str]:
     yield f'  (design\n    (source "{name}.kicad_sch")\n    (date "2025-03-14T10:00:00+0000")'
-    yield '    (tool "Eeschema 8.0.4")\n    (sheet (number "1") (name "/") (tstamps "/")\n      (title_block'
+    yield '    (tool "schematic editor 8.0.4")\n    (sheet (number "1") (name "/") (tstamps "/")\n      (title_block'
     yield f'        (title "{title}")\n        (company)\n        (rev "1")\n        (date "2025-03-14")'
     yield f'        (source "{name}.kicad_sch")'
     comments = "\n".join(f'        (comment (number "{n}") (value ""))' for n in range(1, 10))

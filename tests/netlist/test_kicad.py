@@ -45,7 +45,7 @@ VERSION_E = r"""(export (version "E")
 """
 
 VERSION_D = r"""(export (version D)
-  (design (source /home/me/amp.sch) (tool "eeschema (2012-nov-02)-testing"))
+  (design (source /home/me/amp.sch) (tool "schematic editor (2012-nov-02)-testing"))
   (components
     (comp (ref Q1) (value BC850)
       (libsource (lib own) (part NPN_ALIAS))

@@ -68,8 +68,8 @@ def test_encodings_and_line_ends(read: Read, encoding: str, ending: str) -> None
         b"\x89PNG\r\n\x1a\n" + bytes(range(1, 32)) * 20,
         b"<?xml version='1.0'?>\n<board/>\n",
         b"It was a dark and stormy night.\nThe rain fell in torrents.\n",
-        b"(kicad_sch (version 20230121) (generator eeschema))",
-        b"( { EESchema Netlist Version 1.1 created  1/1/2012 } )",
+        b"(kicad_sch (version 20230121) (generator schematic editor))",
+        b"( { schematic editor Netlist Version 1.1 created  1/1/2012 } )",
         b"* only a comment\n",
     ],
 )
