@@ -44,11 +44,15 @@ from checker.record import (
 )
 from checker.setup import Setup, set_up
 from checker.shape import frozen
+from checker.solve.counters import COUNTERS
 from checker.summary.ledger import Ledger
 from checker.summary.parts import parts
 from checker.summary.stages import group_records, stage_records
 from checker.summary.surroundings import cautions, gains, islands, nets, ports, rails
 
+MOST_PASSES, MOST_EVALUATIONS = 1_500, 200_000
+"""Newton passes and device evaluations after which no further remedy is sought: a bound on time that is the same on
+every machine. The sample board with three mistakes takes about 200 and 12,000."""
 MOST_REMEDIES = 24
 """Findings for which a remedy is sought, worst first: each costs a few stacked solves."""
 
@@ -186,13 +190,16 @@ def _mended(
         return tuple(finding for _, finding in pairs)
     from checker.remedy.search import propose  # a clean board does not pay for it
 
-    out = []
-    for k, (verdict, finding) in enumerate(pairs):
-        remedy = None
-        if k in chosen:
-            remedy = propose(verdict, board, rulebook.rules, limits, setup.board, setup.corners_with)
-        out.append(finding if remedy is None else replace(finding, remedy=remedy))
-    return tuple(out)
+    mended: dict[int, Finding] = {}
+    passes, evaluations = COUNTERS.newton_passes + MOST_PASSES, COUNTERS.device_evaluations + MOST_EVALUATIONS
+    for k in (k for k in order if k in chosen):
+        if COUNTERS.newton_passes > passes or COUNTERS.device_evaluations > evaluations:
+            break
+        verdict, finding = pairs[k]
+        remedy = propose(verdict, board, rulebook.rules, limits, setup.board, setup.corners_with)
+        if remedy is not None:
+            mended[k] = replace(finding, remedy=remedy)
+    return tuple(mended.get(k, finding) for k, (_, finding) in enumerate(pairs))
 
 
 def _counts(stage: Stage) -> bool:

@@ -48,7 +48,7 @@ class Setup:
     def board(self, scenarios: Sequence[Scenario]) -> Board:
         """A board over these scenarios (nominal first); stages and links stay those of the nominal."""
         circuit = with_changes(self.circuit, tuple(scenarios))
-        trials = any(scenario.kind == "candidate" for scenario in scenarios)
+        trials = any(scenario.kind in ("candidate", "sample") for scenario in scenarios)
         bench = Bench(
             circuit=circuit,
             point=operating_point(circuit, near=self.point, quick=trials),

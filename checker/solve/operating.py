@@ -131,8 +131,11 @@ def operating_point(
     return _collect(circuit, plan, assembler, solved, device_k, refused)
 
 
-def self_heated(cold: OperatingPoint, *, rounds: int = 8) -> OperatingPoint:
-    """The second solution, junctions at their own temperature: TJ = TA + P RthJA where RthJA is known."""
+def self_heated(cold: OperatingPoint, *, rounds: int = 8, quick: bool = False) -> OperatingPoint:
+    """The second solution, junctions at their own temperature: TJ = TA + P RthJA where RthJA is known.
+
+    `quick`: as in `operating_point`.
+    """
     point = cold
     for _ in range(rounds):
         rise = {
@@ -141,7 +144,7 @@ def self_heated(cold: OperatingPoint, *, rounds: int = 8) -> OperatingPoint:
             if "power_w" in table
         }
         before = point
-        point = operating_point(cold.circuit, near=point, rise_k=rise)
+        point = operating_point(cold.circuit, near=point, rise_k=rise, quick=quick)
         moved = [float(np.abs(t - before.device_k[kind]).max(initial=0.0)) for kind, t in point.device_k.items()]
         if max(moved, default=0.0) < 0.01:
             break
