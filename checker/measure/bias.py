@@ -81,6 +81,7 @@ def region_code(bench: Bench, stage: str) -> Figure:
     if REGIONS[int(codes[0])] == "cut-off":
         # At rest means with everything connected: an open connector on the base leaves that undecided.
         require_not_fed(bench, stage, base_reach(bench, stage))
+        _require_off_in_all_states(bench, stage, codes)
     return figure(
         "region_code",
         stage,
@@ -88,6 +89,17 @@ def region_code(bench: Bench, stage: str) -> Figure:
         "",
         formula="current against the shorted current, VBC and IC/IB, VDS against VGS - VTH",
     )
+
+
+def _require_off_in_all_states(bench: Bench, stage: str, codes: FloatArray) -> None:
+    """Raises CannotTell for a device that is cut off at rest and conducts in some state: it is switched on purpose."""
+    on = [
+        scenario.name
+        for scenario, code in zip(bench.scenarios, codes, strict=True)
+        if scenario.kind == "state" and np.isfinite(code) and REGIONS[int(code)] != "cut-off"
+    ]
+    if on:
+        raise CannotTell(f"the state in which {stage} is to be judged (it conducts in: {on[0]})", "a [[state]] entry")
 
 
 def region_words(bench: Bench, stage: str, scenario: int) -> str:
