@@ -13,8 +13,8 @@ from dataclasses import field, replace
 from typing import ClassVar, Generic, Literal, Protocol, TypeVar
 
 import numpy as np
-from numpy.typing import NDArray
 
+from checker.arrays import BoolArray, FloatArray, IntArray
 from checker.circuit.types import Port
 from checker.intent.types import TargetIntent
 from checker.quantity.figure import Figure
@@ -152,11 +152,11 @@ class Bound:
 
     unit: str
     source: str
-    low: float | NDArray[np.float64] | None = None
-    high: float | NDArray[np.float64] | None = None
+    low: float | FloatArray | None = None
+    high: float | FloatArray | None = None
 
     @classmethod
-    def at(cls, value: float | NDArray[np.float64], unit: str, source: str) -> Bound:
+    def at(cls, value: float | FloatArray, unit: str, source: str) -> Bound:
         """Both ends at one value: serves as a least, a most or an equal."""
         return cls(low=value, high=value, unit=unit, source=source)
 
@@ -181,10 +181,10 @@ class Check:
     figure: Figure
     relation: Relation
     bound: Bound
-    failed: NDArray[np.bool_]
-    unknown: NDArray[np.bool_]
-    worst: NDArray[np.int64]
-    excess: NDArray[np.float64]
+    failed: BoolArray
+    unknown: BoolArray
+    worst: IntArray
+    excess: FloatArray
     applies: bool = True
 
 
@@ -214,7 +214,7 @@ def require(figure: Figure, relation: Relation, bound: Bound) -> Check:
     )
 
 
-def _excess(values: NDArray[np.float64], relation: Relation, bound: Bound) -> NDArray[np.float64]:
+def _excess(values: FloatArray, relation: Relation, bound: Bound) -> FloatArray:
     """(S, F): how far outside the bound, negative inside; a hair of rounding is given to the figure."""
     if relation == "equals":
         low = _column(bound.low)
@@ -228,7 +228,7 @@ def _excess(values: NDArray[np.float64], relation: Relation, bound: Bound) -> ND
     return np.maximum(under, over)
 
 
-def _column(end: float | NDArray[np.float64] | None) -> NDArray[np.float64]:
+def _column(end: float | FloatArray | None) -> FloatArray:
     """A bound's end as (S, 1) or (1, 1); open is nan, so that a rule that forgot it is told, not believed."""
     return np.reshape(np.asarray(np.nan if end is None else end, dtype=np.float64), (-1, 1))
 

@@ -13,7 +13,7 @@ import pytest
 ROOT = Path(__file__).resolve().parents[1]
 
 LAYERS: tuple[tuple[str, ...], ...] = (
-    ("words", "constants", "trouble", "shape", "pattern"),
+    ("words", "constants", "trouble", "shape", "pattern", "arrays"),
     ("record",),
     ("quantity",),
     ("netlist", "cards", "intent"),

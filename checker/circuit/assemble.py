@@ -6,20 +6,12 @@ from collections.abc import Iterable, Mapping
 from dataclasses import replace
 
 import numpy as np
-from numpy.typing import NDArray
 
+from checker.arrays import FloatArray, IntArray
 from checker.circuit.draft import Draft, DraftDevice, DraftPort, Wire
 from checker.circuit.order import natural, natural_key
 from checker.circuit.parameters import PARAMETERS
-from checker.circuit.types import (
-    Branches,
-    Circuit,
-    Couplings,
-    Devices,
-    FloatArray,
-    Port,
-    Scenario,
-)
+from checker.circuit.types import Branches, Circuit, Couplings, Devices, Port, Scenario
 
 NOMINAL = Scenario(name="nominal")
 
@@ -69,7 +61,7 @@ def frozen(array: FloatArray) -> FloatArray:
 
 def _branches(wires: Mapping[str, Wire], node: Mapping[str, int]) -> Branches:
     names = tuple(natural(wires))
-    nodes: NDArray[np.int64] = np.array(
+    nodes: IntArray = np.array(
         [(node[wires[name].first], node[wires[name].second]) for name in names], dtype=np.int64
     ).reshape(len(names), 2)
     nodes.setflags(write=False)

@@ -9,10 +9,11 @@ from typing import Final
 
 import numpy as np
 
+from checker.arrays import FloatArray
 from checker.circuit.assemble import NOMINAL
 from checker.circuit.drives import DRIVEN_OHM, OPEN_OHM, drive_name, high_volts, split_label
 from checker.circuit.lookup import find_rail
-from checker.circuit.types import Branches, Change, Circuit, Devices, FloatArray, Scenario
+from checker.circuit.types import Branches, Change, Circuit, Devices, Scenario
 from checker.intent.types import Intent, StateIntent
 from checker.trouble import Internal
 

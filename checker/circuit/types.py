@@ -12,15 +12,12 @@ from dataclasses import field
 from typing import Final, Literal
 
 import numpy as np
-from numpy.typing import NDArray
 
+from checker.arrays import FloatArray, IntArray
 from checker.cards.types import Card, Ratings
 from checker.quantity.value import Origin, Value
 from checker.shape import frozen
 from checker.words import PortRole
-
-FloatArray = NDArray[np.float64]
-IntArray = NDArray[np.int64]
 
 PartKind = Literal[
     "resistor",

@@ -11,8 +11,8 @@ import click
 
 import checker
 from checker.cli.complain import complain
+from checker.cli.process import few_searches, leave, one_thread
 from checker.cli.status import CLEAN, FAILED, INTERRUPTED, UNUSABLE
-from checker.cli.threads import one_thread
 from checker.trouble import InputTrouble
 
 COMMANDS = {
@@ -59,7 +59,8 @@ def stageproof(settings: dict[str, bool], debug: bool) -> None:
 def main(arguments: Sequence[str] | None = None) -> None:
     """Run the command line and leave the process with its status."""
     one_thread()
-    sys.exit(run(sys.argv[1:] if arguments is None else arguments))
+    few_searches()
+    leave(run(sys.argv[1:] if arguments is None else arguments))
 
 
 def run(arguments: Sequence[str]) -> int:

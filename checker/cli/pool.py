@@ -15,7 +15,7 @@ from multiprocessing.process import BaseProcess
 from pathlib import Path
 from typing import Any, Generic, TypeVar
 
-from checker.cli.threads import one_thread
+from checker.cli.process import one_thread
 
 AnswerT = TypeVar("AnswerT")
 PATIENCE_S = 1.0

@@ -18,8 +18,8 @@ from __future__ import annotations
 from collections.abc import Mapping
 
 import numpy as np
-from numpy.typing import NDArray
 
+from checker.arrays import FloatArray
 from checker.devices.evaluation import Evaluation
 from checker.devices.junction import (
     capacitance_at,
@@ -33,7 +33,6 @@ from checker.devices.junction import (
 )
 from checker.shape import frozen
 
-FloatArray = NDArray[np.float64]
 TERMINALS, OUTER = 7, 4
 INNER = (("rc", 0, 4), ("rb", 1, 5), ("re", 2, 6))
 C, B, E, SUB, CI, BI, EI = range(7)

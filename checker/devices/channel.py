@@ -10,9 +10,8 @@ Source of the limiting: Nagel, memo ERL-M520, UC Berkeley (1975), section on fie
 from __future__ import annotations
 
 import numpy as np
-from numpy.typing import NDArray
 
-FloatArray = NDArray[np.float64]
+from checker.arrays import FloatArray
 
 
 def stamp(g: FloatArray, a: int, b: int, y: FloatArray) -> None:

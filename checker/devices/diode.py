@@ -12,8 +12,8 @@ from __future__ import annotations
 from collections.abc import Mapping
 
 import numpy as np
-from numpy.typing import NDArray
 
+from checker.arrays import FloatArray
 from checker.devices.evaluation import Evaluation
 from checker.devices.junction import (
     capacitance_at,
@@ -27,7 +27,6 @@ from checker.devices.junction import (
     thermal_v,
 )
 
-FloatArray = NDArray[np.float64]
 TERMINALS, OUTER = 3, 2
 INNER = (("rs", 0, 2),)
 """Series resistance, outer terminal, inner terminal."""

@@ -2,12 +2,8 @@
 
 from __future__ import annotations
 
-import numpy as np
-from numpy.typing import NDArray
-
+from checker.arrays import FloatArray
 from checker.shape import frozen
-
-FloatArray = NDArray[np.float64]
 
 
 @frozen

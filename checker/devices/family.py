@@ -9,12 +9,9 @@ from __future__ import annotations
 from collections.abc import Callable, Mapping
 from typing import Final, Protocol
 
-import numpy as np
-from numpy.typing import NDArray
-
+from checker.arrays import FloatArray
 from checker.devices.evaluation import Evaluation
 
-FloatArray = NDArray[np.float64]
 Params = Mapping[str, FloatArray]
 Pairs = tuple[tuple[int, int], ...]
 

@@ -18,8 +18,8 @@ from __future__ import annotations
 from collections.abc import Mapping
 
 import numpy as np
-from numpy.typing import NDArray
 
+from checker.arrays import FloatArray
 from checker.devices.channel import conductance, lead, limited_gate, stamp, take_gm_out
 from checker.devices.evaluation import Evaluation
 from checker.devices.junction import (
@@ -34,7 +34,6 @@ from checker.devices.junction import (
 )
 from checker.shape import frozen
 
-FloatArray = NDArray[np.float64]
 TERMINALS, OUTER = 5, 3
 INNER = (("rd", 0, 3), ("rs", 2, 4))
 D, G, S, DI, SI = range(5)

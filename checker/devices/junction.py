@@ -12,11 +12,9 @@ McGraw-Hill (1988), chapters 1 and 2 (from memory).
 from __future__ import annotations
 
 import numpy as np
-from numpy.typing import NDArray
 
+from checker.arrays import FloatArray
 from checker.constants import BOLTZMANN_JPK, CHARGE_C
-
-FloatArray = NDArray[np.float64]
 
 EXP_KNEE = 200.0
 """Above this exponent the curve goes on as its tangent, so that a wild Newton iterate stays finite."""

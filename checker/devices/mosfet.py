@@ -19,8 +19,8 @@ from __future__ import annotations
 from collections.abc import Mapping
 
 import numpy as np
-from numpy.typing import NDArray
 
+from checker.arrays import FloatArray
 from checker.devices.channel import conductance, lead, limited_drain, limited_gate, stamp, take_gm_out
 from checker.devices.evaluation import Evaluation
 from checker.devices.junction import (
@@ -35,7 +35,6 @@ from checker.devices.junction import (
 )
 from checker.shape import frozen
 
-FloatArray = NDArray[np.float64]
 TERMINALS, OUTER = 6, 4
 INNER = (("rd", 0, 4), ("rs", 2, 5))
 D, G, S, B, DI, SI = range(6)

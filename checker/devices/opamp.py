@@ -21,11 +21,10 @@ from collections.abc import Mapping
 from typing import Final
 
 import numpy as np
-from numpy.typing import NDArray
 
+from checker.arrays import FloatArray
 from checker.devices.evaluation import Evaluation
 
-FloatArray = NDArray[np.float64]
 TERMINALS, OUTER = 6, 5
 INNER = (("rout", 2, 5),)
 """Output resistance, outer terminal, inner terminal."""

@@ -5,9 +5,7 @@ from __future__ import annotations
 from collections.abc import Mapping
 from typing import Any
 
-import numpy as np
-from numpy.typing import NDArray
-
+from checker.arrays import BoolArray
 from checker.circuit.types import Scenario
 from checker.rulekit import Bound, Evidence, Rule
 from checker.shape import frozen
@@ -35,7 +33,7 @@ class Verdict:
     name: str | None
     state: str | None
     stages: tuple[str, ...]
-    failed: NDArray[np.bool_]
+    failed: BoolArray
 
 
 @frozen

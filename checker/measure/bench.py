@@ -5,14 +5,12 @@ from __future__ import annotations
 from collections.abc import Mapping
 
 import numpy as np
-from numpy.typing import NDArray
 
+from checker.arrays import FloatArray
 from checker.circuit.types import Circuit, PartFact, Port, Scenario
 from checker.solve.operating import OperatingPoint, self_heated
 from checker.solve.response import Response, small_signal
 from checker.stages.types import Group, Recognition, Stage
-
-FloatArray = NDArray[np.float64]
 
 
 class Bench:

@@ -4,8 +4,9 @@ from __future__ import annotations
 
 import numpy as np
 
+from checker.arrays import FloatArray
 from checker.constants import ZERO_CELSIUS_K
-from checker.measure.bench import Bench, FloatArray
+from checker.measure.bench import Bench
 from checker.measure.feeds import base_reach, require_not_fed
 from checker.measure.make import figure, first, missing
 from checker.measure.registry import quantity

@@ -7,14 +7,12 @@ the stage it feeds; the last one to the stage that drives the port, whose T ends
 from __future__ import annotations
 
 import numpy as np
-from numpy.typing import NDArray
 
+from checker.arrays import ComplexArray
 from checker.measure.bench import Bench
-from checker.measure.links import ComplexArray, Outer, cut_input, drive_of
+from checker.measure.links import Outer, cut_input, drive_of
 from checker.solve.frequencies import angular
 from checker.solve.response import Response
-
-FloatArray = NDArray[np.float64]
 
 
 def end_node(bench: Bench, outer: Outer) -> int:

@@ -9,8 +9,9 @@ from collections.abc import Callable
 
 import numpy as np
 
+from checker.arrays import FloatArray
 from checker.constants import CORNER_HIGH_HZ, CORNER_LOW_HZ, CORNER_REL
-from checker.measure.bench import Bench, FloatArray
+from checker.measure.bench import Bench
 from checker.measure.chain import transfer
 from checker.measure.links import Outer, outer_of
 from checker.measure.make import figure, missing, nominal

@@ -7,11 +7,12 @@ from collections.abc import Callable
 
 import numpy as np
 
+from checker.arrays import ComplexArray, FloatArray
 from checker.measure.bench import Bench
-from checker.measure.links import ComplexArray, Outer, current_in, current_out, cut_output, drive_of, outer_of
+from checker.measure.links import Outer, current_in, current_out, cut_output, drive_of, outer_of
 from checker.measure.make import db, figure, missing
 from checker.measure.registry import Subject, quantity
-from checker.quantity.figure import Figure, FloatArray
+from checker.quantity.figure import Figure
 from checker.solve.response import Response
 
 METHOD = "in-place small-signal solution at the certified operating point"

@@ -6,8 +6,8 @@ An `Outer` is anything with an entry, an exit and links: a stage or a group.
 from __future__ import annotations
 
 import numpy as np
-from numpy.typing import NDArray
 
+from checker.arrays import ComplexArray
 from checker.circuit.types import Branches, Circuit, Devices, Port
 from checker.measure.bench import Bench
 from checker.shape import frozen
@@ -15,8 +15,6 @@ from checker.solve.response import Drive, Response, port_drive
 from checker.stages.terminals import NUMBER
 from checker.stages.types import Group, Link
 from checker.words import Terminal
-
-ComplexArray = NDArray[np.complex128]
 
 
 @frozen

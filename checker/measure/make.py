@@ -5,9 +5,9 @@ from __future__ import annotations
 from dataclasses import replace
 
 import numpy as np
-from numpy.typing import NDArray
 
-from checker.quantity.figure import ComplexArray, Figure, FloatArray, Working
+from checker.arrays import ComplexArray, FloatArray
+from checker.quantity.figure import Figure, Working
 
 
 def figure(
@@ -59,7 +59,7 @@ def missing(name: str, subject: str, size: int, unit: str, reason: str) -> Figur
     return figure(name, subject, np.full(size, np.nan), unit, reason=reason)
 
 
-def first(values: NDArray[np.float64]) -> float:
+def first(values: FloatArray) -> float:
     """Scenario 0 of (S,) or (S, F) as a Python number."""
     return float(values.ravel()[0])
 

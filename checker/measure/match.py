@@ -7,10 +7,8 @@ G = (Z - R)/(Z + R) for a real reference R. Mismatch loss = -10 log10(1 - |G|^2)
 from __future__ import annotations
 
 import numpy as np
-from numpy.typing import NDArray
 
-FloatArray = NDArray[np.float64]
-ComplexArray = NDArray[np.complex128]
+from checker.arrays import ComplexArray, FloatArray
 
 PERFECT_DB = 200.0
 """A reflection under 1e-10 is printed as this."""

@@ -4,14 +4,15 @@ from __future__ import annotations
 
 import numpy as np
 
+from checker.arrays import ComplexArray, FloatArray
 from checker.circuit.types import Port
-from checker.measure.bench import Bench, FloatArray
+from checker.measure.bench import Bench
 from checker.measure.corners import band_grid_hz, corners, grid_hz
 from checker.measure.links import load_current, port_current
 from checker.measure.make import db, figure, missing, nominal
 from checker.measure.match import mismatch_loss_db, return_loss_db
 from checker.measure.registry import quantity
-from checker.quantity.figure import ComplexArray, Figure
+from checker.quantity.figure import Figure
 from checker.solve.response import Response, port_drive
 from checker.trouble import CannotTell
 

@@ -4,7 +4,8 @@ from __future__ import annotations
 
 import numpy as np
 
-from checker.measure.bench import Bench, FloatArray
+from checker.arrays import FloatArray
+from checker.measure.bench import Bench
 from checker.measure.bias import require_bias
 from checker.measure.make import figure, first, missing
 from checker.measure.registry import quantity

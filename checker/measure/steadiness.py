@@ -7,9 +7,10 @@ from dataclasses import replace
 
 import numpy as np
 
+from checker.arrays import FloatArray, IntArray
 from checker.circuit.changes import with_changes
-from checker.circuit.types import Change, Circuit, IntArray, Scenario
-from checker.measure.bench import Bench, FloatArray
+from checker.circuit.types import Change, Circuit, Scenario
+from checker.measure.bench import Bench
 from checker.measure.bias import require_bias
 from checker.measure.feeds import base_reach, require_not_fed
 from checker.measure.make import figure, first, missing, nominal

@@ -4,10 +4,10 @@ from __future__ import annotations
 
 import numpy as np
 
+from checker.arrays import ComplexArray
 from checker.measure.bench import Bench
 from checker.measure.bias import region_words
 from checker.measure.links import (
-    ComplexArray,
     Outer,
     current_out,
     cut_input,

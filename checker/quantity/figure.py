@@ -4,13 +4,8 @@ from __future__ import annotations
 
 from dataclasses import field
 
-import numpy as np
-from numpy.typing import NDArray
-
+from checker.arrays import ComplexArray, FloatArray
 from checker.shape import frozen
-
-FloatArray = NDArray[np.float64]
-ComplexArray = NDArray[np.complex128]
 
 
 @frozen

@@ -5,17 +5,15 @@ from __future__ import annotations
 from collections.abc import Sequence
 
 import numpy as np
-from numpy.typing import NDArray
 
+from checker.arrays import BoolArray
 from checker.circuit.types import Scenario
 from checker.judge.outcome import severity
 from checker.judge.verdict import Examination, Judged, Verdict
 from checker.words import SEVERITIES, Severity
 
-Bools = NDArray[np.bool_]
 
-
-def cleared(examination: Examination, verdict: Verdict, base: int) -> Bools:
+def cleared(examination: Examination, verdict: Verdict, base: int) -> BoolArray:
     """bool (S,): scenarios without the finding, its goal met, and with nothing as heavy that scenario `base` has not.
 
     Where the finding's own rule was not asked, it is not in the way.
@@ -89,18 +87,18 @@ def _key(owner: Verdict | Judged) -> tuple[str, ...]:
     return (owner.rule.id, figure.quantity, figure.subject, *owner.evidence.subject[:1])
 
 
-def _bad(judged: Judged) -> Bools:
+def _bad(judged: Judged) -> BoolArray:
     """bool (S,): failed, or no longer known; a figure of the nominal alone is not asked elsewhere."""
     check = judged.evidence.check
     return check.failed if check.figure.nominal_only else check.failed | check.unknown
 
 
-def _goal_met(judged: Judged) -> Bools:
+def _goal_met(judged: Judged) -> BoolArray:
     goal = judged.evidence.goal
     return ~_bad(judged) if goal is None else ~(goal.failed | goal.unknown)
 
 
-def _weight_of(new: Bools, judged: Judged, scenarios: Sequence[Scenario]) -> Severity:
+def _weight_of(new: BoolArray, judged: Judged, scenarios: Sequence[Scenario]) -> Severity:
     """A fault of corners alone is only a possible one."""
     certain = any(bad and scenario.kind in ("nominal", "state") for bad, scenario in zip(new, scenarios, strict=True))
     return severity("violates" if certain else "may-violate", judged.rule.weight)

@@ -9,16 +9,12 @@ from __future__ import annotations
 from collections.abc import Mapping
 
 import numpy as np
-from numpy.typing import NDArray
 
+from checker.arrays import ComplexArray, FloatArray
 from checker.devices.family import TRANSISTORS
 from checker.solve.frequencies import angular
 from checker.solve.operating import OperatingPoint
 from checker.solve.plan import Placed
-
-FloatArray = NDArray[np.float64]
-ComplexArray = NDArray[np.complex128]
-
 
 Pencils = Mapping[str, tuple[FloatArray, FloatArray]]
 

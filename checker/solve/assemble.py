@@ -9,16 +9,13 @@ from __future__ import annotations
 from collections.abc import Mapping
 
 import numpy as np
-from numpy.typing import NDArray
 
+from checker.arrays import FloatArray, IntArray
 from checker.circuit.types import Circuit, Devices
 from checker.constants import DEFAULT_AMBIENT_C, ZERO_CELSIUS_K, thermal_voltage_v
 from checker.devices.family import Family
 from checker.solve.counters import COUNTERS
 from checker.solve.plan import Plan
-
-FloatArray = NDArray[np.float64]
-IntArray = NDArray[np.int64]
 
 
 class Scatter:

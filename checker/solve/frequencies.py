@@ -3,9 +3,10 @@
 from __future__ import annotations
 
 import numpy as np
-from numpy.typing import NDArray
+
+from checker.arrays import ComplexArray, FloatArray
 
 
-def angular(f_hz: NDArray[np.float64]) -> NDArray[np.complex128]:
+def angular(f_hz: FloatArray) -> ComplexArray:
     """j 2 pi f [1/s] of frequencies [Hz], complex128, same shape."""
     return np.asarray(2j * np.pi * f_hz, dtype=np.complex128)

@@ -10,8 +10,8 @@ from __future__ import annotations
 from collections.abc import Callable
 
 import numpy as np
-from numpy.typing import NDArray
 
+from checker.arrays import BoolArray, FloatArray, IntArray
 from checker.constants import (
     CURRENT_FLOOR_A,
     FIRST_RUNG,
@@ -29,9 +29,6 @@ from checker.shape import frozen
 from checker.solve.assemble import Assembler, Junctions
 from checker.solve.counters import COUNTERS
 
-FloatArray = NDArray[np.float64]
-BoolArray = NDArray[np.bool_]
-
 
 @frozen
 class Solved:
@@ -45,7 +42,7 @@ class Solved:
     kcl: FloatArray
     condition: FloatArray
     sign: FloatArray
-    helper: NDArray[np.int64]
+    helper: IntArray
 
 
 SOLVES_REL = 1e-9
@@ -215,7 +212,7 @@ def follow(assembler: Assembler, x: FloatArray, done: BoolArray, helper: _Helper
     return np.where(expand(assembler, reached), state[0], x), reached
 
 
-def _certify(assembler: Assembler, x: FloatArray, done: BoolArray, helper: NDArray[np.int64]) -> Solved:
+def _certify(assembler: Assembler, x: FloatArray, done: BoolArray, helper: IntArray) -> Solved:
     """One more full step without any helper from `x`; its size and the current balance there are the proof.
 
     Currents too small for their balance to be resolved at a node's voltage count as the smallest that could be.

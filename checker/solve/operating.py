@@ -7,8 +7,8 @@ from dataclasses import field
 from typing import Any
 
 import numpy as np
-from numpy.typing import NDArray
 
+from checker.arrays import BoolArray, FloatArray
 from checker.circuit.types import Circuit
 from checker.constants import KCL_REL
 from checker.devices.family import TRANSISTORS
@@ -16,10 +16,6 @@ from checker.shape import frozen
 from checker.solve.assemble import Assembler
 from checker.solve.newton import Solved, solve
 from checker.solve.plan import Plan, make_plan
-
-FloatArray = NDArray[np.float64]
-BoolArray = NDArray[np.bool_]
-
 
 ALIKE = ("i_out_a", "i_control_a", "i_common_a", "v_out_v", "v_control_v", "power_w")
 """What all transistors have: current into output, control and common terminal, voltage of the first two over the third,

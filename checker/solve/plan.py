@@ -10,13 +10,11 @@ from __future__ import annotations
 from collections.abc import Iterator, Mapping
 
 import numpy as np
-from numpy.typing import NDArray
 
+from checker.arrays import BoolArray, IntArray
 from checker.circuit.types import NO_DEVICES, Circuit, Devices
 from checker.devices.family import FAMILIES, Family
 from checker.shape import frozen
-
-IntArray = NDArray[np.int64]
 
 
 @frozen
@@ -62,7 +60,7 @@ class Plan:
     n_nodes: int
     placed: Mapping[str, Placed]
     known: tuple[Tree, ...]
-    is_known: NDArray[np.bool_]
+    is_known: BoolArray
     islands: tuple[IslandPlan, ...]
     unknown: IntArray
     v_row: IntArray
@@ -102,7 +100,7 @@ def _place(table: Devices, model: Family, first: int) -> tuple[Placed, int]:
     return Placed(table=table, nodes=nodes, model=model), first
 
 
-def _grow_known(circuit: Circuit, n: int) -> tuple[tuple[Tree, ...], NDArray[np.bool_], list[int]]:
+def _grow_known(circuit: Circuit, n: int) -> tuple[tuple[Tree, ...], BoolArray, list[int]]:
     """Follow ideal sources from ground. Returns the tree, the known mask, and the sources left over."""
     is_known = np.zeros(n, dtype=bool)
     is_known[0] = True
@@ -142,7 +140,7 @@ def _controls(placed: Mapping[str, Placed]) -> Iterator[tuple[int, int]]:
                 yield row[a], row[b]
 
 
-def _conflict(circuit: Circuit, tree: tuple[Tree, ...], is_known: NDArray[np.bool_], left: list[int]) -> str:
+def _conflict(circuit: Circuit, tree: tuple[Tree, ...], is_known: BoolArray, left: list[int]) -> str:
     """A source that says otherwise than the sources already followed: names it, or is empty."""
     volts = {0: 0.0}
     for step in tree:
@@ -172,7 +170,7 @@ def _islands(
     circuit: Circuit,
     placed: Mapping[str, Placed],
     tree: tuple[Tree, ...],
-    is_known: NDArray[np.bool_],
+    is_known: BoolArray,
     left: list[int],
     n: int,
 ) -> tuple[list[IslandPlan], tuple[int, ...]]:
@@ -222,7 +220,7 @@ def _loose(circuit: Circuit, sets: Sets, adrift: list[int], open_gates: list[tup
     return out
 
 
-def _blocked(circuit: Circuit, sets: Sets, is_known: NDArray[np.bool_]) -> dict[int, str]:
+def _blocked(circuit: Circuit, sets: Sets, is_known: BoolArray) -> dict[int, str]:
     """Islands that touch a part which cannot be solved with."""
     index = {net: i for i, net in enumerate(circuit.nets)}
     out: dict[int, str] = {}
@@ -239,7 +237,7 @@ def _blocked(circuit: Circuit, sets: Sets, is_known: NDArray[np.bool_]) -> dict[
 
 
 def _branches(
-    circuit: Circuit, left: list[int], inside: set[int], is_known: NDArray[np.bool_]
+    circuit: Circuit, left: list[int], inside: set[int], is_known: BoolArray
 ) -> tuple[tuple[int, ...], tuple[int, ...], str]:
     """Branch-current unknowns of an island. An inductor that closes a loop of zero-resistance parts gets none: how
     direct current divides there is not determined, the voltages are."""
@@ -270,7 +268,7 @@ def _number(
     circuit: Circuit,
     placed: Mapping[str, Placed],
     tree: tuple[Tree, ...],
-    is_known: NDArray[np.bool_],
+    is_known: BoolArray,
     islands: list[IslandPlan],
     isolated: tuple[int, ...],
     n: int,

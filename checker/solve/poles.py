@@ -8,13 +8,10 @@ not at all, so shifts stand four decades apart and each answers for its neighbou
 from __future__ import annotations
 
 import numpy as np
-from numpy.typing import NDArray
 
+from checker.arrays import ComplexArray, FloatArray, IntArray
 from checker.solve.admittance import device_pencils
 from checker.solve.operating import OperatingPoint
-
-FloatArray = NDArray[np.float64]
-ComplexArray = NDArray[np.complex128]
 
 SHIFTS = (1e0, 1e3, 1e6, 1e9, 1e12)
 REACH = 3e4
@@ -46,7 +43,7 @@ def growing_poles(point: OperatingPoint, without: str = "") -> ComplexArray:
     return np.array(sorted(found, key=lambda s: (s.real, s.imag)), dtype=complex)
 
 
-def seat(point: OperatingPoint, pole: complex) -> NDArray[np.int64]:
+def seat(point: OperatingPoint, pole: complex) -> IntArray:
     """Nodes (inner ones included) that hold a pole: those whose share in it is a tenth of the largest at least.
 
     The share of an unknown is the product of its right and left eigenvector through C, both from one inverse iteration
@@ -66,14 +63,14 @@ def seat(point: OperatingPoint, pole: complex) -> NDArray[np.int64]:
     return np.asarray(names[held], dtype=np.int64)
 
 
-def _live(point: OperatingPoint, without: str) -> tuple[FloatArray, FloatArray, NDArray[np.int64]]:
+def _live(point: OperatingPoint, without: str) -> tuple[FloatArray, FloatArray, IntArray]:
     """The pencil without rows that are zero, and which unknowns are left."""
     g, c, names = _pencil(point, without)
     live = np.flatnonzero(np.abs(g).sum(axis=1) + np.abs(c).sum(axis=1) > 0.0)
     return g[np.ix_(live, live)], c[np.ix_(live, live)], names[live]
 
 
-def _pencil(point: OperatingPoint, without: str) -> tuple[FloatArray, FloatArray, NDArray[np.int64]]:
+def _pencil(point: OperatingPoint, without: str) -> tuple[FloatArray, FloatArray, IntArray]:
     """G and C (u, u) of scenario 0: free nodes, inner nodes, floating sources and inductors; and their numbers."""
     c, plan = point.circuit, point.plan
     in_tree = {step.source for step in plan.known}

@@ -12,8 +12,8 @@ from collections.abc import Mapping, Sequence
 from dataclasses import replace
 
 import numpy as np
-from numpy.typing import NDArray
 
+from checker.arrays import BoolArray, ComplexArray, FloatArray, IntArray
 from checker.circuit.types import Branches, Circuit, Port
 from checker.shape import frozen
 from checker.solve.admittance import device_pencils, outer_admittance
@@ -22,10 +22,6 @@ from checker.solve.frequencies import angular
 from checker.solve.operating import OperatingPoint
 from checker.solve.system import signal_system
 from checker.solve.update import updated
-
-FloatArray = NDArray[np.float64]
-ComplexArray = NDArray[np.complex128]
-IntArray = NDArray[np.int64]
 
 SHORT_FACTOR = 1e7
 """A shorted part gets this many times the admittance its nodes present: 1e-7 from ideal, and 1e-9 in arithmetic."""
@@ -59,7 +55,7 @@ class Response:
     f_hz: FloatArray
     row: IntArray
     l_row: IntArray
-    known: NDArray[np.bool_]
+    known: BoolArray
     tree: tuple[tuple[int, int, int, float], ...]
     z: ComplexArray
     y: ComplexArray

@@ -9,8 +9,8 @@ from __future__ import annotations
 from dataclasses import replace
 
 import numpy as np
-from numpy.typing import NDArray
 
+from checker.arrays import BoolArray, ComplexArray, FloatArray
 from checker.circuit.types import Branches, Circuit, Devices
 from checker.devices.family import TRANSISTORS
 from checker.shape import frozen
@@ -18,8 +18,6 @@ from checker.solve.assemble import Assembler
 from checker.solve.newton import BY_SOURCES, follow, iterate, signs
 from checker.solve.operating import Island, OperatingPoint, operating_point
 from checker.solve.poles import seat
-
-FloatArray = NDArray[np.float64]
 
 MOST_DEVICES = 8
 """Islands of more transistors are not enumerated; their search stays partial."""
@@ -64,7 +62,7 @@ def _members(point: OperatingPoint) -> dict[int, list[tuple[str, int]]]:
 
 def _seeded(
     point: OperatingPoint, several: dict[int, list[tuple[str, int]]]
-) -> tuple[FloatArray, NDArray[np.bool_], FloatArray]:
+) -> tuple[FloatArray, BoolArray, FloatArray]:
     """Solutions from every pattern: x (seeds, U), converged (seeds, islands), and sign of det J there."""
     seeds = 2 ** max(len(devices) for devices in several.values())
     device_k = {kind: np.repeat(t[:1], seeds, axis=0) for kind, t in point.device_k.items()}
@@ -83,7 +81,7 @@ def _seeded(
     return out, done & ~idle, signs(assembler, out)
 
 
-def _counted(point: OperatingPoint, island: int, x: FloatArray, good: NDArray[np.bool_], sign: FloatArray) -> _Count:
+def _counted(point: OperatingPoint, island: int, x: FloatArray, good: BoolArray, sign: FloatArray) -> _Count:
     """Different solutions of an island, the point's own among them, by the sign of det J.
 
     The signs of all solutions sum to +1: p rests found and n balances prove max(p, n + 1) rests.
@@ -153,7 +151,7 @@ def _copies(circuit: Circuit, count: int) -> Circuit:
     )
 
 
-def _tipping(point: OperatingPoint, real: NDArray[np.complex128]) -> set[int]:
+def _tipping(point: OperatingPoint, real: ComplexArray) -> set[int]:
     """Islands with an amplifier that sits in a growing real pole: a trigger balanced between its limits."""
     if "opamp" not in point.plan.placed:
         return set()
@@ -162,7 +160,7 @@ def _tipping(point: OperatingPoint, real: NDArray[np.complex128]) -> set[int]:
     return {k for k, island in enumerate(point.plan.islands) if held & set(island.nodes) and point.islands[k].ok[0]}
 
 
-def settled(point: OperatingPoint, growing: NDArray[np.complex128]) -> OperatingPoint:
+def settled(point: OperatingPoint, growing: ComplexArray) -> OperatingPoint:
     """The same point with balances that are no rest refused: islands of several rests while a real pole grows."""
     real = growing[np.abs(growing.imag) <= 1e-6 * np.abs(growing)]
     if not real.size:

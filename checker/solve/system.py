@@ -9,17 +9,13 @@ from __future__ import annotations
 from collections.abc import Mapping
 
 import numpy as np
-from numpy.typing import NDArray
 
+from checker.arrays import BoolArray, ComplexArray, FloatArray, IntArray
 from checker.circuit.types import Branches, Circuit, Devices
 from checker.shape import frozen
 from checker.solve.frequencies import angular
 from checker.solve.operating import OperatingPoint
 from checker.solve.plan import Sets
-
-FloatArray = NDArray[np.float64]
-ComplexArray = NDArray[np.complex128]
-IntArray = NDArray[np.int64]
 
 
 @frozen
@@ -31,7 +27,7 @@ class SignalSystem:
     row: IntArray
     v_row: IntArray
     l_row: IntArray
-    known: NDArray[np.bool_]
+    known: BoolArray
     tree: tuple[tuple[int, int, int, float], ...]
     islands: tuple[IntArray, ...]
     pins: tuple[int, ...]
@@ -174,7 +170,7 @@ def _joins(c: Circuit) -> list[list[int]]:
     return out + [[node for node in (ends[p] + ends[q]) if node > 0] for p, q in pairs]
 
 
-def _rows(table: Branches, first: int, known: NDArray[np.bool_], skip: set[int]) -> tuple[IntArray, int]:
+def _rows(table: Branches, first: int, known: BoolArray, skip: set[int]) -> tuple[IntArray, int]:
     """Branch unknowns of the elements that touch a free net."""
     rows = np.full(len(table.names), -1, dtype=np.int64)
     for j, (a, b) in enumerate(table.nodes.tolist()):
@@ -188,7 +184,7 @@ def _islands(
     c: Circuit,
     joins: list[list[int]],
     row: IntArray,
-    known: NDArray[np.bool_],
+    known: BoolArray,
     branch_rows: tuple[IntArray, IntArray],
     size: int,
 ) -> tuple[tuple[IntArray, ...], tuple[int, ...]]:

@@ -12,14 +12,10 @@ Source of the update: Sherman-Morrison-Woodbury identity; Golub and Van Loan, *M
 from __future__ import annotations
 
 import numpy as np
-from numpy.typing import NDArray
 
+from checker.arrays import BoolArray, ComplexArray, FloatArray, IntArray
 from checker.solve.counters import COUNTERS
 from checker.solve.plan import Sets
-
-FloatArray = NDArray[np.float64]
-ComplexArray = NDArray[np.complex128]
-IntArray = NDArray[np.int64]
 
 LARGEST_LOSS = 1e8
 """Loss of digits beyond which an update is not trusted: at 1e8 it leaves eight of sixteen."""
@@ -43,7 +39,7 @@ def updated(z: ComplexArray, y: ComplexArray, at: IntArray, delta: ComplexArray)
     return new, y
 
 
-def _back(small: ComplexArray, terms: FloatArray) -> tuple[ComplexArray, NDArray[np.bool_]]:
+def _back(small: ComplexArray, terms: FloatArray) -> tuple[ComplexArray, BoolArray]:
     """Inverse of the small matrices, and where it loses too many digits; the identity stands in there, nan stays nan.
 
     Loss: the largest term that was summed into the matrix, times the size (1-norm) of its inverse.

@@ -3,14 +3,13 @@
 from __future__ import annotations
 
 import numpy as np
-from numpy.typing import NDArray
 
+from checker.arrays import FloatArray
 from checker.circuit.changes import with_changes
 from checker.circuit.types import Change, Scenario
 from checker.shape import frozen
 from checker.solve.operating import OperatingPoint, operating_point
 
-FloatArray = NDArray[np.float64]
 NUDGE = 1e-3
 CHUNK = 128
 """Scenarios solved at a time: bounds memory on boards of many resistors."""

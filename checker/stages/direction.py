@@ -10,8 +10,8 @@ alone; the larger effect at the output port.
 from __future__ import annotations
 
 import numpy as np
-from numpy.typing import NDArray
 
+from checker.arrays import FloatArray
 from checker.shape import frozen
 from checker.stages.role import Part
 from checker.stages.scene import Path, Scene
@@ -45,7 +45,7 @@ def direction(scene: Scene, device: str, part: Part) -> Direction:
     )
 
 
-def entry_weights(scene: Scene, device: str, path: Path) -> NDArray[np.float64]:
+def entry_weights(scene: Scene, device: str, path: Path) -> FloatArray:
     """|vbe| that each terminal's open-circuit voltage causes alone, float64 (3, F): collector, base, emitter."""
     terminals = list(scene.nodes(device))
     out = scene.response.removed([device])
@@ -57,7 +57,7 @@ def entry_weights(scene: Scene, device: str, path: Path) -> NDArray[np.float64]:
     return np.asarray(np.abs(vbe.T), dtype=float)
 
 
-def exit_weights(scene: Scene, device: str, path: Path) -> NDArray[np.float64]:
+def exit_weights(scene: Scene, device: str, path: Path) -> FloatArray:
     """|v| at the output port for 1 A injected at the collector, and at the emitter: float64 (2, F)."""
     c, _, e = scene.nodes(device)
     out = scene.response.removed([device])

@@ -6,15 +6,14 @@ import re
 from dataclasses import replace
 
 import numpy as np
-from numpy.typing import NDArray
 
+from checker.arrays import FloatArray
 from checker.circuit.types import Circuit, Port
 from checker.pattern import lazy
 from checker.solve.operating import OperatingPoint
 from checker.solve.response import Response, port_drive, small_signal
 from checker.words import PortRole
 
-FloatArray = NDArray[np.float64]
 DIRECTION_DB = 10.0
 """One way must be this much stronger than the other before a direction is stated."""
 

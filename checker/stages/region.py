@@ -12,15 +12,14 @@ from __future__ import annotations
 from collections.abc import Mapping
 
 import numpy as np
-from numpy.typing import NDArray
 
+from checker.arrays import BoolArray, FloatArray
 from checker.circuit.types import TRANSISTOR_FAMILIES
 from checker.devices import bipolar
 from checker.solve.operating import OperatingPoint
 from checker.solve.response import Response, small_signal
 from checker.words import Region
 
-FloatArray = NDArray[np.float64]
 REGIONS: tuple[Region, ...] = (
     "active",
     "saturated",
@@ -77,7 +76,7 @@ def _fet_codes(table: Mapping[str, FloatArray]) -> FloatArray:
         return np.where(table["vov_v"] <= 0.0, REGIONS.index("cut-off"), code).astype(float)
 
 
-def is_reversed(point: OperatingPoint, device: str) -> NDArray[np.bool_]:
+def is_reversed(point: OperatingPoint, device: str) -> BoolArray:
     """Whether a field-effect transistor has its drain at the more negative end (N channel), (S,)."""
     kind, j = point.circuit.find_device(device)
     return np.asarray(point.devices[kind]["vds_v"][:, j] < -REVERSED_V)

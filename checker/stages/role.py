@@ -3,8 +3,8 @@
 from __future__ import annotations
 
 import numpy as np
-from numpy.typing import NDArray
 
+from checker.arrays import FloatArray
 from checker.shape import frozen
 from checker.stages.scene import Path, Scene
 
@@ -17,7 +17,7 @@ BIAS_BELOW = 0.2
 class Part:
     """How much a device takes part: `weight` (F,) the larger of both measures, `path` the path where it is most."""
 
-    weight: NDArray[np.float64]
+    weight: FloatArray
     path: Path
 
     @property
@@ -44,7 +44,7 @@ def participation(scene: Scene, device: str) -> Part | None:
     return best
 
 
-def _share(scene: Scene, device: str, path: Path) -> NDArray[np.float64]:
+def _share(scene: Scene, device: str, path: Path) -> FloatArray:
     """|gm vbe| over the current that the output port's own impedance and load take from the driving point."""
     current = np.abs(scene.controlled_current(device, path.solution)[0])
     load = _load_admittance(scene, path)
@@ -53,7 +53,7 @@ def _share(scene: Scene, device: str, path: Path) -> NDArray[np.float64]:
     return np.where(driven > 0.0, current / np.maximum(driven, 1e-30), 0.0)
 
 
-def _load_admittance(scene: Scene, path: Path) -> NDArray[np.float64]:
+def _load_admittance(scene: Scene, path: Path) -> FloatArray:
     total = np.zeros(len(path.h))
     for name in path.to.load:
         j = scene.circuit.resistors.names.index(name)
@@ -61,7 +61,7 @@ def _load_admittance(scene: Scene, path: Path) -> NDArray[np.float64]:
     return total
 
 
-def _reaches(scene: Scene, device: str, path: Path) -> NDArray[np.float64]:
+def _reaches(scene: Scene, device: str, path: Path) -> FloatArray:
     """1 where the device's controlled current explains a part of the output voltage, else 0.
 
     A current source's own current is no share of the load: what it injects must arrive at the port.

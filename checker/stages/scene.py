@@ -5,8 +5,8 @@ from __future__ import annotations
 from collections.abc import Mapping
 
 import numpy as np
-from numpy.typing import NDArray
 
+from checker.arrays import BoolArray, ComplexArray
 from checker.circuit.types import Circuit, Port, Transistors
 from checker.shape import frozen
 from checker.solve.admittance import passive_admittance
@@ -15,7 +15,6 @@ from checker.solve.response import Drive, Response, port_drive
 from checker.stages.terminals import NUMBER, WORDS
 from checker.words import Terminal
 
-ComplexArray = NDArray[np.complex128]
 LEAK = 1e-9
 """Of a net's own admittance: nine digits above arithmetic's end, and nine under what anyone would notice."""
 
@@ -40,7 +39,7 @@ class Scene:
     point: OperatingPoint
     response: Response
     paths: tuple[Path, ...]
-    silent: NDArray[np.bool_]
+    silent: BoolArray
     passive_y: Mapping[str, ComplexArray]
     transistors: Transistors
 
@@ -84,7 +83,7 @@ class Scene:
         return self.response.device_y[self.transistors.families[j]][0, :, self.transistors.places[j], :3, :3]
 
 
-def signal_grounds(circuit: Circuit, response: Response) -> NDArray[np.bool_]:
+def signal_grounds(circuit: Circuit, response: Response) -> BoolArray:
     """Nets that carry no signal by construction: ground and nets fixed by sources that drive nothing."""
     silent = response.known.copy()
     driven = {port.emf for port in circuit.ports if port.emf >= 0}
