@@ -75,7 +75,7 @@ def _one(text: str) -> Card | None:
 def _lookup(name: str) -> Card | None:
     """Longest known name first; what follows it must be a gain group and an ending."""
     known = index()
-    maker = _MAKERS.match(name)
+    maker = _MAKERS.match(name) if name[:1] in "JNS" else None
     for candidate in (name, name[maker.end() :]) if maker is not None else (name,):
         for length in range(len(candidate), 1, -1):
             family = known.get(candidate[:length])
@@ -92,10 +92,10 @@ def _with_rest(family: str, name: str, rest: str) -> Card | None:
         if not rest.startswith(group):
             continue
         ending = rest[len(group) :]
-        if _ENDINGS.fullmatch(ending):
+        if not ending or _ENDINGS.fullmatch(ending):
             return card_from(row, group)
         small = rows(family).get(name + "W")  # the smaller outline is written behind the group: BC847BW
         if ending.startswith("W") and small is not None and _ENDINGS.fullmatch(ending[1:]):
             return card_from(small, group)
     taped = rest == "T" and name.startswith("1N")  # behind other names a T is a smaller outline
-    return card_from(row) if taped or _ENDINGS.fullmatch(rest) else None
+    return card_from(row) if taped or not rest or _ENDINGS.fullmatch(rest) else None

@@ -13,6 +13,8 @@ from checker.pattern import lazy
 from checker.shape import frozen
 
 _GROUND = lazy(r"[ADPSC]?GND(?:[ADPSR]|PWR|REF|ISO|\d{1,2})?(?:[_-]\w{1,10})?|EARTH(?:_\w+)?|0V", re.IGNORECASE)
+_SIGNS = ("GND", "EARTH", "0V")
+"""One of these stands in every strong name: the long pattern is for few nets."""
 _WEAK = lazy(r"VSS[AD]?|COM(?:MON)?", re.IGNORECASE)
 """A ground by name only where no net has a stronger one: beside a GND it may be a negative supply or a bus."""
 
@@ -35,9 +37,9 @@ def find_ground(netlist: Netlist, intent: Intent, notes: Notes) -> Ground:
     """
     fixed = [key for key in netlist.ground if key in netlist.nets]
     kicad = netlist.format == "kicad"
-    named = _named(netlist, _GROUND) if kicad or not fixed else _named(netlist, lazy("GND", re.IGNORECASE))
+    named = _strong(netlist) if kicad or not fixed else _named(netlist, lazy("GND", re.IGNORECASE), netlist.nets)
     keys = fixed + [key for key in named if key not in fixed]
-    keys = keys or _named(netlist, _WEAK)
+    keys = keys or _named(netlist, _WEAK, netlist.nets)
     if not keys:
         return _declared(netlist, intent, notes)
     for key in keys[1:]:
@@ -45,9 +47,14 @@ def find_ground(netlist: Netlist, intent: Intent, notes: Notes) -> Ground:
     return Ground(name=keys[0], keys=frozenset(keys), found=True)
 
 
-def _named(netlist: Netlist, pattern: re.Pattern[str]) -> list[str]:
+def _strong(netlist: Netlist) -> list[str]:
+    names = {key: (net.name or key).upper() for key, net in netlist.nets.items()}
+    return _named(netlist, _GROUND, [key for key, name in names.items() if any(sign in name for sign in _SIGNS)])
+
+
+def _named(netlist: Netlist, pattern: re.Pattern[str], among: Iterable[str]) -> list[str]:
     """Nets whose last segment has such a name; a plain GND first, then in natural order."""
-    found = [key for key, net in netlist.nets.items() if pattern.fullmatch(last_segment(net.name or key))]
+    found = [key for key in among if pattern.fullmatch(last_segment(netlist.nets[key].name or key))]
     return sorted(natural(found), key=lambda key: _rank(netlist.nets[key].name or key))
 
 

@@ -6,6 +6,7 @@ Symbol names are those of the editor's own libraries and of common private ones 
 from __future__ import annotations
 
 import re
+from collections.abc import Mapping
 from typing import Final, Literal
 
 from checker.netlist.types import Part
@@ -120,6 +121,14 @@ _SYMBOLS: Final[tuple[tuple[Kind, str], ...]] = (
     ),
     ("connector", r"PHONES\w*|PJ301[\w-]*|\w*JACK\w*(?:[-_]\w+)*|M0\dX\w*|EURO_PWR\w*"),
 )
+USUAL: Final[dict[str, Kind]] = {
+    **dict.fromkeys(("R", "R_Small", "R_US", "R_Small_US"), "resistor"),
+    **dict.fromkeys(("C", "C_Small", "C_Polarized", "C_Polarized_Small", "CP", "CP1"), "capacitor"),
+    **dict.fromkeys(("L", "L_Small"), "inductor"),
+    **dict.fromkeys(("D", "LED", "D_Zener", "D_Schottky", "1N4148"), "diode"),
+    **{f"Conn_01x{count:02}{tail}": "connector" for count in range(1, 21) for tail in ("", "_Pin", "_Socket")},
+}
+"""The commonest of what the patterns above say, so that a small board need not compile them."""
 _COMPILED: Final = tuple((kind, lazy(pattern, re.IGNORECASE)) for kind, pattern in _SYMBOLS)
 _RESCUE: Final = lazy(
     r"-(?:RESCUE\b.*|device|conn|transistors?|diode|linear|mechanical|custom_lib|Transistor_\w+)$",
@@ -141,7 +150,8 @@ _LETTERS: Final[tuple[tuple[Kind, str], ...]] = (
 
 def symbol_name(part: Part) -> str:
     """The symbol's own name, without library and without the tail that a rescue library adds."""
-    return _RESCUE.sub("", part.symbol.rsplit(":", 1)[-1])
+    name = part.symbol.rsplit(":", 1)[-1]
+    return _RESCUE.sub("", name) if "-" in name else name
 
 
 def classify(part: Part, *, spice: bool) -> Kind:
@@ -156,13 +166,18 @@ def classify(part: Part, *, spice: bool) -> Kind:
     by_pins = _by_functions(part)
     if by_pins is not None:
         return by_pins
-    name = symbol_name(part)
-    for kind, pattern in _COMPILED:
-        if pattern.fullmatch(name):
-            return kind
+    kind = by_symbol(symbol_name(part))
+    if kind is not None:
+        return kind
     if part.symbol:
         return _by_library(part)
     return next((kind for kind, letters in _LETTERS if re.fullmatch(letters, part.letter.upper())), "unmodelled")
+
+
+def by_symbol(name: str, usual: Mapping[str, Kind] = USUAL) -> Kind | None:
+    """The kind that a symbol's own name tells, None where it tells none."""
+    known = usual.get(name)
+    return known or next((kind for kind, pattern in _COMPILED if pattern.fullmatch(name)), None)
 
 
 def is_coaxial(part: Part) -> bool:

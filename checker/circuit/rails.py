@@ -54,15 +54,18 @@ def add_rails(draft: Draft) -> None:
 
 def volts_of_name(name: str) -> float | None:
     """Volts that the last segment of a net name states: "+3V3" is 3.3; None for names that state none."""
-    text = last_segment(name)
-    if _V33.fullmatch(text):
+    text = last_segment(name).upper()
+    if not any(map(str.isdigit, text)):
+        return None
+    if text.startswith("V33") and _V33.fullmatch(text):
         return 3.3
-    found = _NAMED.fullmatch(text) or _AFTER_WORD.fullmatch(text)
+    found = (_NAMED.fullmatch(text) or _AFTER_WORD.fullmatch(text)) if "V" in text else None
     if found is not None:
         fraction = found["part"] or found["point"] or "0"
         volts = float(f"{found['whole']}.{fraction}")
-        return -volts if (found["sign"] or "").upper() in ("-", "N", "MINUS") else volts
-    found = _BARE.fullmatch(text) or _SIGNED.fullmatch(text)
+        return -volts if (found["sign"] or "") in ("-", "N", "MINUS") else volts
+    pattern = _BARE if text[0] in "+-" else _SIGNED if text[:2] in ("V+", "V-") else None
+    found = None if pattern is None else pattern.fullmatch(text)
     if found is not None and int(found["whole"]) in _USUAL:
         return float(found["sign"] + found["whole"])
     return None

@@ -55,7 +55,7 @@ def ratings_of(part: Part, kind: str) -> tuple[Ratings, str]:
 
 def stated_watts(text: str) -> float | None:
     """Power [W] that a text states: "1/2W", "0.25 W", "100mW"."""
-    found = _WATTS.search(text)
+    found = _WATTS.search(text) if "W" in text.upper() else None
     if found is None:
         return None
     if found[1]:

@@ -90,7 +90,7 @@ def _text(path: Path, file: str) -> str:
         line = raw.count(b"\n", 0, error.start) + 1
         raise InputTrouble("the intent file is not UTF-8 text; save it as UTF-8", file=file, line=line) from None
     for number, written in enumerate(text.split("\n"), start=1):
-        if len(written) > MAX_LINE or _TOO_DOTTED.search(written):
+        if len(written) > MAX_LINE or (written.count(".") >= MAX_DOTTED and _TOO_DOTTED.search(written)):
             message = f"a line may have {MAX_LINE} characters, a dotted name {MAX_DOTTED} parts; break it up"
             raise InputTrouble(message, file=file, line=number)
     return text

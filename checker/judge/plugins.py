@@ -6,6 +6,7 @@ An installed package lists its entry points in `NAME.dist-info/entry_points.txt`
 
 from __future__ import annotations
 
+import os
 import sys
 from collections.abc import Iterable, Iterator
 from pathlib import Path
@@ -35,7 +36,7 @@ def _listings(folder: str) -> Iterator[tuple[str, Path]]:
     or is the working folder: what merely lies there is not installed.
     """
     try:
-        names = sorted(path.name for path in Path(folder).iterdir()) if folder else []
+        names = sorted(os.listdir(folder)) if folder else []  # noqa: PTH208 - it makes hundreds of objects
     except OSError:
         return
     for name in names:

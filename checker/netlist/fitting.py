@@ -23,17 +23,27 @@ def is_left_out(value: str, fields: Mapping[str, str]) -> bool:
     """True where the value says so ("DNP", "10k DNF"), a field of that name is set (a property without value
     counts as set), a field such as `Populate` says no, or any field (a note) holds nothing but such a
     word."""
-    if _WORDS.search(value):
+    if _says_so(value):
         return True
     for key, text in fields.items():
         name = re.sub(r"[\s_-]", "", key).lower()
         word = text.strip().lower()
-        if _WORDS.fullmatch(word):
+        if _hints(word) and _WORDS.fullmatch(word):
             return True
         if name in _FIELDS and (word not in _NO or (word == "" and key == "dnp")):
             return True
-        if name in _FITTED_FIELDS and (word in _BARE_NO or _WORDS.search(text)):
+        if name in _FITTED_FIELDS and (word in _BARE_NO or _says_so(text)):
             return True
-        if name in ("config", "variant", "assembly", "bom") and _WORDS.search(text):
+        if name in ("config", "variant", "assembly", "bom") and _says_so(text):
             return True
     return False
+
+
+def _says_so(text: str) -> bool:
+    return _hints(text) and _WORDS.search(text) is not None
+
+
+def _hints(text: str) -> bool:
+    """Whether a text holds a beginning of one of the words: most do not, and the pattern is long."""
+    low = text.lower()
+    return any(sign in low for sign in ("dn", "no", "unpop"))

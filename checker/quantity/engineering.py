@@ -75,10 +75,10 @@ def parse_engineering(text: str, unit: str) -> Reading:
     letter, rest = _tolerance_letter(rest, unit, behind=folded[: len(folded) - len(rest)])
     if rest and (rest[0].isalnum() and not _PERCENT.match(rest)):
         raise _refusal(text, unit, f"{rest!r} follows the number")
-    if _RANGE.match(rest.lstrip()) and not _PERCENT.match(rest.lstrip()):
+    if rest and _RANGE.match(rest.lstrip()) and not _PERCENT.match(rest.lstrip()):
         raise _refusal(text, unit, "it is a range or a sum")
     second = _SECOND.get(unit)
-    if second is not None and second.search(rest):
+    if rest and second is not None and second.search(rest):
         raise _refusal(text, unit, "it holds two values")
     tolerance, rating_v = _tail(rest, unit)
     if tolerance is None and letter:
@@ -101,7 +101,7 @@ def _head(folded: str, text: str, unit: str) -> re.Match[str] | None:
 
 
 def _decimal_comma(text: str) -> str:
-    found = _COMMA.match(text)
+    found = _COMMA.match(text) if "," in text else None
     if found is None:
         return text
     whole, part = found.groups()
@@ -190,8 +190,8 @@ def _tolerance_letter(rest: str, unit: str, behind: str) -> tuple[str, str]:
 
 
 def _tail(rest: str, unit: str) -> tuple[float | None, float | None]:
-    percent = _PERCENT.search(rest)
-    volts = None if unit == "V" else _VOLTS.search(rest)
+    percent = _PERCENT.search(rest) if "%" in rest else None
+    volts = None if unit == "V" or "V" not in rest.upper() else _VOLTS.search(rest)
     tolerance = float(percent[1]) / 100 if percent else None
     rating_v = float(volts[1]) * (1000 if volts[2] else 1) if volts else None
     return tolerance, rating_v

@@ -33,15 +33,14 @@ from checker.solve.counters import COUNTERS
 @frozen
 class Solved:
     """`x` (S, U); `done` (S, islands): converged without helpers; `step` (S, islands) [V]: the last full undamped
-    correction; `kcl` (S, islands): worst current balance; `condition` and `sign` (S, islands): of the Jacobian.
+    correction; `kcl` (S, islands): worst current balance. `jacobian`: of scenario 0, a stack of islands a group.
     `helper` (S, islands): place in `HELPERS` of what brought the island there."""
 
     x: FloatArray
     done: BoolArray
     step: FloatArray
     kcl: FloatArray
-    condition: FloatArray
-    sign: FloatArray
+    jacobian: tuple[FloatArray, ...]
     helper: IntArray
 
 
@@ -227,31 +226,25 @@ def _certify(assembler: Assembler, x: FloatArray, done: BoolArray, helper: IntAr
     floor = np.maximum(CURRENT_FLOOR_A, assembler.rounding(x, entries) / KCL_REL)
     balance = np.where(node, np.abs(f) / np.maximum(assembler.largest(columns), floor), 0.0)
     step = np.where(node, np.abs(dx), 0.0)
-    condition, sign = _conditions(assembler, flat)
     step_isl = per_island(assembler, step)
     within = per_island(assembler, np.where(node, step / (STEP_ABS_V + STEP_REL * np.abs(x)), 0.0)) <= 1.0
     kcl = per_island(assembler, balance)
-    return Solved(x=x, done=done & within, step=step_isl, kcl=kcl, condition=condition, sign=sign, helper=helper)
+    jacobian = tuple(block[0].copy() for block in assembler.block_views(flat))
+    return Solved(x=x, done=done & within, step=step_isl, kcl=kcl, jacobian=jacobian, helper=helper)
 
 
-def _conditions(assembler: Assembler, flat: FloatArray) -> tuple[FloatArray, FloatArray]:
-    """Condition (2-norm, after scaling rows and columns) and sign of the determinant, (S, islands).
-
-    Of scenario 0, which the report certifies; nan in the others.
-    """
-    conditions, signs = [], []
-    for blocks in assembler.block_views(flat):
-        a = blocks[:1]
+def conditions(solved: Solved) -> tuple[FloatArray, FloatArray]:
+    """Condition (2-norm, after scaling rows and columns) and sign of the determinant of each island, (islands,), of
+    scenario 0, which the report certifies."""
+    found, signs = [np.zeros(0)], [np.zeros(0)]
+    for a in solved.jacobian:
         scale = np.sqrt(np.maximum(np.abs(a).max(axis=-1, keepdims=True), 1e-300))
         scaled = a / scale / np.sqrt(np.maximum(np.abs(a).max(axis=-2, keepdims=True), 1e-300))
-        COUNTERS.factorisations += 2 * a.shape[0] * a.shape[1]
+        COUNTERS.factorisations += 2 * a.shape[0]
         finite = np.isfinite(scaled).all(axis=(-1, -2))
-        conditions.append(np.where(finite, np.linalg.cond(np.where(finite[..., None, None], scaled, 0.0)), np.inf))
+        found.append(np.where(finite, np.linalg.cond(np.where(finite[..., None, None], scaled, 0.0)), np.inf))
         signs.append(np.where(finite, np.linalg.slogdet(a)[0], 0.0))
-    if not conditions:
-        empty = np.zeros((assembler.scenarios, 0))
-        return empty, empty
-    return _first_row(conditions, assembler.scenarios), _first_row(signs, assembler.scenarios)
+    return np.concatenate(found), np.concatenate(signs)
 
 
 def signs(assembler: Assembler, x: FloatArray) -> FloatArray:
@@ -262,9 +255,3 @@ def signs(assembler: Assembler, x: FloatArray) -> FloatArray:
     branches = np.array([len(i.voltages) + len(i.inductors) for i in assembler.plan.islands[:count]])
     raw = np.concatenate(out, axis=1) if out else np.zeros((x.shape[0], 0))
     return np.asarray(raw * (1.0 - 2.0 * (branches % 2)))
-
-
-def _first_row(values: list[FloatArray], scenarios: int) -> FloatArray:
-    out = np.full((scenarios, sum(v.shape[1] for v in values)), np.nan)
-    out[:1] = np.concatenate(values, axis=1)
-    return out

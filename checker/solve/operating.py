@@ -14,7 +14,7 @@ from checker.constants import KCL_REL
 from checker.devices.family import TRANSISTORS
 from checker.shape import frozen
 from checker.solve.assemble import Assembler
-from checker.solve.newton import Solved, solve
+from checker.solve.newton import Solved, conditions, iterate, solve
 from checker.solve.plan import Plan, make_plan
 
 ALIKE = ("i_out_a", "i_control_a", "i_common_a", "v_out_v", "v_control_v", "power_w")
@@ -24,15 +24,13 @@ power. The order is that of a family's `FIGURES`."""
 
 @frozen
 class Island:
-    """One DC island. Arrays (S,): `ok`, `kcl`, `step_v`, `condition`, `sign`. `reason` where it was not solved
+    """One DC island. Arrays (S,): `ok`, `kcl`, `step_v`. `reason` where it was not solved
     at all; `nets` without inner nodes; `states` found, `exhaustive` whether more are ruled out."""
 
     nets: tuple[str, ...]
     ok: BoolArray
     kcl: FloatArray
     step_v: FloatArray
-    condition: FloatArray
-    sign: FloatArray
     reason: str = ""
     states: int = 1
     exhaustive: bool = False
@@ -75,13 +73,15 @@ class OperatingPoint:
         """`ALIKE` of every transistor, (S, n) a key, in the order of `Circuit.transistors`. Currents into the
         terminals as they flow, voltages times the polarity."""
         if "transistor" not in self.kept:
-            none = np.zeros((self.circuit.size, 0))
-            own = [(TRANSISTORS[kind]().FIGURES, self.devices[kind]) for kind in TRANSISTORS if kind in self.devices]
-            self.kept["transistor"] = {
-                key: np.concatenate([none, *(table[names[place]] for names, table in own)], axis=1)
-                for place, key in enumerate(ALIKE)
-            }
+            self.kept["transistor"] = _alike(self.devices, self.circuit.size)
         return self.kept["transistor"]  # type: ignore[no-any-return]
+
+    def jacobian(self, island: int) -> tuple[float, float]:
+        """Condition (scaled rows and columns) and sign of the determinant of a solved island, in scenario 0."""
+        if "conditions" not in self.kept:
+            self.kept["conditions"] = conditions(self.solved)
+        condition, sign = self.kept["conditions"]
+        return float(condition[island]), float(sign[island])
 
     def reason(self, net: str) -> str:
         """Why a net has no certified voltage; empty where it has one in scenario 0."""
@@ -127,6 +127,19 @@ def operating_point(
     return _collect(circuit, plan, assembler, solved, device_k, refused)
 
 
+def one_step(circuit: Circuit, near: OperatingPoint) -> FloatArray:
+    """Current into each transistor's output (S, n) [A] after one Newton step from `near`'s scenario 0: to first order
+    what a small change of the circuit makes of it. No certificate; nan where `near` has no answer."""
+    device_k = {kind: np.repeat(table[:1], circuit.size, axis=0) for kind, table in near.device_k.items()}
+    assembler = Assembler(circuit, near.plan, device_k)
+    x = np.repeat(near.solved.x[:1], circuit.size, axis=0)
+    done = np.zeros((circuit.size, len(assembler.island_sizes)), dtype=bool)
+    moved, _, _ = iterate(assembler, x, assembler.junctions(assembler.voltages(x)), done, limit=1)
+    v = assembler.voltages(moved)
+    v[:, ~np.isfinite(near.v_v[0])] = np.nan
+    return _alike(_figures(near.plan, circuit, assembler, v), circuit.size)["i_out_a"]
+
+
 def self_heated(cold: OperatingPoint, *, rounds: int = 8, quick: bool = False) -> OperatingPoint:
     """The second solution, junctions at their own temperature: TJ = TA + P RthJA where RthJA is known.
 
@@ -164,9 +177,7 @@ def _collect(
         if island.trouble:
             nan = np.full(circuit.size, np.nan)
             bad = np.zeros(circuit.size, dtype=bool)
-            islands.append(
-                Island(nets=nets, ok=bad, kcl=nan, step_v=nan, condition=nan, sign=nan, reason=island.trouble)
-            )
+            islands.append(Island(nets=nets, ok=bad, kcl=nan, step_v=nan, reason=island.trouble))
             continue
         ok = solved.done[:, index] & (solved.kcl[:, index] <= KCL_REL) & agreed & (index not in refused)
         v[np.ix_(~ok, np.array(island.nodes))] = np.nan
@@ -176,8 +187,6 @@ def _collect(
                 ok=ok,
                 kcl=solved.kcl[:, index],
                 step_v=solved.step[:, index],
-                condition=solved.condition[:, index],
-                sign=solved.sign[:, index],
                 reason=""
                 if ok[0]
                 else refused.get(index, "the operating point did not converge to a certified answer"),
@@ -191,13 +200,28 @@ def _collect(
         solved=solved,
         v_v=v,
         islands=tuple(islands),
-        devices={
-            kind: placed.model.figures(assembler.p[kind], circuit.devices[kind].polarity, v[:, placed.nodes])
-            for kind, placed in plan.placed.items()
-        },
+        devices=_figures(plan, circuit, assembler, v),
         device_k=device_k,
         refused=refused,
     )
+
+
+def _figures(plan: Plan, circuit: Circuit, assembler: Assembler, v: FloatArray) -> dict[str, Mapping[str, FloatArray]]:
+    """Family -> figures of its devices at node voltages (S, n_nodes) [V]."""
+    return {
+        kind: placed.model.figures(assembler.p[kind], circuit.devices[kind].polarity, v[:, placed.nodes])
+        for kind, placed in plan.placed.items()
+    }
+
+
+def _alike(devices: Mapping[str, Mapping[str, FloatArray]], scenarios: int) -> dict[str, FloatArray]:
+    """What all transistors have, (S, n) a key, in the order of `Circuit.transistors`."""
+    none = np.zeros((scenarios, 0))
+    own = [(TRANSISTORS[kind]().FIGURES, devices[kind]) for kind in TRANSISTORS if kind in devices]
+    return {
+        key: np.concatenate([none, *(table[names[place]] for names, table in own)], axis=1)
+        for place, key in enumerate(ALIKE)
+    }
 
 
 def _sources_agree(circuit: Circuit, plan: Plan, v: FloatArray) -> BoolArray:

@@ -1,4 +1,4 @@
-"""Which resistors set which stage's current: one stack of slightly changed circuits, one solve."""
+"""Which resistors set which stage's current: one stack of slightly changed circuits, one Newton step."""
 
 from __future__ import annotations
 
@@ -8,9 +8,10 @@ from checker.arrays import FloatArray
 from checker.circuit.changes import with_changes
 from checker.circuit.types import Change, Scenario
 from checker.shape import frozen
-from checker.solve.operating import OperatingPoint, operating_point
+from checker.solve.operating import OperatingPoint, one_step
 
-NUDGE = 1e-3
+NUDGE = 1e-6
+"""Small enough that one Newton step tells the slope, large enough that rounding leaves it nine digits."""
 CHUNK = 128
 """Scenarios solved at a time: bounds memory on boards of many resistors."""
 
@@ -35,7 +36,6 @@ def influence(point: OperatingPoint) -> Influence:
     circuit = point.circuit
     names = tuple(name for name in circuit.resistors.names if name in circuit.parts)
     devices = circuit.transistors.names
-    base = np.log(np.maximum(np.abs(point.transistor["i_out_a"][0]), 1e-30))
     slope = np.zeros((len(names), len(devices)))
     for first in range(0, len(names) if devices else 0, CHUNK):
         part = names[first : first + CHUNK]
@@ -43,7 +43,8 @@ def influence(point: OperatingPoint) -> Influence:
             Scenario(name=n, kind="sample", changes=(Change(part=n, property="factor", value=1.0 + NUDGE),))
             for n in part
         ]
-        stack = operating_point(with_changes(circuit, (Scenario(name="nominal"), *changes)), near=point)
-        moved = np.log(np.maximum(np.abs(stack.transistor["i_out_a"][1:]), 1e-30))
-        slope[first : first + len(part)] = np.nan_to_num((moved - base) / np.log1p(NUDGE))
+        # The step of the unchanged circuit is what its own solution still lacked; it is no part of the slope.
+        stepped = one_step(with_changes(circuit, (Scenario(name="nominal"), *changes)), point)
+        moved = np.log(np.maximum(np.abs(stepped), 1e-30))
+        slope[first : first + len(part)] = np.nan_to_num((moved[1:] - moved[0]) / np.log1p(NUDGE))
     return Influence(resistors=names, devices=devices, slope=slope)

@@ -40,7 +40,7 @@ def nets(setup: Setup, ledger: Ledger) -> dict[str, NetFigures]:
 def islands(setup: Setup, ledger: Ledger) -> tuple[Island, ...]:
     """Each DC island with its certificate."""
     out = []
-    for island in setup.point.islands:
+    for place, island in enumerate(setup.point.islands):
         if not island.nets:
             continue
         name = min(island.nets)
@@ -48,25 +48,25 @@ def islands(setup: Setup, ledger: Ledger) -> tuple[Island, ...]:
             ledger.missing(island.reason or "not certified", "islands", name)
             out.append(Island(nets=island.nets, certificate=None))
         else:
-            out.append(Island(nets=island.nets, certificate=_certificate(setup, ledger, island)))
+            out.append(Island(nets=island.nets, certificate=_certificate(setup, ledger, place, island)))
     return tuple(out)
 
 
-def _certificate(setup: Setup, ledger: Ledger, island: operating.Island) -> Certificate:
+def _certificate(setup: Setup, ledger: Ledger, place: int, island: operating.Island) -> Certificate:
     # Stability is judged for the board as a whole; with a growing pole no island can claim it.
     stable = None if setup.growing else True
     if stable is None:
         ledger.missing(
             "the linearised board has a pole that grows", "islands", min(island.nets), "certificate", "stable"
         )
-    condition = float(island.condition[0])
+    condition, sign = setup.point.jacobian(place)
     if not math.isfinite(condition):
         ledger.missing("singular after scaling", "islands", min(island.nets), "certificate", "condition")
     return Certificate(
         kcl=float(island.kcl[0]),
         step_v=float(island.step_v[0]),
         condition=condition if math.isfinite(condition) else None,
-        sign=int(np.sign(island.sign[0])),
+        sign=int(np.sign(sign)),
         stable=stable,
         states=island.states,
         search="exhaustive" if island.exhaustive else "partial",

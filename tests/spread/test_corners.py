@@ -41,8 +41,7 @@ def test_slopes(setup: Setup) -> None:
         up, down = ({**values, name: values[name] * factor} for factor in (1.0 + 1e-4, 1.0 - 1e-4))
         wanted = (np.log(collector_a(*up.values())) - np.log(collector_a(*down.values()))) / 2e-4
         found = setup.influence.slope[setup.influence.resistors.index(name), 0]
-        # A one-sided difference of 1e-3 against a central one: second order, under 1e-3 of a slope near 1.
-        assert found == pytest.approx(wanted, rel=2e-3)
+        assert found == pytest.approx(wanted, rel=1e-5)
     assert setup.influence.slope[setup.influence.resistors.index("RC"), 0] == pytest.approx(0.0, abs=1e-6)
 
 
