@@ -18,11 +18,10 @@ from checker.examine import examine
 from checker.intent.checks import check_quantity
 from checker.intent.find import find_intent
 from checker.intent.read import read_intent
-from checker.intent.starter import starter_text
 from checker.intent.types import Intent
 from checker.judge.accept import sort_accepted
 from checker.judge.discover import Rulebook, load_rules
-from checker.judge.finding import to_findings, to_unchecked
+from checker.judge.gaps import to_unchecked
 from checker.judge.limits import limit_values, resolve_limits
 from checker.judge.verdict import Examination, Limits
 from checker.judge.wanted import check_targets
@@ -161,6 +160,8 @@ def _read(path: Path, reading: Reading | None) -> Netlist:
 
 def starter_intent(netlist_path: Path, reading: Reading | None = None) -> str:
     """A starter intent file from what the netlist shows."""
+    from checker.intent.starter import starter_text  # no check needs it
+
     setup = set_up(_read(netlist_path, reading), Intent())
     lines = [(rail.net, float(rail.volts)) for rail in setup.circuit.rails if rail.source != "element"]
     missing = [(u.nets[0], None) for u in setup.circuit.unknowns if u.datum.startswith("volts") and u.nets]
@@ -182,13 +183,17 @@ def _mended(
     setup: Setup, board: Board, rulebook: Rulebook, limits: Limits, examination: Examination
 ) -> tuple[Finding, ...]:
     """Findings with a remedy where one was found and proved; effects of another finding get none of their own."""
+    if not examination.verdicts:
+        return ()  # a clean board does not pay for what only findings need
+    from checker.judge.finding import to_findings
+
     pairs = to_findings(examination, setup.circuit)
     order = sorted(range(len(pairs)), key=lambda k: (pairs[k][1].severity != "must-fix", k))
     sought = {k for k in order if pairs[k][1].caused_by is None and pairs[k][0].evidence.levers}
     chosen = set(sorted(sought, key=order.index)[:MOST_REMEDIES])
     if not chosen:
         return tuple(finding for _, finding in pairs)
-    from checker.remedy.search import propose  # a clean board does not pay for it
+    from checker.remedy.search import propose
 
     mended: dict[int, Finding] = {}
     passes, evaluations = COUNTERS.newton_passes + MOST_PASSES, COUNTERS.device_evaluations + MOST_EVALUATIONS

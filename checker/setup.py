@@ -22,7 +22,6 @@ from checker.solve.response import small_signal
 from checker.solve.states import searched, settled
 from checker.spread.corners import corner_scenarios
 from checker.spread.influence import Influence, influence
-from checker.stages.ports import directed, supposed_output, wide_grid_hz, widest_band
 from checker.stages.recognise import recognise
 from checker.stages.region import REGIONS, region_codes
 from checker.stages.types import Recognition
@@ -123,6 +122,10 @@ def _directed(circuit: Circuit, point: OperatingPoint) -> tuple[tuple[Port, ...]
     """Ports with roles; the sweep is made only where a direction or every output is missing."""
     words: tuple[str, ...]
     ports, words = circuit.ports, ()
+    if {"input", "output"} <= {port.role for port in ports} and all(port.role for port in ports):
+        return ports, words
+    from checker.stages.ports import directed, supposed_output, wide_grid_hz  # a board with declared ports needs none
+
     if any(port.role is None for port in ports):
         ports, words = directed(ports, small_signal(point, wide_grid_hz()))
     if any(port.role == "input" for port in ports) and not any(port.role == "output" for port in ports):
@@ -142,6 +145,8 @@ def _frequencies(
         low, high = circuit.band_hz
         f0 = float(np.sqrt(low * high)) if low > 0.0 else min(1e3, high / 10.0)
         return f0, np.array([low if low > 0.0 else f0, f0, high]), ()
+    from checker.stages.ports import widest_band
+
     found, f0 = widest_band(point, ports)
     if found is None:
         return f0, np.array([f0 / 2.0, f0, f0 * 2.0]), ()

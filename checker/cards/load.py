@@ -10,28 +10,22 @@ from __future__ import annotations
 import json
 from collections.abc import Mapping
 from functools import cache
+from importlib import import_module
 from pathlib import Path
 from typing import Any, Final
 
-from checker.cards.bipolar import bipolar_model
-from checker.cards.diode import diode_model
-from checker.cards.fet import jfet_model, mosfet_model
 from checker.cards.types import Card, Ratings
 
 DATA: Final = Path(__file__).with_name("data")
 INDEX: Final = "index.json"
 
 _MODELS: Final = {
-    "npn": bipolar_model,
-    "pnp": bipolar_model,
-    "diode": diode_model,
-    "zener": diode_model,
-    "led": diode_model,
-    "njf": jfet_model,
-    "pjf": jfet_model,
-    "nmos": mosfet_model,
-    "pmos": mosfet_model,
+    **dict.fromkeys(("npn", "pnp"), "bipolar:bipolar_model"),
+    **dict.fromkeys(("diode", "zener", "led"), "diode:diode_model"),
+    **dict.fromkeys(("njf", "pjf"), "fet:jfet_model"),
+    **dict.fromkeys(("nmos", "pmos"), "fet:mosfet_model"),
 }
+"""Kind of part to "module:function" of this package that makes its model from a row; imported on use."""
 _RATINGS: Final = ("v_max_v", "v_control_max_v", "i_max_a", "p_max_w", "tj_max_c", "rth_ja_kpw")
 _RESISTORS: Final = ("r1", "r2", "be1", "be2")
 _OWN: Final = ("aliases", "packages", "note", "source")
@@ -81,7 +75,7 @@ def card_from(row: Mapping[str, Any], group: str = "") -> Card:
     return Card(
         name=name,
         kind=row["kind"],
-        model=_MODELS[row["kind"]](row),
+        model=_model(row),
         source=row["source"],
         ratings=Ratings(**{key: row.get(key) for key in _RATINGS}),
         gain_min=float(gain[0]) if gain else None,
@@ -94,6 +88,12 @@ def card_from(row: Mapping[str, Any], group: str = "") -> Card:
         driver=_driver(row, name),
         free_wheel=bool(row.get("free_wheel", False)),
     )
+
+
+def _model(row: Mapping[str, Any]) -> Mapping[str, float]:
+    module, name = _MODELS[row["kind"]].split(":")
+    made: Mapping[str, float] = getattr(import_module(f"checker.cards.{module}"), name)(row)
+    return made
 
 
 def _driver(row: Mapping[str, Any], name: str) -> Card | None:

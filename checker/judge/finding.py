@@ -1,4 +1,4 @@
-"""From verdicts to the report's findings."""
+"""From verdicts to the report's findings. Loaded only where there are any."""
 
 from __future__ import annotations
 
@@ -10,7 +10,7 @@ from checker.judge.causes import causes
 from checker.judge.fingerprint import fingerprints
 from checker.judge.message import end_at, filled, frequency_hz, value_at
 from checker.judge.verdict import Examination, Verdict
-from checker.record.finding import Bound, Finding, Measured, Unchecked, Window
+from checker.record.finding import Bound, Finding, Measured, Window
 from checker.record.stage import Location
 from checker.record.units import as_written
 
@@ -25,14 +25,6 @@ def to_findings(examination: Examination, circuit: Circuit) -> tuple[tuple[Verdi
     return tuple(
         (verdict, _finding(verdict, circuit, mark, root))
         for verdict, mark, root in zip(verdicts, marks, roots, strict=True)
-    )
-
-
-def to_unchecked(examination: Examination) -> tuple[Unchecked, ...]:
-    """What could not be judged, as the report lists it; the same gap once."""
-    found = dict.fromkeys((each.subject, each.rule, each.datum, each.supply) for each in examination.unchecked)
-    return tuple(
-        Unchecked(subject=subject, rule=rule, datum=datum, supply=supply) for subject, rule, datum, supply in found
     )
 
 

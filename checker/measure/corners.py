@@ -41,35 +41,42 @@ def corners(
 ) -> tuple[float, float]:
     """Low and high corner [Hz]; nan for none. `on_grid`: |T| on `grid`; `ref` = |T| at `f_ref`."""
     level = ref / np.sqrt(2.0)
+    found = [float("nan"), float("nan")]
     if not (np.isfinite(level) and level > 0.0):
-        return float("nan"), float("nan")
-    out = []
-    for step in (-1, 1):
-        order = np.flatnonzero(grid < f_ref)[::-1] if step < 0 else np.flatnonzero(grid > f_ref)
-        inside, corner = f_ref, np.nan
-        for j in order:
-            if on_grid[j] < level:
-                corner = _refine(magnitude, inside, float(grid[j]), level)
-                break
-            inside = float(grid[j])
-        out.append(float(corner))
-    return out[0], out[1]
+        return found[0], found[1]
+    brackets = {}
+    for end, order in enumerate((np.flatnonzero(grid < f_ref)[::-1], np.flatnonzero(grid > f_ref))):
+        below = np.flatnonzero(on_grid[order] < level)
+        if len(below):
+            walked = np.concatenate([[f_ref], grid[order]])
+            brackets[end] = np.log(walked[below[0] : below[0] + 2])
+    for end, corner in zip(brackets, _refined(magnitude, list(brackets.values()), level), strict=True):
+        found[end] = corner
+    return found[0], found[1]
 
 
-def _refine(magnitude: Magnitude, inside: float, outside: float, level: float) -> float:
-    """Cut the bracket in sixteen, and in turn around where a cubic through the crossing says it is, until it is 1e-6
-    wide; then read the crossing off the chord. Both ends are known: |T| of other batches differs in the last bits."""
-    x = np.linspace(np.log(inside), np.log(outside), 17)
+def _refined(magnitude: Magnitude, brackets: list[FloatArray], level: float) -> list[float]:
+    """Crossings [Hz] in brackets of ln f (inside, outside), all refined in the same sweeps.
+
+    A bracket is cut in sixteen, and in turn around where a cubic through the crossing says it is, until it is 1e-6
+    wide; then the crossing is read off the chord. Both ends are known: |T| of other batches differs in the last bits.
+    """
+    cuts = {k: np.linspace(a, b, 17) for k, (a, b) in enumerate(brackets)}
+    out = [float("nan")] * len(brackets)
     for attempt in range(MOST_PASSES):
-        y = np.log(magnitude(np.exp(x)) / level)
-        crossed = np.flatnonzero(~(y[1:-1] >= 0.0))
-        first = 1 + int(crossed[0]) if len(crossed) else 16
-        a, b = x[first - 1], x[first]
-        if abs(b - a) < 16.0 * CORNER_REL:
+        if not cuts:
             break
-        x = _closer(x, y, first) if attempt % 2 == 0 else np.linspace(a, b, 17)
-    ya, yb = y[first - 1], y[first]
-    return float(np.exp(a + (b - a) * (np.clip(ya / (ya - yb), 0.0, 1.0) if ya != yb else 0.5)))
+        rows = np.log(magnitude(np.exp(np.concatenate(list(cuts.values())))) / level).reshape(-1, 17)
+        for (k, x), y in zip(list(cuts.items()), rows, strict=True):
+            crossed = np.flatnonzero(~(y[1:-1] >= 0.0))
+            first = 1 + int(crossed[0]) if len(crossed) else 16
+            a, b = x[first - 1], x[first]
+            ya, yb = y[first - 1], y[first]
+            out[k] = float(np.exp(a + (b - a) * (np.clip(ya / (ya - yb), 0.0, 1.0) if ya != yb else 0.5)))
+            cuts[k] = _closer(x, y, first) if attempt % 2 == 0 else np.linspace(a, b, 17)
+            if abs(b - a) < 16.0 * CORNER_REL:
+                del cuts[k]
+    return out
 
 
 def _at_zero(y: FloatArray, x: FloatArray) -> float:
@@ -104,10 +111,10 @@ def _stage_corners(bench: Bench, ident: str, outer: Outer) -> tuple[float, float
 
         band = bench.band_hz or (bench.f0_hz, bench.f0_hz)
         f_band = band_grid_hz(band) if bench.band_hz else np.array([bench.f0_hz])
-        in_band = magnitude(f_band)
-        peak = int(np.argmax(in_band))
         grid = grid_hz()
-        low, high = corners(magnitude, grid, magnitude(grid), float(f_band[peak]), float(in_band[peak]))
+        in_band, on_grid = np.split(magnitude(np.concatenate([f_band, grid])), [len(f_band)])
+        peak = int(np.argmax(in_band))
+        low, high = corners(magnitude, grid, on_grid, float(f_band[peak]), float(in_band[peak]))
         bench.kept[key] = (low, high, float(in_band[peak]), float(f_band[peak]))
     value = bench.kept[key]
     assert isinstance(value, tuple)  # noqa: S101 - narrows the type

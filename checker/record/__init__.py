@@ -45,7 +45,6 @@ from checker.record.stage import (
     Stage,
     StageLink,
 )
-from checker.record.write import to_json
 
 __all__ = [
     "SCHEMA",
@@ -91,6 +90,5 @@ __all__ = [
     "judged_on",
     "natural",
     "reason_for",
-    "to_json",
     "unexplained",
 ]

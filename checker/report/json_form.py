@@ -2,9 +2,9 @@
 
 from __future__ import annotations
 
-from checker.record import Report, in_order, to_json
+from checker.record import Report, in_order
 from checker.record.read import SEVERAL
-from checker.record.write import dump, plain
+from checker.record.write import dump, plain, to_json
 from checker.report.bundle import Bundle
 
 

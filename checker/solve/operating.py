@@ -152,11 +152,11 @@ def self_heated(cold: OperatingPoint, *, rounds: int = 8, quick: bool = False) -
             for kind, table in point.devices.items()
             if "power_w" in table
         }
-        before = point
-        point = operating_point(cold.circuit, near=point, rise_k=rise, quick=quick)
-        moved = [float(np.abs(t - before.device_k[kind]).max(initial=0.0)) for kind, t in point.device_k.items()]
+        ambient = cold.circuit.temperature_k[:, None]
+        moved = [float(np.abs(ambient + r - point.device_k[kind]).max(initial=0.0)) for kind, r in rise.items()]
         if max(moved, default=0.0) < 0.01:
             break
+        point = operating_point(cold.circuit, near=point, rise_k=rise, quick=quick)
     return point
 
 

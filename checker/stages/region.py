@@ -87,7 +87,13 @@ def _bipolar_junctions(point: OperatingPoint) -> FloatArray:
 
 
 def saturation_edge_v(point: OperatingPoint) -> FloatArray:
-    """Inner VBC [V], (S, n), at which IC/IB has fallen to 0.9 of its value at VBC = 0, VBE as it is."""
+    """Inner VBC [V], (S, n), at which IC/IB has fallen to 0.9 of its value at VBC = 0, VBE as it is. Kept."""
+    if "saturation edge" not in point.kept:
+        point.kept["saturation edge"] = _saturation_edge_v(point)
+    return point.kept["saturation edge"]  # type: ignore[no-any-return]
+
+
+def _saturation_edge_v(point: OperatingPoint) -> FloatArray:
     p = point.assembler.p["bipolar"]
     at = np.nan_to_num(_bipolar_junctions(point))
     vbe = np.maximum(at[..., 0], 1e-6)

@@ -13,8 +13,9 @@ from pathlib import Path
 import jsonschema  # type: ignore[import-untyped]
 import pytest
 
-from checker.record import Checked, to_json
+from checker.record import Checked
 from checker.record.describe import SHIPPED
+from checker.record.write import to_json
 from checker.report.text import render
 from tests.cli.conftest import Done, Pipeline
 from tests.record.invented import report

@@ -9,7 +9,7 @@ import pytest
 
 from checker.circuit.types import Port
 from checker.examine import NO_SINGLE_DATUM, examine
-from checker.judge.finding import to_unchecked
+from checker.judge.gaps import to_unchecked
 from checker.judge.guard import RAISE
 from checker.judge.subjects import subjects
 from checker.judge.verdict import Failure, Open

@@ -10,7 +10,7 @@ from pathlib import Path
 from typing import Any
 
 from checker.pipeline import Outcome, check_board
-from checker.record import to_json
+from checker.record.write import to_json
 
 DAY = datetime.date(2025, 1, 1)
 

@@ -9,7 +9,7 @@ from pathlib import Path
 
 import pytest
 
-from checker.record import to_json
+from checker.record.write import to_json
 from checker.report.text import render as render_text
 from tests.boards.test_planted import PLANTED
 from tests.boards.writer import SAMPLES, kicad_export
@@ -20,7 +20,7 @@ ROOT = SAMPLES.parent
 SCRIPT = """import sys
 from pathlib import Path
 from checker.pipeline import check_board
-from checker.record import to_json
+from checker.record.write import to_json
 sys.stdout.write(to_json(check_board(Path(sys.argv[1]), None).report))
 """
 

@@ -10,8 +10,8 @@ from typing import Any
 import jsonschema  # type: ignore[import-untyped]
 import pytest
 
-from checker.record import to_json
 from checker.record.describe import SHIPPED, schema
+from checker.record.write import to_json
 from tests.record.invented import report
 
 

@@ -12,8 +12,9 @@ import pytest
 from hypothesis import given
 from hypothesis import strategies as st
 
-from checker.record import Complex, Conditions, NetFigures, Report, in_order, natural, to_json
+from checker.record import Complex, Conditions, NetFigures, Report, in_order, natural
 from checker.record.read import from_json
+from checker.record.write import to_json
 from checker.trouble import InputTrouble, Internal
 from tests.record.invented import report
 

@@ -8,7 +8,7 @@ from types import SimpleNamespace
 import pytest
 
 from checker.cards.types import Card, Ratings
-from checker.record import to_json
+from checker.record.write import to_json
 from checker.report.bundle import Bundle
 from checker.report.card import render_card
 from checker.report.catalogue import render_rules
