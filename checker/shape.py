@@ -1,8 +1,8 @@
-"""The house's record: a frozen, slotted, keyword-only dataclass that starts up fast.
+"""The house's records: slotted, keyword-only dataclasses that start up fast, frozen or filled step by step.
 
 `@dataclass` writes and compiles `__init__`, `__eq__`, `__repr__`, `__hash__`, `__setattr__` and `__delattr__` anew for
 each class, about a millisecond a class; with a hundred classes that is more than all else of a start. Here they are
-written once, and `@frozen` makes each class a second time with slots, which takes `@dataclass` four times as long even
+written once, and each class is made a second time with slots, which takes `@dataclass` four times as long even
 where it writes nothing. The standard library's `fields`, `replace` and `is_dataclass` work as ever; so do static types.
 """
 
@@ -19,8 +19,8 @@ _SLOT = object.__setattr__
 
 def _init(self: Any, **given: Any) -> None:
     # A large board makes a million of these: one loop over what is set, and questions only where something is odd.
-    filled = self.__frozen_defaults__ | given
-    for name, make in self.__frozen_factories__.items():
+    filled = self.__filled_defaults__ | given
+    for name, make in self.__filled_factories__.items():
         if name not in filled:
             filled[name] = make()
     if filled.keys() != self.__dataclass_fields__.keys():
@@ -67,15 +67,8 @@ def _reduce(self: Any) -> tuple[Any, ...]:
     return _rebuilt, (type(self), {name: getattr(self, name) for name in self.__dataclass_fields__})
 
 
-_METHODS: dict[str, Any] = {
-    "__init__": _init,
-    "__setattr__": _setattr,
-    "__delattr__": _delattr,
-    "__eq__": _eq,
-    "__hash__": _hash,
-    "__repr__": _repr,
-    "__reduce__": _reduce,
-}
+_FILLED: dict[str, Any] = {"__init__": _init, "__eq__": _eq, "__hash__": None, "__repr__": _repr, "__reduce__": _reduce}
+_FROZEN = _FILLED | {"__hash__": _hash, "__setattr__": _setattr, "__delattr__": _delattr}
 _MADE_ANEW = ("__dict__", "__weakref__")
 
 
@@ -87,25 +80,36 @@ def _field(kind: type[Any], name: str, annotation: Any) -> Any:
     return described
 
 
-@dataclass_transform(kw_only_default=True, frozen_default=True, field_specifiers=(Field,))
-def frozen(kind: type[T]) -> type[T]:
-    """Class decorator: the annotated class as a frozen, slotted, keyword-only dataclass.
-
-    Raises TypeError at a call that lacks a field or names one it does not have, as a dataclass would.
-    """
+def _made(kind: type[T], methods: dict[str, Any]) -> type[T]:
+    """The class anew, with slots for its annotated names and with these methods."""
     own = {name: _field(kind, name, each) for name, each in get_annotations(kind).items()}
     inherited: dict[str, Any] = {}
     for base in reversed(kind.__mro__[1:]):
         inherited |= getattr(base, "__dataclass_fields__", {})
     fields = inherited | own
     body = {name: each for name, each in vars(kind).items() if name not in own and name not in _MADE_ANEW}
-    body |= _METHODS
+    body |= methods
     body["__qualname__"] = kind.__qualname__
     body["__slots__"] = tuple(name for name in own if name not in inherited)
     body["__dataclass_fields__"] = fields
-    body["__frozen_defaults__"] = {name: each.default for name, each in fields.items() if each.default is not MISSING}
-    body["__frozen_factories__"] = {
+    body["__filled_defaults__"] = {name: each.default for name, each in fields.items() if each.default is not MISSING}
+    body["__filled_factories__"] = {
         name: each.default_factory for name, each in fields.items() if each.default_factory is not MISSING
     }
     made: type[T] = type.__new__(type(kind), kind.__name__, kind.__bases__, body)
     return made
+
+
+@dataclass_transform(kw_only_default=True, frozen_default=True, field_specifiers=(Field,))
+def frozen(kind: type[T]) -> type[T]:
+    """Class decorator: the annotated class as a frozen, slotted, keyword-only dataclass.
+
+    Raises TypeError at a call that lacks a field or names one it does not have, as a dataclass would.
+    """
+    return _made(kind, _FROZEN)
+
+
+@dataclass_transform(kw_only_default=True, field_specifiers=(Field,))
+def filled(kind: type[T]) -> type[T]:
+    """Class decorator: the same, for what is filled step by step; it can be assigned to and has no hash."""
+    return _made(kind, _FILLED)

@@ -5,7 +5,7 @@ from __future__ import annotations
 
 from collections import Counter
 from collections.abc import Iterable, Mapping
-from dataclasses import dataclass, field
+from dataclasses import field
 from typing import Final, Literal
 
 from checker.cards.types import Card
@@ -16,7 +16,7 @@ from checker.circuit.ties import Ties
 from checker.circuit.types import PartFact, Rail, Scenario, Unknown
 from checker.intent.types import Intent, PartIntent
 from checker.netlist.types import Netlist, Part
-from checker.shape import frozen
+from checker.shape import filled, frozen
 from checker.words import PortRole
 
 Table = Literal["resistors", "capacitors", "inductors", "voltages", "currents"]
@@ -93,7 +93,7 @@ class DraftPort:
     part: str = ""
 
 
-@dataclass(slots=True, kw_only=True)
+@filled
 class Draft:
     """Everything gathered so far. `merged`: keys of nets that are ground; `ground` is the key kept for
     them."""

@@ -2,10 +2,11 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass, field
+from dataclasses import field
 from typing import Final, Literal
 
 from checker.circuit.order import listed, natural_key
+from checker.shape import filled
 
 Topic = Literal["ground", "rails", "states", "ports", "connectors", "models", "pins", "parts", "values", "tolerances"]
 _TOPICS: Final[tuple[Topic, ...]] = (
@@ -22,7 +23,7 @@ _TOPICS: Final[tuple[Topic, ...]] = (
 )
 
 
-@dataclass(slots=True)
+@filled
 class Notes:
     """Collects remarks; `lines` gives them by topic, then in natural order."""
 

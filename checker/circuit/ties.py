@@ -2,10 +2,12 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass, field
+from dataclasses import field
+
+from checker.shape import filled
 
 
-@dataclass(slots=True)
+@filled
 class Ties:
     """Nets joined by ideal sources. Each net knows its root and its voltage above that root [V]."""
 

@@ -5,7 +5,6 @@ from __future__ import annotations
 import os
 from collections.abc import Callable
 from pathlib import Path
-from traceback import extract_tb
 
 from checker.judge.verdict import Failure, Open
 from checker.rulekit import CannotTell, Evidence
@@ -32,6 +31,8 @@ def guarded(
     except Exception as fault:
         if os.environ.get(RAISE):
             raise
+        from traceback import extract_tb  # a clean run does not pay for it
+
         where = extract_tb(fault.__traceback__)[-1]
         what = f"{type(fault).__name__}: {fault} ({Path(where.filename).name}:{where.lineno})"
         return Failure(rule=rule, subject=subject, what=what)

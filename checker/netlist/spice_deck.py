@@ -3,13 +3,13 @@ subcircuits."""
 
 from __future__ import annotations
 
-from dataclasses import dataclass, field
+from dataclasses import field
 
 from checker.netlist.spice_lines import Card
 from checker.netlist.spice_names import references
 from checker.netlist.spice_words import Words, split_words
 from checker.netlist.types import Remark
-from checker.shape import frozen
+from checker.shape import filled, frozen
 
 
 @frozen
@@ -23,7 +23,7 @@ class Element:
     card: Card
 
 
-@dataclass(slots=True, kw_only=True)
+@filled
 class Definition:
     """The board itself or a `.subckt`, filled while reading. Keys of the mappings are lower case."""
 
@@ -56,7 +56,7 @@ class Definition:
         ]
 
 
-@dataclass(slots=True, kw_only=True)
+@filled
 class Deck:
     """All that was declared in a file and its includes."""
 

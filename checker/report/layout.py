@@ -2,7 +2,6 @@
 
 from __future__ import annotations
 
-import unicodedata
 from collections.abc import Iterable, Sequence
 
 from checker.shape import frozen
@@ -11,6 +10,8 @@ CODES = {"must-fix": "1;31", "review": "1;33", "note": "1;36", "good": "1;32", "
 """Style to ANSI parameter; 8-colour codes, so that the terminal's own palette decides."""
 NO_BREAK = "\u00a0"
 """Between a number and its unit while lines are broken; `clean` lets none through from a name."""
+_OURS = frozenset("Ωµ°±—–−→·…√²")
+"""Characters of the report's own words that are not ASCII; each takes one column."""
 WRAPPED = 16
 """Columns that a wrapped last column gets at least."""
 
@@ -39,6 +40,10 @@ def cells(text: str) -> int:
 
 
 def _cells_of(char: str) -> int:
+    if char in _OURS or char.isascii():
+        return 1
+    import unicodedata  # a millisecond; only names from elsewhere need it
+
     if unicodedata.combining(char):
         return 0
     return 2 if unicodedata.east_asian_width(char) in "WF" else 1

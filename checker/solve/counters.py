@@ -2,10 +2,12 @@
 
 from __future__ import annotations
 
-from dataclasses import asdict, dataclass
+from dataclasses import asdict
+
+from checker.shape import filled
 
 
-@dataclass(slots=True)
+@filled
 class Counters:
     """Counts since the last `reset`: linear solves (matrices), factorisations or inversions (matrices), device
     evaluations (devices times scenarios), Newton iterations (batched passes)."""

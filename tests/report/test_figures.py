@@ -2,12 +2,15 @@
 
 from __future__ import annotations
 
+import unicodedata
+
 import pytest
 from hypothesis import given
 from hypothesis import strategies as st
 
 from checker.record import Complex
 from checker.record.units import as_written
+from checker.report import layout
 from checker.report.clean import cell, clean, name
 from checker.report.layout import Page, cells, pad, table, wrap
 from checker.report.quantities import complex_number, figure, number, polar, unit_of, words
@@ -125,6 +128,10 @@ def test_wrap_keeps_the_words_and_the_width(text: str, columns: int) -> None:
 def test_cells_of_wide_and_combining_characters() -> None:
     assert cells("网a\u0301") == 3
     assert pad("网", 4) == "网  " and pad("网", 4, right=True) == "  网"
+
+
+def test_the_reports_own_characters_take_one_column() -> None:
+    assert all(unicodedata.east_asian_width(c) not in "WF" and not unicodedata.combining(c) for c in layout._OURS)
 
 
 def test_table_goes_on_below_itself_where_it_is_too_wide() -> None:
