@@ -10,7 +10,7 @@ from collections.abc import Mapping
 
 import numpy as np
 
-from checker.arrays import FloatArray, IntArray
+from checker.arrays import ComplexArray, FloatArray, IntArray
 from checker.circuit.types import Circuit, Devices
 from checker.constants import DEFAULT_AMBIENT_C, ZERO_CELSIUS_K, thermal_voltage_v
 from checker.devices.family import Family
@@ -19,7 +19,7 @@ from checker.solve.plan import Plan
 
 
 class Scatter:
-    """Adds columns of (S, m) into (S, size) by destination; a destination of -1 is dropped."""
+    """Adds columns of (..., m) into (..., size) by destination; a destination of -1 is dropped."""
 
     def __init__(self, dest: IntArray, size: int) -> None:
         keep = np.flatnonzero(dest >= 0)
@@ -31,6 +31,11 @@ class Scatter:
     def add(self, values: FloatArray) -> FloatArray:
         """Sums by destination, float64 (S, size)."""
         return self._reduce(np.add, values)
+
+    def into(self, out: ComplexArray, values: ComplexArray) -> None:
+        """Add the sums to `out` (..., size) in place."""
+        if len(self._where):
+            out[..., self._where] += np.add.reduceat(values[..., self._pick], self._starts, axis=-1)
 
     def largest(self, values: FloatArray) -> FloatArray:
         """Largest magnitude by destination, float64 (S, size)."""

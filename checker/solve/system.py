@@ -13,6 +13,7 @@ import numpy as np
 from checker.arrays import BoolArray, ComplexArray, FloatArray, IntArray
 from checker.circuit.types import Branches, Circuit, Devices
 from checker.shape import frozen
+from checker.solve.assemble import Scatter
 from checker.solve.frequencies import angular
 from checker.solve.operating import OperatingPoint
 from checker.solve.plan import Sets
@@ -21,7 +22,9 @@ from checker.solve.plan import Sets
 @frozen
 class SignalSystem:
     """`row` (n_net,): unknown of a net or -1; `v_row`, `l_row`: of sources and inductors; `islands`: unknowns each;
-    `pins`: unknowns that are pinned; `tree`: (node, parent, source, sign) of nets fixed by ideal sources."""
+    `pins`: unknowns that are pinned; `tree`: (node, parent, source, sign) of nets fixed by ideal sources.
+    `linear`: G and C (S, u, u + n_net) of all that is no semiconductor; columns: unknowns, then nets of fixed voltage.
+    `semiconductors`: where the admittances of the families of the plan go in the flat (u, u + n_net)."""
 
     circuit: Circuit
     row: IntArray
@@ -32,70 +35,18 @@ class SignalSystem:
     islands: tuple[IntArray, ...]
     pins: tuple[int, ...]
     size: int
+    linear: tuple[FloatArray, FloatArray]
+    semiconductors: Scatter
 
     def matrices(self, f_hz: FloatArray, device_y: Mapping[str, ComplexArray]) -> tuple[ComplexArray, ComplexArray]:
         """System matrix (S, F, u, u) and its coupling from nets (S, F, u, n_net); `device_y` by family."""
-        c = self.circuit
         s = angular(f_hz)
-        shape = (c.size, len(f_hz))
-        n_net = len(c.nets)
-        full = np.zeros((*shape, self.size, self.size + n_net), dtype=complex)
-        for a, b, y in self._admittances(s, device_y):
-            self._stamp(full, a, b, y)
-        self._branches(full, s)
-        for pin in self.pins:
-            full[..., pin, pin] += 1.0
+        g, c = self.linear
+        full = g[:, None] + s[None, :, None, None] * c[:, None]
+        flat = [y.reshape(*full.shape[:2], -1) for y in device_y.values()]
+        if flat:
+            self.semiconductors.into(full.reshape(*full.shape[:2], -1), np.concatenate(flat, axis=-1))
         return full[..., : self.size], full[..., self.size :]
-
-    def _admittances(
-        self, s: ComplexArray, device_y: Mapping[str, ComplexArray]
-    ) -> list[tuple[int, int, ComplexArray]]:
-        c = self.circuit
-        out: list[tuple[int, int, ComplexArray]] = []
-        for table, y in (
-            (c.resistors, np.repeat(1.0 / c.resistors.value[:, None], len(s), axis=1).astype(complex)),
-            (c.capacitors, np.asarray(c.capacitors.value[:, None] * s[None, :, None])),
-        ):
-            for j, (a, b) in enumerate(table.nodes.tolist()):
-                for row, column, sign in ((a, a, 1), (b, b, 1), (a, b, -1), (b, a, -1)):
-                    out.append((row, column, sign * y[..., j]))
-        for kind, y in device_y.items():
-            for j, terminals in enumerate(c.devices[kind].nodes.tolist()):
-                for r, a in enumerate(terminals):
-                    for k, b in enumerate(terminals):
-                        out.append((a, b, y[:, :, j, r, k]))
-        return out
-
-    def _stamp(self, full: ComplexArray, a: int, b: int, y: ComplexArray) -> None:
-        row = self.row[a]
-        if row < 0:
-            return
-        if self.row[b] >= 0:
-            full[..., row, self.row[b]] += y
-        elif b > 0:
-            full[..., row, self.size + b] += y
-
-    def _branches(self, full: ComplexArray, s: ComplexArray) -> None:
-        c = self.circuit
-        for table, rows in ((c.voltages, self.v_row), (c.inductors, self.l_row)):
-            for j, row in enumerate(rows.tolist()):
-                if row < 0:
-                    continue
-                for node, sign in zip(table.nodes[j].tolist(), (1.0, -1.0), strict=True):
-                    if self.row[node] >= 0:
-                        full[..., self.row[node], row] += sign
-                        full[..., row, self.row[node]] += sign
-                    elif node > 0:
-                        full[..., row, self.size + node] += sign
-        for j, row in enumerate(self.l_row.tolist()):
-            if row >= 0:
-                full[..., row, row] -= s * c.inductors.value[:, j, None]
-        for j, (p, q) in enumerate(c.couplings.pair.tolist()):
-            rp, rq = self.l_row[p], self.l_row[q]
-            if rp >= 0 and rq >= 0:
-                mutual = c.couplings.k[:, j] * np.sqrt(c.inductors.value[:, p] * c.inductors.value[:, q])
-                full[..., rp, rq] -= s * mutual[:, None]
-                full[..., rq, rp] -= s * mutual[:, None]
 
     def inverse(self, y: ComplexArray) -> ComplexArray:
         """Island by island; nan where an island has an unbiased device or is singular."""
@@ -146,6 +97,11 @@ def _numbered(point: OperatingPoint) -> SignalSystem:
     l_row, size = _rows(c.inductors, size, known, set())
     islands, pins = _islands(c, joins, row, known, (v_row, l_row), size)
     tree = tuple((t.node, t.parent, t.source, t.sign) for t in plan.known)
+    places = _destinations([c.devices[kind] for kind in plan.placed], row, size, n)
+    linear = _Linear(c, row, size)
+    for pin in pins:
+        linear.g[:, pin, pin] += 1.0
+    linear.branches(v_row, l_row)
     return SignalSystem(
         circuit=c,
         row=row,
@@ -156,7 +112,70 @@ def _numbered(point: OperatingPoint) -> SignalSystem:
         islands=islands,
         pins=pins,
         size=size,
+        linear=(linear.g, linear.c),
+        semiconductors=Scatter(places, size * (size + n)),
     )
+
+
+class _Linear:
+    """G and C of resistors, capacitors, sources and inductors, each stamped once."""
+
+    def __init__(self, circuit: Circuit, row: IntArray, size: int) -> None:
+        self.circuit, self.size = circuit, size
+        self.row = row.tolist()
+        shape = (circuit.size, size, size + len(circuit.nets))
+        self.g, self.c = np.zeros(shape), np.zeros(shape)
+        for out, table, y in (
+            (self.g, circuit.resistors, 1.0 / circuit.resistors.value),
+            (self.c, circuit.capacitors, circuit.capacitors.value),
+        ):
+            for j, (a, b) in enumerate(table.nodes.tolist()):
+                for r, column, sign in ((a, a, 1.0), (b, b, 1.0), (a, b, -1.0), (b, a, -1.0)):
+                    self._stamp(out, r, column, sign * y[:, j])
+
+    def _stamp(self, out: FloatArray, a: int, b: int, y: FloatArray) -> None:
+        row, column = self.row[a], _column(self.row, b, self.size)
+        if row >= 0 and column >= 0:
+            out[:, row, column] += y
+
+    def branches(self, v_row: IntArray, l_row: IntArray) -> None:
+        """The equation of each source and inductor, and their currents in the balances of their nodes."""
+        c = self.circuit
+        for table, rows in ((c.voltages, v_row), (c.inductors, l_row)):
+            for j, row in enumerate(rows.tolist()):
+                for node, sign in zip(table.nodes[j].tolist(), (1.0, -1.0), strict=True) if row >= 0 else ():
+                    column = _column(self.row, node, self.size)
+                    if column >= 0:
+                        self.g[:, row, column] += sign
+                    if self.row[node] >= 0:
+                        self.g[:, self.row[node], row] += sign
+        for j, row in enumerate(l_row.tolist()):
+            if row >= 0:
+                self.c[:, row, row] -= c.inductors.value[:, j]
+        for j, (p, q) in enumerate(c.couplings.pair.tolist()):
+            rp, rq = l_row[p], l_row[q]
+            if rp >= 0 and rq >= 0:
+                mutual = c.couplings.k[:, j] * np.sqrt(c.inductors.value[:, p] * c.inductors.value[:, q])
+                self.c[:, rp, rq] -= mutual
+                self.c[:, rq, rp] -= mutual
+
+
+def _column(row: list[int], node: int, size: int) -> int:
+    """Column of a net: its unknown, else its place among the nets behind the unknowns; -1 for ground."""
+    return row[node] if row[node] >= 0 else size + node if node > 0 else -1
+
+
+def _destinations(tables: list[Devices], row: IntArray, size: int, n_net: int) -> IntArray:
+    """Flat place in (u, u + n_net) of each device's admittances in turn; -1 where the row is no unknown."""
+    places = row.tolist()
+    out = []
+    for table in tables:
+        for terminals in table.nodes.tolist():
+            columns = [_column(places, b, size) for b in terminals]
+            for a in terminals:
+                first = places[a] * (size + n_net)
+                out += [first + column if places[a] >= 0 and column >= 0 else -1 for column in columns]
+    return np.array(out, dtype=np.int64)
 
 
 def _joins(c: Circuit) -> list[list[int]]:
