@@ -13,7 +13,7 @@ import pytest
 ROOT = Path(__file__).resolve().parents[1]
 
 LAYERS: tuple[tuple[str, ...], ...] = (
-    ("words", "constants", "trouble", "shape", "pattern", "arrays"),
+    ("words", "constants", "trouble", "shape", "pattern", "arrays", "digest"),
     ("record",),
     ("quantity",),
     ("netlist", "cards", "intent"),
@@ -39,8 +39,9 @@ LAYERS: tuple[tuple[str, ...], ...] = (
 
 LEVEL = {room: level for level, rooms in enumerate(LAYERS) for room in rooms}
 REPORT_MAY_USE = {"record", "shape", "words", "quantity", "trouble", "report"}
-RUN_TIME_PACKAGES = {"numpy", "click", "scipy"}
-"""scipy only inside a function, for the sparse solution of large islands."""
+RUN_TIME_PACKAGES = {"numpy", "click", "scipy", "_sha2"}
+"""scipy only inside a function, for the sparse solution of large islands; `_sha2` is the standard library's from Python
+3.12 on."""
 
 
 def room_of(module: str) -> str:

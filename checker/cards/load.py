@@ -34,6 +34,8 @@ _OWN: Final = ("aliases", "packages", "note", "source")
 
 def squeeze(name: str) -> str:
     """A part name as the index holds it: upper case, letters and digits only."""
+    if name.isascii() and name.isalnum():
+        return name.upper()
     return "".join(letter for letter in name.upper() if letter.isascii() and letter.isalnum())
 
 

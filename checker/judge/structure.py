@@ -6,9 +6,9 @@ for. Equal surroundings give equal labels, whatever the parts are called.
 
 from __future__ import annotations
 
-import hashlib
 from collections.abc import Iterable, Mapping
 
+from checker.digest import sha256_hex
 from checker.shape import frozen
 
 SYMMETRIC = frozenset({"resistor", "capacitor", "inductor", "coil"})
@@ -54,7 +54,7 @@ def labels(
 
 def digest(words: Iterable[str]) -> str:
     """A short hash of texts in their order."""
-    return hashlib.sha256("\0".join(words).encode("utf-8", "surrogatepass")).hexdigest()[:_DIGITS]
+    return sha256_hex("\0".join(words).encode("utf-8", "surrogatepass"))[:_DIGITS]
 
 
 def _around(drawing: Drawing, ref: str, nets: Mapping[str, str]) -> list[str]:

@@ -3,12 +3,12 @@
 from __future__ import annotations
 
 import gc
-import hashlib
 import sys
 from collections.abc import Iterator
 from contextlib import contextmanager
 from pathlib import Path
 
+from checker.digest import sha256_hex
 from checker.netlist.limits import ReadLimits
 from checker.netlist.text import decode, display_name, read_bytes
 from checker.netlist.types import Netlist
@@ -40,7 +40,7 @@ def _read(path: Path, include_dirs: tuple[Path, ...], limits: ReadLimits) -> Net
     text = decode(data, name)
     if not text.strip():
         raise InputTrouble("is empty; expected a netlist", file=name)
-    sha256 = hashlib.sha256(data).hexdigest()
+    sha256 = sha256_hex(data)
     start = text.lstrip()
     # Only the reader in use is loaded: start-up time.
     if not _S_EXPRESSION.match(start):

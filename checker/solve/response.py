@@ -232,6 +232,8 @@ class Response:
 
 def _merge(rows: IntArray, delta: ComplexArray) -> tuple[IntArray, ComplexArray]:
     """Fold terminals on one and the same net together."""
+    if len(set(rows.tolist())) == len(rows):
+        return rows, delta
     inner, where = np.unique(rows, return_inverse=True)
     fold = np.zeros((len(inner), len(rows)))
     fold[where, np.arange(len(rows))] = 1.0

@@ -44,10 +44,15 @@ def _back(small: ComplexArray, terms: FloatArray) -> tuple[ComplexArray, BoolArr
 
     Loss: the largest term that was summed into the matrix, times the size (1-norm) of its inverse.
     """
-    identity = np.eye(small.shape[-1])
+    identity = np.eye(small.shape[-1], dtype=complex)
     known = np.asarray(np.isfinite(small).all(axis=(-1, -2)))
-    singular = np.asarray(known & (np.linalg.det(np.where(known[..., None, None], small, identity)) == 0.0))
-    back = np.linalg.inv(np.where((known & ~singular)[..., None, None], small, identity))
+    small = np.where(known[..., None, None], small, identity)
+    singular = np.zeros(known.shape, dtype=bool)
+    try:
+        back = np.asarray(np.linalg.inv(small))
+    except np.linalg.LinAlgError:
+        singular = np.asarray(np.linalg.det(small) == 0.0)
+        back = np.asarray(np.linalg.inv(np.where(singular[..., None, None], identity, small)))
     size = np.maximum(1.0, np.where(known, terms.max(axis=(-1, -2)), 0.0))
     weak = singular | (known & ~(size * np.abs(back).sum(axis=-2).max(axis=-1) <= LARGEST_LOSS))
     back = np.where(weak[..., None, None], identity, back)
