@@ -7,7 +7,7 @@ import numpy as np
 from checker.arrays import FloatArray
 from checker.constants import ZERO_CELSIUS_K
 from checker.measure.bench import Bench
-from checker.measure.feeds import base_reach, require_not_fed
+from checker.measure.feeds import reach, require_not_fed, require_supplied
 from checker.measure.make import figure, first, missing
 from checker.measure.registry import quantity
 from checker.quantity.figure import Figure
@@ -80,8 +80,9 @@ def region_code(bench: Bench, stage: str) -> Figure:
     require_bias(bench, stage)
     codes = _kept(bench, "regions")[:, bench.stage(stage).index]
     if REGIONS[int(codes[0])] == "cut-off":
-        # At rest means with everything connected: an open connector on the base leaves that undecided.
-        require_not_fed(bench, stage, base_reach(bench, stage))
+        # At rest means with everything connected: an open connector leaves that undecided.
+        require_not_fed(bench, stage, reach(bench, stage))
+        require_supplied(bench, stage)
         _require_off_in_all_states(bench, stage, codes)
     return figure(
         "region_code",

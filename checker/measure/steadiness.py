@@ -12,7 +12,7 @@ from checker.circuit.changes import with_changes
 from checker.circuit.types import Change, Circuit, Scenario
 from checker.measure.bench import Bench
 from checker.measure.bias import require_bias
-from checker.measure.feeds import base_reach, require_not_fed
+from checker.measure.feeds import current_fed, reach, require_not_fed
 from checker.measure.make import figure, first, missing, nominal
 from checker.measure.registry import quantity
 from checker.measure.single import nominal_circuit
@@ -180,14 +180,9 @@ def base_dc_path(bench: Bench, stage: str) -> Figure:
 
     Raises CannotTell where nothing does but a connector or a part without a model may.
     """
-    reached = base_reach(bench, stage)
-    found = bool(bench.point.plan.is_known[list(reached)].any()) or bool(_current_fed(bench, reached))
+    reached = reach(bench, stage)
+    found = bool(bench.point.plan.is_known[list(reached)].any()) or bool(current_fed(bench, reached))
     if not found:
         require_not_fed(bench, stage, reached)
     values = np.full(bench.size, 1.0 if found else 0.0)
     return figure("base_dc_path", stage, values, "", formula="a chain of conducting parts from the base to a supply")
-
-
-def _current_fed(bench: Bench, reached: set[int]) -> bool:
-    """Whether a current source ends on one of these nets."""
-    return any(node in reached for node in bench.circuit.currents.nodes.ravel().tolist())

@@ -31,6 +31,12 @@ _QUIET = frozenset(
 """Dot cards that only ask for analyses or output."""
 
 
+def _is_diode(text: str) -> bool:
+    """Whether a line that starts with DC is the diode of that name: it ends in a model, a sweep in numbers."""
+    words = text.split()
+    return words[0].lower() == "dc" and len(words) >= 4 and words[3][0].isalpha()
+
+
 class CardReader:
     """Reads the cards of the main text and, through includes, of other files."""
 
@@ -99,7 +105,7 @@ class CardReader:
 
     def element(self, card: Card) -> None:
         word = card.text.split(None, 1)[0]
-        if not word[0].isalpha() or word.lower() in _COMMANDS:
+        if not word[0].isalpha() or (word.lower() in _COMMANDS and not _is_diode(card.text)):
             self.remark(card, f"the line {card.text[:40]!r} is not understood and passed over")
             return
         self.open[-1].cards.append(card)

@@ -15,6 +15,7 @@ import numpy as np
 
 from checker.arrays import BoolArray, FloatArray
 from checker.circuit.types import TRANSISTOR_FAMILIES
+from checker.constants import CURRENT_FLOOR_A
 from checker.devices import bipolar
 from checker.solve.operating import OperatingPoint
 from checker.solve.response import Response, small_signal
@@ -136,7 +137,7 @@ def _judge_small_currents(point: OperatingPoint, codes: FloatArray) -> None:
         shorted = shorted_current(point, slow, j)
         with np.errstate(invalid="ignore"):
             for word, where in (
-                ("cut-off", current[:, j] < CUT_OFF * shorted),
+                ("cut-off", (current[:, j] < CUT_OFF * shorted) | (current[:, j] < CURRENT_FLOOR_A)),
                 ("gate-conducting", gate[:, j] > JUNCTION_CONDUCTS * shorted),
                 ("body-conducting", body[:, j] > JUNCTION_CONDUCTS * shorted),
             ):

@@ -6,6 +6,7 @@ import numpy as np
 import pytest
 from scipy.optimize import brentq
 
+from checker.stages.region import REGIONS
 from checker.trouble import CannotTell
 from tests.measure.nodal import IDEAL, VT
 from tests.whole import board_from, intent_text, mirrored, set_up_from
@@ -153,3 +154,26 @@ def test_a_declared_port_is_known_to_feed_nothing() -> None:
     netlist = OPEN_BASE + "RB B J 1k\nXJ1 J 0 CONN_01X02\n" + IDEAL
     intent = intent_text(("J", "input", ""), band=None)
     assert ask(netlist, "base_dc_path", intent) == 0.0
+
+
+OFF_BOARD = "V1 VCC 0 12\nR1 VCC X 10k\nR2 X 0 100\nRB X B 1k\nRE E 0 1k\nQ1 C B E QI\nXJ1 C VCC CONN_01X02\n"
+
+
+def test_a_connector_may_feed_the_collector() -> None:
+    """The load is off the board: nothing here tells whether a current flows."""
+    with pytest.raises(CannotTell) as gap:
+        board_from(OFF_BOARD + IDEAL, NO_BAND).ask("region_code", "Q1")
+    assert "J1 pin 1" in gap.value.datum
+    assert "collector" in gap.value.datum
+
+
+@pytest.mark.parametrize("feed", ["RC VCC C 1k\n", "I1 VCC C 1m\nDC C VCC DX\n.model DX D(IS=1e-14)\n"])
+def test_a_collector_fed_on_the_board_is_judged(feed: str) -> None:
+    assert REGIONS[int(ask(OFF_BOARD + feed + IDEAL, "region_code"))] == "cut-off"
+
+
+def test_no_current_at_all_is_cut_off_in_every_scenario() -> None:
+    """Voltages of picovolts are rounding, and no region follows from their sign."""
+    netlist = "V1 VCC 0 12\nRB B 0 10k\nRE E 0 1k\nRC C 0 1k\nQ1 C B E QI\nR9 VCC 0 1k\n"
+    codes = board_from(netlist + IDEAL, NO_BAND).ask("region_code", "Q1").values
+    assert {REGIONS[int(code)] for code in codes.ravel()} == {"cut-off"}

@@ -179,3 +179,14 @@ def test_files_of_models_or_subcircuits_alone(read: Read) -> None:
     subcircuits = read("* lib\n.subckt amp in out\nR1 in out 1k\n.ends\n")
     assert subcircuits.parts == ()
     assert "amp" in subcircuits.remarks[0].text
+
+
+@pytest.mark.parametrize(
+    ("line", "parts"),
+    [("dc V1 0 5 0.1", 0), ("DC V1 0 5", 0), ("op", 0), ("DC in out DX", 1), ("dc in 0 1N4148 area=2", 0)],
+)
+def test_commands_outside_a_control_block(read: Read, line: str, parts: int) -> None:
+    """A line that starts with DC is a sweep where numbers follow, and a diode of that name before a model."""
+    netlist = read(f"* t\n{line}\n{DECK}")
+    assert len(netlist.parts) == 3 + parts
+    assert len(netlist.remarks) == 1 - parts
