@@ -36,7 +36,6 @@ from checker.record import (
     SourceFile,
     Stage,
     Tool,
-    Unchecked,
     WorkingLine,
     in_order,
     judged_on,
@@ -44,6 +43,7 @@ from checker.record import (
 from checker.setup import Setup, set_up
 from checker.shape import frozen
 from checker.solve.counters import COUNTERS
+from checker.summary.gaps import judged_apart, unknowns, unread, unsolved
 from checker.summary.ledger import Ledger
 from checker.summary.parts import parts
 from checker.summary.stages import group_records, stage_records
@@ -110,7 +110,12 @@ def check_board(
         gains=gains(setup, ledger),
         findings=accepted.open,
         accepted=accepted.accepted,
-        unchecked=(*_unknowns(setup), *_unsolved(stages), *_judged_apart(stages, to_unchecked(examination))),
+        unchecked=(
+            *unread(setup),
+            *unknowns(setup),
+            *unsolved(stages),
+            *judged_apart(stages, to_unchecked(examination)),
+        ),
         judged=_judged(examination, {stage.id for stage in stages}),
         unavailable=ledger.unavailable,
     )
@@ -212,24 +217,6 @@ def _counts(stage: Stage) -> bool:
     return stage.bias is not None
 
 
-def _unknowns(setup: Setup) -> list[Unchecked]:
-    """Parts and nets that cannot be solved with."""
-    return [Unchecked(subject=u.ref, rule="", datum=u.datum, supply=u.supply) for u in setup.circuit.unknowns]
-
-
-def _judged_apart(stages: tuple[Stage, ...], gaps: tuple[Unchecked, ...]) -> list[Unchecked]:
-    """Gaps of rules, but for stages without an operating point: there one line stands for all rules."""
-    lost = {stage.id for stage in stages if stage.bias is None}
-    return [gap for gap in gaps if gap.subject not in lost]
-
-
-def _unsolved(stages: tuple[Stage, ...]) -> list[Unchecked]:
-    """Stages without an operating point."""
-    return [
-        Unchecked(subject=s.id, rule="", datum="operating point", supply=s.reason) for s in stages if s.bias is None
-    ]
-
-
 def _judged(examination: Examination, stages: set[str]) -> dict[str, tuple[str, ...]]:
     """Which rules had an answer, on what."""
     found: dict[str, dict[str, None]] = {}
@@ -239,8 +226,9 @@ def _judged(examination: Examination, stages: set[str]) -> dict[str, tuple[str, 
 
 
 def _remarks(setup: Setup) -> tuple[str, ...]:
-    """What the reader could not use or passed over on purpose."""
+    """What the reader passed over on purpose; what it did not understand is among the unchecked."""
     return tuple(
         f"{remark.origin.file}:{remark.origin.line}: {remark.text}" if remark.origin.line else remark.text
         for remark in setup.netlist.remarks
+        if not remark.lost
     )

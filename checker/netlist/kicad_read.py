@@ -230,6 +230,8 @@ def _lost_nodes(parts: list[Part], nodes: _Nodes, name: str) -> list[Remark]:
             text=f"nets name pins of {ref or 'a part without reference'}, which is not in the component list",
             origin=Origin(kind="netlist", file=name, line=nodes.lines.get(ref, 0)),
             parts=(ref,) if ref else (),
+            lost=True,
+            nets=tuple(sorted({pin.net for pin in nodes.pins[ref]})),
         )
         for ref in sorted(set(nodes.pins) - known)
     ]

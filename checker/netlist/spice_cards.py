@@ -98,7 +98,7 @@ class CardReader:
         elif word in _QUIET:
             self.deck.directives += 1
         else:
-            self.remark(card, f".{word[:30]} is not understood and passed over")
+            self.deck.remarks.append(card.lost(f".{word[:30]} is not understood and passed over"))
 
     def remark(self, card: Card, text: str) -> None:
         self.deck.remarks.append(card.remark(text))
@@ -106,7 +106,7 @@ class CardReader:
     def element(self, card: Card) -> None:
         word = card.text.split(None, 1)[0]
         if not word[0].isalpha() or (word.lower() in _COMMANDS and not _is_diode(card.text)):
-            self.remark(card, f"the line {card.text[:40]!r} is not understood and passed over")
+            self.deck.remarks.append(card.lost(f"the line {card.text[:40]!r} is not understood and passed over"))
             return
         self.open[-1].cards.append(card)
 

@@ -125,7 +125,7 @@ class Expansion:
             part = part_of(element, _At(self, frame, element))
             if part is None:
                 text = f"the line {element.card.text[:60]!r} has too few words for a part and is passed over"
-                self.say(element.card.remark(text))
+                self.say(element.card.lost(text))
             else:
                 self.parts.append(part)
 

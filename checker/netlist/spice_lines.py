@@ -35,6 +35,10 @@ class Card:
         """A remark that stands at this card."""
         return Remark(text=text, origin=self.origin, parts=parts)
 
+    def lost(self, text: str) -> Remark:
+        """A remark that the card is not understood. Its words stand for the nets until all nets are known."""
+        return Remark(text=text, origin=self.origin, lost=True, nets=tuple(self.text.split()[1:]))
+
 
 def cards_of(text: str, *, file: str, limits: ReadLimits, first_line: int = 1) -> tuple[list[Card], list[Remark]]:
     """The cards of one file up to `.end`, and remarks on what was passed over. `first_line`: number of the

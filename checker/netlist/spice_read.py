@@ -3,6 +3,8 @@ all."""
 
 from __future__ import annotations
 
+from collections.abc import Mapping
+from dataclasses import replace
 from pathlib import Path
 
 from checker.netlist.limits import ReadLimits
@@ -13,7 +15,7 @@ from checker.netlist.spice_includes import Folders
 from checker.netlist.spice_lines import cards_of, without_comment
 from checker.netlist.spice_pads import without_guesses
 from checker.netlist.spice_title import is_element, title_of
-from checker.netlist.types import Netlist, Remark
+from checker.netlist.types import Net, Netlist, Remark
 from checker.quantity.value import Origin
 from checker.trouble import InputTrouble
 
@@ -52,8 +54,16 @@ def read_spice(
         models=expansion.models,
         temperature_c=deck.temperature_c,
         ground=(GROUND,) if GROUND in expansion.nets else (),
-        remarks=tuple(deck.remarks + expansion.remarks),
+        remarks=tuple(_with_nets(each, expansion.nets) for each in deck.remarks + expansion.remarks),
     )
+
+
+def _with_nets(remark: Remark, nets: Mapping[str, Net]) -> Remark:
+    """The words of a lost line that are names of nets, in any case, as keys."""
+    if not remark.nets:
+        return remark
+    words = {word.lower() for word in remark.nets}
+    return replace(remark, nets=tuple(key for key in nets if key.lower() in words))
 
 
 def _declared(text: str, name: str, path: Path, include_dirs: tuple[Path, ...], limits: ReadLimits, size: int) -> Deck:

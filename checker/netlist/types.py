@@ -88,11 +88,17 @@ class Model:
 
 @frozen
 class Remark:
-    """Something the reader saw and could not use, or passed over on purpose; `parts` it may touch."""
+    """Something the reader saw and could not use, or passed over on purpose; `parts` it may touch.
+
+    `lost`: the line is not understood, and what it says is missing from the netlist; `nets`: keys of the nets that it
+    names, as far as can be told.
+    """
 
     text: str
     origin: Origin
     parts: tuple[str, ...] = ()
+    lost: bool = False
+    nets: tuple[str, ...] = ()
 
 
 @frozen

@@ -160,3 +160,7 @@ class Unchecked(Record):
     """What is missing."""
     supply: str
     """What to supply so that it can be checked."""
+    location: Location | None = None
+    """Where in the netlist that stands which is not understood; null where no line is to blame."""
+    touches: tuple[str, ...] = ()
+    """Stages that what is not understood may bear on."""

@@ -12,7 +12,7 @@ from xml.sax.saxutils import escape, quoteattr  # writes only
 from checker.record import Finding, Report, in_order, judged_on, natural
 from checker.report.bundle import Bundle
 from checker.report.clean import clean, name
-from checker.report.sections.findings import facts
+from checker.report.sections.findings import bearing, facts
 from checker.shape import frozen
 from checker.words import SEVERITIES
 
@@ -109,6 +109,7 @@ def _unchecked(report: Report) -> Iterator[Case]:
     for gap in report.unchecked:
         supply = f"; supply {clean(gap.supply)}" if gap.supply else ""
         message = f"not judged, {clean(gap.datum)} is missing{supply}"
+        message = "; ".join(filter(None, (message, bearing(gap))))
         yield Case(subject=gap.subject, rule=gap.rule or EVERYTHING, result="skipped", message=message)
 
 

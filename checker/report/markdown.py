@@ -8,7 +8,7 @@ from checker.record import Finding, Report, in_order
 from checker.report.bundle import Bundle
 from checker.report.markup import fitted, folded, marked, table
 from checker.report.quantities import figure
-from checker.report.sections.findings import facts, place, subject
+from checker.report.sections.findings import bearing, facts, place, subject
 from checker.report.sections.opening import COUNTED
 from checker.report.sections.since import brief
 from checker.words import SEVERITIES, Severity
@@ -135,7 +135,8 @@ def _accepted(report: Report) -> Iterator[str]:
 def _unchecked(report: Report) -> Iterator[str]:
     for gap in report.unchecked:
         supply = f"; supply {marked(gap.supply)}" if gap.supply else ""
-        yield f"{marked(gap.subject)} {marked(gap.rule or 'every rule')}: {marked(gap.datum)}{supply}"
+        line = f"{marked(gap.subject)} {marked(gap.rule or 'every rule')}: {marked(gap.datum)}{supply}"
+        yield "; ".join(filter(None, (line, marked(bearing(gap)))))
 
 
 def _stages(report: Report) -> Iterator[str]:

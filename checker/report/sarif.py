@@ -17,7 +17,7 @@ from checker.record.write import dump, plain
 from checker.report.bundle import Bundle
 from checker.report.catalogue import RuleShown, limit_text
 from checker.report.clean import clean, name
-from checker.report.sections.findings import facts
+from checker.report.sections.findings import bearing, facts
 from checker.words import Severity
 
 SCHEMA = "https://docs.oasis-open.org/sarif/sarif/v2.1.0/errata01/os/schemas/sarif-schema-2.1.0.json"
@@ -117,10 +117,11 @@ def _gap(gap: Unchecked, report: Report, index: Mapping[str, int]) -> Json:
     supply = f"; supply {clean(gap.supply)}" if gap.supply else ""
     rule = gap.rule or "every rule"
     text = f"{name(gap.subject)} was not judged by {clean(rule)}: {clean(gap.datum)} is missing{supply}"
+    text = "; ".join(filter(None, (text, bearing(gap))))
     about = (
         {"associatedRule": {"id": clean(gap.rule), "index": index[clean(gap.rule)]}} if clean(gap.rule) in index else {}
     )
-    where = next((stage.location for stage in report.stages if stage.id == gap.subject), None)
+    where = gap.location or next((stage.location for stage in report.stages if stage.id == gap.subject), None)
     return {
         "level": "warning",
         "message": {"text": escaped(text)},

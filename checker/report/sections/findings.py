@@ -5,7 +5,7 @@ from __future__ import annotations
 from collections.abc import Iterator
 from dataclasses import replace
 
-from checker.record import Accepted, Bound, Change, Effect, Finding, Location, Remedy, Report, Window
+from checker.record import Accepted, Bound, Change, Effect, Finding, Location, Remedy, Report, Unchecked, Window
 from checker.report.clean import clean, name
 from checker.report.layout import NO_BREAK, Page, cells, hanging
 from checker.report.quantities import given, number, words
@@ -47,6 +47,13 @@ def accepted(report: Report, page: Page) -> list[str]:
     if not report.accepted:
         return []
     return [*page.heading("Accepted"), *(line for each in report.accepted for line in _accepted(each, page))]
+
+
+def bearing(gap: Unchecked) -> str:
+    """Where the line stands that a gap is about, and the stages that it bears on, in one clause; empty for neither."""
+    at = f"at {place(gap.location)}" if gap.location is not None else ""
+    stages = ", ".join(name(stage) for stage in gap.touches if stage != gap.subject)
+    return "; ".join(filter(None, (at, f"bears on {stages}" if stages else "")))
 
 
 def place(location: Location | None) -> str:

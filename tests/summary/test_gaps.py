@@ -1,0 +1,90 @@
+"""What is not understood is named with its line and the stages that it bears on, in both formats and every form."""
+
+from __future__ import annotations
+
+from pathlib import Path
+
+import pytest
+
+from checker.pipeline import check_board
+from checker.record import Report, Unchecked
+from checker.report.forms import FORMS, form
+from tests.whole import outcome_from
+
+DECK = """V1 VCC 0 12
+R1 VCC B 100k
+R2 B 0 15k
+RE E 0 1k
+RC VCC C 4.7k
+Q1 C B E QN
+R3 VCC B2 100k
+RE2 E2 0 1k
+Q2 VCC B2 E2 QN
+"""
+Q1, Q2 = ("Q1",), ("Q2",)
+
+
+def gap(report: Report, subject: str) -> Unchecked:
+    (found,) = [each for each in report.unchecked if each.subject == subject]
+    return found
+
+
+@pytest.mark.parametrize(
+    ("line", "subject", "touches"),
+    [
+        ("9X B 0 foo", "line 11", Q1),
+        ("9x e2 0 foo", "line 11", Q2),
+        (".frob C 3", "line 11", Q1),
+        (".frob 17", "line 11", ()),
+        ("9X VCC 0 foo", "line 11", Q2),
+        ("B1 C 0 V=tanh(v(b))", "B1", Q1),
+        ("R9 E2 0 4.7äk", "R9", Q2),
+        ("R9 X Y 4.7äk", "R9", ()),
+        ("R9", "line 11", ()),
+    ],
+)
+def test_lines_of_a_deck(line: str, subject: str, touches: tuple[str, ...]) -> None:
+    """The title is line 1, so the line behind nine others is line 11. Q2's collector is on VCC itself."""
+    found = gap(outcome_from(DECK + line).report, subject)
+    assert found.location is not None
+    assert (found.location.line, found.touches) == (11, touches)
+    assert found.rule == ""
+
+
+def export(*extra: str) -> str:
+    """A follower in the other format, with further nodes on its nets."""
+    base = '(net (code 1) (name "B") (node (ref Q1) (pin 1)) (node (ref R1) (pin 1)) {})'
+    return f"""(export (version D)
+(components
+(comp (ref Q1) (value 2N3904) (libsource (lib Device) (part Q_NPN_BCE)))
+(comp (ref R1) (value 100k) (libsource (lib Device) (part R)))
+(comp (ref R2) (value 1k) (libsource (lib Device) (part R)))
+(comp (ref R8) (value four) (libsource (lib Device) (part R))))
+(nets
+{base.format(" ".join(extra))}
+(net (code 2) (name "+12V") (node (ref Q1) (pin 2)) (node (ref R1) (pin 2)))
+(net (code 3) (name "E") (node (ref Q1) (pin 3)) (node (ref R2) (pin 1)) (node (ref R8) (pin 1)))
+(net (code 4) (name "GND") (node (ref R2) (pin 2)) (node (ref R8) (pin 2)))))
+"""
+
+
+def test_values_and_lost_pins_of_an_export(tmp_path: Path) -> None:
+    path = tmp_path / "board.net"
+    path.write_text(export("(node (ref R77) (pin 1))"), "utf-8")
+    report = check_board(path, None).report
+    value, pin = gap(report, "R8"), gap(report, "R77")
+    assert value.location is not None and value.location.line == 6
+    assert pin.location is not None and pin.location.line == 8
+    assert value.touches == pin.touches == Q1
+
+
+@pytest.mark.parametrize("name", list(FORMS))
+def test_every_form_tells_line_and_stages(name: str) -> None:
+    report = outcome_from(DECK + "9X B 0 foo").report
+    text = form(name)(report, width=100, colour=False)
+    assert "9X B 0 foo" in text
+    if name in ("json", "sarif"):
+        assert '"line": 11' in text or '"startLine": 11' in text
+    else:
+        assert "board.cir:11" in text
+    assert '"Q1"' in text if name == "json" else "bears on" in text
