@@ -46,7 +46,7 @@ from checker.constants import DEFAULT_AMBIENT_C, ZERO_CELSIUS_K
 from checker.intent.hints import unknown
 from checker.intent.types import Intent
 from checker.netlist.types import Netlist, Part
-from checker.trouble import InputTrouble
+from checker.trouble import InputTrouble, NotAQuantity
 
 _Adder = Callable[[Draft, Part], None]
 
@@ -118,7 +118,7 @@ def build_circuit(netlist: Netlist, intent: Intent, own_cards: Mapping[str, Card
                 draft, part, _FACT_KINDS[kind], f"what {part.ref} is", part.unknown, blocks_dc=kind != "capacitor"
             )
         elif kind in _VALUED or not add_declared(draft, part):
-            _ADDERS[kind](draft, part)
+            _add(draft, kind, part)
     add_ends(draft)
     _add_surroundings(draft)
     if ground.found:
@@ -127,6 +127,14 @@ def build_circuit(netlist: Netlist, intent: Intent, own_cards: Mapping[str, Card
         _no_ground(draft)
     settle(draft)
     return assemble(draft, _temperature_k(netlist, intent))
+
+
+def _add(draft: Draft, kind: Kind, part: Part) -> None:
+    """Put a part in the draft; one whose model has an impossible figure is left out, with that figure named."""
+    try:
+        _ADDERS[kind](draft, part)
+    except NotAQuantity as unsound:
+        leave_out(draft, part, _FACT_KINDS.get(kind, "unmodelled"), f"a sound model of {part.ref}", str(unsound))
 
 
 def _add_surroundings(draft: Draft) -> None:

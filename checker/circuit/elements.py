@@ -20,6 +20,8 @@ from checker.trouble import InputTrouble, NotAQuantity
 
 MOST_TRACKS: Final = 6
 """Potentiometers of a board whose ends are looked at; more would be mostly the panel of an instrument."""
+MOST_SOURCE: Final = 1e9
+"""Volts or amperes beyond which a source's value is a slip."""
 END_SHARE: Final = 2e-3
 """Resistance left at the end of a track, of the whole (makers allow some 0.1 to 1 %; common practice, no source)."""
 _TRIMMER: Final = lazy(r"TRIM|PRESET|BOURNS_3\d{3}", re.IGNORECASE)
@@ -59,7 +61,7 @@ def add_voltage(draft: Draft, part: Part) -> None:
     volts = source.dc if source is not None else _plain_number(part, "V")
     if source is not None and volts is None:
         volts = source.rest or 0.0
-    if ends is None or volts is None:
+    if ends is None or volts is None or abs(volts) > MOST_SOURCE:
         draft.loose(part.ref, [pin.net for pin in part.pins], f"volts of {part.ref}", "a DC value")
         draft.facts[part.ref] = bare_fact(draft, part, "source")
         return
@@ -77,7 +79,7 @@ def add_current(draft: Draft, part: Part) -> None:
     if source is not None and amps is None:
         amps = source.rest or 0.0
     draft.facts[part.ref] = bare_fact(draft, part, "source")
-    if ends is None or amps is None:
+    if ends is None or amps is None or abs(amps) > MOST_SOURCE:
         draft.loose(part.ref, [pin.net for pin in part.pins], f"amperes of {part.ref}", "a DC value")
         return
     draft.wire("currents", part.ref, *ends, amps)

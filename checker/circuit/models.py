@@ -16,6 +16,7 @@ from checker.constants import (
     ZERO_CELSIUS_K,
 )
 from checker.shape import frozen
+from checker.trouble import NotAQuantity
 
 
 @frozen
@@ -32,7 +33,7 @@ def bipolar_parameters(written: Mapping[str, float], *, area: float = 1.0, count
     """Gummel-Poon parameters of `count` devices of relative `area` in parallel.
 
     Absent effects are `inf` (Early voltages, knee currents). Source of defaults: see
-    `checker.circuit.parameters`.
+    `checker.circuit.parameters`. These functions raise NotAQuantity for a figure that no device can have.
     """
     given = _respelt(written, p.BIPOLAR_SPELLINGS)
     saturation = given.get("is", p.BIPOLAR["is"])
@@ -83,6 +84,7 @@ def mosfet_parameters(
     given = _respelt(written, p.MOSFET_SPELLINGS)
     values = {name: given.get(name, default) for name, default in p.MOSFET.items()}
     values |= {name: value for name, value in (size or {}).items() if name in ("w", "l") and value > 0.0}
+    _require_sound("tox", given.get("tox", 0.0))
     values["l"] = max(values["l"] - 2.0 * given.get("ld", 0.0), 1e-9)
     values["channel"] = polarity
     values["vto"] *= polarity
@@ -115,7 +117,15 @@ def _respelt(written: Mapping[str, float], spellings: Mapping[str, str]) -> dict
     for name, value in written.items():
         given.setdefault(spellings.get(name, name), value)
     given.update({name: value for name, value in written.items() if name not in spellings})
-    return {name: p.INF if value == 0.0 and name in p.ZERO_IS_ABSENT else value for name, value in given.items()}
+    absent = {name for name in p.ZERO_IS_ABSENT & given.keys() if given[name] == 0.0 or given[name] > p.LARGEST}
+    return {name: p.INF if name in absent else value for name, value in given.items()}
+
+
+def _require_sound(name: str, value: float) -> None:
+    """Raises NotAQuantity for a parameter outside of what its equation can be asked with."""
+    low, high = p.RANGES.get(name, (0.0, p.LARGEST))
+    if not low <= value <= high:
+        raise NotAQuantity(f"{name.upper()} is {value:g}; it must lie from {low:g} to {high:g}")
 
 
 def _scaled(values: dict[str, float], factor: float, times: tuple[str, ...], over: tuple[str, ...]) -> dict[str, float]:
@@ -132,6 +142,8 @@ def _scaled(values: dict[str, float], factor: float, times: tuple[str, ...], ove
 def _finished(values: dict[str, float], given: Mapping[str, float], known: Mapping[str, float]) -> Parameters:
     if "bv" in values:
         values["bv"] = abs(values["bv"])
+    for name, value in (*values.items(), ("tnom", given.get("tnom", DEFAULT_AMBIENT_C))):
+        _require_sound(name, value)
     unused = sorted(name for name in given if name not in known and name not in p.SILENT)
     tnom_c = given.get("tnom", DEFAULT_AMBIENT_C)
     return Parameters(values=values, tnom_k=tnom_c + ZERO_CELSIUS_K, unused=tuple(unused))

@@ -197,6 +197,26 @@ MOSFET_SPELLINGS: Final[Mapping[str, str]] = {
 ZERO_IS_ABSENT: Final = frozenset({"vaf", "var", "ikf", "ikr", "irb", "vtf", "bv"})
 """A written 0 means infinite: the effect is switched off."""
 
+LARGEST: Final = 1e24
+"""Written figures beyond this are no board's; where a default is infinite they mean it."""
+_EMISSION: Final = dict.fromkeys(("nf", "nr", "ne", "nc", "n", "nbv"), (0.1, 100.0))
+_BUILT_IN: Final = dict.fromkeys(("vje", "vjc", "vjs", "vj", "pb", "phi"), (0.01, 100.0))
+_GRADING: Final = dict.fromkeys(("mje", "mjc", "mjs", "m", "mj", "fc"), (0.0, 0.999))
+RANGES: Final[Mapping[str, tuple[float, float]]] = {
+    **_EMISSION,
+    **_BUILT_IN,
+    **_GRADING,
+    **dict.fromkeys(("is", "w", "l", "ibv"), (1e-60, LARGEST)),
+    **dict.fromkeys(("bf", "br"), (1e-6, 1e9)),
+    **dict.fromkeys(("vaf", "var", "ikf", "ikr", "irb", "vtf", "bv"), (1e-9, INF)),
+    **dict.fromkeys(("xti", "xtb", "tbv1", "vto", "ptf", "vtotc", "betatce"), (-1e4, 1e4)),
+    "eg": (0.1, 10.0),
+    "xcjc": (0.0, 1.0),
+    "channel": (-1.0, 1.0),
+    "tnom": (-270.0, 1e3),
+}
+"""What the equations can be asked with: outside, a figure is a slip of the pen. Others lie from 0 to `LARGEST`."""
+
 BIPOLAR_TIMES_AREA: Final = (
     "is",
     "ise",

@@ -16,6 +16,8 @@ from checker.trouble import NotAQuantity
 TOLERANCE: Final = {"ohm": 0.05, "F": 0.20, "H": 0.20}
 """Fractions assumed where neither value text nor intent says (common practice, no source: E24 carbon film
 and general-purpose capacitors and inductors)."""
+SMALLEST, LARGEST = 1e-21, 1e24
+"""Values outside are no part's, and no arithmetic's either."""
 _RANGE: Final = lazy(
     r"(?P<low>\d+(?:\.\d+)?\s*[a-zµ]{0,2})\s*(?:-|\.\.|to)\s*(?P<high>\d+(?:\.\d+)?)\s*(?P<unit>[a-zµΩ]{0,4})",
     re.IGNORECASE,
@@ -87,8 +89,8 @@ def _middle(text: str, unit: str) -> float | None:
 def written_value(part: Part, unit: str) -> tuple[float, float | None] | None:
     """(SI value, tolerance) as the netlist writes it."""
     if part.number is not None:
-        tolerance = part.params.get("tol")
-        return part.number, tolerance
+        sound = part.number == 0.0 or SMALLEST <= abs(part.number) <= LARGEST
+        return (part.number, part.params.get("tol")) if sound else None
     text = part.fields.get("Spice_Model", "") if part.fields.get("Spice_Primitive") else part.value
     for candidate in dict.fromkeys((text, part.value)):
         try:

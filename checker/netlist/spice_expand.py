@@ -234,6 +234,10 @@ class Expansion:
         return name
 
 
+LARGEST = 1e24
+"""Beyond it a number on an element is a slip."""
+
+
 class _At:
     """What one element sees: see `spice_parts.Place`."""
 
@@ -254,7 +258,10 @@ class _At:
         return self._expansion.net(self._frame, name)
 
     def number(self, word: str) -> float:
-        return self._frame.scope.number(word)
+        value = self._frame.scope.number(word)
+        if abs(value) > LARGEST:
+            raise NotAQuantity(f"{word[:40]!r} is larger than anything on a board")
+        return value
 
     def model(self, name: str) -> tuple[str, str] | None:
         key = self._expansion.model(self._frame, name)

@@ -3,6 +3,7 @@ why."""
 
 from __future__ import annotations
 
+import math
 import re
 from collections.abc import Callable, Mapping
 from typing import Protocol
@@ -57,9 +58,14 @@ def part_of(element: Element, place: Place) -> Part | None:
     """The part of an element card; None where not even two nodes can be told (a reference alone for K)."""
     builder = _BUILDERS.get(element.letter, _other)
     try:
-        return builder(element, place)
+        part = builder(element, place)
     except NotAQuantity as error:
         return _unknown(element, place, str(error))
+    for size in ("area", "m"):
+        value = part.params.get(size, 1.0) if part is not None else 1.0
+        if not 0.0 < value < math.inf:
+            return _unknown(element, place, f"{size} is {value:g}; it must be above zero")
+    return part
 
 
 def _unknown(element: Element, place: Place, reason: str, count: int | None = None) -> Part | None:

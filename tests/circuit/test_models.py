@@ -8,6 +8,7 @@ import pytest
 from numpy.testing import assert_allclose
 
 from checker.circuit.models import bipolar_parameters, diode_parameters
+from tests.whole import set_up_from
 
 
 def test_bipolar_defaults() -> None:
@@ -36,7 +37,7 @@ def test_base_resistance_at_high_current_follows_rb() -> None:
     ("old", "new"), [("va", "vaf"), ("vb", "var"), ("ik", "ikf"), ("pe", "vje"), ("mc", "mjc"), ("ccs", "cjs")]
 )
 def test_older_spellings(old: str, new: str) -> None:
-    assert bipolar_parameters({old: 3.25}).values[new] == 3.25
+    assert bipolar_parameters({old: 0.625}).values[new] == 0.625
 
 
 def test_the_present_spelling_outranks_the_older_one() -> None:
@@ -70,3 +71,20 @@ def test_measurement_temperature() -> None:
 def test_parameters_written_in_vain_are_named() -> None:
     assert bipolar_parameters({"bf": 100.0, "tre1": 1e-3, "level": 1.0}).unused == ("tre1",)
     assert diode_parameters({"bv": -5.1}).values["bv"] == 5.1
+
+
+@pytest.mark.parametrize(
+    ("written", "named"), [("NF=0", "NF"), ("BF=-1", "BF"), ("IS=1e300", "IS"), ("VJE=0", "VJE"), ("RB=-5", "RB")]
+)
+def test_an_impossible_figure_leaves_the_part_out(written: str, named: str) -> None:
+    """The part is named as unknown with the figure; nothing is computed from it."""
+    setup = set_up_from(f"V1 VCC 0 5\nR1 VCC B 10k\nR2 VCC C 1k\nQ1 C B 0 QX\n.model QX NPN({written})\n")
+    (unknown,) = setup.circuit.unknowns
+    assert (unknown.ref, unknown.datum) == ("Q1", "a sound model of Q1")
+    assert unknown.supply.startswith(f"{named} is ")
+
+
+@pytest.mark.parametrize("size", ["area=0", "m=-1", "m=1e300"])
+def test_a_device_of_no_size_is_not_understood(size: str) -> None:
+    setup = set_up_from(f"V1 VCC 0 5\nR1 VCC B 10k\nR2 VCC C 1k\nQ1 C B 0 QN {size}\n")
+    assert [unknown.ref for unknown in setup.circuit.unknowns] == ["Q1"]
