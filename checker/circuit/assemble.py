@@ -11,7 +11,7 @@ from checker.arrays import FloatArray, IntArray
 from checker.circuit.draft import Draft, DraftDevice, DraftPort, Wire
 from checker.circuit.order import natural, natural_key
 from checker.circuit.parameters import PARAMETERS
-from checker.circuit.types import Branches, Circuit, Couplings, Devices, Port, Scenario
+from checker.circuit.types import NO_FOUR_POLES, Branches, Circuit, Couplings, Devices, FourPoles, Port, Scenario
 
 NOMINAL = Scenario(name="nominal")
 
@@ -49,6 +49,7 @@ def assemble(draft: Draft, temperature_k: float) -> Circuit:
         ),
         assumptions=draft.notes.lines(),
         states=tuple(draft.states),
+        four_poles=_four_poles(draft, node, sources) if draft.four_poles else NO_FOUR_POLES,
         band_hz=None if draft.intent.band is None else (draft.intent.band.low_hz, draft.intent.band.high_hz),
     )
 
@@ -90,6 +91,18 @@ def _devices(devices: Mapping[str, DraftDevice], node: Mapping[str, int], keys: 
         params={key: _column([entry.params[key] for entry in entries]) for key in keys},
         tnom_k=frozen(np.array([entry.tnom_k for entry in entries], dtype=np.float64)),
         rth_kpw=frozen(np.array([entry.rth_kpw for entry in entries], dtype=np.float64)),
+    )
+
+
+def _four_poles(draft: Draft, node: Mapping[str, int], sources: Mapping[str, int]) -> FourPoles:
+    names = tuple(natural(draft.four_poles))
+    entries = [draft.four_poles[name] for name in names]
+    return FourPoles(
+        names=names,
+        kinds=tuple(entry.kind for entry in entries),
+        nodes=np.array([[node[net] for net in entry.nets] for entry in entries], dtype=np.int64),
+        sense=np.array([sources[entry.sense] if entry.sense else -1 for entry in entries], dtype=np.int64),
+        value=frozen(np.array([entry.value for entry in entries], dtype=np.float64)),
     )
 
 

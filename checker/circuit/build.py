@@ -30,8 +30,6 @@ from checker.circuit.order import natural_key
 from checker.circuit.others import (
     add_closed,
     add_connector,
-    add_controlled,
-    add_line,
     add_open,
     add_unmodelled,
     settle,
@@ -66,8 +64,8 @@ _ADDERS: Final[dict[Kind, _Adder]] = {
     "open": add_open,
     "closed": add_closed,
     "mechanical": lambda draft, part: _add_mechanical(draft, part),
-    "controlled": add_controlled,
-    "line": add_line,
+    "controlled": lambda draft, part: _add_four_pole(draft, part),
+    "line": lambda draft, part: _add_four_pole(draft, part),
     "battery": add_battery,
     "array": add_array,
     "unmodelled": add_unmodelled,
@@ -127,6 +125,12 @@ def build_circuit(netlist: Netlist, intent: Intent, own_cards: Mapping[str, Card
         _no_ground(draft)
     settle(draft)
     return assemble(draft, _temperature_k(netlist, intent))
+
+
+def _add_four_pole(draft: Draft, part: Part) -> None:
+    from checker.circuit.four_poles import add_controlled, add_line  # few boards have any
+
+    (add_line if part.letter.upper() in ("T", "O") else add_controlled)(draft, part)
 
 
 def _add(draft: Draft, kind: Kind, part: Part) -> None:

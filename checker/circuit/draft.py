@@ -50,6 +50,16 @@ class DraftDevice:
 
 
 @frozen
+class DraftFourPole:
+    """A controlled source or a line: `sense` names the controlling source; `value` as in `FourPoles`."""
+
+    kind: str
+    nets: tuple[str, str, str, str]
+    sense: str
+    value: tuple[float, float, float, float]
+
+
+@frozen
 class LoosePin:
     """A pin of a part that is not modelled; whether it matters is decided when the board is complete."""
 
@@ -114,6 +124,7 @@ class Draft:
     couplings: dict[str, tuple[str, str, float]] = field(default_factory=dict)
     devices: dict[str, dict[str, DraftDevice]] = field(default_factory=lambda: {kind: {} for kind in PARAMETERS})
     """Family -> its devices by name."""
+    four_poles: dict[str, DraftFourPole] = field(default_factory=dict)
     signals: set[str] = field(default_factory=set)
     """Names of V and I elements that carry signal."""
     links: set[str] = field(default_factory=set)
@@ -210,6 +221,11 @@ class Draft:
         """Add a semiconductor to its family."""
         self.devices[kind][name] = device
         self.device_ends.update(device.nets)
+
+    def place_four_pole(self, name: str, four_pole: DraftFourPole) -> None:
+        """Add a controlled source or a line."""
+        self.four_poles[name] = four_pole
+        self.device_ends.update(four_pole.nets)
 
     def table(self, table: Table) -> dict[str, Wire]:
         """The dictionary of one kind of two-terminal element."""

@@ -1,5 +1,4 @@
-"""Parts that are no element: jumpers, fuses, connectors, test points, circuits without a model, lossless
-lines."""
+"""Parts that are no element: jumpers, fuses, connectors, test points, circuits without a model."""
 
 from __future__ import annotations
 
@@ -66,22 +65,6 @@ def add_unmodelled(draft: Draft, part: Part) -> None:
     _pins(draft, part, connector=False)
 
 
-def add_controlled(draft: Draft, part: Part) -> None:
-    """A controlled or behavioural source, not solved yet."""
-    draft.facts[part.ref] = bare_fact(draft, part, "source")
-    outputs = [pin.net for pin in part.pins[:2]]
-    draft.loose(part.ref, outputs, f"a solved model of {part.ref}", "controlled sources are not solved yet")
-
-
-def add_line(draft: Draft, part: Part) -> None:
-    """A lossless line, not solved yet; its ends are coaxial."""
-    draft.facts[part.ref] = bare_fact(draft, part, "unmodelled")
-    for pin in part.pins:
-        draft.lines[draft.net(pin.net)] = part.params.get("z0")
-    nets = [pin.net for pin in part.pins]
-    draft.loose(part.ref, nets, f"a solved model of {part.ref}", "transmission lines are not solved yet")
-
-
 def _pins(draft: Draft, part: Part, *, connector: bool) -> None:
     name = part.value or part.model
     shown = f"{part.ref} ({name})" if name else part.ref
@@ -114,6 +97,7 @@ def settle(draft: Draft) -> None:
     tables = (draft.resistors, draft.capacitors, draft.inductors, draft.voltages, draft.currents)
     ends = [{net for wire in table.values() for net in (wire.first, wire.second)} for table in tables]
     devices = {net for table in draft.devices.values() for device in table.values() for net in device.nets}
+    devices |= {net for each in draft.four_poles.values() for net in each.nets}
     conducting = set().union(ends[0], *ends[2:], devices)
     present = conducting | ends[1]
     for loose in draft.loose_parts:

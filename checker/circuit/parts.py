@@ -53,6 +53,7 @@ _SPICE: Final[dict[str, Kind]] = {
     "H": "controlled",
     "B": "controlled",
     "T": "line",
+    "O": "line",
 }
 _DEVICE: Final[dict[str, Kind]] = {
     "R": "resistor",

@@ -85,6 +85,33 @@ NO_DEVICES: Final = Devices(
 """The table of a family that a board has none of."""
 
 
+@frozen
+class FourPoles:
+    """Linear controlled sources and transmission lines, the same in all scenarios.
+
+    `kinds`: "E", "G" (by a voltage), "F", "H" (by a current) or "line". `nodes` int64 (n, 4): output +, output -,
+    control +, control - (ground where a current controls); of a line its two ports. `sense` (n,): the place among the
+    voltage sources of the one whose current controls, else -1. `value` float64 (n, 4): the gain in column 0 (plain, S,
+    plain, ohm); of a line its whole series resistance [ohm] and inductance [H], shunt conductance [S] and
+    capacitance [F].
+    """
+
+    names: tuple[str, ...]
+    kinds: tuple[str, ...]
+    nodes: IntArray
+    sense: IntArray
+    value: FloatArray
+
+
+NO_FOUR_POLES: Final = FourPoles(
+    names=(),
+    kinds=(),
+    nodes=np.zeros((0, 4), dtype=np.int64),
+    sense=np.zeros(0, dtype=np.int64),
+    value=np.zeros((0, 4)),
+)
+"""A board without any."""
+
 TRANSISTOR_FAMILIES: Final = ("bipolar", "jfet", "mosfet")
 """Families whose first three terminals are output, control and common, in the order of `Circuit.transistors`."""
 
@@ -234,6 +261,7 @@ class Circuit:
     assumptions: tuple[str, ...] = ()
     states: tuple[Scenario, ...] = ()
     band_hz: tuple[float, float] | None = None
+    four_poles: FourPoles = NO_FOUR_POLES
 
     @property
     def size(self) -> int:

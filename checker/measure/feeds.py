@@ -12,6 +12,7 @@ def reach(bench: Bench, stage: str, terminal: int = CONTROL) -> set[int]:
     c, known = bench.circuit, bench.point.plan.is_known
     index = bench.stage(stage).index
     joins = [row for t in (c.resistors, c.inductors, c.voltages, c.diodes) for row in t.nodes.tolist()]
+    joins += [row for kind, row in _linked(bench) for row in ([row] if kind != "line" else [row[::2], row[1::2]])]
     others = c.transistors
     for j, (kind, row) in enumerate(zip(others.families, others.nodes.tolist(), strict=True)):
         # The gate of a MOSFET leads nowhere.
@@ -54,4 +55,13 @@ def require_not_fed(bench: Bench, stage: str, reached: set[int], terminal: int =
 
 def current_fed(bench: Bench, reached: set[int]) -> bool:
     """Whether a current source ends on one of these nets."""
-    return any(node in reached for node in bench.circuit.currents.nodes.ravel().tolist())
+    table = bench.circuit.four_poles
+    driven = [row[:2] for kind, row in zip(table.kinds, table.nodes.tolist(), strict=True) if kind in ("F", "G")]
+    return any(node in reached for row in (*bench.circuit.currents.nodes.tolist(), *driven) for node in row)
+
+
+def _linked(bench: Bench) -> list[tuple[str, list[int]]]:
+    """Nets between which controlled voltage sources and lines conduct."""
+    table = bench.circuit.four_poles
+    pairs = zip(table.kinds, table.nodes.tolist(), strict=True)
+    return [(kind, row if kind == "line" else row[:2]) for kind, row in pairs if kind in ("E", "H", "line")]

@@ -6,6 +6,7 @@ from __future__ import annotations
 import math
 import re
 from collections.abc import Callable, Mapping
+from dataclasses import replace
 from typing import Protocol
 
 from checker.netlist.spice_deck import Element
@@ -29,6 +30,9 @@ _KINDS = {
 _WORD = lazy(r"[A-Za-z_][\w.-]*")
 _NODE_COUNT = {"E": 4, "G": 4, "S": 4, "T": 4, "O": 4, "Q": 3, "J": 3, "Z": 3, "M": 4, "K": 0}
 """How many words after the name are nodes, where the line itself leaves it open; 2 for other letters."""
+_ASKED = lazy(r"\b([VI])\s*\(\s*([^\s(),]+)\s*(?:,\s*([^\s(),]+)\s*)?\)", re.IGNORECASE)
+"""V(a), V(a, b) or I(V1) in a formula."""
+_TRIED = (0.0, -1.0, 2.0, 1e-3, -1e3)
 _BEHAVIOURAL = frozenset({"poly", "value", "vol", "cur", "table", "laplace", "freq", "foster", "delay"})
 
 
@@ -214,6 +218,8 @@ def _controlled(by_nodes: bool) -> Callable[[Element, Place], Part | None]:
 
     def build(element: Element, place: Place) -> Part | None:
         words = _without_polynomial(element.words.positional[1:])
+        if linear := _linear(element, place):
+            return linear
         if any(word.lower() in _BEHAVIOURAL for word in (*words[2:3], *element.words.named)):
             return _unknown(element, place, "a controlled source that is not linear is not modelled", count=2)
         if len(words) != (5 if by_nodes else 4):
@@ -225,6 +231,35 @@ def _controlled(by_nodes: bool) -> Callable[[Element, Place], Part | None]:
         return _part(element, place, nodes, value=words[-1], number=gain, controls=controls)
 
     return build
+
+
+def _linear(element: Element, place: Place) -> Part | None:
+    """The controlled source that a formula amounts to: `B1 a b V={2*V(c,d)}` is E, `G1 a b VALUE={I(VX)/5}` is F.
+
+    One voltage or current may be named. That the formula is proportional to it is tried at several values; None where
+    it is not, or where there is no formula.
+    """
+    named = element.words.named
+    key = next((key for key in ("v", "i", "value") if key in named), "")
+    if not key or element.letter not in "BEG":
+        return None
+    asked = _ASKED.findall(named[key])
+    if len(set(asked)) != 1:
+        return None
+
+    def at(value: float) -> float:
+        return place.number("{" + _ASKED.sub(f"({value!r})", named[key].strip("{}'\"")) + "}")
+
+    gain = at(1.0)
+    if any(abs(at(x) - x * gain) > 1e-9 * abs(x * gain) for x in _TRIED):
+        return None
+    kind, first, second = asked[0][0].upper(), asked[0][1].strip(), asked[0][2].strip()
+    current_out = key == "i" or (key == "value" and element.letter == "G")
+    letter = {"V": "EG", "I": "HF"}[kind][current_out]
+    nodes = (*element.words.positional[1:3], first, second or "0") if kind == "V" else element.words.positional[1:3]
+    controls = () if kind == "V" else (place.ref(first),)
+    part = _part(element, place, nodes, params={}, value=named[key], number=gain, controls=controls)
+    return replace(part, letter=letter)
 
 
 def _without_polynomial(words: tuple[str, ...]) -> tuple[str, ...]:
@@ -250,6 +285,16 @@ def _line(element: Element, place: Place) -> Part:
     if "z0" not in element.words.named and "zo" not in element.words.named:
         raise NotAQuantity("no impedance Z0 is written")
     return _part(element, place, nodes, value=" ".join(element.words.positional[5:]))
+
+
+def _lossy(element: Element, place: Place) -> Part:
+    """O: a line with losses, four nodes and a model of kind LTRA."""
+    nodes = _nodes(element, 4, "expected four nodes and a model")
+    words = element.words.positional[5:]
+    if not words:
+        raise NotAQuantity("expected four nodes and a model")
+    known = place.model(words[0])
+    return _part(element, place, nodes, value=words[0], model=known[0] if known else words[0])
 
 
 def _instance(element: Element, place: Place) -> Part | None:
@@ -293,8 +338,11 @@ _BUILDERS: dict[str, Callable[[Element, Place], Part | None]] = {
     "F": _controlled(by_nodes=False),
     "H": _controlled(by_nodes=False),
     "T": _line,
+    "O": lambda element, place: _lossy(element, place),
     "X": _instance,
-    "B": _behavioural("a behavioural source is not modelled", 2),
+    "B": lambda element, place: (
+        _linear(element, place) or _unknown(element, place, "a behavioural source is not modelled", count=2)
+    ),
     "S": _behavioural("a voltage-controlled switch is not modelled", 4),
     "W": _behavioural("a current-controlled switch is not modelled", 2),
 }

@@ -48,6 +48,32 @@ class Scatter:
         return out
 
 
+class _Extra:
+    """Controlled sources and lines as matrix entries: `row`, `column` (m,) unknowns or -1, `value` (1, m)."""
+
+    def __init__(self, circuit: Circuit, plan: Plan) -> None:
+        self.row = self.column = self._place = np.zeros(0, dtype=np.int64)
+        self.value = np.zeros((1, 0))
+        self._nets = len(circuit.nets)
+        if circuit.four_poles.names:
+            self._branches = np.concatenate([plan.v_row, plan.own_row])
+            unknown = np.concatenate([plan.unknown[: self._nets], self._branches])
+            from checker.solve.four_poles import entries  # few boards have any
+
+            found = entries(circuit, np.zeros(1, dtype=complex))
+            self.row, self.column = unknown[found.row], unknown[found.column]
+            self._place, self.value = found.column, found.value.real
+
+    def unknowns(self, x: FloatArray, v: FloatArray) -> FloatArray:
+        """What each entry multiplies, (S, m): a node voltage or a branch current."""
+        if not self._place.size:
+            return np.zeros((x.shape[0], 0))
+        currents = np.zeros((x.shape[0], len(self._branches)))
+        live = self._branches >= 0
+        currents[:, live] = x[:, self._branches[live]]
+        return np.concatenate([v[:, : self._nets], currents], axis=1)[:, self._place]
+
+
 Junctions = tuple[FloatArray, ...]
 """Junction voltages at which devices are linearised: (S, n, j) a family of the plan."""
 
@@ -68,6 +94,7 @@ class Assembler:
             for kind, placed in plan.placed.items()
         ]
         self._g_r = 1.0 / circuit.resistors.value
+        self._extra = _Extra(circuit, plan)
         self._blocks()
         self._node_rows = plan.unknown[plan.unknown >= 0]
         self._rows = Scatter(self._row_dest(), plan.n_unknown)
@@ -119,6 +146,7 @@ class Assembler:
         for table, rows in ((c.voltages, self.plan.v_row), (c.inductors, self.plan.l_row)):
             live = rows >= 0
             parts += [np.where(live, u[table.nodes[:, 0]], -1), np.where(live, u[table.nodes[:, 1]], -1)]
+        parts.append(self._extra.row)
         parts += [u[placed.nodes].ravel() for placed in self.plan.placed.values()]
         return np.concatenate(parts)
 
@@ -142,6 +170,8 @@ class Assembler:
                 node = u[table.nodes[:, end]]
                 dest += [self.flat(node, rows), self.flat(rows, node)]
                 vals += [sign * ones, sign * ones]
+        dest.append(self.flat(self._extra.row, self._extra.column))
+        vals.append(np.broadcast_to(self._extra.value, (s, self._extra.value.shape[1])))
         return Scatter(np.concatenate(dest), self.n_flat).add(np.concatenate(vals, axis=1))
 
     def _known_voltages(self) -> FloatArray:
@@ -185,6 +215,7 @@ class Assembler:
             i = np.zeros((self.scenarios, len(rows)))
             i[:, rows >= 0] = x[:, rows[rows >= 0]]
             columns += [i, -i]
+        columns.append(self._extra.value * self._extra.unknowns(x, v))
         entries = [np.zeros((self.scenarios, 0))]
         for (model, nodes, polarity, p), junction in zip(self._families, at, strict=True):
             n, k = nodes.shape
@@ -235,7 +266,8 @@ class Assembler:
         v = np.maximum(np.abs(self.voltages(x)), thermal_voltage_v(DEFAULT_AMBIENT_C + ZERO_CELSIUS_K))
         i_r = (v[:, c.resistors.nodes[:, 0]] + v[:, c.resistors.nodes[:, 1]]) * self._g_r
         branches = 2 * (c.currents.value.shape[1] + len(self.plan.v_row) + len(self.plan.l_row))
-        columns, at = [i_r, i_r, np.zeros((s, branches))], 0
+        own = np.abs(self._extra.value * self._extra.unknowns(x, v))
+        columns, at = [i_r, i_r, np.zeros((s, branches)), own], 0
         for placed in self.plan.placed.values():
             n, k = placed.nodes.shape
             g = np.abs(entries[:, at : at + n * k * k]).reshape(s, n, k, k)

@@ -252,6 +252,6 @@ def signs(assembler: Assembler, x: FloatArray) -> FloatArray:
     _, entries = assembler.contributions(x, assembler.junctions(assembler.voltages(x)))
     out = [np.linalg.slogdet(block)[0] for block in assembler.block_views(assembler.jacobian(entries))]
     count = len(assembler.island_sizes)
-    branches = np.array([len(i.voltages) + len(i.inductors) for i in assembler.plan.islands[:count]])
+    branches = np.array([i.size - len(i.nodes) for i in assembler.plan.islands[:count]])
     raw = np.concatenate(out, axis=1) if out else np.zeros((x.shape[0], 0))
     return np.asarray(raw * (1.0 - 2.0 * (branches % 2)))

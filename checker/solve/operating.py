@@ -190,7 +190,7 @@ def _collect(
                 reason=""
                 if ok[0]
                 else refused.get(index, "the operating point did not converge to a certified answer"),
-                exhaustive=_single(plan, set(island.nodes)),
+                exhaustive=not island.active and _single(plan, set(island.nodes)),
             )
         )
     return OperatingPoint(

@@ -8,6 +8,7 @@ island by island, islands of one size side by side, so that equal sizes form one
 from __future__ import annotations
 
 from collections.abc import Iterator, Mapping
+from typing import TYPE_CHECKING
 
 import numpy as np
 
@@ -15,6 +16,9 @@ from checker.arrays import BoolArray, IntArray
 from checker.circuit.types import NO_DEVICES, Circuit, Devices
 from checker.devices.family import FAMILIES, Family
 from checker.shape import frozen
+
+if TYPE_CHECKING:
+    from checker.solve.four_poles import Branch
 
 
 @frozen
@@ -38,17 +42,20 @@ class Tree:
 
 @frozen
 class IslandPlan:
-    """One island: extended node indices, branch rows, and why it cannot be solved (empty if it can)."""
+    """One island: extended node indices, branch rows, and why it cannot be solved (empty if it can). `own`: branch
+    currents of controlled sources and lines (`four_poles.branches`); `active`: whether one of these stands in it."""
 
     nodes: tuple[int, ...]
     voltages: tuple[int, ...]
     inductors: tuple[int, ...]
+    own: tuple[int, ...] = ()
+    active: bool = False
     trouble: str = ""
 
     @property
     def size(self) -> int:
         """Number of unknowns."""
-        return len(self.nodes) + len(self.voltages) + len(self.inductors)
+        return len(self.nodes) + len(self.voltages) + len(self.inductors) + len(self.own)
 
 
 @frozen
@@ -65,6 +72,7 @@ class Plan:
     unknown: IntArray
     v_row: IntArray
     l_row: IntArray
+    own_row: IntArray
     groups: tuple[tuple[int, int, int], ...]
     n_unknown: int
     isolated: tuple[int, ...]
@@ -104,7 +112,8 @@ def _grow_known(circuit: Circuit, n: int) -> tuple[tuple[Tree, ...], BoolArray, 
     """Follow ideal sources from ground. Returns the tree, the known mask, and the sources left over."""
     is_known = np.zeros(n, dtype=bool)
     is_known[0] = True
-    pending = list(range(len(circuit.voltages.names)))
+    kept = sorted({int(j) for j in circuit.four_poles.sense if j >= 0})
+    pending = [j for j in range(len(circuit.voltages.names)) if j not in kept]
     tree: list[Tree] = []
     grown = True
     while grown:
@@ -118,7 +127,7 @@ def _grow_known(circuit: Circuit, n: int) -> tuple[tuple[Tree, ...], BoolArray, 
             is_known[node] = True
             pending.remove(source)
             grown = True
-    return tuple(tree), is_known, pending
+    return tuple(tree), is_known, sorted([*pending, *kept])
 
 
 def _conductors(circuit: Circuit, placed: Mapping[str, Placed]) -> Iterator[tuple[int, int]]:
@@ -130,14 +139,22 @@ def _conductors(circuit: Circuit, placed: Mapping[str, Placed]) -> Iterator[tupl
         for row in each.nodes.tolist():
             for a, b in each.model.PATHS:
                 yield row[a], row[b]
+    if circuit.four_poles.names:
+        from checker.solve.four_poles import conductors
+
+        yield from conductors(circuit)
 
 
-def _controls(placed: Mapping[str, Placed]) -> Iterator[tuple[int, int]]:
+def _controls(circuit: Circuit, placed: Mapping[str, Placed]) -> Iterator[tuple[int, int]]:
     """Every pair of nodes of which the first steers the second and draws nothing."""
     for each in placed.values():
         for row in each.nodes.tolist():
             for a, b in each.model.CONTROLS:
                 yield row[a], row[b]
+    if circuit.four_poles.names:
+        from checker.solve.four_poles import steering
+
+        yield from steering(circuit)
 
 
 def _conflict(circuit: Circuit, tree: tuple[Tree, ...], is_known: BoolArray, left: list[int]) -> str:
@@ -151,6 +168,10 @@ def _conflict(circuit: Circuit, tree: tuple[Tree, ...], is_known: BoolArray, lef
             wanted = float(circuit.voltages.value[0, source])
             if abs(volts[a] - volts[b] - wanted) > 1e-9 * max(1.0, abs(wanted)):
                 return f"{circuit.voltages.names[source]} contradicts the other ideal voltage sources"
+    table = circuit.four_poles
+    for k, kind in enumerate(table.kinds):
+        if kind in ("E", "H") and is_known[table.nodes[k, :2]].all():
+            return f"{table.names[k]} closes a loop of ideal voltage sources"
     return ""
 
 
@@ -187,7 +208,7 @@ def _islands(
             anchored.add(sets.find(b if is_known[a] else a))
     free = [node for node in range(n) if not is_known[node]]
     adrift = [node for node in free if node in touched and sets.find(node) not in anchored]
-    steering = [(a, b) for a, b in _controls(placed) if not is_known[a]]
+    steering = [(a, b) for a, b in _controls(circuit, placed) if not is_known[a]]
     for a, b in steering:
         # What a gate steers must stand in one matrix with it, though no current ties the two.
         if not is_known[b] and a in touched:
@@ -200,12 +221,18 @@ def _islands(
     blocked = _blocked(circuit, sets, is_known)
     loose = _loose(circuit, sets, adrift, [(a, b) for a, b in steering if a not in touched])
     loop = _conflict(circuit, tree, is_known, left)
+    branches = _own_branches(circuit)
+    linked = set(circuit.four_poles.nodes.ravel().tolist())
     out = []
     for root, nodes in members.items():
         inside = set(nodes)
-        v_rows, l_rows, trouble = _branches(circuit, left, inside, is_known)
+        own = tuple(k for k, each in enumerate(branches) if inside & set(circuit.four_poles.nodes[each.owner].tolist()))
+        v_rows, l_rows, trouble = _branches(circuit, left, inside, is_known, [branches[k] for k in own])
         trouble = blocked.get(root, "") or trouble or loose.get(root, "") or loop
-        out.append(IslandPlan(nodes=tuple(nodes), voltages=v_rows, inductors=l_rows, trouble=trouble))
+        active = bool(inside & linked)
+        out.append(
+            IslandPlan(nodes=tuple(nodes), voltages=v_rows, inductors=l_rows, own=own, active=active, trouble=trouble)
+        )
     return out, isolated
 
 
@@ -218,6 +245,14 @@ def _loose(circuit: Circuit, sets: Sets, adrift: list[int], open_gates: list[tup
     for gate, steered in open_gates:
         out.setdefault(sets.find(steered), f"no DC path sets the gate net {circuit.nets[gate]}")
     return out
+
+
+def _own_branches(circuit: Circuit) -> tuple[Branch, ...]:
+    if not circuit.four_poles.names:
+        return ()
+    from checker.solve.four_poles import branches
+
+    return branches(circuit)
 
 
 def _blocked(circuit: Circuit, sets: Sets, is_known: BoolArray) -> dict[int, str]:
@@ -237,7 +272,7 @@ def _blocked(circuit: Circuit, sets: Sets, is_known: BoolArray) -> dict[int, str
 
 
 def _branches(
-    circuit: Circuit, left: list[int], inside: set[int], is_known: BoolArray
+    circuit: Circuit, left: list[int], inside: set[int], is_known: BoolArray, own: list[Branch]
 ) -> tuple[tuple[int, ...], tuple[int, ...], str]:
     """Branch-current unknowns of an island. An inductor that closes a loop of zero-resistance parts gets none: how
     direct current divides there is not determined, the voltages are."""
@@ -245,6 +280,10 @@ def _branches(
     trouble = ""
     v_rows: list[int] = []
     l_rows: list[int] = []
+    for each in own:
+        ends = tuple(0 if is_known[x] else int(x) for x in circuit.four_poles.nodes[each.owner, :2])
+        if each.ideal and not merged.join(ends[0], ends[1]):
+            trouble = f"{circuit.four_poles.names[each.owner]} closes a loop of ideal voltage sources"
     for table, chosen, rows in (
         (circuit.voltages, left, v_rows),
         (circuit.inductors, range(len(circuit.inductors.names)), l_rows),
@@ -277,6 +316,7 @@ def _number(
     unknown = np.full(n, -1, dtype=np.int64)
     v_row = np.full(len(circuit.voltages.names), -1, dtype=np.int64)
     l_row = np.full(len(circuit.inductors.names), -1, dtype=np.int64)
+    own_row = np.full(len(_own_branches(circuit)), -1, dtype=np.int64)
     groups: list[tuple[int, int, int]] = []
     at = 0
     for island in solvable:
@@ -285,7 +325,8 @@ def _number(
             groups[-1] = (first, count + 1, size)
         else:
             groups.append((at, 1, island.size))
-        for target, members in ((unknown, island.nodes), (v_row, island.voltages), (l_row, island.inductors)):
+        rows = ((unknown, island.nodes), (v_row, island.voltages), (l_row, island.inductors), (own_row, island.own))
+        for target, members in rows:
             for member in members:
                 target[member] = at
                 at += 1
@@ -299,6 +340,7 @@ def _number(
         unknown=unknown,
         v_row=v_row,
         l_row=l_row,
+        own_row=own_row,
         groups=tuple(groups),
         n_unknown=at,
         isolated=isolated,

@@ -76,7 +76,8 @@ def _pencil(point: OperatingPoint, without: str) -> tuple[FloatArray, FloatArray
     in_tree = {step.source for step in plan.known}
     floating = [j for j in range(len(c.voltages.names)) if j not in in_tree]
     n = plan.n_nodes
-    size = n + len(floating) + len(c.inductors.names)
+    first = n + len(floating) + len(c.inductors.names)
+    size = first + len(c.four_poles.names)
     g, cap = np.zeros((size, size)), np.zeros((size, size))
     for matrix, table, value in (
         (g, c.resistors.nodes, 1.0 / c.resistors.value[0]),
@@ -94,6 +95,10 @@ def _pencil(point: OperatingPoint, without: str) -> tuple[FloatArray, FloatArray
                 np.add.at(g, np.ix_(nodes, nodes), dg[0, j])
                 np.add.at(cap, np.ix_(nodes, nodes), dc[0, j])
     _branches(point, floating, g, cap, n)
+    if c.four_poles.names:
+        from checker.solve.four_poles import add_to_pencil
+
+        add_to_pencil(c, {j: n + k for k, j in enumerate(floating)}, first, g, cap)
     free = np.flatnonzero(~np.concatenate([plan.is_known, np.zeros(size - n, dtype=bool)]))
     return g[np.ix_(free, free)], cap[np.ix_(free, free)], free
 

@@ -54,6 +54,7 @@ class Response:
     circuit: Circuit
     f_hz: FloatArray
     row: IntArray
+    v_row: IntArray
     l_row: IntArray
     known: BoolArray
     tree: tuple[tuple[int, int, int, float], ...]
@@ -69,6 +70,8 @@ class Response:
         for node, parent, source, sign in self.tree:
             known_v[node] = known_v[parent] + (sign if source == drive.source else 0.0)
         rhs = -(self.y_known @ known_v)
+        if drive.source >= 0 and self.v_row[drive.source] >= 0:
+            rhs[..., self.v_row[drive.source]] += 1.0
         if drive.node > 0 and self.row[drive.node] >= 0:
             rhs[..., self.row[drive.node]] += 1.0
         out = np.einsum("sfij,sfj->sfi", self.z, rhs)
@@ -261,6 +264,7 @@ def small_signal(point: OperatingPoint, f_hz: FloatArray) -> Response:
         circuit=point.circuit,
         f_hz=f,
         row=system.row,
+        v_row=system.v_row,
         l_row=system.l_row,
         known=system.known,
         tree=system.tree,

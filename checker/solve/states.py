@@ -1,7 +1,8 @@
 """Has a board more than one rest? Islands of several transistors are started from every on/off pattern of theirs.
 
 The signs of det J over all solutions of an island sum to one (after the sign of the passive network), so a solution of
-negative sign proves two more. Where several rests are found, the one that a slow supply ramp reaches is reported.
+negative sign proves two more. That holds for passive networks around transistors: islands with controlled sources are
+not searched. Where several rests are found, the one that a slow supply ramp reaches is reported.
 """
 
 from __future__ import annotations
@@ -30,7 +31,7 @@ SAME_V = 1e-6
 def searched(point: OperatingPoint) -> OperatingPoint:
     """The same point with `states` and `exhaustive` of its islands settled (scenario 0 alone)."""
     members = _members(point)
-    several = {k: d for k, d in members.items() if 2 <= len(d) <= MOST_DEVICES}
+    several = {k: d for k, d in members.items() if 2 <= len(d) <= MOST_DEVICES and not point.plan.islands[k].active}
     if not several:
         return point
     x, good, sign = _seeded(point, several)

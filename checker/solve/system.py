@@ -21,7 +21,8 @@ from checker.solve.plan import Sets
 
 @frozen
 class SignalSystem:
-    """`row` (n_net,): unknown of a net or -1; `v_row`, `l_row`: of sources and inductors; `islands`: unknowns each;
+    """`row` (n_net,): unknown of a net or -1; `v_row`, `l_row`: of sources and inductors; `own_row`: of the own
+    branches of controlled sources and lines; `islands`: unknowns each;
     `pins`: unknowns that are pinned; `tree`: (node, parent, source, sign) of nets fixed by ideal sources.
     `linear`: G and C (S, u, u + n_net) of all that is no semiconductor; columns: unknowns, then nets of fixed voltage.
     `semiconductors`: where the admittances of the families of the plan go in the flat (u, u + n_net)."""
@@ -30,6 +31,7 @@ class SignalSystem:
     row: IntArray
     v_row: IntArray
     l_row: IntArray
+    own_row: IntArray
     known: BoolArray
     tree: tuple[tuple[int, int, int, float], ...]
     islands: tuple[IntArray, ...]
@@ -46,7 +48,22 @@ class SignalSystem:
         flat = [y.reshape(*full.shape[:2], -1) for y in device_y.values()]
         if flat:
             self.semiconductors.into(full.reshape(*full.shape[:2], -1), np.concatenate(flat, axis=-1))
+        if self.circuit.four_poles.names:
+            self._link(full, s)
         return full[..., : self.size], full[..., self.size :]
+
+    def _link(self, full: ComplexArray, s: ComplexArray) -> None:
+        """Add controlled sources and lines to the matrix (S, F, u, u + n_net)."""
+        from checker.solve.four_poles import entries
+
+        found = entries(self.circuit, s)
+        branches = np.concatenate([self.v_row, self.own_row]).tolist()
+        nets, row = len(self.circuit.nets), self.row.tolist()
+        for m, (r, c) in enumerate(zip(found.row.tolist(), found.column.tolist(), strict=True)):
+            place = row[r] if r < nets else branches[r - nets]
+            column = _column(row, c, self.size) if c < nets else branches[c - nets]
+            if place >= 0 and column >= 0:
+                full[:, :, place, column] += found.value[:, m]
 
     def inverse(self, y: ComplexArray) -> ComplexArray:
         """Island by island; nan where an island has an unbiased device or is singular."""
@@ -95,7 +112,9 @@ def _numbered(point: OperatingPoint) -> SignalSystem:
     in_tree = {step.source for step in plan.known}
     v_row, size = _rows(c.voltages, len(free), known, in_tree)
     l_row, size = _rows(c.inductors, size, known, set())
-    islands, pins = _islands(c, joins, row, known, (v_row, l_row), size)
+    own_row = np.arange(size, size + len(plan.own_row), dtype=np.int64)
+    size += len(own_row)
+    islands, pins = _islands(c, joins, row, known, (v_row, l_row, own_row), size)
     tree = tuple((t.node, t.parent, t.source, t.sign) for t in plan.known)
     places = _destinations([c.devices[kind] for kind in plan.placed], row, size, n)
     linear = _Linear(c, row, size)
@@ -107,6 +126,7 @@ def _numbered(point: OperatingPoint) -> SignalSystem:
         row=row,
         v_row=v_row,
         l_row=l_row,
+        own_row=own_row,
         known=known,
         tree=tree,
         islands=islands,
@@ -183,10 +203,20 @@ def _joins(c: Circuit) -> list[list[int]]:
     tables = (c.resistors, c.capacitors, c.inductors, c.voltages)
     out = [row for table in tables for row in table.nodes.tolist()]
     out += [[j for j in row if j > 0] for table in c.devices.values() for row in table.nodes.tolist()]
+    out += _linked(c)
     pairs = c.couplings.pair.tolist()
     ends = c.inductors.nodes.tolist()
     # Coupled windings share an island of unknowns though no net joins them.
     return out + [[node for node in (ends[p] + ends[q]) if node > 0] for p, q in pairs]
+
+
+def _linked(c: Circuit) -> list[list[int]]:
+    """Nets that a controlled source or a line brings into one matrix; ground joins nothing."""
+    table = c.four_poles
+    return [
+        [node for node in (*row, *(c.voltages.nodes[sense].tolist() if sense >= 0 else ())) if node > 0]
+        for row, sense in zip(table.nodes.tolist(), table.sense.tolist(), strict=True)
+    ]
 
 
 def _rows(table: Branches, first: int, known: BoolArray, skip: set[int]) -> tuple[IntArray, int]:
@@ -204,7 +234,7 @@ def _islands(
     joins: list[list[int]],
     row: IntArray,
     known: BoolArray,
-    branch_rows: tuple[IntArray, IntArray],
+    branch_rows: tuple[IntArray, IntArray, IntArray],
     size: int,
 ) -> tuple[tuple[IntArray, ...], tuple[int, ...]]:
     sets = Sets(size)
@@ -213,11 +243,17 @@ def _islands(
         free = [int(row[x]) for x in nodes if row[x] >= 0]
         for other in free[1:]:
             sets.join(free[0], other)
-    for rows, table in zip(branch_rows, (c.voltages, c.inductors), strict=True):
-        for j, r in enumerate(rows.tolist()):
-            for node in table.nodes[j].tolist():
+    ends = (c.voltages.nodes.tolist(), c.inductors.nodes.tolist(), _own_nodes(c, len(branch_rows[2])))
+    for rows, nodes_of in zip(branch_rows, ends, strict=True):
+        for r, nodes in zip(rows.tolist(), nodes_of, strict=True):
+            for node in nodes:
                 if r >= 0 and row[node] >= 0:
                     sets.join(r, int(row[node]))
+    for k, sense in enumerate(c.four_poles.sense.tolist()):
+        # A current whose source stands between fixed nets still shares the matrix of what it controls.
+        for node in c.four_poles.nodes[k].tolist() if sense >= 0 and branch_rows[0][sense] >= 0 else ():
+            if row[node] >= 0:
+                sets.join(int(branch_rows[0][sense]), int(row[node]))
     galvanic = _galvanic(c)
     for nodes in galvanic:
         if any(known[x] for x in nodes):
@@ -232,4 +268,18 @@ def _islands(
 def _galvanic(c: Circuit) -> list[list[int]]:
     """Elements through which current can reach a fixed net."""
     tables: list[Branches | Devices] = [c.resistors, c.capacitors, c.inductors, c.voltages, *c.devices.values()]
-    return [row for table in tables for row in table.nodes.tolist()]
+    out = [row for table in tables for row in table.nodes.tolist()]
+    if c.four_poles.names:
+        from checker.solve.four_poles import conductors
+
+        out += [[a, b] for a, b in conductors(c)]
+    return out
+
+
+def _own_nodes(c: Circuit, count: int) -> list[list[int]]:
+    """The nets of each own branch of the controlled sources and lines."""
+    if not count:
+        return []
+    from checker.solve.four_poles import branches
+
+    return [c.four_poles.nodes[each.owner].tolist() for each in branches(c)]

@@ -100,6 +100,7 @@ def anchored(circuit: Circuit, response: Response) -> Response:
     """
     tables = (circuit.resistors, circuit.capacitors, circuit.inductors, circuit.voltages, circuit.diodes)
     others = {node for table in tables for node in table.nodes.ravel().tolist()}
+    others |= set(circuit.four_poles.nodes.ravel().tolist())
     transistors = circuit.transistors
     terminals = transistors.nodes.tolist()
     alone = sorted({node for row in terminals for node in row if node not in others and response.row[node] >= 0})

@@ -86,12 +86,13 @@ def test_crystals_are_open_for_direct_current_only() -> None:
     ]
 
 
-def test_controlled_sources_and_lines_are_named() -> None:
+def test_a_line_without_delay_is_named() -> None:
     circuit = spice(
         spice_part("E1", "a 0 b 0", 2.0), spice_part("T1", "b 0 c 0", params={"z0": 50.0}),
         *(spice_part(f"R{place}", f"{net} 0", 1e3) for place, net in enumerate("abc", start=1)),
     )  # fmt: skip
-    assert {unknown.ref: unknown.nets for unknown in circuit.unknowns} == {"E1": ("a",), "T1": ("b", "c")}
+    assert circuit.four_poles.names == ("E1",)
+    assert {unknown.ref: unknown.nets for unknown in circuit.unknowns} == {"T1": ("b", "c")}
 
 
 def test_parts_not_fitted_are_left_out() -> None:

@@ -148,7 +148,7 @@ def test_controlled_sources_and_couplings(read: Read) -> None:
     ("line", "count"),
     [
         ("B1 a 0 V=V(c)*V(c)", 2),
-        ("E1 a 0 VALUE={V(c)*2}", 2),
+        ("E1 a 0 VALUE={V(c)+2}", 2),
         ("G1 3 2 VALUE { V(13, 0)*I(V11) }", 2),
         ("E1 a 0 POLY(2) c 0 d 0 0 1 1", 2),
         ("S1 a 0 c 0 switch", 4),
