@@ -50,8 +50,8 @@ def add_passive(draft: Draft, part: Part, kind: str) -> None:
     elif value.si == 0.0:
         draft.tie(part.ref, *ends, 0.0, link=True)
     else:
-        ends = _parasitics(draft, part, ends)
-        draft.wire(table, part.ref, *ends, _multiplied(part, kind, value.si))
+        si = _multiplied(part, kind, value.si)
+        draft.wire(table, part.ref, *_parasitics(draft, part, kind, si, ends), si)
 
 
 def add_voltage(draft: Draft, part: Part) -> None:
@@ -66,7 +66,7 @@ def add_voltage(draft: Draft, part: Part) -> None:
         draft.facts[part.ref] = bare_fact(draft, part, "source")
         return
     draft.facts[part.ref] = _fact(draft, part, "source", ends, None)
-    placed = draft.tie(part.ref, *_series(draft, part, ends), volts)
+    placed = draft.tie(part.ref, *_parasitics(draft, part, "voltage", 1.0, ends), volts)
     if placed and source is not None and (source.ac is not None or source.waveform):
         draft.signals.add(part.ref)
 
@@ -297,23 +297,15 @@ def _multiplied(part: Part, kind: str, si: float) -> float:
     return si * count if kind == "capacitor" else si / count
 
 
-def _parasitics(draft: Draft, part: Part, ends: tuple[str, str]) -> tuple[str, str]:
-    """Parallel and series resistance written on a capacitor or inductor."""
-    parallel = part.params.get("rpar")
-    if parallel:
-        draft.wire("resistors", f"{part.ref}.rpar", *ends, parallel)
-    return _series(draft, part, ends)
-
-
-def _series(draft: Draft, part: Part, ends: tuple[str, str]) -> tuple[str, str]:
-    """The nets of the ideal part behind its written series resistance, which becomes a resistor of its
-    own."""
-    series = part.params.get("rser")
-    if not series:
+def _parasitics(draft: Draft, part: Part, kind: str, si: float, ends: tuple[str, str]) -> tuple[str, str]:
+    """The nets of the ideal part among its declared parasitics."""
+    said = draft.said(part.ref)
+    fields = part.fields.keys() & {"ESR", "DCR", "ESL", "SRF"}
+    if not (part.params.keys() & {"rser", "lser", "rpar", "cpar"} or fields or (said and said.parasitics)):
         return ends
-    inner = f"{part.ref}.n"
-    draft.wire("resistors", f"{part.ref}.rser", ends[0], inner, series)
-    return inner, ends[1]
+    from checker.circuit.parasitics import around  # few parts have any
+
+    return around(draft, part, kind, si, ends)
 
 
 def _ends_of(draft: Draft, name: str) -> tuple[str, str]:

@@ -281,6 +281,15 @@ class Circuit:
             rth_kpw=np.concatenate([NO_DEVICES.rth_kpw, *(table.rth_kpw for _, table in tables)]),
         )
 
+    def ends(self, part: str) -> tuple[int, int] | None:
+        """Nodes between which a whole two-terminal part stands, its parasitics included; None for another part."""
+        fact = self.parts.get(part)
+        if fact is None or fact.terminals.keys() != {"1", "2"}:
+            return None
+        nets = {net: place for place, net in enumerate(self.nets)}
+        first, second = (nets.get(fact.terminals[pin]) for pin in ("1", "2"))
+        return None if first is None or second is None else (first, second)
+
     def find_device(self, name: str) -> tuple[str, int]:
         """Family and place of a semiconductor. Raises KeyError for another part."""
         for kind, table in self.devices.items():

@@ -16,6 +16,15 @@ from checker.quantity.value import Origin
 
 PIN_WORDS = ("high", "low", "open")
 
+PARASITICS = {
+    "series_resistance": "rser",
+    "series_inductance": "lser",
+    "self_resonance": "resonance_hz",
+    "quality": "quality",
+    "quality_at": "quality_hz",
+}
+"""Key of a [[part]] to its name in `PartIntent.parasitics`."""
+
 
 def origin(source: Source, path: KeyPath) -> Origin:
     """Where the entry at `path` stands."""
@@ -115,9 +124,11 @@ def part(source: Source, path: KeyPath) -> PartIntent:
             if name in ratings:
                 raise source.trouble(f"{name!r} of {title} is given twice", *path, "ratings", name)
         ratings |= nested
-    for name in ("resistance", "inductance", "capacitance"):
+    for name in ("resistance", "inductance", "capacitance", *PARASITICS):
         if read.get(name, 1.0) <= 0.0:
             raise source.trouble(f"{name!r} of {title} is not above 0", *path, name)
+    if ("quality" in read) != ("quality_at" in read):
+        raise source.trouble(f"{title} needs both 'quality' and 'quality_at', the frequency it holds at", *path)
     return PartIntent(
         ref=read["ref"],
         origin=origin(source, path),
@@ -127,6 +138,7 @@ def part(source: Source, path: KeyPath) -> PartIntent:
         resistance_ohm=read.get("resistance"),
         inductance_h=read.get("inductance"),
         capacitance_f=read.get("capacitance"),
+        parasitics={key: read[name] for name, key in PARASITICS.items() if name in read},
     )
 
 

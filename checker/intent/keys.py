@@ -74,6 +74,11 @@ SECTIONS: Final[Mapping[str, Mapping[str, Key]]] = {
         "resistance": Key(kind="amount", unit="ohm"),
         "inductance": Key(kind="amount", unit="H"),
         "capacitance": Key(kind="amount", unit="F"),
+        "series_resistance": Key(kind="amount", unit="ohm"),
+        "series_inductance": Key(kind="amount", unit="H"),
+        "self_resonance": Key(kind="amount", unit="Hz"),
+        "quality": Key(kind="amount", unit=""),
+        "quality_at": Key(kind="amount", unit="Hz"),
         **RATING_KEYS,
     },
     "accepted": {

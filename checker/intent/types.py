@@ -86,8 +86,9 @@ class TargetIntent:
 @frozen
 class PartIntent:
     """What the engineer says of one part: a card by name, ratings (`v_max_v`, `i_max_a`, `p_max_w`,
-    `tj_max_c`, `rth_ja_kpw`), tolerance, or a two-terminal model (`resistance_ohm`, `inductance_h`,
-    `capacitance_f`) for a part the netlist gives none for, e.g. a relay coil."""
+    `tj_max_c`, `rth_ja_kpw`), tolerance, a two-terminal model (`resistance_ohm`, `inductance_h`, `capacitance_f`) for
+    a part the netlist gives none for, e.g. a relay coil, or `parasitics` of a capacitor or coil (`rser`, `lser`,
+    `resonance_hz`, `quality`, `quality_hz`; SI)."""
 
     ref: str
     origin: Origin
@@ -97,6 +98,7 @@ class PartIntent:
     resistance_ohm: float | None = None
     inductance_h: float | None = None
     capacitance_f: float | None = None
+    parasitics: Mapping[str, float] = field(default_factory=dict)
 
 
 @frozen

@@ -54,8 +54,15 @@ def _holding(bench: Bench, outer: Outer) -> tuple[str, ...]:
         for here, there in ((a, b), (b, a)):
             if here in nets and not silent[there] and there not in carried:
                 near.add(there)
+    lossy = {
+        name.rpartition(".")[0]
+        for table in (c.resistors, c.inductors)
+        for name in table.names
+        if name.endswith((".rser", ".lser"))
+    }
     out = []
-    for name, (a, b) in zip(c.capacitors.names, c.capacitors.nodes.tolist(), strict=True):
+    for name, bare in zip(c.capacitors.names, c.capacitors.nodes.tolist(), strict=True):
+        a, b = (c.ends(name) if name in lossy else None) or bare
         for here, there in ((a, b), (b, a)):
             if here in near and silent[there] and not silent[here]:
                 out.append(name)

@@ -200,6 +200,9 @@ class Response:
 
     def _two_nodes(self, part: str) -> tuple[int, int]:
         c = self.circuit
+        whole = c.ends(part)
+        if whole is not None:
+            return whole
         for table in (c.resistors, c.capacitors, c.inductors):
             if part in table.names:
                 a, b = _ends(table, table.names.index(part))
