@@ -124,12 +124,21 @@ class _Columns:
 
 def state_scenarios(circuit: Circuit, intent: Intent) -> tuple[Scenario, ...]:
     """One scenario a state of the board itself and of the intent: driven pins, open pins, absent rails (0 V
-    through their own source).
+    through their own source); and one for each rail that may be absent, alone.
 
     The nominal scenario is not among them. Raises InputTrouble for a rail that the circuit does not know.
     """
     said = (Scenario(name=state.name, kind="state", changes=_changes(circuit, state)) for state in intent.states)
-    return (*circuit.states, *said)
+    absent = (
+        Scenario(
+            name=f"without {rail.net}",
+            kind="state",
+            changes=(Change(part=circuit.voltages.names[rail.element], property="v_v", value=0.0),),
+        )
+        for rail in circuit.rails
+        if rail.may_be_absent and rail.element >= 0
+    )
+    return (*circuit.states, *absent, *said)
 
 
 def nominal() -> Scenario:

@@ -33,6 +33,10 @@ def corner_scenarios(circuit: Circuit, ambient: Ambient, influence: Influence) -
     if low:
         out.append(Scenario(name="current gain lowest", kind="corner", changes=low))
         out.append(Scenario(name="current gain highest", kind="corner", changes=high))
+    for sign, word in ((-1.0, "lowest"), (1.0, "highest")):
+        changes = tuple(_supplies(circuit, sign))
+        if changes:
+            out.append(Scenario(name=f"supplies {word}", kind="corner", changes=changes))
     for sign, word in ((-1.0, "smallest"), (1.0, "largest")):
         changes = tuple(_ends(circuit, circuit.capacitors.names, sign))
         if changes:
@@ -51,6 +55,14 @@ def _gains(circuit: Circuit, end: int) -> tuple[Change, ...]:
     return tuple(
         Change(part=name, property="bf", value=gain_limits(circuit, name)[end]) for name in circuit.bipolars.names
     )
+
+
+def _supplies(circuit: Circuit, sign: float) -> Iterable[Change]:
+    """Rails that the intent gives a tolerance, all at one end."""
+    for rail in circuit.rails:
+        if rail.tolerance and rail.element >= 0:
+            name = circuit.voltages.names[rail.element]
+            yield Change(part=name, property="factor", value=1.0 + sign * rail.tolerance)
 
 
 def _tolerance(circuit: Circuit, name: str) -> float:

@@ -80,3 +80,16 @@ def test_a_written_tolerance_is_kept() -> None:
     corner = set_up_from(STAGE + IDEAL, NO_BAND + part).scenarios[-2]
     factors = {change.part: change.value for change in corner.changes if change.property == "factor"}
     assert factors == pytest.approx({"R1": 0.95, "R2": 1.05, "RE": 0.99})
+
+
+def test_a_supply_with_a_tolerance_has_corners_and_a_state() -> None:
+    """10 % on the 12 V supply: the divider's open voltage moves with it; without the supply nothing flows."""
+    said = '[rails]\nVCC = { volts = "12 V", tolerance = "10 %", may_be_absent = true }\n'
+    setup = set_up_from(STAGE.replace("V1 VCC 0 12\n", "") + IDEAL, NO_BAND + said)
+    ic = setup.board(setup.scenarios).ask("ic_a", "Q1").values[:, 0]
+    by_name = {scenario.name: float(value) for scenario, value in zip(setup.scenarios, ic, strict=True)}
+    for name, factor in (("supplies lowest", 0.9), ("supplies highest", 1.1)):
+        vth, rth = factor * 12.0 * 10.0 / 57.0, 470.0 / 57.0 * 1e3
+        wanted = brentq(lambda i, v=vth, r=rth: v - i / 100.0 * r - VT * np.log(i / 1e-14) - i * 1.01e3, 1e-9, 0.01)
+        assert by_name[name] == pytest.approx(wanted, rel=1e-6)
+    assert abs(by_name["without VCC"]) < 1e-12
