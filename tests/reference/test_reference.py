@@ -17,9 +17,12 @@ from scipy import optimize
 
 from checker.solve.operating import OperatingPoint, operating_point
 from checker.solve.response import Drive, small_signal
-from tests.reference.boards import ALL, WITH_SIGNAL, Board
+from tests.reference.boards import ALL as BIPOLAR_BOARDS
+from tests.reference.boards import WITH_SIGNAL, Board
+from tests.reference.fet_boards import FET_BOARDS
 from tests.reference.physics import Diode, Transistor
 
+ALL = (*BIPOLAR_BOARDS, *FET_BOARDS)
 REL = 1e-6
 ABS_V = 1e-9
 ABS_OF_LARGEST_CURRENT = 1e-9
@@ -64,10 +67,23 @@ def _device_keys(board: Board, x: SimpleNamespace) -> dict[str, tuple[Any, Any]]
 def test_node_voltages_agree(make: Callable[[], Board]) -> None:
     board, x, point = solved(make)
     nets = [name for name in board.guess if name in board.bench._nets]
-    assert len(nets) >= 2
+    assert nets
     ours = np.array([point.v_v[0, point.circuit.node(net)] for net in nets])
     theirs = np.array([float(getattr(x, net)) for net in nets])
     np.testing.assert_allclose(ours, theirs, rtol=REL, atol=ABS_V)
+
+
+@pytest.mark.parametrize("make", ALL, ids=ids)
+def test_to_nine_digits(make: Callable[[], Board]) -> None:
+    """Against the root at 30 digits: 1e-9 relative, or 1 nV."""
+    board, x, point = solved(make)
+    for net in (name for name in board.guess if name in board.bench._nets):
+        ours, theirs = float(point.v_v[0, point.circuit.node(net)]), float(getattr(x, net))
+        assert abs(ours - theirs) <= max(1e-9 * abs(theirs), ABS_V), net
+
+
+def test_there_are_twenty_of_them() -> None:
+    assert len(ALL) >= 20
 
 
 @pytest.mark.parametrize("make", ALL, ids=ids)
