@@ -70,3 +70,24 @@ def mosfet_model(row: Mapping[str, Any]) -> dict[str, float]:
         "is": row["is"],
         "n": row["n"],
     }
+
+
+def spread(row: Mapping[str, Any]) -> tuple[dict[str, float], dict[str, float]] | None:
+    """Factors on VTO (and BETA of a junction FET) at the ends of lowest and of highest current; None where the row
+    states no range.
+
+    A junction FET's IDSS and cut-off voltage rise together, so both ends keep the square law through their own pair;
+    a MOSFET's low current belongs to its high threshold.
+    """
+    volts = row["vgs_off"] if "vgs_off" in row else row["vgs_th"]
+    if "vgs_off" in row:
+        amps = row["idss"]
+        ends = [(0, amps[0]), (2, amps[2])]
+        if any(volts[k] is None or a is None for k, a in ends):
+            return None
+        typical = amps[1] / volts[1] ** 2
+        low, high = ({"vto": volts[k] / volts[1], "beta": a / volts[k] ** 2 / typical} for k, a in ends)
+        return low, high
+    if volts[0] is None or volts[2] is None:
+        return None
+    return {"vto": volts[2] / volts[1]}, {"vto": volts[0] / volts[1]}

@@ -89,7 +89,17 @@ def card_from(row: Mapping[str, Any], group: str = "") -> Card:
         resistors={key: float(row[key]) for key in _RESISTORS if row.get(key)},
         driver=_driver(row, name),
         free_wheel=bool(row.get("free_wheel", False)),
+        spread=_spread(row),
     )
+
+
+def _spread(row: Mapping[str, Any]) -> tuple[Mapping[str, float], Mapping[str, float]] | None:
+    """Ends of a field-effect transistor's range as factors on its model; None for another part."""
+    if _MODELS[row["kind"]].startswith("fet"):
+        from checker.cards.fet import spread
+
+        return spread(row)
+    return None
 
 
 def _model(row: Mapping[str, Any]) -> Mapping[str, float]:

@@ -24,7 +24,9 @@ _SET: Final = {
     "voltages": "v_v",
     "currents": "i_a",
 }
-_POSITIVE: Final = ("r_ohm", "c_f", "l_h", "bf")
+_DEVICE_PARAMETERS: Final = (("bipolar", "bf"), ("jfet", "vto"), ("jfet", "beta"), ("mosfet", "vto"))
+"""Family and parameter of devices that a change may set; a factor goes to the first of a family."""
+_POSITIVE: Final = ("r_ohm", "c_f", "l_h", "bf", "beta")
 
 
 def with_changes(circuit: Circuit, scenarios: Sequence[Scenario]) -> Circuit:
@@ -55,10 +57,15 @@ class _Columns:
     def __init__(self, circuit: Circuit, size: int) -> None:
         self._size = size
         self._nominal: dict[str, FloatArray] = {name: getattr(circuit, name).value[:1] for name in _SET}
-        self._nominal["bf"] = circuit.bipolars.params.get("bf", np.empty((1, 0)))[:1]
+        for kind, param in _DEVICE_PARAMETERS:
+            if kind in circuit.devices:
+                self._nominal[f"{kind} {param}"] = circuit.devices[kind].params[param][:1]
         self._stacks: dict[str, FloatArray] = {}
         self._places: dict[str, list[tuple[str, int]]] = {}
-        names = {name: getattr(circuit, name).names for name in _SET} | {"bf": circuit.bipolars.names}
+        names = {name: getattr(circuit, name).names for name in _SET}
+        for kind, param in _DEVICE_PARAMETERS:
+            if kind in circuit.devices:
+                names[f"{kind} {param}"] = circuit.devices[kind].names
         for table, entries in names.items():
             for place, part in enumerate(entries):
                 self._places.setdefault(part, []).append((table, place))
@@ -68,7 +75,7 @@ class _Columns:
         table, place = self._find(change)
         nominal = float(self._nominal[table][0, place])
         value = nominal * change.value if change.property == "factor" else change.value
-        quantity = "bf" if table == "bf" else _SET[table]
+        quantity = _quantity(table)
         if not math.isfinite(value) or (quantity in _POSITIVE and value <= 0.0):
             raise Internal(f"with_changes: {change.part}: {quantity} = {value!r} is not possible")
         if table not in self._stacks:
@@ -80,7 +87,7 @@ class _Columns:
         if not places:
             raise Internal(f"with_changes: the circuit has no element {change.part!r}")
         for table, place in places:
-            if change.property in ("factor", "bf" if table == "bf" else _SET[table]):
+            if change.property in ("factor", _quantity(table)):
                 return table, place
         raise Internal(f"with_changes: {change.part!r} has no {change.property}")
 
@@ -95,7 +102,9 @@ class _Columns:
             currents=self._branches(circuit, "currents"),
             couplings=replace(circuit.couplings, k=self._spread(circuit.couplings.k)),
             devices={
-                kind: self._devices(table, {"bf": self._stack("bf")} if kind == "bipolar" else {})
+                kind: self._devices(
+                    table, {param: self._stack(f"{kind} {param}") for own, param in _DEVICE_PARAMETERS if own == kind}
+                )
                 for kind, table in circuit.devices.items()
             },
             scenarios=scenarios,
@@ -120,6 +129,11 @@ class _Columns:
     def _spread(self, value: FloatArray) -> FloatArray:
         """The nominal row seen S times, without a copy (read-only)."""
         return np.broadcast_to(value[:1], (self._size, value.shape[1]))
+
+
+def _quantity(table: str) -> str:
+    """The property that a table holds: of its own, or the parameter of a family of devices."""
+    return _SET[table] if table in _SET else table.rpartition(" ")[2]
 
 
 def state_scenarios(circuit: Circuit, intent: Intent) -> tuple[Scenario, ...]:

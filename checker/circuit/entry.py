@@ -64,6 +64,9 @@ def place_device(
     draft.place(kind, name, device)
     used = set(device.nets)
     gain_min, gain_max = _gain(draft, name, known, parameters.values)
+    if kind in ("jfet", "mosfet") and (known.card is None or known.card.spread is None or known.source[:4] != "card"):
+        what = "cut-off voltage and IDSS" if kind == "jfet" else "threshold"
+        draft.notes.add("tolerances", f"spread of the {what} is not stated; every corner keeps the model's", name)
     draft.facts[name] = PartFact(
         ref=name,
         kind=_FACT_KIND[kind],

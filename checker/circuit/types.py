@@ -31,7 +31,7 @@ PartKind = Literal[
     "coil",
     "unmodelled",
 ]
-Property = Literal["r_ohm", "c_f", "l_h", "v_v", "i_a", "bf", "factor"]
+Property = Literal["r_ohm", "c_f", "l_h", "v_v", "i_a", "bf", "vto", "beta", "factor"]
 
 
 @frozen

@@ -33,6 +33,10 @@ def corner_scenarios(circuit: Circuit, ambient: Ambient, influence: Influence) -
     if low:
         out.append(Scenario(name="current gain lowest", kind="corner", changes=low))
         out.append(Scenario(name="current gain highest", kind="corner", changes=high))
+    weak, strong = _channels(circuit, 0), _channels(circuit, 1)
+    if weak:
+        out.append(Scenario(name="channel currents lowest", kind="corner", changes=weak))
+        out.append(Scenario(name="channel currents highest", kind="corner", changes=strong))
     for sign, word in ((-1.0, "lowest"), (1.0, "highest")):
         changes = tuple(_supplies(circuit, sign))
         if changes:
@@ -41,7 +45,7 @@ def corner_scenarios(circuit: Circuit, ambient: Ambient, influence: Influence) -
         changes = tuple(_ends(circuit, circuit.capacitors.names, sign))
         if changes:
             out.append(Scenario(name=f"capacitors {word}", kind="corner", changes=changes))
-    return tuple(out + list(_currents(circuit, influence, (low, high), (cold, hot)))[: MOST - len(out)])
+    return tuple(out + list(_currents(circuit, influence, (low + weak, high + strong), (cold, hot)))[: MOST - len(out)])
 
 
 def _temperatures(circuit: Circuit, ambient: Ambient) -> tuple[float | None, float | None]:
@@ -55,6 +59,20 @@ def _gains(circuit: Circuit, end: int) -> tuple[Change, ...]:
     return tuple(
         Change(part=name, property="bf", value=gain_limits(circuit, name)[end]) for name in circuit.bipolars.names
     )
+
+
+def _channels(circuit: Circuit, end: int) -> tuple[Change, ...]:
+    """Field-effect transistors at one end of what their cards allow."""
+    out = []
+    for kind in ("jfet", "mosfet"):
+        table = circuit.devices.get(kind)
+        for place, name in enumerate(table.names if table is not None else ()):
+            fact = circuit.parts.get(name)
+            card = fact.card if fact is not None and fact.model_source.startswith("card") else None
+            if table is not None and card is not None and card.spread is not None:
+                for key, factor in card.spread[end].items():
+                    out.append(Change(part=name, property=key, value=factor * float(table.params[key][0, place])))  # type: ignore[arg-type]
+    return tuple(out)
 
 
 def _supplies(circuit: Circuit, sign: float) -> Iterable[Change]:
