@@ -135,13 +135,15 @@ def ready(netlist_path: Path, intent_path: Path | None, reading: Reading | None 
     """Read netlist, intent and the project's own cards, and set the board up."""
     netlist = _read(netlist_path, reading)
     where = intent_path or find_intent(netlist_path)
-    return set_up(netlist, read_intent(where) if where is not None else Intent(), _own_cards(netlist_path))
+    return set_up(netlist, read_intent(where) if where is not None else Intent(), _own_cards(netlist_path, reading))
 
 
-def _own_cards(netlist_path: Path) -> Mapping[str, Card] | None:
-    """The project's own cards: NAME.cards.toml beside the netlist, else cards.toml; None where neither is there."""
+def _own_cards(netlist_path: Path, reading: Reading | None) -> Mapping[str, Card] | None:
+    """The project's own cards: those named in `reading`, else NAME.cards.toml beside the netlist, else cards.toml; None
+    where none is there."""
     names = (netlist_path.stem + ".cards.toml", "cards.toml")
-    found = next((path for name in names if (path := netlist_path.with_name(name)).is_file()), None)
+    beside = (path for name in names if (path := netlist_path.with_name(name)).is_file())
+    found = reading.cards if reading is not None and reading.cards is not None else next(beside, None)
     if found is None:
         return None
     from checker.cards.own import read_cards

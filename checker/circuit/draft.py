@@ -147,6 +147,8 @@ class Draft:
     """The same pins as (part, number)."""
     tracks: dict[str, float] = field(default_factory=dict)
     """Potentiometer -> its whole resistance [ohm]."""
+    ranges: dict[str, tuple[float, float]] = field(default_factory=dict)
+    """Part with a range as its value -> both ends, as factors on the middle that it is taken at."""
     states: list[Scenario] = field(default_factory=list)
     """States and corners that the board itself suggests, besides those of the intent."""
     lines: dict[str, float | None] = field(default_factory=dict)

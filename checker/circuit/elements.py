@@ -135,7 +135,13 @@ def add_potentiometer(draft: Draft, part: Part) -> None:
 
 
 def add_ends(draft: Draft) -> None:
-    """Both ends of every potentiometer as corners; a trimmer is set once and stays where it was set."""
+    """Both ends of every potentiometer, and of every range of values, as corners; a trimmer that is a potentiometer is
+    set once and stays where it was set."""
+    for ref, ends in list(draft.ranges.items())[:MOST_TRACKS]:
+        for word, factor in zip(("lowest", "highest"), ends, strict=True):
+            if ref in draft.resistors or ref in draft.capacitors or ref in draft.inductors:
+                change = Change(part=ref, property="factor", value=factor)
+                draft.states.append(Scenario(name=f"{ref} at its {word}", kind="corner", changes=(change,)))
     if len(draft.tracks) > MOST_TRACKS:
         draft.notes.add("parts", "so many potentiometers: mid travel alone is looked at", *draft.tracks)
         return

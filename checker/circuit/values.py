@@ -37,9 +37,11 @@ def part_value(draft: Draft, part: Part, unit: str) -> Value | None:
     if found is None:
         found = _workshop(draft, part, unit)
     if found is None:
-        middle = _middle(part.value, unit)
-        if middle is not None:
-            draft.notes.add("values", f"{part.value} taken at the middle of its range", part.ref)
+        ends = _ends(part.value, unit)
+        if ends is not None:
+            middle = sum(ends) / 2
+            draft.notes.add("values", f"{part.value} taken at the middle of its range, both ends as corners", part.ref)
+            draft.ranges[part.ref] = ends[0] / middle, ends[1] / middle
             found = middle, None
     if found is None or not math.isfinite(found[0]) or found[0] < 0.0:
         return None
@@ -71,8 +73,8 @@ def _workshop(draft: Draft, part: Part, unit: str) -> tuple[float, float | None]
     return None
 
 
-def _middle(text: str, unit: str) -> float | None:
-    """Middle of a trimmer's range ("2-10pF") in SI."""
+def _ends(text: str, unit: str) -> tuple[float, float] | None:
+    """Both ends of a trimmer's range ("2-10pF") in SI, the lower first."""
     found = _RANGE.fullmatch(text.strip())
     if found is None:
         return None
@@ -80,10 +82,10 @@ def _middle(text: str, unit: str) -> float | None:
     if not low[-1].isalpha():
         low += found["unit"]
     try:
-        ends = [parse_engineering(end, unit).si for end in (low, high + found["unit"])]
+        first, second = (parse_engineering(end, unit).si for end in (low, high + found["unit"]))
     except NotAQuantity:
         return None
-    return sum(ends) / 2
+    return (first, second) if 0.0 < first < second else None
 
 
 def written_value(part: Part, unit: str) -> tuple[float, float | None] | None:

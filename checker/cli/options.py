@@ -102,13 +102,20 @@ colour = click.option(
 )
 
 
+own_cards = click.option(
+    "--cards",
+    type=EXISTING,
+    help="The project's part cards; else NAME.cards.toml or cards.toml beside the netlist.",
+)
+
+
 def reading(command: Callable[..., int]) -> Callable[..., int]:
     """Add the options of every command that reads a netlist; the command gets them as `reading`, a Reading."""
 
     @wraps(command)
-    def gathered(include_from: tuple[Path, ...], **given: Any) -> int:
+    def gathered(include_from: tuple[Path, ...], cards: Path | None, **given: Any) -> int:
         limits = ReadLimits(**{name: given.pop(f"most_{name}") for name in _LIMITS})
-        return command(reading=Reading(folders=include_from, limits=limits), **given)
+        return command(reading=Reading(folders=include_from, limits=limits, cards=cards), **given)
 
     wrapped: Callable[..., int] = gathered
     for name, what in reversed(_LIMITS.items()):
@@ -119,6 +126,7 @@ def reading(command: Callable[..., int]) -> Callable[..., int]:
             show_default=True,
             help=f"Refuse a netlist with more: {what}.",
         )(wrapped)
+    wrapped = own_cards(wrapped)
     return click.option(
         "--include-from",
         metavar="FOLDER",

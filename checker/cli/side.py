@@ -74,7 +74,8 @@ def _of_revision(revision: Revision, intent: Path | None, today: datetime.date |
 
     Folders named by --include-from are those of the working tree.
     """
-    there = replace(reading, folders=tuple(folder.resolve() for folder in reading.folders))
+    cards = None if reading.cards is None else reading.cards.resolve()
+    there = replace(reading, folders=tuple(folder.resolve() for folder in reading.folders), cards=cards)
     import tempfile
 
     with tempfile.TemporaryDirectory(prefix="stageproof-") as folder:

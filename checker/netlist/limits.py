@@ -29,10 +29,12 @@ class ReadLimits:
 
 @frozen
 class Reading:
-    """How netlists are read in one run: `folders` beside the netlist's own that includes may name, and limits."""
+    """How netlists are read in one run: `folders` beside the netlist's own that includes may name, limits, and a file
+    of the project's own `cards` (None: the one beside the netlist, if any)."""
 
     folders: tuple[Path, ...] = ()
     limits: ReadLimits = field(default_factory=ReadLimits)
+    cards: Path | None = None
 
 
 def over(limit: Limit, bound: int, what: str, *, file: str, line: int = 0) -> NoReturn:

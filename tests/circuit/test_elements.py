@@ -3,6 +3,7 @@ from __future__ import annotations
 import pytest
 from numpy.testing import assert_allclose
 
+from checker.circuit.changes import nominal, with_changes
 from checker.intent.types import Intent, PartIntent
 from checker.netlist.types import Part, Source
 from checker.trouble import InputTrouble
@@ -136,6 +137,9 @@ def test_a_trimmer_stands_in_the_middle_of_its_range() -> None:
     circuit = kicad(capacitor("C1", "a", "GND", "2-10pF"), resistor("R1", "a", "GND"))
     assert_allclose(value_of(circuit, "C1"), 6e-12, rtol=1e-12)
     assert assumed(circuit, "C1", "middle of its range")
+    ends = with_changes(circuit, (nominal(), *circuit.states)).capacitors.value[:, 0]
+    assert_allclose(ends, [6e-12, 2e-12, 10e-12], rtol=1e-12)
+    assert [state.kind for state in circuit.states] == ["corner", "corner"]
 
 
 # --- composed parts -----------------------------------------------------------------------------------------

@@ -132,7 +132,7 @@ def test_killed_in_mid_run_leaves_no_half_written_file_and_no_worker(boards: Pat
     (folder / "stageproof.json").write_text("old")
     many = [str(path) for path in sorted((boards / "boards").glob("b?.cir"))]
     links = []
-    for number in range(40):
+    for number in range(150):  # some ten seconds of work
         for path in many:
             link = folder / f"{number}-{Path(path).name}"
             with contextlib.suppress(FileExistsError):
@@ -141,7 +141,7 @@ def test_killed_in_mid_run_leaves_no_half_written_file_and_no_worker(boards: Pat
     before = {path.name for path in folder.iterdir()}
     command = stageproof("check", *links, "--out", str(folder), "--jobs", "2", cwd=boards)
     process = subprocess.Popen(command, stdout=subprocess.DEVNULL, stderr=subprocess.DEVNULL, start_new_session=True)
-    time.sleep(2.0)
+    time.sleep(1.5)
     assert process.poll() is None
     process.send_signal(sent)
     process.wait(30)

@@ -172,3 +172,41 @@ def test_the_message_of_a_limit_names_the_option_that_raises_it(
     assert f"limit of {bound};" in done.err and f"--most-{option} raises it" in done.err
     assert done.err.count("\n") == 1
     assert call("intent", path, f"--most-{option}", "1000").status == 0
+
+
+CARDS = '[[card]]\nname = "HOUSE-1"\nlike = "BC547"\nv_max_v = 61\nsource = "our drawing"\n'
+
+
+def test_own_cards_by_option(call: Call, tmp_path: Path) -> None:
+    (tmp_path / "ours.toml").write_text(CARDS, "utf-8")
+    shown = call("parts", "HOUSE-1", "--cards", str(tmp_path / "ours.toml"))
+    assert shown.status == 0 and "61" in shown.out and "our drawing" in shown.out
+    assert call("parts", "--cards", str(tmp_path / "ours.toml")).out.startswith("HOUSE-1\n")
+    (tmp_path / "board.cir").write_text(
+        "* t\nV1 VCC 0 9\nRB VCC B 1meg\nRC VCC C 4k7\nQ1 C B 0 HOUSE-1\n.end\n", "utf-8"
+    )
+    without, given = (
+        call("check", str(tmp_path / "board.cir"), *more) for more in ((), ("--cards", str(tmp_path / "ours.toml")))
+    )
+    assert "1 of 1 stages" not in without.out and "1 of 1 stages" in given.out
+    broken = call("specs", str(tmp_path / "board.cir"), "--cards", str(tmp_path / "board.cir"))
+    assert broken.status == 2 and broken.err.count("\n") == 1 and "TOML" in broken.err
+
+
+@pytest.mark.parametrize(
+    ("text", "lines"),
+    [
+        ("4k7", ["4k7 as a resistor: 4.7 kΩ"]),
+        ("18k1%", ["18k1% as a resistor: 18 kΩ, ±1 %"]),
+        ("10uF/25V", ["10uF/25V as a capacitor: 10 µF, 25 V"]),
+        ("100n", ["100n as a capacitor: 100 nF", "100n as a coil: 100 nH"]),
+    ],
+)
+def test_how_a_value_is_read(call: Call, text: str, lines: list[str]) -> None:
+    assert call("parts", text).out.splitlines() == lines
+
+
+@pytest.mark.parametrize(("text", "hint"), [("MMBT39O4", "did you mean 'MMBT3904'"), ("QQQQ", "lists the names known")])
+def test_a_part_that_is_not_known(call: Call, text: str, hint: str) -> None:
+    lost = call("parts", text)
+    assert lost.status == 2 and hint in lost.err and lost.err.count("\n") == 1
