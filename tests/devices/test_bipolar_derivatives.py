@@ -1,5 +1,5 @@
-"""Analytic derivatives of the transistor against differences at 30 digits of an independent form of its equations,
-and against high-order central differences of the program's own currents."""
+"""Analytic derivatives of the transistor against differences at 30 digits of an independent form of its equations (of
+the program's own currents: `test_complex_step`)."""
 
 from __future__ import annotations
 
@@ -26,10 +26,6 @@ REGIONS: dict[str, tuple[float, float]] = {
     "quarter volt": (0.25, 0.2),
 }
 CASES = [(s, r) for s in BIPOLAR_SETS for r in REGIONS]
-# The resistance of a crowded base has a kink where the base current turns; a difference may not straddle it.
-SMOOTH = [(s, r) for s, r in CASES if s != "base crowding" or "microvolt" not in r]
-WEIGHTS = (3 / 4, -3 / 20, 1 / 60)
-"""Central differences of sixth order."""
 
 
 def _at(region: str) -> tuple[np.ndarray, np.ndarray]:
@@ -70,9 +66,9 @@ def test_base_resistance_and_its_slopes(which: str, region: str) -> None:
 
     at = mp.mpf(vbe), mp.mpf(vbc)
     wanted = [rb(*at), mp.diff(rb, at, (1, 0)), mp.diff(rb, at, (0, 1))]
-    # The closed form of crowding loses 1e-16/z^2, its series at small z a part in 1e9.
+    # RB - RBM times the rounding of tan z - z, which loses ten times at the smallest z that has the closed form.
     for mine, value in zip(got, wanted, strict=True):
-        np.testing.assert_allclose(mine, float(value), rtol=1e-8, atol=1e-13)
+        np.testing.assert_allclose(mine, float(value), rtol=1e-12, atol=1e-13)
 
 
 @pytest.mark.parametrize(("which", "region"), CASES)
@@ -88,33 +84,6 @@ def test_capacitances_equal_the_independent_ones(which: str, region: str) -> Non
     ]
     for mine, value in zip(bipolar.charges(p, *_at(region)), wanted, strict=True):
         np.testing.assert_allclose(mine, float(value), rtol=1e-11, atol=1e-28)
-
-
-@pytest.mark.parametrize("polarity", [1.0, -1.0])
-@pytest.mark.parametrize(("which", "region"), SMOOTH)
-def test_terminal_jacobian_is_the_slope_of_the_terminal_currents(which: str, region: str, polarity: float) -> None:
-    """All seven terminals moved one at a time, lead resistances and base modulation included."""
-    vbe, vbc = REGIONS[region]
-    base = np.array([0.7, 0.05, -0.6, 0.0, -vbc, 0.0, -vbe]) * polarity
-    p = bipolar_params(BIPOLAR_SETS[which], 1)
-    sign = np.array([polarity])
-
-    def currents(v: np.ndarray) -> np.ndarray:
-        v = v[None, None, :]
-        return bipolar.evaluate(p, sign, v, bipolar.junctions(v, sign), 1e-12).i[0, 0]
-
-    v = base[None, None, :]
-    g = bipolar.evaluate(p, sign, v, bipolar.junctions(v, sign), 1e-12).g[0, 0]
-    for terminal in range(7):
-        h = 2e-4 if abs(vbe) > 1e-3 else 1e-4
-        slope = np.zeros(7)
-        for order, weight in enumerate(WEIGHTS, start=1):
-            step = np.zeros(7)
-            step[terminal] = order * h
-            slope += weight * (currents(base + step) - currents(base - step)) / h
-        # Sixth order: error about (h/VT)^6/140 of the slope, plus rounding eps I/h.
-        scale = np.abs(currents(base)).max()
-        np.testing.assert_allclose(g[:, terminal], slope, rtol=1e-8, atol=1e-15 * scale / h + 1e-20)
 
 
 @pytest.mark.parametrize("which", list(BIPOLAR_SETS))

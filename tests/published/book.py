@@ -24,6 +24,8 @@ from tests.bench import Bench
 VT_25C = BOLTZMANN_JPK * 298.15 / CHARGE_C
 NO_BASE_CURRENT = 1e9
 """Current gain for examples that leave the base current out."""
+EXACT = 1e-4
+"""Agreement with the exact answer of a book's model: VBE moves by VT ln of what is left, far below this."""
 SHORT_F = 1.0
 """Coupling and bypass capacitors that the example takes as shorts: 1 F."""
 
@@ -61,6 +63,18 @@ def divider_stage(
     b.r("RC", "vcc", "c", rc)
     b.r("RE", "e", "0", re)
     b.q("Q1", "c", "b", "e", bf=beta, is_=saturation_for(ic, vbe))
+    return b
+
+
+def fixed_bias(vcc: float, rb: float, rc: float, beta: float, ic: float, *, re: float = 0.0, vbe: float = 0.7) -> Bench:
+    """Base resistor from the supply; nets vcc b c e; IS for `vbe` at `ic`."""
+    b = Bench(25.0)
+    b.v("VCC", "vcc", "0", vcc)
+    b.r("RB", "vcc", "b", rb)
+    b.r("RC", "vcc", "c", rc)
+    if re:
+        b.r("RE", "e", "0", re)
+    b.q("Q1", "c", "b", "e" if re else "0", bf=beta, is_=saturation_for(ic, vbe))
     return b
 
 

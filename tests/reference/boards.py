@@ -2,13 +2,14 @@
 
 `dc(x)` takes the named unknowns and returns the residuals: currents into each net, then two (transistor) or one
 (diode) voltage equations a device. `ac(x, s)` is the same for phasors with a unit drive; it is linear in x.
-Unknowns are net names, or `be1`, `bc1`, `d1`: inner junction voltages of Q1 or D1, counted forward
-(the small signal keeps no inner unknown for diodes). A PNP is written as an NPN with its voltages negated.
+Unknowns are net names, or inner junction voltages counted forward: `be1`, `bc1` of Q1, `d1` of D1, `gsj1`, `gdj1` of
+J1, `gsm1`, `dsm1`, `bsm1` of M1 (the small signal keeps no inner unknown for diodes). A PNP is written as an NPN with
+its voltages negated, a P channel as an N channel.
 """
 
 from __future__ import annotations
 
-from collections.abc import Callable
+from collections.abc import Callable, Mapping
 from dataclasses import dataclass
 from types import SimpleNamespace
 from typing import Any
@@ -16,6 +17,7 @@ from typing import Any
 import mpmath as mp
 
 from tests.bench import Bench
+from tests.reference.fets import Jfet, Mosfet
 from tests.reference.physics import Bias, Diode, Phasors, Transistor
 
 NPN: dict[str, float] = {
@@ -54,7 +56,7 @@ class Board:
     name: str
     bench: Bench
     guess: dict[str, float]
-    devices: dict[str, Transistor | Diode]
+    devices: Mapping[str, Transistor | Diode | Jfet | Mosfet]
     dc: Callable[[Unknowns], Residuals]
     pnp: tuple[str, ...] = ()
     ac: Callable[[Unknowns, Any, Small], Residuals] | None = None
@@ -655,7 +657,7 @@ def zener_regulator() -> Board:
         name="regulator with breakdown diode",
         bench=b,
         guess={"z": 5.63, "o": 4.9, "be1": 0.72, "bc1": -6.3, "d1": -5.6},
-        devices={"1": t},
+        devices={"1": t, "d1": d},
         dc=dc,
     )
 

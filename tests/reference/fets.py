@@ -7,6 +7,7 @@ tail, Meyer's charges and temperature laws as in the guides of the SPICE 2G6 and
 
 from __future__ import annotations
 
+from dataclasses import dataclass
 from typing import Any
 
 import mpmath as mp
@@ -25,11 +26,23 @@ def _potential(v: Num, t: Num, t0: Num) -> Num:
     return v * t / t0 - 3 * K_OVER_Q * t * mp.log(t / t0) - _gap(t0) * t / t0 + _gap(t)
 
 
+@dataclass
+class Flow:
+    """Currents into drain, gate and body, out of the source; `outer`: the given voltages plus the drops in the leads.
+    All counted as in an N channel."""
+
+    id: Num
+    ig: Num
+    ib: Num
+    out: Num
+    outer: tuple[Num, ...]
+
+
 class Jfet:
     """Junction FET: currents into drain and gate as functions of the inner vgs and vgd; N channel."""
 
     def __init__(self, given: dict[str, float], t_c: float = 27.0) -> None:
-        p = {k: mp.mpf(v) for k, v in {**JFET, **given}.items()}
+        p = {k: mp.mpf(v) for k, v in {**JFET, **{n.rstrip("_"): x for n, x in given.items()}}.items()}
         t, t0 = mp.mpf(t_c) + mp.mpf("273.15"), mp.mpf(27) + mp.mpf("273.15")
         self.vt = K_OVER_Q * t
         vt0 = K_OVER_Q * t0
@@ -65,12 +78,18 @@ class Jfet:
         """(drain, gate) current into the inner device."""
         return self.channel(vgs, vgd) - self.gate(vgd), self.gate(vgs) + self.gate(vgd)
 
+    def at(self, vgs: Num, vgd: Num) -> Flow:
+        """Terminal quantities; outer gate-source and gate-drain voltage."""
+        drain, gate = self.terminal(vgs, vgd)
+        outer = (vgs + self.p["rs"] * (drain + gate), vgd - self.p["rd"] * drain)
+        return Flow(id=drain, ig=gate, ib=mp.mpf(0), out=drain + gate, outer=outer)
+
 
 class Mosfet:
     """Level-1 MOSFET: currents into inner drain and body as functions of vgs, vds, vbs; N channel."""
 
     def __init__(self, given: dict[str, float], t_c: float = 27.0) -> None:
-        p = {k: mp.mpf(v) for k, v in {**MOSFET, **given}.items()}
+        p = {k: mp.mpf(v) for k, v in {**MOSFET, **{n.rstrip("_"): x for n, x in given.items()}}.items()}
         t, t0 = mp.mpf(t_c) + mp.mpf("273.15"), mp.mpf(27) + mp.mpf("273.15")
         self.vt = K_OVER_Q * t
         phi, pb = p["phi"], p["pb"]
@@ -110,3 +129,11 @@ class Mosfet:
         """(drain, body) current into the inner device."""
         drain, source = self.diode(vbs - vds), self.diode(vbs)
         return self.channel(vgs, vds, vbs) - drain, drain + source
+
+    def at(self, vgs: Num, vds: Num, vbs: Num) -> Flow:
+        """Terminal quantities; outer gate-source, drain-source and body-source voltage."""
+        drain, body = self.terminal(vgs, vds, vbs)
+        out = drain + body
+        drop = self.p["rs"] * out
+        outer = (vgs + drop, vds + drop + self.p["rd"] * drain, vbs + drop)
+        return Flow(id=drain, ig=mp.mpf(0), ib=body, out=out, outer=outer)

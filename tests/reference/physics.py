@@ -212,6 +212,7 @@ class Diode:
         grow = (t / t0) ** p["xti"] * mp.exp(p["eg"] / self.vt_exact * (t / t0 - 1))
         p["is"], p["isr"] = p["is"] * grow ** (1 / mp.mpf(p["n"])), p["isr"] * grow ** (1 / mp.mpf(p["nr"]))
         p["cjo"], p["vj"] = _moved_junction(p["cjo"], p["vj"], p["m"], t, t0)
+        p["bv"] = p["bv"] * (1 + p["tbv1"] * (t - t0))
         self.exact = p
         self.rough = {k: float(v) for k, v in p.items()}
 
@@ -222,7 +223,7 @@ class Diode:
         ideal = p["is"] * (_exp(vd / (p["n"] * vt)) - 1)
         injected = ideal * _sqrt(p["ikf"] / (p["ikf"] + ideal)) if math.isfinite(p["ikf"]) and ideal > 0 else ideal
         generated = p["isr"] * (_exp(vd / (p["nr"] * vt)) - 1) * ((1 - vd / p["vj"]) ** 2 + 0.005) ** (p["m"] / 2)
-        broken = p["ibv"] * _exp(-(vd + p["bv"]) / vt) if math.isfinite(p["bv"]) else 0
+        broken = p["ibv"] * _exp(-(vd + p["bv"]) / (p["nbv"] * vt)) if math.isfinite(p["bv"]) else 0
         return injected + generated - broken
 
     def outer(self, vd: Num) -> Num:

@@ -1,7 +1,8 @@
 """Sixty circuits from microvolts to 400 V and from picoamperes to 10 A: what the solver must bring to a certificate.
 
 Values are invented. `expect`: net -> (lowest, highest) voltage that the circuit's own arithmetic allows; `helper`: what
-the solver is known to need. Each circuit is one function that fills a bench.
+the solver is known to need; `held`: of a circuit with several rests, nets that, held at ground and let go, leave one
+each. Each circuit is one function that fills a bench.
 """
 
 from __future__ import annotations
@@ -34,6 +35,7 @@ class Entry:
     expect: Mapping[str, Span] = field(default_factory=dict)
     helper: str = "plain"
     rests: int = 1
+    held: tuple[str, ...] = ()
 
     def bench(self, temperature_c: float = 27.0) -> Bench:
         """The filled bench."""
@@ -46,13 +48,13 @@ SIXTY: list[Entry] = []
 
 
 def circuit(
-    helper: str = "plain", rests: int = 1, **expect: Span
+    helper: str = "plain", rests: int = 1, held: tuple[str, ...] = (), **expect: Span
 ) -> Callable[[Callable[[Bench], None]], Callable[[Bench], None]]:
     """Add a function's circuit to the sixty."""
 
     def add(fill: Callable[[Bench], None]) -> Callable[[Bench], None]:
         name = fill.__name__.removeprefix("_")
-        SIXTY.append(Entry(name=name, fill=fill, expect=expect, helper=helper, rests=rests))
+        SIXTY.append(Entry(name=name, fill=fill, expect=expect, helper=helper, rests=rests, held=held))
         return fill
 
     return add
@@ -439,6 +441,38 @@ def _power_amplifier_of_ten(b: Bench) -> None:
     b.c("CF", "g", "0", 100e-6)
 
 
+@circuit(out=(5.0, 10.0))
+def _bootstrapped_output_stage(b: Bench) -> None:
+    """Voltage stage whose collector load is tied to the output by a capacitor; complementary followers; one supply."""
+    b.v("V", "vcc", "0", 15.0)
+    b.r("R1", "vcc", "m", 680.0)
+    b.r("R2", "m", "top", 2.2e3)
+    b.c("CB", "m", "out", 100e-6)
+    b.d("D1", "top", "x", **DIODE)
+    b.d("D2", "x", "low", **DIODE)
+    b.q("Q1", "low", "b", "0", **N)
+    b.q("Q2", "vcc", "top", "e2", **POWER)
+    b.q("Q3", "0", "low", "e3", pnp=True, **POWER)
+    b.r("RE2", "e2", "out", 0.47)
+    b.r("RE3", "e3", "out", 0.47)
+    b.r("RF", "out", "b", 47e3)
+    b.r("RB", "b", "0", 4.7e3)
+    b.c("CO", "out", "load", 1e-3)
+    b.r("RL", "load", "0", 8.0)
+
+
+@circuit(b=(3.0, 7.0))
+def _bootstrapped_darlington_input(b: Bench) -> None:
+    b.v("V", "vcc", "0", 12.0)
+    _bias(b, "1", 220e3, 220e3, "m")
+    b.r("R3", "m", "b", 1e6)
+    b.c("CB", "m", "e", 10e-6)
+    b.q("Q1", "vcc", "b", "n", **N)
+    b.q("Q2", "vcc", "n", "e", **N)
+    b.r("RN", "n", "e", 100e3)
+    b.r("RE", "e", "0", 4.7e3)
+
+
 # --- amplifiers of many ---------------------------------------------------------------------------------------
 @circuit(c2=(1.0, 11.0))
 def _direct_coupled_pair_with_feedback(b: Bench) -> None:
@@ -488,6 +522,42 @@ def _amplifier_of_forty(b: Bench) -> None:
     b.r("RO", "out", "0", 10e3)
 
 
+@circuit(out=(-0.1, 0.1))
+def _operational_amplifier_of_seventeen(b: Bench) -> None:
+    """Darlington-input pair, cascoded mirror load, Wilson current source, level shift, Darlington voltage stage and a
+    protected output, all inside one loop from the output straight to the inverting input."""
+    b.v("VP", "vcc", "0", 15.0)
+    b.v("VN", "vee", "0", -15.0)
+    b.r("RI", "in", "0", 1e3)
+    for side, base in (("p", "in"), ("n", "out")):
+        b.q(f"QA{side}", "vee", base, f"d{side}", pnp=True, **N)
+        b.r(f"RD{side}", "t", f"d{side}", 220e3)
+        b.q(f"QB{side}", f"k{side}", f"d{side}", "t", pnp=True, **N)
+    for side, base in (("p", "kp"), ("n", "kp")):
+        b.q(f"QM{side}", f"k{side}", base, f"e{side}", **N)
+        b.r(f"RM{side}", f"e{side}", "vee", 470.0)
+    b.r("RR", "w", "0", 27e3)
+    b.q("QW1", "w", "x", "vcc", pnp=True, **N)
+    b.q("QW2", "x", "x", "vcc", pnp=True, **N)
+    b.q("QW3", "t", "w", "x", pnp=True, **N)
+    b.q("QS", "s", "x", "vcc", pnp=True, **N)
+    b.q("QV1", "low", "kn", "v", **N)
+    b.r("RV", "v", "vee", 47e3)
+    b.q("QV2", "low", "v", "ev", **N)
+    b.r("RE", "ev", "vee", 47.0)
+    b.q("QX", "s", "y", "low", **N)
+    b.r("RY1", "s", "y", 4.7e3)
+    b.r("RY2", "y", "low", 4.7e3)
+    b.q("QO1", "vcc", "s", "p", **POWER)
+    b.q("QO2", "vee", "low", "q", pnp=True, **POWER)
+    b.r("RO1", "p", "out", 22.0)
+    b.r("RO2", "q", "out", 22.0)
+    b.q("QL1", "s", "p", "out", **N)
+    b.q("QL2", "low", "q", "out", pnp=True, **N)
+    b.c("CC", "kn", "low", 30e-12)
+    b.r("RL", "out", "0", 2e3)
+
+
 @circuit(out=(-1.0, 1.0))
 def _long_tailed_pair_with_mirror_load(b: Bench) -> None:
     b.v("VP", "vcc", "0", 10.0)
@@ -502,7 +572,7 @@ def _long_tailed_pair_with_mirror_load(b: Bench) -> None:
 
 
 # --- latches, triggers, multivibrators ------------------------------------------------------------------------
-@circuit(rests=2)
+@circuit(rests=2, held=("c1", "c2"))
 def _flip_flop(b: Bench) -> None:
     b.v("V", "vcc", "0", 5.0)
     for k, other in ((1, 2), (2, 1)):
@@ -511,10 +581,9 @@ def _flip_flop(b: Bench) -> None:
         b.q(f"Q{k}", f"c{k}", f"b{k}", "0", **N)
 
 
-@circuit(rests=2)
-def _schmitt_pair_between_its_thresholds(b: Bench) -> None:
+def _schmitt(b: Bench, volts: float) -> None:
     b.v("V", "vcc", "0", 12.0)
-    b.v("VI", "in", "0", 2.9)
+    b.v("VI", "in", "0", volts)
     b.r("RI", "in", "b1", 10e3)
     b.q("Q1", "c1", "b1", "e", **N)
     b.q("Q2", "c2", "b2", "e", **N)
@@ -523,20 +592,29 @@ def _schmitt_pair_between_its_thresholds(b: Bench) -> None:
     b.r("RX", "c1", "b2", 4.7e3)
     b.r("RY", "b2", "0", 10e3)
     b.r("RE", "e", "0", 470.0)
+
+
+@circuit(rests=2, held=("b1", "b2"))
+def _schmitt_pair_between_its_thresholds(b: Bench) -> None:
+    _schmitt(b, 2.9)
 
 
 @circuit(c2=(2.0, 6.0))
 def _schmitt_pair_below(b: Bench) -> None:
-    b.v("V", "vcc", "0", 12.0)
-    b.v("VI", "in", "0", 0.5)
-    b.r("RI", "in", "b1", 10e3)
-    b.q("Q1", "c1", "b1", "e", **N)
-    b.q("Q2", "c2", "b2", "e", **N)
-    b.r("RC1", "vcc", "c1", 4.7e3)
-    b.r("RC2", "vcc", "c2", 1e3)
-    b.r("RX", "c1", "b2", 4.7e3)
-    b.r("RY", "b2", "0", 10e3)
-    b.r("RE", "e", "0", 470.0)
+    _schmitt(b, 0.5)
+
+
+@circuit(c2=(11.9, 12.0))
+def _schmitt_pair_above(b: Bench) -> None:
+    _schmitt(b, 6.0)
+
+
+@circuit(c1=(0.0, 0.3), c2=(3.5, 5.0))
+def _flip_flop_held_set(b: Bench) -> None:
+    _flip_flop(b)
+    b.r("RS", "vcc", "b1", 4.7e3)
+    b.q("Q3", "b2", "s", "0", **N)
+    b.r("R3", "vcc", "s", 10e3)
 
 
 @circuit(c1=(0.0, 0.4), c2=(0.0, 0.4))
@@ -549,7 +627,7 @@ def _multivibrator_with_both_on(b: Bench) -> None:
         b.q(f"Q{k}", f"c{k}", f"b{k}", "0", **N)
 
 
-@circuit(rests=2)
+@circuit(rests=2, held=("g", "b"))
 def _thyristor_pair(b: Bench) -> None:
     b.v("V", "vcc", "0", 12.0)
     b.r("RA", "vcc", "a", 1e3)
@@ -635,6 +713,30 @@ def _high_side_pmos_switch_with_npn_driver(b: Bench) -> None:
     b.r("RL", "load", "0", 12.0)
 
 
+@circuit(load=(4.7, 5.0))
+def _high_side_pnp_switch(b: Bench) -> None:
+    b.v("V", "vcc", "0", 5.0)
+    b.v("VL", "in", "0", 3.3)
+    b.r("R1", "in", "b", 4.7e3)
+    b.q("Q1", "c", "b", "0", **N)
+    b.r("R2", "c", "g", 470.0)
+    b.r("R3", "g", "vcc", 4.7e3)
+    b.q("Q2", "load", "g", "vcc", pnp=True, **POWER)
+    b.r("RL", "load", "0", 47.0)
+
+
+@circuit(load=(0.0, 1e-3))
+def _high_side_pnp_switch_off(b: Bench) -> None:
+    b.v("V", "vcc", "0", 5.0)
+    b.v("VL", "in", "0", 0.0)
+    b.r("R1", "in", "b", 4.7e3)
+    b.q("Q1", "c", "b", "0", **N)
+    b.r("R2", "c", "g", 470.0)
+    b.r("R3", "g", "vcc", 4.7e3)
+    b.q("Q2", "load", "g", "vcc", pnp=True, **POWER)
+    b.r("RL", "load", "0", 47.0)
+
+
 @circuit(out=(11.0, 12.0))
 def _reverse_polarity_protection(b: Bench) -> None:
     b.v("V", "in", "0", 12.0)
@@ -682,7 +784,7 @@ def _complementary_inverter_biased_by_itself(b: Bench) -> None:
     b.r("RF", "out", "in", 1e7)
 
 
-@circuit(rests=2)
+@circuit(rests=2, held=("o1", "o2"))
 def _latch_of_two_inverters(b: Bench) -> None:
     b.v("V", "vcc", "0", 5.0)
     for k, other in ((1, 2), (2, 1)):
