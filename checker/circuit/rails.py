@@ -155,8 +155,11 @@ def _nameless(draft: Draft) -> None:
 
 
 def _is_fed(draft: Draft, net: str) -> bool:
-    """Whether a net of unknown voltage hangs on a known one through a coil or a supply-filter resistor."""
+    """Whether a net of unknown voltage hangs on a known one through a coil or a supply-filter resistor, or on a source
+    with a resistance of its own."""
     for table, name in draft.elements_on(net):
+        if table == "voltages" and name not in draft.links:
+            return True
         wire = draft.table(table)[name]
         small = table == "inductors" or (table == "resistors" and wire.value <= _FILTER_OHM)
         if small and wire.other(net) != draft.ground and draft.known_volts(wire.other(net)) is not None:

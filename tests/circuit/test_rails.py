@@ -8,6 +8,7 @@ from checker.circuit.regulators import regulated_volts
 from checker.intent.types import Intent, RailIntent
 from checker.trouble import InputTrouble
 from tests.circuit.make import SAID, assumed, ends_of, kicad, kicad_part, resistor, spice, spice_part, value_of, volts
+from tests.whole import set_up_from
 
 
 @pytest.mark.parametrize(
@@ -166,3 +167,11 @@ def test_a_fixed_regulator_makes_a_rail_if_its_common_pin_is_on_ground() -> None
     assert assumed(circuit, "VCC taken as 5 V, the output of U1 (L7805)")
     lifted = kicad_part("U1", "Regulator_Linear:L7805", "L7805", pins | {"2": "x|GND|power_in"})
     assert kicad(lifted, resistor("R1", "VCC", "GND")).rails == ()
+
+
+@pytest.mark.parametrize(("line", "volts"), [("V2 0 -V 15 Rser=8", -15.0), ("V2 -V 0 -15 Rser=8", -15.0)])
+def test_a_named_supply_behind_the_resistance_of_its_source(line: str, volts: float) -> None:
+    """Its name says no volts, and need not: the source feeds it."""
+    setup = set_up_from(f"{line}\nR1 -V 0 1g\nR2 -V B 1meg\nR3 B 0 1meg\nQ1 0 B E QN\nRE E -V 10k\n")
+    assert not setup.circuit.unknowns
+    assert setup.point.v_v[0, setup.circuit.node("-V")] == pytest.approx(volts, rel=1e-3)
