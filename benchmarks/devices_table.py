@@ -2,8 +2,8 @@
 
     python benchmarks/devices_table.py FOLDER [COUNT [SEED]]     COUNT rows (50) drawn with SEED (1), totals last
 
-A row: file, line, reference, value and symbol as written; kind, terminals by net, where the kind comes from; current at
-rest, or the reason why there is none. The totals count all transistors of the folder: certified, with a reason, neither.
+A row: file, line, reference, value and symbol as written; kind, terminals, where the kind comes from; current at rest,
+or the reason why there is none. The totals count all transistors of the folder: certified, with a reason, neither.
 """
 
 from __future__ import annotations

@@ -11,6 +11,7 @@ import checker.measure.capacitors
 import checker.measure.corners
 import checker.measure.gains
 import checker.measure.ports
+import checker.measure.slips
 import checker.measure.small_signal
 import checker.measure.steadiness
 import checker.measure.terminals  # noqa: F401
@@ -21,8 +22,10 @@ from checker.measure.bias import region_words
 from checker.measure.capacitors import CapacitorUse, capacitor_uses
 from checker.measure.ports import gain_subject
 from checker.measure.registry import REGISTRY, Subject
+from checker.measure.slips import LOST_DB, larger_would_pass, slips
 from checker.measure.terminals import rule_of_thumb
 from checker.quantity.figure import Figure
+from checker.quantity.show import show, show_value
 from checker.stages.region import REGIONS
 from checker.stages.terminals import NUMBER, TERMS, Terms
 from checker.stages.types import Recognition, Stage
@@ -124,6 +127,28 @@ class Board:
         r = self.circuit.resistors
         names = (r.names[j] for j in np.flatnonzero((r.nodes == node).any(axis=1)).tolist())
         return tuple(sorted(name for name in names if name in self.circuit.parts))
+
+    def slip(self, stage: str) -> tuple[str, str]:
+        """The part whose value is off by a unit, as the stage's rest tells, and what would set it right, in a sentence;
+        both empty where there is none."""
+        slip = slips(self.bench).get(stage)
+        fact = self.bench.facts.get(slip.part) if slip is not None else None
+        if slip is None or fact is None or fact.value is None:
+            return "", ""
+        written, meant = (show_value(fact.value.si * factor, fact.value.unit) for factor in (1.0, 10.0**slip.decades))
+        across, _, current = self.terms(stage).symbols
+        rest = f"{current} {show(slip.current_a, 'A')} and {across} {show(slip.drop_v, 'V')}"
+        words = f"{slip.part} is {written}, and {stage} rests wrong; with {meant} it would rest at {rest}"
+        return slip.part, f"{words}: a slip of the unit?"
+
+    def capacitor_slip(self, part: str) -> str:
+        """What a capacitor that loses nearly all may have been meant to be, in a sentence; empty for no slip."""
+        loss = self.ask("own_loss_db", part).values[0]
+        fact = self.bench.facts.get(part)
+        if not np.any(loss > LOST_DB) or fact is None or fact.value is None or not larger_would_pass(self.bench, part):
+            return ""
+        written, meant = show_value(fact.value.si, "F"), show_value(1e3 * fact.value.si, "F")
+        return f"nothing of the band's edge passes; {meant} for {written} would pass it: a slip of the unit?"
 
     def terms(self, stage: str) -> Terms:
         """How the terminals and rest figures of a stage's device are called."""

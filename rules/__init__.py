@@ -16,6 +16,7 @@ CATALOGUE: tuple[str, ...] = (
     "rules.pins:PackageMismatch",
     "rules.pins:PartPolarity",
     "rules.pins:PinOrder",
+    "rules.slips:DecadeSlip",
     "rules.stress:Dissipation",
     "rules.stress:JunctionTemperature",
     "rules.targets:TargetMissed",

@@ -25,6 +25,7 @@ def _loss(board: Board, use: CapacitorUse, limits: Mapping[str, Bound], message:
             check=require(board.ask("own_loss_db", use.part), "at most", limits["loss_db"]),
             subject=(use.part, use.stage),
             message=message,
+            effect=board.capacitor_slip(use.part),
             levers=(Lever(part=use.part, property="c_f", direction="up"),),
         )
     ]

@@ -63,7 +63,7 @@ _plain("forward_v", "vds_v", "V", "drain to source as drawn, times -1 for P chan
 _plain("power_w", "power_w", "W", "dissipation at rest", "sum of terminal currents times voltages")
 
 
-def _kept(bench: Bench, key: str) -> FloatArray:
+def kept(bench: Bench, key: str) -> FloatArray:
     """Region codes and headroom of all devices, computed once."""
     if key not in bench.kept:
         bench.kept[key] = region_codes(bench.point) if key == "regions" else headroom_v(bench.point)
@@ -78,7 +78,7 @@ def _kept(bench: Bench, key: str) -> FloatArray:
 def region_code(bench: Bench, stage: str) -> Figure:
     """Region as an index into `REGIONS`, so that it can be compared over scenarios."""
     require_bias(bench, stage)
-    codes = _kept(bench, "regions")[:, bench.stage(stage).index]
+    codes = kept(bench, "regions")[:, bench.stage(stage).index]
     if REGIONS[int(codes[0])] == "cut-off":
         # At rest means with everything connected: an open connector leaves that undecided.
         require_not_fed(bench, stage, reach(bench, stage))
@@ -106,7 +106,7 @@ def _require_off_in_all_states(bench: Bench, stage: str, codes: FloatArray) -> N
 
 def region_words(bench: Bench, stage: str, scenario: int) -> str:
     """The region in words; empty without bias."""
-    code = _kept(bench, "regions")[scenario, bench.stage(stage).index]
+    code = kept(bench, "regions")[scenario, bench.stage(stage).index]
     return REGIONS[int(code)] if np.isfinite(code) else ""
 
 
@@ -114,7 +114,7 @@ def region_words(bench: Bench, stage: str, scenario: int) -> str:
 def headroom(bench: Bench, stage: str) -> Figure:
     """VBC at the edge of saturation minus VBC; |VDS| of the channel minus the overdrive."""
     require_bias(bench, stage)
-    values = _kept(bench, "headroom")[:, bench.stage(stage).index]
+    values = kept(bench, "headroom")[:, bench.stage(stage).index]
     formula = "|VDS| - (VGS - VTH)"
     if bench.family(stage) == "bipolar":
         formula = "VBC where IC/IB is 0.9 of its value at VBC = 0, minus VBC"

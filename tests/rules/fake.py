@@ -102,6 +102,14 @@ class FakeBoard:
         """The uses given."""
         return self.uses
 
+    def slip(self, _stage: str) -> tuple[str, str]:
+        """No slip."""
+        return "", ""
+
+    def capacitor_slip(self, _part: str) -> str:
+        """No slip."""
+        return ""
+
     def bias_parts(self, stage: str) -> tuple[str, ...]:  # noqa: ARG002
         """The divider."""
         return ("R2", "R1")

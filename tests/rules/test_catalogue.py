@@ -20,6 +20,7 @@ IDS_FOR_EVER = {
     "bypass-loss",
     "coupling-loss",
     "cut-off-at-rest",
+    "decade-slip",
     "dissipation",
     "input-mismatch",
     "junction-temperature",

@@ -49,7 +49,8 @@ def examined(rule: str, kind: str) -> Examination:
 
 def evidence(rule: str, kind: str) -> list[Judged]:
     """The rule's own evidence about the expected subject."""
-    first = expected(rule)["subject"]
+    table = expected(rule)
+    first = table[kind].get("subject", table["subject"])
     return [each for each in examined(rule, kind).judged if each.rule.id == rule and each.evidence.subject[0] == first]
 
 
