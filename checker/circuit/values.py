@@ -33,9 +33,11 @@ def part_value(draft: Draft, part: Part, unit: str) -> Value | None:
     intended = None
     if said is not None:
         intended = {"ohm": said.resistance_ohm, "F": said.capacitance_f, "H": said.inductance_h}[unit]
-    found = written_value(part, unit) if intended is None else (intended, None)
+    tapered = unit == "ohm" and part.number is None and part.letter.upper() in _POTENTIOMETERS and "%" not in part.value
+    found = (intended, None) if intended is not None else None if tapered else written_value(part, unit)
     if found is None:
-        found = _workshop(draft, part, unit)
+        # The letter behind a potentiometer's value is its taper, no tolerance.
+        found = _workshop(draft, part, unit) or (written_value(part, unit) if tapered else None)
     if found is None:
         middle = _middle(part.value, unit)
         if middle is not None:
@@ -63,8 +65,7 @@ def _workshop(draft: Draft, part: Part, unit: str) -> tuple[float, float | None]
         if wound is not None:
             draft.notes.add("values", f"turns on a {wound[1]} core, by its inductance factor (from memory)", part.ref)
             return wound[0], None
-        coded = coded_henry(part.value)
-        return None if coded is None else (coded, None)
+        return coded_henry(part.value)
     if unit == "ohm" and part.letter.upper() in _POTENTIOMETERS:
         ohm = tapered_ohm(part.value)
         return None if ohm is None else (ohm, None)
@@ -90,7 +91,8 @@ def written_value(part: Part, unit: str) -> tuple[float, float | None] | None:
     """(SI value, tolerance) as the netlist writes it."""
     if part.number is not None:
         sound = part.number == 0.0 or SMALLEST <= abs(part.number) <= LARGEST
-        return (part.number, part.params.get("tol")) if sound else None
+        percent = part.params.get("tol")
+        return (part.number, None if percent is None else percent / 100.0) if sound else None
     text = part.fields.get("Spice_Model", "") if part.fields.get("Spice_Primitive") else part.value
     for candidate in dict.fromkeys((text, part.value)):
         try:
