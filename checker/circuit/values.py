@@ -22,6 +22,9 @@ _RANGE: Final = lazy(
     r"(?P<low>\d+(?:\.\d+)?\s*[a-zµ]{0,2})\s*(?:-|\.\.|to)\s*(?P<high>\d+(?:\.\d+)?)\s*(?P<unit>[a-zµΩ]{0,4})",
     re.IGNORECASE,
 )
+_DOUBTFUL_OHM: Final = 0.1
+_MILLI: Final = lazy(r"\d[mM](?![A-Za-z])")
+"""What most often comes of a mega written in the other dialect."""
 _POTENTIOMETERS: Final = frozenset({"RV", "VR", "P", "POT", "TR"})
 NAMES: Final = {"ohm": "resistors", "F": "capacitors", "H": "inductors"}
 
@@ -46,6 +49,9 @@ def part_value(draft: Draft, part: Part, unit: str) -> Value | None:
     if found is None or not math.isfinite(found[0]) or found[0] < 0.0:
         return None
     si, tolerance = found
+    if unit == "ohm" and intended is None and 0.0 < si < _DOUBTFUL_OHM and _MILLI.search(part.value):
+        text = f"{part.value} read as milliohms; megohms are 1Meg in SPICE text and 1M on a schematic"
+        draft.notes.add("values", text, part.ref)
     if said is not None and said.tolerance is not None:
         tolerance = said.tolerance
     assumed = tolerance is None and si > 0.0

@@ -80,6 +80,18 @@ def test_parallel_count() -> None:
     assert (value_of(circuit, "R1"), value_of(circuit, "C1")) == (25.0, 4e-9)
 
 
+def test_a_mega_that_became_a_milli_is_told() -> None:
+    assert assumed(spice(spice_part("R1", "a 0", 1e-3, text="1M")), "R1: 1M read as milliohms")
+    assert assumed(kicad(resistor("R1", "a", "GND", "3.3m")), "R1: 3.3m read as milliohms")
+    assert not assumed(kicad(resistor("R1", "a", "GND", "1M"), resistor("R2", "a", "GND", "5mOhm")), "milliohms")
+
+
+def test_pairs_that_enter_no_equation_are_told() -> None:
+    circuit = spice(spice_part("R1", "a 0", 1e3, params={"tc1": 1e-3, "m": 2.0}), spice_part("R2", "a 0", 1e3))
+    assert assumed(circuit, "R1: written and not used: tc1")
+    assert not assumed(circuit, "R2: written")
+
+
 def test_currents_in_parallel_add() -> None:
     circuit = spice(spice_part("I1", "a 0", source=Source(dc=1e-3), params={"m": 3.0}), spice_part("R1", "a 0", 1e3))
     assert value_of(circuit, "I1") == pytest.approx(3e-3)
