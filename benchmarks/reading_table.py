@@ -3,8 +3,8 @@
     python benchmarks/reading_table.py FOLDER          the table
     python benchmarks/reading_table.py FOLDER -v       and, below each file, what was not understood
 
-Columns: parts and nets; transistors and diodes by kind; values that are no quantity; lines and parts not understood;
-remarks. Nothing is solved.
+Columns: parts and nets; transistors and diodes by kind (each of a dual counts); parts of these kinds that lack a model
+or a pin order; values that are no quantity; lines and parts not understood; remarks. Nothing is solved.
 """
 
 from __future__ import annotations
@@ -20,7 +20,8 @@ from checker.netlist.read import read_netlist
 from checker.netlist.types import Netlist
 from checker.trouble import InputTrouble
 
-COLUMNS = ("parts", "nets", "bipolar", "jfet", "mosfet", "diode", "values", "lines", "remarks")
+COLUMNS = ("parts", "nets", "bipolar", "jfet", "mosfet", "diode", "lacking", "values", "lines", "remarks")
+_DEVICES = ("bipolar", "fet", "diode")
 
 
 def counted(netlist: Netlist, circuit: Circuit) -> tuple[Counter[str], list[str]]:
@@ -28,10 +29,15 @@ def counted(netlist: Netlist, circuit: Circuit) -> tuple[Counter[str], list[str]
     values = [u for u in circuit.unknowns if u.datum.startswith("value of")]
     lost = [remark for remark in netlist.remarks if remark.lost]
     blind = [part for part in netlist.parts if part.unknown]
+    placed = {name.rsplit(".", 1)[0] for table in circuit.devices.values() for name in table.names}
+    placed |= {name for table in circuit.devices.values() for name in table.names}
+    known = {ref for ref, fact in circuit.parts.items() if fact.kind in _DEVICES}
+    lacking = sorted(known - placed - {part.ref for part in blind})
     found = Counter(parts=len(netlist.parts), nets=len(netlist.nets), remarks=len(netlist.remarks) - len(lost))
     found.update({kind: len(table.names) for kind, table in circuit.devices.items()})
-    found.update(values=len(values), lines=len(lost) + len(blind))
+    found.update(lacking=len(lacking), values=len(values), lines=len(lost) + len(blind))
     told = [f"{u.ref}: {u.datum}; {u.supply}" for u in values]
+    told += [f"{u.ref}: {u.datum}; {u.supply}" for u in circuit.unknowns if u.ref in lacking]
     told += [f"line {remark.origin.line}: {remark.text}" for remark in lost]
     told += [f"line {part.origin.line}: {part.ref}: {part.unknown}" for part in blind]
     return found, told

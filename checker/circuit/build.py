@@ -91,6 +91,10 @@ _FACT_KINDS: Final[dict[Kind, PartKind]] = {
     "battery": "source",
 }
 """Kinds that an export which the reader did not understand leaves unusable."""
+_ENTER: Final = frozenset(
+    {"m", "area", "tol", "rser", "lser", "rpar", "cpar", "w", "l", "r", "c", "value", "val", "ic", "off"}
+)
+"""Pairs of SPICE elements that are used, and two that only start a simulation."""
 _VALUED: Final[tuple[Kind, ...]] = ("resistor", "capacitor", "inductor", "potentiometer", "array")
 """Kinds whose adder takes the intent's value itself."""
 
@@ -111,6 +115,8 @@ def build_circuit(netlist: Netlist, intent: Intent, own_cards: Mapping[str, Card
     draft.touches.update(draft.net(pin.net) for part in netlist.parts for pin in part.pins)
     _check_names(draft)
     for kind, part in _sorted(netlist, draft):
+        if part.params and kind in _FACT_KINDS:
+            _tell_unused(draft, part)
         if part.unknown and kind in _FACT_KINDS:
             leave_out(
                 draft, part, _FACT_KINDS[kind], f"what {part.ref} is", part.unknown, blocks_dc=kind != "capacitor"
@@ -125,6 +131,13 @@ def build_circuit(netlist: Netlist, intent: Intent, own_cards: Mapping[str, Card
         _no_ground(draft)
     settle(draft)
     return assemble(draft, _temperature_k(netlist, intent))
+
+
+def _tell_unused(draft: Draft, part: Part) -> None:
+    """Pairs behind an element that enter no equation."""
+    unused = sorted(part.params.keys() - _ENTER)
+    if unused:
+        draft.notes.add("parts", f"written and not used: {', '.join(unused)}", part.ref)
 
 
 def _add_four_pole(draft: Draft, part: Part) -> None:

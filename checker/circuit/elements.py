@@ -72,7 +72,7 @@ def add_voltage(draft: Draft, part: Part) -> None:
 
 
 def add_current(draft: Draft, part: Part) -> None:
-    """An independent current source, current from its first pin through itself to its second."""
+    """An independent current source, current from its first pin through itself to its second; `m` in parallel."""
     ends = two_ends(part)
     source = part.source
     amps = source.dc if source is not None else _plain_number(part, "A")
@@ -82,7 +82,7 @@ def add_current(draft: Draft, part: Part) -> None:
     if ends is None or amps is None or abs(amps) > MOST_SOURCE:
         draft.loose(part.ref, [pin.net for pin in part.pins], f"amperes of {part.ref}", "a DC value")
         return
-    draft.wire("currents", part.ref, *ends, amps)
+    draft.wire("currents", part.ref, *ends, amps * part.params.get("m", 1.0))
     if source is not None and (source.ac is not None or source.waveform):
         draft.signals.add(part.ref)
 

@@ -54,13 +54,15 @@ def around(draft: Draft, part: Part, kind: str, si: float, ends: tuple[str, str]
     for table, name, value in across:
         if value:
             draft.wire(table, f"{part.ref}.{name}", *ends, value)  # type: ignore[arg-type]
-    first, second = ends
+    # The far side of a source on ground gets them, so that the source itself still stands on ground.
+    turned = kind == "voltage" and draft.net(ends[0]) == draft.ground
+    end, other = reversed(ends) if turned else ends
     for table, name, value in chain:
         if value:
             inner = f"{part.ref}.n" if name == "rser" else f"{part.ref}.m"
-            draft.wire(table, f"{part.ref}.{name}", first, inner, value)  # type: ignore[arg-type]
-            first = inner
-    return first, second
+            draft.wire(table, f"{part.ref}.{name}", end, inner, value)  # type: ignore[arg-type]
+            end = inner
+    return (other, end) if turned else (end, other)
 
 
 def declared(draft: Draft, part: Part, kind: str) -> Declared:

@@ -75,8 +75,12 @@ def kicad_terminals(part: Part, kind: str, card: Card | None, notes: Notes) -> t
 
 
 def _pads_of_card(part: Part, card: Card, notes: Notes) -> Mapping[str, str] | None:
-    """The card's pads in the part's footprint; without a footprint, those of the only package it comes in."""
-    if part.footprint or len(card.packages) != 1:
+    """The card's pads in the part's footprint; without a footprint, those of the only package it comes in.
+
+    A part whose symbol is not in the export has pins without names: its author may have numbered them in any order, so
+    without a footprint nothing says that the numbers are pads.
+    """
+    if part.footprint or len(card.packages) != 1 or not any(pin.function for pin in part.pins):
         return pin_map(card, part.footprint)
     ((package, pads),) = card.packages.items()
     notes.add("pins", f"no footprint; pads as in {package}, the only package of its card", part.ref)

@@ -22,6 +22,9 @@ _RANGE: Final = lazy(
     r"(?P<low>\d+(?:\.\d+)?\s*[a-zµ]{0,2})\s*(?:-|\.\.|to)\s*(?P<high>\d+(?:\.\d+)?)\s*(?P<unit>[a-zµΩ]{0,4})",
     re.IGNORECASE,
 )
+_DOUBTFUL_OHM: Final = 0.1
+_MILLI: Final = lazy(r"\d[mM](?![A-Za-z])")
+"""What most often comes of a mega written in the other dialect."""
 _POTENTIOMETERS: Final = frozenset({"RV", "VR", "P", "POT", "TR"})
 NAMES: Final = {"ohm": "resistors", "F": "capacitors", "H": "inductors"}
 
@@ -33,9 +36,11 @@ def part_value(draft: Draft, part: Part, unit: str) -> Value | None:
     intended = None
     if said is not None:
         intended = {"ohm": said.resistance_ohm, "F": said.capacitance_f, "H": said.inductance_h}[unit]
-    found = written_value(part, unit) if intended is None else (intended, None)
+    tapered = unit == "ohm" and part.number is None and part.letter.upper() in _POTENTIOMETERS and "%" not in part.value
+    found = (intended, None) if intended is not None else None if tapered else written_value(part, unit)
     if found is None:
-        found = _workshop(draft, part, unit)
+        # The letter behind a potentiometer's value is its taper, no tolerance.
+        found = _workshop(draft, part, unit) or (written_value(part, unit) if tapered else None)
     if found is None:
         ends = _ends(part.value, unit)
         if ends is not None:
@@ -46,6 +51,9 @@ def part_value(draft: Draft, part: Part, unit: str) -> Value | None:
     if found is None or not math.isfinite(found[0]) or found[0] < 0.0:
         return None
     si, tolerance = found
+    if unit == "ohm" and intended is None and 0.0 < si < _DOUBTFUL_OHM and _MILLI.search(part.value):
+        text = f"{part.value} read as milliohms; megohms are 1Meg in SPICE text and 1M on a schematic"
+        draft.notes.add("values", text, part.ref)
     if said is not None and said.tolerance is not None:
         tolerance = said.tolerance
     assumed = tolerance is None and si > 0.0
@@ -65,8 +73,7 @@ def _workshop(draft: Draft, part: Part, unit: str) -> tuple[float, float | None]
         if wound is not None:
             draft.notes.add("values", f"turns on a {wound[1]} core, by its inductance factor (from memory)", part.ref)
             return wound[0], None
-        coded = coded_henry(part.value)
-        return None if coded is None else (coded, None)
+        return coded_henry(part.value)
     if unit == "ohm" and part.letter.upper() in _POTENTIOMETERS:
         ohm = tapered_ohm(part.value)
         return None if ohm is None else (ohm, None)
@@ -92,7 +99,8 @@ def written_value(part: Part, unit: str) -> tuple[float, float | None] | None:
     """(SI value, tolerance) as the netlist writes it."""
     if part.number is not None:
         sound = part.number == 0.0 or SMALLEST <= abs(part.number) <= LARGEST
-        return (part.number, part.params.get("tol")) if sound else None
+        percent = part.params.get("tol")
+        return (part.number, None if percent is None else percent / 100.0) if sound else None
     text = part.fields.get("Spice_Model", "") if part.fields.get("Spice_Primitive") else part.value
     for candidate in dict.fromkeys((text, part.value)):
         try:

@@ -6,6 +6,7 @@ import re
 from typing import Final
 
 from checker.pattern import lazy
+from checker.quantity.codes import tolerance_of_letter
 from checker.quantity.parse import parse_engineering
 from checker.trouble import NotAQuantity
 
@@ -62,7 +63,11 @@ def tapered_ohm(text: str) -> float | None:
 _VALUE: Final = lazy(r"\d+(?:[.,]\d+)?[kKMR]\d*")
 
 
-def coded_henry(text: str) -> float | None:
-    """Inductance of a three-digit code with its tolerance letter: 472K is 47e2 uH (EIA code, common practice)."""
+def coded_henry(text: str) -> tuple[float, float | None] | None:
+    """(inductance [H], tolerance) of a three-digit code with its letter: 472K is 47e2 uH, 10 % (EIA code, common
+    practice; letters of IEC 60062)."""
     found = _EIA_HENRY.fullmatch(text.strip())
-    return None if found is None else float(f"{found[1]}e{found[2]}") * 1e-6
+    if found is None:
+        return None
+    henry = float(f"{found[1]}e{int(found[2]) - 6}")
+    return henry, tolerance_of_letter(found[3], henry, "H")

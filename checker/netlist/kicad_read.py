@@ -243,5 +243,6 @@ def _doubled_pins(parts: list[Part]) -> list[Remark]:
         numbers = Counter(pin.number for pin in part.pins)
         for number in sorted(number for number, count in numbers.items() if count > 1):
             text = f"pin {number} of {part.ref} is on {numbers[number]} nets at once"
-            remarks.append(Remark(text=text, origin=part.origin, parts=(part.ref,)))
+            nets = tuple(pin.net for pin in part.pins if pin.number == number)
+            remarks.append(Remark(text=text, origin=part.origin, parts=(part.ref,), lost=True, nets=nets))
     return remarks

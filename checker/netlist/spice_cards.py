@@ -113,7 +113,7 @@ class CardReader:
     def param(self, card: Card, rest: str) -> None:
         pairs = split_assignments(rest)
         if not pairs:
-            self.remark(card, "a .param card without a parameter is passed over")
+            self.deck.remarks.append(card.lost("a .param card without a parameter is passed over"))
         for name, text in pairs:
             self.open[-1].params[name] = text
             self.open[-1].param_cards[name] = card
@@ -121,7 +121,7 @@ class CardReader:
     def model(self, card: Card, rest: str) -> None:
         name = rest.split(None, 1)[0].lower() if rest else ""
         if not name:
-            self.remark(card, "a .model card without a name is passed over")
+            self.deck.remarks.append(card.lost("a .model card without a name is passed over"))
         elif name in self.open[-1].models and self.open[-1].models[name].text != card.text:
             first = self.open[-1].models[name]
             self.remark(card, f"a second model {name}: the first one, line {first.line} of {first.file}, is used")
@@ -138,7 +138,8 @@ class CardReader:
             defaults=dict(words.named),
         )
         if not name:
-            self.remark(card, "a .subckt card without a name is passed over with all it holds")
+            text = "a .subckt card without a name is passed over with all it holds"
+            self.deck.remarks.append(card.lost(text))
         elif name.lower() in self.open[-1].subcircuits:
             self.remark(card, f"a second subcircuit {name[:40]}: the first one is used")
         else:
@@ -157,7 +158,8 @@ class CardReader:
         """Close what the file left open."""
         for definition in self.open[1:]:
             if definition.card is not None:
-                self.remark(definition.card, f"the subcircuit {definition.name[:40]} has no .ends")
+                text = f"the subcircuit {definition.name[:40]} has no .ends: all that follows it is taken for its own"
+                self.deck.remarks.append(definition.card.lost(text, everywhere=True))
         del self.open[1:]
 
     def global_nets(self, _card: Card, rest: str) -> None:
@@ -168,7 +170,7 @@ class CardReader:
         try:
             self.deck.temperature_c = parse_spice_number(words[0] if words else "")
         except NotAQuantity as error:
-            self.remark(card, f"the temperature is not understood: {error}")
+            self.deck.remarks.append(card.lost(f"the temperature is not understood: {error}", everywhere=True))
         if len(words) > 1:
             self.remark(card, "of several temperatures the first is used")
 

@@ -19,7 +19,7 @@ from checker.shape import frozen
 from checker.trouble import NotAQuantity
 
 GROUND = "0"
-_GROUND_NAMES = frozenset({"0", "gnd", "gnd!"})
+GROUND_NAMES = frozenset({"0", "gnd", "gnd!"})
 
 
 @frozen
@@ -48,18 +48,20 @@ class Frame:
 class Expansion:
     """The growing result. `nets` by key; `models` by lower-case name."""
 
-    def __init__(self, deck: Deck, limits: ReadLimits) -> None:
+    def __init__(self, deck: Deck, limits: ReadLimits, *, pads: bool = False) -> None:
         self.deck = deck
+        self.pads = pads
+        """Whether the file lists the pads and values of a schematic."""
         self.limits = limits
         self.parts: list[Part] = []
         self.nets: dict[str, Net] = {}
         self.models: dict[str, Model] = {}
-        self.remarks: list[Remark] = []
         self.expanded = 0
         self._spelling: dict[str, str] = {}
         self._card: Card | None = None
         """The card at work, for the message of an exceeded limit."""
-        self._said: set[tuple[str, str, int]] = set()
+        self._said: dict[tuple[str, str, int], tuple[Remark, dict[str, None]]] = {}
+        """What was remarked, by text and place, with the nets of every instance."""
 
     def run(self) -> None:
         """Expand the board. Raises `InputTrouble` where a limit is exceeded."""
@@ -101,9 +103,12 @@ class Expansion:
     def say(self, remark: Remark) -> None:
         """A remark, once a place however often the subcircuit is used."""
         key = (remark.text, remark.origin.file, remark.origin.line)
-        if key not in self._said:
-            self._said.add(key)
-            self.remarks.append(remark)
+        _, nets = self._said.setdefault(key, (remark, {}))
+        nets.update(dict.fromkeys(remark.nets))
+
+    def remarks(self) -> list[Remark]:
+        """All remarks, in the order of their first instance."""
+        return [replace(remark, nets=tuple(nets)) for remark, nets in self._said.values()]
 
     def fill(self, frame: Frame) -> None:
         for element in frame.definition.elements:
@@ -125,7 +130,9 @@ class Expansion:
             part = part_of(element, _At(self, frame, element))
             if part is None:
                 text = f"the line {element.card.text[:60]!r} has too few words for a part and is passed over"
-                self.say(element.card.lost(text))
+                words = element.words.positional[1:]
+                nets = tuple(self.key(frame, word) for word in words)
+                self.say(replace(element.card.lost(text), nets=nets))
             else:
                 self.parts.append(part)
 
@@ -180,7 +187,9 @@ class Expansion:
             try:
                 value = place.number(text)
             except NotAQuantity as error:
-                self.say(element.card.remark(f"{name[:40]} is passed over: {error}", place.ref(element.name)))
+                remark = element.card.remark(f"{name[:40]} is passed over: {error}", place.ref(element.name))
+                nets = tuple(place.net(node) for node in element.words.positional[1:-1] if node != "?")
+                self.say(replace(remark, lost=True, nets=nets))
                 continue
             if name == "m" and "m" not in definition.defaults:
                 multiplier = value
@@ -193,16 +202,21 @@ class Expansion:
         lower = name.lower()
         if lower in frame.ports:
             return frame.ports[lower]
-        if lower in _GROUND_NAMES:
-            key = GROUND
-        elif lower in self.deck.global_nets:
-            key = self._spelling.setdefault(lower, name)
-        else:
-            full = frame.prefix + name
-            key = self._spelling.setdefault(full.lower(), full)
+        key = self.key(frame, name)
+        self._spelling.setdefault(key.lower(), key)
         if key not in self.nets:
             self.nets[key] = Net(key=key, name=name if key == GROUND else key)
         return key
+
+    def key(self, frame: Frame, name: str) -> str:
+        """The key a node name has or would have in `frame`."""
+        lower = name.lower()
+        if lower in frame.ports:
+            return frame.ports[lower]
+        if lower in GROUND_NAMES:
+            return GROUND
+        full = name if lower in self.deck.global_nets else frame.prefix + name
+        return self._spelling.get(full.lower(), full)
 
     def model(self, frame: Frame, name: str) -> str | None:
         """Key text of the model in force under a name, evaluated and filed on first use."""
@@ -225,13 +239,15 @@ class Expansion:
         card = frame.definition.models[lower]
         name = model_name(card)
         model, remarks = read_model(card, frame.scope, name)
-        for remark in remarks:
-            self.say(remark)
         for full in (name, f"{frame.definition.name}.{name}", f"{frame.prefix}{name}"):
             named = replace(model, name=full)
             if self.models.setdefault(full.lower(), named) == named:
-                return full
-        return name
+                break
+        else:
+            full = name
+        for remark in remarks:
+            self.say(replace(remark, model=full.lower()))
+        return full
 
 
 LARGEST = 1e24
@@ -269,3 +285,6 @@ class _At:
 
     def multiplier(self) -> float:
         return self._frame.multiplier
+
+    def lists_pads(self) -> bool:
+        return self._expansion.pads

@@ -35,9 +35,10 @@ class Card:
         """A remark that stands at this card."""
         return Remark(text=text, origin=self.origin, parts=parts)
 
-    def lost(self, text: str) -> Remark:
+    def lost(self, text: str, *, everywhere: bool = False) -> Remark:
         """A remark that the card is not understood. Its words stand for the nets until all nets are known."""
-        return Remark(text=text, origin=self.origin, lost=True, nets=tuple(self.text.split()[1:]))
+        words = () if everywhere else tuple(self.text.split()[1:])
+        return Remark(text=text, origin=self.origin, lost=True, nets=words, everywhere=everywhere)
 
 
 def cards_of(text: str, *, file: str, limits: ReadLimits, first_line: int = 1) -> tuple[list[Card], list[Remark]]:
@@ -68,9 +69,12 @@ def cards_of(text: str, *, file: str, limits: ReadLimits, first_line: int = 1) -
         elif pieces:
             pieces[-1][1].append(bare[1:])
         else:
-            remarks.append(_remark("a continuation line with nothing before it is passed over", file, number))
+            stray = Card(text=bare, file=file, line=number)
+            remarks.append(stray.lost("a continuation line with nothing before it is passed over"))
     if control:
-        remarks.append(_remark("the control block never ends: all that follows it is passed over", file, control))
+        block = Card(text="", file=file, line=control)
+        text = "the control block never ends: all that follows it is passed over"
+        remarks.append(block.lost(text, everywhere=True))
     return [Card(text=" ".join(parts), file=file, line=number) for number, parts in pieces], remarks
 
 

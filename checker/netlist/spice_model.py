@@ -28,20 +28,23 @@ def read_model(card: Card, scope: Scope, name: str) -> tuple[Model, list[Remark]
     body = _COLON.sub("=", card.text)
     words = split_words(body)
     kind = words.positional[2].lower() if len(words.positional) > 2 else ""
-    remarks = []
+    remarks: list[Remark] = []
+
+    def lost(text: str) -> Remark:
+        return Remark(text=f"model {name[:40]}: {text}", origin=card.origin, lost=True)
+
     if not kind or ":" in kind:
-        remarks.append(card.remark(f"the model {name[:40]} names no kind that is understood: {kind[:40] or 'none'}"))
+        remarks.append(lost(f"names no kind that is understood: {kind[:40] or 'none'}"))
     params: dict[str, float] = {}
     for key, text in words.named.items():
         try:
             params[_ALIASES.get(key, key)] = scope.number(text)
         except NotAQuantity as error:
             if key not in _NOTES:
-                remarks.append(card.remark(f"model {name[:40]}: {key[:20]} is passed over: {error}"))
+                remarks.append(lost(f"{key[:20]} is passed over: {error}"))
     loose = [word for word in words.positional[3:] if word.lower() not in ("nchan", "pchan")]
     if loose:
-        text = f"model {name[:40]}: {' '.join(loose)[:60]!r} belongs to no parameter and is passed over"
-        remarks.append(card.remark(text))
+        remarks.append(lost(f"{' '.join(loose)[:60]!r} belongs to no parameter and is passed over"))
     # `VDMOS(pchan ...)` carries its polarity as a bare word.
     for word in words.positional[3:]:
         if word.lower() in ("nchan", "pchan"):

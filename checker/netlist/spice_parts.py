@@ -6,17 +6,17 @@ from __future__ import annotations
 import math
 import re
 from collections.abc import Callable, Mapping
-from dataclasses import replace
 from typing import Protocol
 
 from checker.netlist.spice_deck import Element
+from checker.netlist.spice_pads import REFERENCE
 from checker.netlist.spice_source import read_source
 from checker.netlist.types import Part, Pin
 from checker.pattern import lazy
 from checker.quantity.value import Origin
 from checker.trouble import NotAQuantity
 
-_PLAIN_NUMBER = lazy(r"(\d+\.?\d*|\.\d+)(e[+-]?\d+)?", re.IGNORECASE)
+PLAIN_NUMBER = lazy(r"(\d+\.?\d*|\.\d+)(e[+-]?\d+)?", re.IGNORECASE)
 _KINDS = {
     "R": {"r", "res"},
     "C": {"c", "cap"},
@@ -28,12 +28,20 @@ _KINDS = {
 }
 """Kinds of model that an element letter takes: a node may bear the name of a model of another kind."""
 _WORD = lazy(r"[A-Za-z_][\w.-]*")
+_UNIT = lazy(
+    r"[\d.,]+(?:e[+-]?\d+)?(?:(?:meg|[tgkmunpxµμ])?(ohms?|Ω|hz|farads?|henr(?:y|ies)|h)|(?:meg|[tgkmunpxµμ])(f))",
+    re.IGNORECASE,
+)
+"""A number with its unit; a lone `f` is femto."""
+_UNIT_OF = {"o": "R", "ω": "R", "f": "C", "h": "L"}
+_PARTED = lazy(r"(?:meg|[tgkmunpxµμ])(?:ohms?|Ω|f|h)?", re.IGNORECASE)
+_BESIDE = lazy(
+    r"[A-Za-z].*|(?:±|\+/?-)?\d+(?:[.,]\d+)?%|\d+(?:[.,]\d+)?(?:/\d+)?[kmuµμ]?[VWA](?:dc|ac|rms)?|0\d{3}|1206|1210|2512",
+    re.IGNORECASE,
+)
+"""What may stand behind a value and alter nothing: plain words, a tolerance, a rating, a size."""
 _NODE_COUNT = {"E": 4, "G": 4, "S": 4, "T": 4, "O": 4, "Q": 3, "J": 3, "Z": 3, "M": 4, "K": 0}
 """How many words after the name are nodes, where the line itself leaves it open; 2 for other letters."""
-_ASKED = lazy(r"\b([VI])\s*\(\s*([^\s(),]+)\s*(?:,\s*([^\s(),]+)\s*)?\)", re.IGNORECASE)
-"""V(a), V(a, b) or I(V1) in a formula."""
-_TRIED = (0.0, -1.0, 2.0, 1e-3, -1e3)
-_BEHAVIOURAL = frozenset({"poly", "value", "vol", "cur", "table", "laplace", "freq", "foster", "delay"})
 
 
 class Place(Protocol):
@@ -57,34 +65,45 @@ class Place(Protocol):
     def multiplier(self) -> float:
         """How many of the enclosing instances are in parallel."""
 
+    def lists_pads(self) -> bool:
+        """Whether the file lists the pads and values of a schematic (see `spice_pads`)."""
+
 
 def part_of(element: Element, place: Place) -> Part | None:
     """The part of an element card; None where not even two nodes can be told (a reference alone for K)."""
     builder = _BUILDERS.get(element.letter, _other)
+    found = REFERENCE.fullmatch(element.ref) if place.lists_pads() else None
+    if found and found[1].upper() not in _BUILDERS:
+        builder = _other
     try:
         part = builder(element, place)
     except NotAQuantity as error:
-        return _unknown(element, place, str(error))
+        return unknown_part(element, place, str(error))
     for size in ("area", "m"):
         value = part.params.get(size, 1.0) if part is not None else 1.0
         if not 0.0 < value < math.inf:
-            return _unknown(element, place, f"{size} is {value:g}; it must be above zero")
+            return unknown_part(element, place, f"{size} is {value:g}; it must be above zero")
     return part
 
 
-def _unknown(element: Element, place: Place, reason: str, count: int | None = None) -> Part | None:
+def unknown_part(element: Element, place: Place, reason: str, count: int | None = None) -> Part | None:
+    """The part with its nodes and why it is not understood; None where not even two nodes are written. `count`: how
+    many words are nodes, where it is not the usual number of the letter."""
     words = element.words.positional[1:]
     wanted = _NODE_COUNT.get(element.letter, 2) if count is None else count
+    if place.lists_pads():
+        wanted = max(len(words) - 1, 0)
     if element.letter != "K" and len(words) < 2:
         return None
     nodes = words[: min(wanted, len(words))]
     # A coupling that is not understood still touches its inductors.
-    controls = tuple(place.ref(word) for word in words[:-1]) if element.letter == "K" else ()
+    coupling = element.letter == "K" and not place.lists_pads()
+    controls = tuple(place.ref(word) for word in words[:-1]) if coupling else ()
     value = " ".join(words[len(nodes) :])
-    return _part(element, place, nodes, value=value, unknown=reason, params={}, controls=controls)
+    return new_part(element, place, nodes, value=value, unknown=reason, params={}, controls=controls)
 
 
-def _part(
+def new_part(
     element: Element,
     place: Place,
     nodes: tuple[str, ...],
@@ -142,6 +161,9 @@ def _passive(element: Element, place: Place) -> Part:
     well."""
     nodes = _nodes(element, 2, "expected two nodes and a value")
     rest = element.words.positional[3:]
+    if place.lists_pads():
+        # A value of a schematic, to be read by a schematic's rules.
+        return new_part(element, place, nodes, value=" ".join(rest), params={})
     named = element.words.named
     key = next((key for key in (element.letter.lower(), "value", "val") if key in named), "")
     at = next((index for index, word in enumerate(rest[:2]) if _model(word, element, place)), None)
@@ -149,9 +171,32 @@ def _passive(element: Element, place: Place) -> Part:
     words = [word for index, word in enumerate(rest) if index != at]
     if not words and not key and not model:
         raise NotAQuantity("no value is written")
-    number = place.number(words[0] if words else named[key]) if words or key else None
-    value = " ".join(words) if words else named[key] if key else ""
-    return _part(element, place, nodes, value=value, number=number, model=model)
+    text = words[0] if words else named[key] if key else ""
+    params = _params(element, place)
+    for word in _behind_value(words[1:]):
+        params.setdefault("tol", place.number(word))
+    number = place.number(_of_its_kind(element, text)) if text else None
+    return new_part(element, place, nodes, params=params, value=" ".join(words) or text, number=number, model=model)
+
+
+def _behind_value(words: list[str]) -> list[str]:
+    """The percentages among the words behind a value. Ratings and plain words may stand there as well; whatever else
+    does is part of what the line says and must not be dropped."""
+    for word in words:
+        if _PARTED.fullmatch(word):
+            raise NotAQuantity(f"a blank parts the value from {word[:20]!r}: which value is meant cannot be told")
+        if not _BESIDE.fullmatch(word):
+            raise NotAQuantity(f"{word[:40]!r} is not expected behind the value")
+    return [word.lstrip("±+/-") for word in words if word.endswith("%")]
+
+
+def _of_its_kind(element: Element, text: str) -> str:
+    """`text`, unless it bears the unit of another kind of part: `10uF` of a coil."""
+    found = _UNIT.fullmatch(text)
+    unit = (found[1] or found[2]).lower() if found else ""
+    if unit and (unit == "hz" or _UNIT_OF[unit[0]] != element.letter):
+        raise NotAQuantity(f"{text[:40]!r} is the value of another kind of part")
+    return text
 
 
 def _source(element: Element, place: Place) -> Part:
@@ -163,7 +208,7 @@ def _source(element: Element, place: Place) -> Part:
     for key, text in others.items():
         params[key] = place.number(text)
     pairs = [f"{key}={text}" for key, text in element.words.named.items() if key in ("dc", "ac")]
-    return _part(
+    return new_part(
         element,
         place,
         nodes,
@@ -181,7 +226,8 @@ def _device(least: int, most: int, what: str) -> Callable[[Element, Place], Part
         words = [word for word in element.words.positional[1:] if word.lower() not in ("off", "on")]
         at = _model_position(words, least, most, element, place)
         if at is None:
-            raise NotAQuantity(f"too few words: expected {what} and a model")
+            amount = "many" if len(words) > most + 1 else "few"
+            raise NotAQuantity(f"too {amount} words: expected {what} and a model")
         named = _model(words[at], element, place)
         params = _params(element, place)
         if len(words) > at + 1:
@@ -189,7 +235,7 @@ def _device(least: int, most: int, what: str) -> Callable[[Element, Place], Part
         if len(words) > at + 2:
             raise NotAQuantity(f"{words[at + 2][:40]!r} is not expected behind the model")
         nodes = tuple(word.strip("[]") if len(word) > 2 else word for word in words[:at])
-        return _part(element, place, nodes, params=params, value=words[at], model=named or words[at])
+        return new_part(element, place, nodes, params=params, value=words[at], model=named or words[at])
 
     return build
 
@@ -207,68 +253,15 @@ def _model_position(words: list[str], least: int, most: int, element: Element, p
         if _model(words[index], element, place):
             return index
     last = len(words) - 1
-    if last > least and _PLAIN_NUMBER.fullmatch(words[last]) and not _PLAIN_NUMBER.fullmatch(words[last - 1]):
+    if last > least and PLAIN_NUMBER.fullmatch(words[last]) and not PLAIN_NUMBER.fullmatch(words[last - 1]):
         last -= 1
     return last if least <= last <= most else None
 
 
-def _controlled(by_nodes: bool) -> Callable[[Element, Place], Part | None]:
-    """E, G by a voltage between two nodes; F, H by the current of a V element. Linear ones only are
-    understood."""
+def _controlled(element: Element, place: Place) -> Part | None:
+    from checker.netlist.spice_controlled import controlled  # few decks have any
 
-    def build(element: Element, place: Place) -> Part | None:
-        words = _without_polynomial(element.words.positional[1:])
-        if linear := _linear(element, place):
-            return linear
-        if any(word.lower() in _BEHAVIOURAL for word in (*words[2:3], *element.words.named)):
-            return _unknown(element, place, "a controlled source that is not linear is not modelled", count=2)
-        if len(words) != (5 if by_nodes else 4):
-            wanted = "four nodes and a gain" if by_nodes else "two nodes, a V element and a gain"
-            raise NotAQuantity(f"expected {wanted}")
-        gain = place.number(words[-1])
-        nodes = words[:4] if by_nodes else words[:2]
-        controls = () if by_nodes else (place.ref(words[2]),)
-        return _part(element, place, nodes, value=words[-1], number=gain, controls=controls)
-
-    return build
-
-
-def _linear(element: Element, place: Place) -> Part | None:
-    """The controlled source that a formula amounts to: `B1 a b V={2*V(c,d)}` is E, `G1 a b VALUE={I(VX)/5}` is F.
-
-    One voltage or current may be named. That the formula is proportional to it is tried at several values; None where
-    it is not, or where there is no formula.
-    """
-    named = element.words.named
-    key = next((key for key in ("v", "i", "value") if key in named), "")
-    if not key or element.letter not in "BEG":
-        return None
-    asked = _ASKED.findall(named[key])
-    if len(set(asked)) != 1:
-        return None
-
-    def at(value: float) -> float:
-        return place.number("{" + _ASKED.sub(f"({value!r})", named[key].strip("{}'\"")) + "}")
-
-    gain = at(1.0)
-    if any(abs(at(x) - x * gain) > 1e-9 * abs(x * gain) for x in _TRIED):
-        return None
-    kind, first, second = asked[0][0].upper(), asked[0][1].strip(), asked[0][2].strip()
-    current_out = key == "i" or (key == "value" and element.letter == "G")
-    letter = {"V": "EG", "I": "HF"}[kind][current_out]
-    nodes = (*element.words.positional[1:3], first, second or "0") if kind == "V" else element.words.positional[1:3]
-    controls = () if kind == "V" else (place.ref(first),)
-    part = _part(element, place, nodes, params={}, value=named[key], number=gain, controls=controls)
-    return replace(part, letter=letter)
-
-
-def _without_polynomial(words: tuple[str, ...]) -> tuple[str, ...]:
-    """`a b POLY(1) c d 0 g` is linear: the same as `a b c d g` (for F and H, `a b POLY(1) v 0 g`)."""
-    if len(words) in (7, 8) and words[2].lower() == "poly" and words[3] == "1":
-        offset = words[-2]
-        if _PLAIN_NUMBER.fullmatch(offset) and float(offset) == 0:
-            return (*words[:2], *words[4:-2], words[-1])
-    return words
+    return controlled(element, place)
 
 
 def _coupling(element: Element, place: Place) -> Part:
@@ -276,7 +269,7 @@ def _coupling(element: Element, place: Place) -> Part:
     if len(words) < 3:
         raise NotAQuantity("expected two or more inductors and a coupling factor")
     controls = tuple(place.ref(word) for word in words[:-1])
-    return _part(element, place, (), value=words[-1], number=place.number(words[-1]), controls=controls)
+    return new_part(element, place, (), value=words[-1], number=place.number(words[-1]), controls=controls)
 
 
 def _line(element: Element, place: Place) -> Part:
@@ -284,7 +277,7 @@ def _line(element: Element, place: Place) -> Part:
     nodes = _nodes(element, 4, "expected four nodes")
     if "z0" not in element.words.named and "zo" not in element.words.named:
         raise NotAQuantity("no impedance Z0 is written")
-    return _part(element, place, nodes, value=" ".join(element.words.positional[5:]))
+    return new_part(element, place, nodes, value=" ".join(element.words.positional[5:]))
 
 
 def _lossy(element: Element, place: Place) -> Part:
@@ -294,7 +287,7 @@ def _lossy(element: Element, place: Place) -> Part:
     if not words:
         raise NotAQuantity("expected four nodes and a model")
     known = place.model(words[0])
-    return _part(element, place, nodes, value=words[0], model=known[0] if known else words[0])
+    return new_part(element, place, nodes, value=words[0], model=known[0] if known else words[0])
 
 
 def _instance(element: Element, place: Place) -> Part | None:
@@ -306,20 +299,20 @@ def _instance(element: Element, place: Place) -> Part | None:
         params = _params(element, place)
     except NotAQuantity:
         params = {}
-    return _part(element, place, words[:-1], params=params, value=words[-1], model=words[-1])
+    return new_part(element, place, words[:-1], params=params, value=words[-1], model=words[-1])
 
 
 def _behavioural(reason: str, count: int) -> Callable[[Element, Place], Part | None]:
-    return lambda element, place: _unknown(element, place, reason, count=count)
+    return lambda element, place: unknown_part(element, place, reason, count=count)
 
 
 def _other(element: Element, place: Place) -> Part | None:
     """A letter without meaning in SPICE text (`U2 ...`): all words but the last are taken for nodes."""
     words = element.words.positional[1:]
-    if len(words) < 3:
+    if len(words) < (2 if place.lists_pads() else 3):
         return None
     reason = f"elements of letter {element.letter} are not understood; the words are taken for nodes and a name"
-    return _part(element, place, words[:-1], params={}, value=words[-1], model=words[-1], unknown=reason)
+    return new_part(element, place, words[:-1], params={}, value=words[-1], model=words[-1], unknown=reason)
 
 
 _BUILDERS: dict[str, Callable[[Element, Place], Part | None]] = {
@@ -333,16 +326,14 @@ _BUILDERS: dict[str, Callable[[Element, Place], Part | None]] = {
     "J": _device(3, 3, "three nodes"),
     "M": _device(3, 4, "three or four nodes"),
     "K": _coupling,
-    "E": _controlled(by_nodes=True),
-    "G": _controlled(by_nodes=True),
-    "F": _controlled(by_nodes=False),
-    "H": _controlled(by_nodes=False),
+    "E": _controlled,
+    "G": _controlled,
+    "F": _controlled,
+    "H": _controlled,
+    "B": _controlled,
     "T": _line,
-    "O": lambda element, place: _lossy(element, place),
+    "O": _lossy,
     "X": _instance,
-    "B": lambda element, place: (
-        _linear(element, place) or _unknown(element, place, "a behavioural source is not modelled", count=2)
-    ),
     "S": _behavioural("a voltage-controlled switch is not modelled", 4),
     "W": _behavioural("a current-controlled switch is not modelled", 2),
 }

@@ -3,19 +3,19 @@ all."""
 
 from __future__ import annotations
 
-from collections.abc import Mapping
+from collections.abc import Sequence
 from dataclasses import replace
 from pathlib import Path
 
 from checker.netlist.limits import ReadLimits
 from checker.netlist.spice_cards import CardReader
 from checker.netlist.spice_deck import Deck, Definition
-from checker.netlist.spice_expand import GROUND, Expansion
+from checker.netlist.spice_expand import GROUND, GROUND_NAMES, Expansion
 from checker.netlist.spice_includes import Folders
 from checker.netlist.spice_lines import cards_of, without_comment
-from checker.netlist.spice_pads import without_guesses
+from checker.netlist.spice_pads import REFERENCE, sign_of_pads, without_guesses
 from checker.netlist.spice_title import is_element, title_of
-from checker.netlist.types import Net, Netlist, Remark
+from checker.netlist.types import Netlist, Remark
 from checker.quantity.value import Origin
 from checker.trouble import InputTrouble
 
@@ -35,9 +35,10 @@ def read_spice(
     Raises `InputTrouble` where the text is no SPICE-style netlist or a limit is exceeded.
     """
     deck = _declared(text, name, path, include_dirs, limits, size)
-    expansion = Expansion(deck, limits)
+    sign = sign_of_pads(deck.root)
+    expansion = Expansion(deck, limits, pads=bool(sign))
     expansion.run()
-    understood = sum(not part.unknown for part in expansion.parts)
+    understood = sum(not part.unknown or bool(sign and REFERENCE.fullmatch(part.ref)) for part in expansion.parts)
     if not deck.directives and (2 * understood < len(expansion.parts) or not expansion.parts):
         raise InputTrouble(
             "neither a SPICE-style netlist nor a KiCad export: hardly a line reads as an element; "
@@ -49,21 +50,35 @@ def read_spice(
         format="spice",
         sha256=sha256,
         title=deck.title,
-        parts=tuple(without_guesses(expansion.parts, expansion.models)),
+        parts=tuple(without_guesses(expansion.parts, expansion.models, sign) if sign else expansion.parts),
         nets=expansion.nets,
         models=expansion.models,
         temperature_c=deck.temperature_c,
         ground=(GROUND,) if GROUND in expansion.nets else (),
-        remarks=tuple(_with_nets(each, expansion.nets) for each in deck.remarks + expansion.remarks),
+        remarks=_with_nets(deck.remarks + expansion.remarks(), expansion),
     )
 
 
-def _with_nets(remark: Remark, nets: Mapping[str, Net]) -> Remark:
-    """The words of a lost line that are names of nets, in any case, as keys."""
-    if not remark.nets:
-        return remark
-    words = {word.lower() for word in remark.nets}
-    return replace(remark, nets=tuple(key for key in nets if key.lower() in words))
+def _with_nets(remarks: Sequence[Remark], expansion: Expansion) -> tuple[Remark, ...]:
+    """Remarks on lost lines with the keys of the nets that they bear on: those that they name in any case, those of
+    the parts that use a model, or all."""
+    if not any(remark.lost for remark in remarks):
+        return tuple(remarks)
+    keys = {key.lower(): key for key in expansion.nets}
+    users: dict[str, dict[str, None]] = {}
+    for part in expansion.parts:
+        if part.model:
+            users.setdefault(part.model.lower(), {}).update(dict.fromkeys(pin.net for pin in part.pins))
+
+    def found(remark: Remark) -> Remark:
+        if remark.everywhere or remark.model:
+            nets = tuple(expansion.nets if remark.everywhere else users.get(remark.model, ()))
+        else:
+            words = dict.fromkeys("0" if word.lower() in GROUND_NAMES else word.lower() for word in remark.nets)
+            nets = tuple(keys[word] for word in words if word in keys)
+        return replace(remark, nets=nets)
+
+    return tuple(found(remark) if remark.lost else remark for remark in remarks)
 
 
 def _declared(text: str, name: str, path: Path, include_dirs: tuple[Path, ...], limits: ReadLimits, size: int) -> Deck:

@@ -3,6 +3,7 @@ spelling."""
 
 from __future__ import annotations
 
+import re
 from collections.abc import Callable, Mapping, Sequence
 
 from checker.netlist.types import Source
@@ -23,6 +24,7 @@ _WAVEFORMS = {
 _KEYWORDS = frozenset({*_WAVEFORMS, "dc", "ac", "distof1", "distof2"})
 _REST_INDEX = {"sin": 0, "pulse": 0, "exp": 0, "sffm": 0, "pwl": 1}
 """Which number of the waveform is its value at rest: offset, initial value, first value."""
+_VOLTS = lazy(r"[+-]?(?:\d+\.?\d*|\.\d+)(?:[eE][+-]?\d+)?(?:meg|[kmunp])?v(?:dc)?", re.IGNORECASE)
 _AMPERES = lazy(r"([+-]?(?:\d+\.?\d*|\.\d+)(?:[eE][+-]?\d+)?)[aA]")
 
 
@@ -32,7 +34,8 @@ def read_source(words: Sequence[str], named: Mapping[str, str], number: Number, 
     `amperes`: a current source, where `5A` means five amperes and not five atto. A waveform ends at the next
     keyword, bracket or not.
     """
-    reader = _Reader(words, (lambda word: number(_without_ampere(word))) if amperes else number)
+    unit = _without_ampere if amperes else _in_volts
+    reader = _Reader(words, lambda word: number(unit(word)))
     reader.read()
     if "dc" in named:
         reader.dc = reader.number(named["dc"])
@@ -51,8 +54,16 @@ def read_source(words: Sequence[str], named: Mapping[str, str], number: Number, 
 
 
 def _without_ampere(word: str) -> str:
+    if _VOLTS.fullmatch(word):
+        raise NotAQuantity(f"{word[:40]!r} is no current")
     found = _AMPERES.fullmatch(word)
     return found[1] if found else word
+
+
+def _in_volts(word: str) -> str:
+    if _AMPERES.fullmatch(word):
+        raise NotAQuantity(f"{word[:40]!r} is no voltage")
+    return word
 
 
 class _Reader:

@@ -91,7 +91,8 @@ class Remark:
     """Something the reader saw and could not use, or passed over on purpose; `parts` it may touch.
 
     `lost`: the line is not understood, and what it says is missing from the netlist; `nets`: keys of the nets that it
-    names, as far as can be told.
+    bears on, as far as can be told. `model`: lower-case key of the model that it is about; `everywhere`: it bears on
+    the whole board. Both serve the reader to find `nets`.
     """
 
     text: str
@@ -99,6 +100,8 @@ class Remark:
     parts: tuple[str, ...] = ()
     lost: bool = False
     nets: tuple[str, ...] = ()
+    model: str = ""
+    everywhere: bool = False
 
 
 @frozen

@@ -36,14 +36,15 @@ _DECIMAL = lazy(r"[+-]?\d*\.?\d+(?:[eE][+-]?\d+)?", re.ASCII)
 _WHOLE = lazy(r"[+-]?\d*\.?\d+", re.ASCII)
 _SHORT = {letter: _SUFFIXES[letter.lower()] for letter in "tgkmunpfTGKMUNPF"}
 """Letters that, behind a plain number, are all there is to it: the short path of the other numbers."""
-_INFIX = lazy(r"([+-]?)(\d*)(meg|[tgxkmunpfr])(\d{1,3})([a-z%]*)", re.IGNORECASE)
+_INFIX = lazy(r"([+-]?)(\d+)(meg|[tgxkmunpfr])(\d{1,3})([a-z%]*)", re.IGNORECASE)
 
 
 def parse_spice_number(text: str) -> float:
-    """The SI value of a SPICE number such as `4.7k`, `1MEG`, `68kOhm`, `10uF`, `4.7x`; also `4k7` and `k51`.
+    """The SI value of a SPICE number such as `4.7k`, `1MEG`, `68kOhm`, `10uF`, `4.7x`; also `4k7`.
 
     `M` is milli in any case and `F` is femto; a decimal comma is read as a point. Raises `NotAQuantity` for
-    what is no number and for numbers that do not fit (`1e400`). The suffix rules are common practice, no
+    what is no number (`k51` and `r1` are names), for `1M5`, where IEC 60062 says mega and SPICE text milli, and for
+    numbers that do not fit (`1e400`). The suffix rules are common practice, no
     source.
     """
     if text[-1:].isdigit() and _DECIMAL.fullmatch(text):
@@ -62,7 +63,10 @@ def parse_spice_number(text: str) -> float:
         if infix is None:
             raise NotAQuantity(f"{text[:60]!r} is not a number")
         sign, whole, letter, part, _ = infix.groups()
-        value = float(f"{sign}{whole or '0'}.{part}{_SUFFIXES[letter.lower()]}")
+        if letter in "mM":
+            wanted = f"{whole}.{part}m or {whole}.{part}Meg"
+            raise NotAQuantity(f"{text[:60]!r} may mean milli or mega; write {wanted}")
+        value = float(f"{sign}{whole}.{part}{_SUFFIXES[letter.lower()]}")
     return _finite(value, text)
 
 

@@ -6,6 +6,7 @@ from __future__ import annotations
 
 from collections.abc import Iterable
 
+from checker.circuit.types import Unknown
 from checker.quantity.value import Origin
 from checker.record import Location, Stage, Unchecked
 from checker.setup import Setup
@@ -15,6 +16,7 @@ FORM = "the same in a form that the reader knows, or nothing if the board works 
 
 def unread(setup: Setup) -> tuple[Unchecked, ...]:
     """Lines of the netlist that were not understood."""
+    stages = Neighbours(setup)
     return tuple(
         Unchecked(
             subject=remark.parts[0] if remark.parts else f"line {remark.origin.line}",
@@ -22,7 +24,7 @@ def unread(setup: Setup) -> tuple[Unchecked, ...]:
             datum=f"what the netlist says there: {remark.text}",
             supply=FORM,
             location=_location(remark.origin),
-            touches=touched(setup, remark.nets),
+            touches=stages.of(remark.nets),
         )
         for remark in setup.netlist.remarks
         if remark.lost
@@ -31,15 +33,25 @@ def unread(setup: Setup) -> tuple[Unchecked, ...]:
 
 def unknowns(setup: Setup) -> tuple[Unchecked, ...]:
     """Parts and nets that cannot be solved with."""
-    origins = {part.ref: part.origin for part in setup.netlist.parts}
+    if not setup.circuit.unknowns:
+        return ()
+    parts = {part.ref: part for part in setup.netlist.parts}
+    held = {rail.net for rail in setup.circuit.rails}
+    stages = Neighbours(setup)
+
+    def nets(each: Unknown) -> Iterable[str]:
+        """Those of the datum; of a whole part also those that it only senses, but no supply."""
+        part = parts.get(each.ref) if not each.pin else None
+        return each.nets if part is None else {*each.nets, *(pin.net for pin in part.pins if pin.net not in held)}
+
     return tuple(
         Unchecked(
             subject=each.ref,
             rule="",
             datum=each.datum,
             supply=each.supply,
-            location=_location(origins[each.ref]) if each.ref in origins else None,
-            touches=touched(setup, each.nets),
+            location=_location(parts[each.ref].origin) if each.ref in parts else None,
+            touches=stages.of(nets(each)),
         )
         for each in setup.circuit.unknowns
     )
@@ -67,16 +79,26 @@ def judged_apart(stages: Iterable[Stage], gaps: Iterable[Unchecked]) -> tuple[Un
     return tuple(gap for gap in gaps if gap.subject not in lost)
 
 
-def touched(setup: Setup, nets: Iterable[str]) -> tuple[str, ...]:
-    """Stages that have a terminal on one of the nets, or on a net of the same DC island; ground joins nothing."""
-    circuit = setup.circuit
-    near = {circuit.node(net) for net in nets if net in circuit.nets} - {0}
-    for island in setup.point.plan.islands:
-        if near & set(island.nodes):
-            near |= set(island.nodes)
-    table = circuit.transistors
-    on = {name for name, row in zip(table.names, table.nodes.tolist(), strict=True) if near & set(row)}
-    return tuple(stage.id for stage in setup.recognition.stages if stage.device in on)
+class Neighbours:
+    """Finds the stages that have a terminal on a net, or on a net of the same DC island; ground joins nothing."""
+
+    def __init__(self, setup: Setup) -> None:
+        self._circuit = setup.circuit
+        self._island = {node: tuple(each.nodes) for each in setup.point.plan.islands for node in each.nodes}
+        self._places = {stage.id: place for place, stage in enumerate(setup.recognition.stages)}
+        table = setup.circuit.transistors
+        nodes = dict(zip(table.names, table.nodes.tolist(), strict=True))
+        self._on: dict[int, set[str]] = {}
+        for stage in setup.recognition.stages:
+            for node in nodes.get(stage.device, ()):
+                self._on.setdefault(node, set()).add(stage.id)
+
+    def of(self, nets: Iterable[str]) -> tuple[str, ...]:
+        """Ids of the stages, in their order."""
+        near = {self._circuit.node(net) for net in nets if net in self._circuit.nets} - {0}
+        wider = near.union(*(self._island.get(node, ()) for node in near))
+        found = set().union(*(self._on.get(node, ()) for node in wider))
+        return tuple(sorted(found, key=self._places.__getitem__))
 
 
 def _location(origin: Origin) -> Location | None:

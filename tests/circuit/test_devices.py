@@ -166,6 +166,14 @@ def test_without_footprint_the_only_package_of_the_card_counts_and_is_told() -> 
     assert assumed(circuit, "Q1", "no footprint")
 
 
+def test_pins_whose_symbol_is_not_in_the_export_are_no_pads_without_a_footprint() -> None:
+    """A symbol of the author's own may number source, gate and drain in any order."""
+    part = kicad_part("Q1", "own:MOSFET_N", "2N7002", {"1": "x", "2": "y", "3": "z"})
+    assert [unknown.datum for unknown in schematic(part).unknowns] == ["pin order of Q1"]
+    placed = kicad_part("Q1", "own:MOSFET_N", "2N7002", {"1": "g", "2": "s", "3": "d"}, footprint=SOT23)
+    assert schematic(placed).devices["mosfet"].names == ("Q1",)
+
+
 def test_an_unknown_pin_order_is_not_guessed() -> None:
     part = kicad_part("Q1", "my:NPN", "NPN", {"1": "x", "2": "y", "3": "z"})
     circuit = schematic(part)

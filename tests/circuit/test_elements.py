@@ -81,6 +81,41 @@ def test_parallel_count() -> None:
     assert (value_of(circuit, "R1"), value_of(circuit, "C1")) == (25.0, 4e-9)
 
 
+def test_a_mega_that_became_a_milli_is_told() -> None:
+    assert assumed(spice(spice_part("R1", "a 0", 1e-3, text="1M")), "R1: 1M read as milliohms")
+    assert assumed(kicad(resistor("R1", "a", "GND", "3.3m")), "R1: 3.3m read as milliohms")
+    assert not assumed(kicad(resistor("R1", "a", "GND", "1M"), resistor("R2", "a", "GND", "5mOhm")), "milliohms")
+
+
+def test_pairs_that_enter_no_equation_are_told() -> None:
+    circuit = spice(spice_part("R1", "a 0", 1e3, params={"tc1": 1e-3, "m": 2.0}), spice_part("R2", "a 0", 1e3))
+    assert assumed(circuit, "R1: written and not used: tc1")
+    assert not assumed(circuit, "R2: written")
+
+
+def test_currents_in_parallel_add() -> None:
+    circuit = spice(spice_part("I1", "a 0", source=Source(dc=1e-3), params={"m": 3.0}), spice_part("R1", "a 0", 1e3))
+    assert value_of(circuit, "I1") == pytest.approx(3e-3)
+
+
+def test_a_tolerance_in_spice_text_is_in_percent() -> None:
+    circuit = spice(
+        spice_part("R1", "a 0", 1e3, params={"tol": 5.0}), spice_part("R2", "a 0", 1e3, params={"tol": 0.1})
+    )
+    told = [circuit.parts[ref].value for ref in ("R1", "R2")]
+    assert [value and value.tolerance for value in told] == [0.05, 0.001]
+
+
+@pytest.mark.parametrize(("nets", "held"), [("V- 0", 15.0), ("0 V-", -15.0)])
+def test_a_source_with_resistance_feeds_its_net_whichever_way_it_is_drawn(nets: str, held: float) -> None:
+    """A net named as a supply that hangs on a known voltage by a small resistor needs no declared volts."""
+    source = spice_part("V1", nets, source=Source(dc=15.0), params={"rser": 8.0})
+    circuit = spice(source, spice_part("R1", "V- 0", 1e3))
+    assert circuit.unknowns == ()
+    assert [(rail.net, rail.volts) for rail in circuit.rails] == [("V1.n", held)]
+    assert set(ends_of(circuit, "V1.rser")) == {"V-", "V1.n"}
+
+
 def test_coupled_inductors_also_in_threes_and_inside_a_subcircuit() -> None:
     coils = [spice_part(f"X1.L{place}", f"n{place} 0", 1e-6, letter="L") for place in (1, 2, 3)]
     circuit = spice(*coils, spice_part("X1.K1", "", 0.9, letter="K", controls=("L1", "X1.L2", "L3")))
@@ -151,6 +186,25 @@ def test_a_potentiometer_stands_at_mid_travel(pins: dict[str, str]) -> None:
     assert (ends_of(circuit, "RV1.a"), ends_of(circuit, "RV1.b")) == (("a", "w"), ("w", "GND"))
     assert value_of(circuit, "RV1.a") == value_of(circuit, "RV1.b") == 5e3
     assert assumed(circuit, "RV1: potentiometer taken at mid travel")
+
+
+@pytest.mark.parametrize(
+    ("value", "tolerance"), [("10kB", 0.05), ("50kA", 0.05), ("A500K", 0.05), ("10k 20%", 0.2), ("B100k LIN", 0.05)]
+)
+def test_the_letter_of_a_potentiometer_is_its_taper(value: str, tolerance: float) -> None:
+    """Behind a fixed resistor's value B means 0.1 % (IEC 60062), behind a potentiometer's a linear track."""
+    pins = {"1": "a", "2": "w", "3": "GND"}
+    circuit = kicad(kicad_part("RV1", "Device:R_Potentiometer", value, pins), resistor("R1", "w", "GND"))
+    found = circuit.parts["RV1"].value
+    assert found is not None and found.tolerance == tolerance
+    fixed = kicad(resistor("R1", "a", "GND", "10kB")).parts["R1"].value
+    assert fixed is not None and fixed.tolerance == 0.001
+
+
+def test_a_coded_coil_has_the_tolerance_of_its_letter() -> None:
+    circuit = kicad(kicad_part("L1", "Device:L", "472K", {"1": "a", "2": "GND"}), resistor("R1", "a", "GND"))
+    found = circuit.parts["L1"].value
+    assert found is not None and (found.si, found.tolerance) == (4.7e-3, 0.1)
 
 
 def test_a_rheostat_keeps_the_half_that_is_used() -> None:

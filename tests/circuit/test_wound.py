@@ -49,7 +49,7 @@ def test_tapers(text: str, ohm: float | None) -> None:
 
 
 def test_coded_inductance() -> None:
-    assert coded_henry("472K") == pytest.approx(4.7e-3)
+    assert coded_henry("472K") == (4.7e-3, 0.1)
     assert coded_henry("472") is None and coded_henry("10uH") is None
 
 

@@ -27,7 +27,6 @@ def one(read: Read, line: str, extra: str = "") -> Part:
         ("R1 a b 4.7k", 4700.0, "4.7k"),
         ("R1 a b 1M", 1e-3, "1M"),
         ("R1 a b 68kOhm", 68e3, "68kOhm"),
-        ("R1 a b k51", 510.0, "k51"),
         ("R1 a b R=2k", 2e3, "2k"),
         ("R1 a b {2*1k+500}", 2500.0, "{2*1k+500}"),
         ("R1 a b '2*1k'", 2e3, "'2*1k'"),
@@ -48,6 +47,25 @@ def test_passives(read: Read, line: str, number: float, value: str) -> None:
     found = one(read, line)
     assert found.number == pytest.approx(number, rel=1e-15)
     assert (found.value, nets(found), found.unknown) == (value, ["a", "b"], "")
+
+
+@pytest.mark.parametrize(
+    ("line", "percent"),
+    [
+        ("R1 a b 10k 1%", 1.0),
+        ("R1 a b 10k +/-5%", 5.0),
+        ("R1 a b 10k 2W 5% film", 5.0),
+        ("R1 a b 10k 1/4W 0805", None),
+        ("R1 a b 10k tol=5 1%", 5.0),
+        ("C1 a b 10u 16V", None),
+        ("C1 a b 1n NP0 2kV", None),
+        ("L1 a b 10u (shielded) 2A", None),
+    ],
+)
+def test_tolerances_and_ratings_behind_a_value(read: Read, line: str, percent: float | None) -> None:
+    found = one(read, line)
+    assert (found.params.get("tol"), found.unknown) == (percent, "")
+    assert found.number is not None
 
 
 def test_pairs_become_parameters(read: Read) -> None:
@@ -157,6 +175,21 @@ def test_controlled_sources_and_couplings(read: Read) -> None:
         ("R1 a b", 2),
         ("R1 a b {missing}", 2),
         ("R1 a b 1e400", 2),
+        ("R1 a b 10 k", 2),
+        ("C1 a b 10 uF", 2),
+        ("R1 a b 1k 2k", 2),
+        ("R1 a b 1k + 2k", 2),
+        ("R1 a b {1k} {2k}", 2),
+        ("R1 a b k51", 2),
+        ("R1 a b r2", 2),
+        ("R1 a b 1M5", 2),
+        ("R1 a b 10uF", 2),
+        ("C1 a b 10uH", 2),
+        ("L1 a b 4.7uF", 2),
+        ("L1 a b 100ohm", 2),
+        ("Q1 c b e s t u npn", 3),
+        ("V1 a 0 5A", 2),
+        ("I1 a 0 5V", 2),
         ("Q1 c b e", 3),
         ("D1 a k", 2),
         ("V1 a 0 rubbish", 2),
@@ -229,6 +262,40 @@ def test_devices_are_not_guessed_where_pads_are_listed(read: Read) -> None:
     deck = "* p\nU1 a b c d OPA2134\nQ1 a b c BC850\nQ2 a b c mine\nR1 a b 1k\nD1 a b 1N4148\n.model mine npn\n"
     unknown = {part.ref: bool(part.unknown) for part in read(deck).parts}
     assert unknown == {"U1": True, "Q1": True, "Q2": False, "R1": False, "D1": True}
+
+
+def test_values_and_pins_of_a_file_that_lists_pads(read: Read) -> None:
+    """The values are those of a schematic, left as text, and every pin of a part is kept."""
+    netlist = read(
+        "* p\nU1 a b c d OPA2134\nR1 a b 1M5\nR2 a b 1k 1%\nC1 a 0 4,7uF 16v\nJ1 a 0 b a b JACK\nCON1 a 0 c BARREL\n"
+        "K1 a b c d RELAY\nTP1 a TEST\nLED1 a 0 RED\n"
+    )
+    assert [(each.ref, each.value, each.number) for each in netlist.parts[1:4]] == [
+        ("R1", "1M5", None),
+        ("R2", "1k 1%", None),
+        ("C1", "4,7uF 16v", None),
+    ]
+    assert not any(each.unknown for each in netlist.parts[1:4])
+    assert {each.ref: nets(each) for each in netlist.parts[4:]} == {
+        "J1": ["a", "0", "b", "a", "b"],
+        "CON1": ["a", "0", "c"],
+        "K1": ["a", "b", "c", "d"],
+        "TP1": ["a"],
+        "LED1": ["a", "0"],
+    }
+    assert all(each.unknown and not each.controls for each in netlist.parts[4:])
+
+
+def test_a_digital_element_within_a_subcircuit_is_no_sign_of_pads(read: Read) -> None:
+    netlist = read(
+        "* s\n.subckt macro a b\nU1 a b c d gate\n.ends\nX1 a b macro\nQ1 a b 0 BC547\nR1 a b 1k\nR2 a 0 1k\n"
+    )
+    assert {each.ref: bool(each.unknown) for each in netlist.parts} == {
+        "X1.U1": True,
+        "Q1": False,
+        "R1": False,
+        "R2": False,
+    }
 
 
 def test_models(read: Read) -> None:

@@ -9,7 +9,7 @@ import pytest
 from checker.pipeline import check_board
 from checker.record import Report, Unchecked
 from checker.report.forms import FORMS, form
-from tests.whole import outcome_from
+from tests.whole import MODELS, outcome_from
 
 DECK = """V1 VCC 0 12
 R1 VCC B 100k
@@ -24,8 +24,8 @@ Q2 VCC B2 E2 QN
 Q1, Q2 = ("Q1",), ("Q2",)
 
 
-def gap(report: Report, subject: str) -> Unchecked:
-    (found,) = [each for each in report.unchecked if each.subject == subject]
+def gap(report: Report, subject: str, datum: str = "") -> Unchecked:
+    (found,) = [each for each in report.unchecked if each.subject == subject and datum in each.datum]
     return found
 
 
@@ -49,6 +49,41 @@ def test_lines_of_a_deck(line: str, subject: str, touches: tuple[str, ...]) -> N
     assert found.location is not None
     assert (found.location.line, found.touches) == (11, touches)
     assert found.rule == ""
+
+
+@pytest.mark.parametrize(
+    ("lines", "line", "touches"),
+    [
+        (".model QX NPN(BF=oops IS=1f)\nQ3 VCC B2 E3 QX\nRE3 E3 0 1k", 11, ("Q2", "Q3")),
+        (".model QX NPN(BF=50 7)\nQ3 VCC B2 E3 QX\nRE3 E3 0 1k", 11, ("Q2", "Q3")),
+        (".model QX NPN(BF=oops)", 11, ()),
+        (".temp warm", 11, ("Q1", "Q2")),
+        (".subckt s p\nR1 p 0 1k\nR2 p\n.ends\nX1 C s\nX2 E2 s", 13, ("Q1", "Q2")),
+        (".subckt s p w=1\nR1 p 0 {1k*w}\n.ends\nX1 E2 s w=wide", 14, ("Q2",)),
+    ],
+)
+def test_what_a_line_bears_on_beyond_its_words(lines: str, line: int, touches: tuple[str, ...]) -> None:
+    """A model bears on the transistors that use it, a temperature on all, a line of a subcircuit on its instances."""
+    report = outcome_from(DECK + lines).report
+    (found,) = [each for each in report.unchecked if each.location and each.location.line == line]
+    assert found.touches == touches
+
+
+def test_what_a_block_without_an_end_or_a_beginning_bears_on() -> None:
+    """A control block swallows what follows, perhaps parts; a continuation of nothing names nets like any line."""
+    text = f"* board\n+ E2 0 1k\n{MODELS}{DECK}.control\nrun\n"
+    report = outcome_from(text, title=False).report
+    start, end = 2, len(text.splitlines()) - 1
+    assert {each.location.line: each.touches for each in report.unchecked if each.location} == {
+        start: ("Q2",),
+        end: ("Q1", "Q2"),
+    }
+
+
+def test_a_part_bears_on_the_stage_that_only_its_gate_is_on() -> None:
+    """M1 has no model; its gate draws nothing, yet what Q1 drives there is not known."""
+    found = gap(outcome_from(DECK + "M1 D C 0 0 nowhere\nRD VCC D 1k").report, "M1", "model")
+    assert found.touches == Q1
 
 
 def export(*extra: str) -> str:
@@ -76,6 +111,20 @@ def test_values_and_lost_pins_of_an_export(tmp_path: Path) -> None:
     assert value.location is not None and value.location.line == 6
     assert pin.location is not None and pin.location.line == 8
     assert value.touches == pin.touches == Q1
+
+
+def test_a_pin_on_two_nets_of_an_export(tmp_path: Path) -> None:
+    path = tmp_path / "board.net"
+    path.write_text(export("(node (ref R2) (pin 1))"), "utf-8")
+    found = gap(check_board(path, None).report, "R2", "on 2 nets at once")
+    assert found.location is not None
+    assert (found.location.line, found.touches) == (5, Q1)
+
+
+@pytest.mark.parametrize("name", [name for name in FORMS if name != "json"])
+def test_every_form_tells_where_no_stage_is_touched(name: str) -> None:
+    report = outcome_from(DECK + "R9 X Y 4.7äk").report
+    assert "bears on no stage" in " ".join(form(name)(report, width=100, colour=False).split())
 
 
 @pytest.mark.parametrize("name", list(FORMS))

@@ -50,10 +50,12 @@ def accepted(report: Report, page: Page) -> list[str]:
 
 
 def bearing(gap: Unchecked) -> str:
-    """Where the line stands that a gap is about, and the stages that it bears on, in one clause; empty for neither."""
+    """Where the line stands that a gap is about, and the stages that it bears on, in one clause; empty where no line
+    is to blame."""
     at = f"at {place(gap.location)}" if gap.location is not None else ""
     stages = ", ".join(name(stage) for stage in gap.touches if stage != gap.subject)
-    return "; ".join(filter(None, (at, f"bears on {stages}" if stages else "")))
+    none = "bears on no stage" if at and not gap.touches else ""
+    return "; ".join(filter(None, (at, f"bears on {stages}" if stages else none)))
 
 
 def place(location: Location | None) -> str:

@@ -36,7 +36,8 @@ def _where(gaps: Sequence[Unchecked], page: Page) -> list[str]:
     own = {gap.subject for gap in gaps}
     stages = list(dict.fromkeys(stage for gap in gaps for stage in gap.touches if stage not in own))
     lines = hanging("    at      ", _few(places), page, style="dim") if places else []
-    return lines + (hanging("    bears on  ", _few(list(map(name, stages))), page, style="dim") if stages else [])
+    bears = "no stage" if places and not any(gap.touches for gap in gaps) else _few(list(map(name, stages)))
+    return lines + (hanging("    bears on  ", bears, page, style="dim") if bears else [])
 
 
 def _few(names: Sequence[str]) -> str:
