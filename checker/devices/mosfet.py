@@ -107,14 +107,18 @@ def limit(p: Mapping[str, FloatArray], new: FloatArray, old: FloatArray) -> Floa
     # The gate is held at the end that acts as source.
     source = vds >= 0.0
     at_source = limited_gate(new[..., 0], old[..., 0], p["vto"])
-    at_drain = limited_gate(new[..., 0] - vds, old[..., 0] - old[..., 1], p["vto"]) + vds
+    over_drain = new[..., 0] - vds
+    at_drain = limited_gate(over_drain, old[..., 0] - old[..., 1], p["vto"])
+    # What is not held stays as it is to the last digit: a voltage that comes back rounded counts as held.
+    at_drain = np.where(at_drain == over_drain, new[..., 0], at_drain + vds)
     out[..., 0] = np.where(source, at_source, at_drain)
     n_vt = p["n"] * p["vt"]
     crit = critical_v(p["is"], n_vt)
     vbs = limited(new[..., 2], old[..., 2], n_vt, crit)
-    vbd = limited(vbs - vds, old[..., 2] - old[..., 1], n_vt, crit)
+    over_body = vbs - vds
+    vbd = limited(over_body, old[..., 2] - old[..., 1], n_vt, crit)
     out[..., 2] = vbs
-    out[..., 1] = vbs - vbd
+    out[..., 1] = np.where(vbd == over_body, vds, vbs - vbd)
     return out
 
 

@@ -12,6 +12,7 @@ from checker.solve.counters import COUNTERS
 from checker.solve.operating import OperatingPoint, operating_point, self_heated
 from tests.bench import Bench
 from tests.reference.boards import ALL, NPN, PNP, Board
+from tests.reference.mixed_boards import NMOS, PMOS
 
 ORDINARY_PASSES = 15
 
@@ -295,3 +296,26 @@ def test_base_current_crowding_is_smooth_at_small_currents() -> None:
     predicted = 0.5 * (slope[1:, 0] + slope[:-1, 0]) * (0.20 / (rows - 1))
     # Trapezoid over 0.5 mV of a curve bent on the scale of VT: 3e-5 of each step.
     np.testing.assert_allclose(step, predicted, rtol=1e-3, atol=1e-11)
+
+
+@pytest.mark.parametrize("p_channel", [False, True])
+@pytest.mark.parametrize("drain", [6.0, -1.0], ids=["as drawn", "drain below source"])
+def test_a_body_on_a_rail_of_its_own(p_channel: bool, drain: float) -> None:
+    """Voltages that the limiting leaves alone come back to the last digit; else such a stage never counts as settled.
+
+    Many random values, since rounding is what would be wrong.
+    """
+    rng = np.random.default_rng(11)
+    sign = -1.0 if p_channel else 1.0
+    for _ in range(25):
+        ohms = 10.0 ** rng.uniform(2.0, 5.0, 3)
+        b = Bench(27.0)
+        b.v("V", "vcc", "0", sign * drain * rng.uniform(0.9, 1.1))
+        b.v("VB", "sub", "0", -9.0 * sign)
+        b.v("VG", "vg", "0", sign * rng.uniform(-1.0, 5.0))
+        b.r("RG", "vg", "g", ohms[0])
+        b.r("RD", "vcc", "d", ohms[1])
+        b.r("RS", "s", "0", ohms[2])
+        b.m("M1", "d", "g", "s", "sub", p=p_channel, **(PMOS if p_channel else NMOS))
+        point = _certified(b)
+        assert int(point.solved.helper.max()) == 0
