@@ -143,6 +143,20 @@ def _from_regulators(draft: Draft) -> None:
             draft.notes.add("rails", f"{net} taken as {volts:g} V, the output of {part}")
             _hold(draft, net, volts)
             _list(draft, net, volts, "element", None)
+    sensing = {"ADJ", "FB", "REF", "VFB", "ADJ/GND", "R", "FEEDBACK"}
+    if any(sensing & {pin.function.upper().strip("~{}") for pin in part.pins} for part in draft.netlist.parts):
+        _from_adjustable(draft)
+
+
+def _from_adjustable(draft: Draft) -> None:
+    from checker.circuit.adjustable import adjustable_nets  # few boards have any
+
+    for net, volts, words, pin in list(adjustable_nets(draft)):
+        if net in draft.present() and draft.known_volts(net) is None:
+            draft.notes.add("rails", f"{net} taken as {volts:.4g} V, by {words}")
+            _hold(draft, net, volts)
+            _list(draft, net, volts, "element", None)
+            draft.driven_pins.add((words.split(" ", 1)[0], pin))
 
 
 def _nameless(draft: Draft) -> None:

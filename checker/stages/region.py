@@ -167,7 +167,10 @@ def shorted_current(point: OperatingPoint, slow: Response, j: int) -> FloatArray
     # The device taken out of its own few nets: Z' = Z + Z (1 - Y Z)^-1 Y Z (Sherman, Morrison and Woodbury).
     lost = np.asarray(~(np.isfinite(z).all(axis=(-1, -2)) & np.isfinite(y).all(axis=(-1, -2))), dtype=bool)
     z[lost], y = 0.0, np.where(lost[:, None, None], 0.0, y)
-    out = np.real(z + z @ np.linalg.solve(np.eye(len(nodes)) - y @ z, y @ z))
+    try:
+        out = np.real(z + z @ np.linalg.solve(np.eye(len(nodes)) - y @ z, y @ z))
+    except np.linalg.LinAlgError:
+        return np.full(len(lost), np.nan)  # what is left without the device floats: no current can be told
     vce = point.v_v[:, c] - point.v_v[:, e]
     for place, key in ((0, "i_out_a"), (1, "i_control_a"), (2, "i_common_a")):
         vce = vce + (out[:, 0, place] - out[:, 2, place]) * point.transistor[key][:, j]
