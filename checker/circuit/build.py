@@ -68,6 +68,7 @@ _ADDERS: Final[dict[Kind, _Adder]] = {
     "line": lambda draft, part: _add_four_pole(draft, part),
     "battery": add_battery,
     "array": add_array,
+    "transformer": lambda draft, part: _add_transformer(draft, part),
     "unmodelled": add_unmodelled,
 }
 _UNIT: Final[dict[str, tuple[Kind, str]]] = {"C": ("capacitor", "F"), "L": ("inductor", "H")}
@@ -138,6 +139,12 @@ def _tell_unused(draft: Draft, part: Part) -> None:
     unused = sorted(part.params.keys() - _ENTER)
     if unused:
         draft.notes.add("parts", f"written and not used: {', '.join(unused)}", part.ref)
+
+
+def _add_transformer(draft: Draft, part: Part) -> None:
+    from checker.circuit.transformers import add_transformer  # few boards have any
+
+    add_transformer(draft, part)
 
 
 def _add_four_pole(draft: Draft, part: Part) -> None:

@@ -32,6 +32,7 @@ Kind = Literal[
     "line",
     "battery",
     "array",
+    "transformer",
     "unmodelled",
 ]
 
@@ -95,6 +96,7 @@ _SYMBOLS: Final[tuple[tuple[Kind, str], ...]] = (
     ("potentiometer", r"R_?POT\w*|POT(?:ENTIOMETER)?(?:[-_]\w+)?|TRIM_?POT\w*|R_TRIM\w*|R_VARIABLE\w*"),
     ("array", r"R_?PACK\d+\w*"),
     ("unmodelled", r"R_?(?:NETWORK|ARRAY|PHOTO)\w*|R_SHUNT\w*|THERM\w*|VARISTOR\w*|LDR\w*|VTL5C\w*"),
+    ("transformer", r".*TRANSFORMER.*|.*TRANSF|.*TRAFO.*|XMFR.*|.*BALUN.*|.*BIFILAR.*"),
     ("resistor", r"R(?:ES(?:ISTOR)?)?(?:[-_ ]\w+)*"),
     ("capacitor", r"CP?1?(?:[-_](?:SMALL|POL\w*|US\w*|EU\w*|ALUM\w*|DEVICE|TRIM\w*|VARIABLE|\d+)[\w.-]*)*"),
     ("capacitor", r"CAP(?:ACITOR)?(?:[-_]\w+)*|C_?TRIM\w*|CPOL\w*"),
