@@ -69,6 +69,7 @@ _ADDERS: Final[dict[Kind, _Adder]] = {
     "battery": add_battery,
     "array": add_array,
     "transformer": lambda draft, part: _add_transformer(draft, part),
+    "optocoupler": lambda draft, part: _add_optocoupler(draft, part),
     "unmodelled": add_unmodelled,
 }
 _UNIT: Final[dict[str, tuple[Kind, str]]] = {"C": ("capacitor", "F"), "L": ("inductor", "H")}
@@ -139,6 +140,12 @@ def _tell_unused(draft: Draft, part: Part) -> None:
     unused = sorted(part.params.keys() - _ENTER)
     if unused:
         draft.notes.add("parts", f"written and not used: {', '.join(unused)}", part.ref)
+
+
+def _add_optocoupler(draft: Draft, part: Part) -> None:
+    from checker.circuit.optocouplers import add_optocoupler  # few boards have any
+
+    add_optocoupler(draft, part)
 
 
 def _add_transformer(draft: Draft, part: Part) -> None:

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import contextlib
 import re
 from typing import Final
 
@@ -10,6 +11,8 @@ from checker.circuit.elements import two_ends
 from checker.circuit.entry import bare_fact
 from checker.circuit.types import Unknown
 from checker.netlist.types import Part
+from checker.quantity.parse import parse_engineering
+from checker.trouble import NotAQuantity
 
 _SAFE: Final = frozenset({"input", "no_connect", "notconnected", "unconnected", "free"})
 """Pin kinds that draw no current worth counting."""
@@ -40,16 +43,32 @@ def add_open(draft: Draft, part: Part) -> None:
         "Y",
         "QZ",
     ):
+        if _crystal(draft, part):
+            return
         nets = [pin.net for pin in part.pins]
-        draft.loose(
-            part.ref,
-            nets,
-            f"a model of the crystal {part.ref}",
-            "nothing yet: crystals are open",
-            blocks_dc=False,
-        )
+        wanted = "the fields Lm and Cm (and Rm, C0) of its series branch; open until then"
+        draft.loose(part.ref, nets, f"a model of the crystal {part.ref}", wanted, blocks_dc=False)
         return
     draft.notes.add("parts", "open jumper or push button taken as open", part.ref)
+
+
+def _crystal(draft: Draft, part: Part) -> bool:
+    """The series branch Rm, Lm, Cm and the parallel capacitance C0 of a crystal, from its fields; False without."""
+    said = {}
+    for key, unit in (("Lm", "H"), ("Cm", "F"), ("Rm", "ohm"), ("C0", "F")):
+        with contextlib.suppress(NotAQuantity):
+            said[key] = parse_engineering(part.fields.get(key, ""), unit).si
+    ends = two_ends(part)
+    if ends is None or not (said.get("Lm") and said.get("Cm")):
+        return False
+    first, second, third = ends[0], f"{part.ref}.m", f"{part.ref}.n"
+    draft.wire("capacitors", f"{part.ref}.cm", first, second, said["Cm"])
+    draft.wire("inductors", f"{part.ref}.lm", second, third if said.get("Rm") else ends[1], said["Lm"])
+    if said.get("Rm"):
+        draft.wire("resistors", f"{part.ref}.rm", third, ends[1], said["Rm"])
+    if said.get("C0"):
+        draft.wire("capacitors", f"{part.ref}.c0", *ends, said["C0"])
+    return True
 
 
 def add_connector(draft: Draft, part: Part) -> None:

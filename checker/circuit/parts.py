@@ -33,6 +33,7 @@ Kind = Literal[
     "battery",
     "array",
     "transformer",
+    "optocoupler",
     "unmodelled",
 ]
 
@@ -96,6 +97,10 @@ _SYMBOLS: Final[tuple[tuple[Kind, str], ...]] = (
     ("potentiometer", r"R_?POT\w*|POT(?:ENTIOMETER)?(?:[-_]\w+)?|TRIM_?POT\w*|R_TRIM\w*|R_VARIABLE\w*"),
     ("array", r"R_?PACK\d+\w*"),
     ("unmodelled", r"R_?(?:NETWORK|ARRAY|PHOTO)\w*|R_SHUNT\w*|THERM\w*|VARISTOR\w*|LDR\w*|VTL5C\w*"),
+    (
+        "optocoupler",
+        r"(?:PC|LTV-?|EL|HCPL-?|KB)817\w*|PC123\w*|4N[23][5-8]\w*|CNY17\w*(?:-\d)?|SFH61[07]A?-\d\w*|TLP\d{3}(?:-1)?",
+    ),
     ("transformer", r".*TRANSFORMER.*|.*TRANSF|.*TRAFO.*|XMFR.*|.*BALUN.*|.*BIFILAR.*"),
     ("resistor", r"R(?:ES(?:ISTOR)?)?(?:[-_ ]\w+)*"),
     ("capacitor", r"CP?1?(?:[-_](?:SMALL|POL\w*|US\w*|EU\w*|ALUM\w*|DEVICE|TRIM\w*|VARIABLE|\d+)[\w.-]*)*"),

@@ -53,10 +53,8 @@ def add_transformer(draft: Draft, part: Part) -> None:
 
 def turns_of(part: Part) -> tuple[float, ...] | None:
     """Turns of each winding, or numbers in their ratio; None where nothing tells them."""
-    texts = [part.fields.get(key, "") for key in ("Turns", "Ratio", "N")] + [
-        part.value,
-        symbol_name(part).replace("_", " "),
-    ]
+    texts = [part.fields.get(key, "") for key in ("Turns", "Ratio", "N")]
+    texts += [part.value, symbol_name(part).replace("_", " ")]
     for text in texts:
         counted = [float(found) for found in _TURNS.findall(text)]
         if len(counted) > 1:

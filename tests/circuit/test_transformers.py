@@ -44,7 +44,8 @@ def test_impedance_by_the_square_of_the_ratio(value: str, ratio: float) -> None:
         resistor("R1", "s", "GND", "50"),
         resistor("R2", "a", "GND", "1G"),
     )
-    assert into(circuit, "a") == pytest.approx(50.0 * ratio**2, rel=1e-4)
+    # 1 H beside it at 1 MHz are 6.3 megohms.
+    assert abs(into(circuit, "a")) == pytest.approx(50.0 * ratio**2, rel=1e-5)
     assert assumed(circuit, "T1", "taken as large")
 
 
