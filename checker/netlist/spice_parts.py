@@ -111,6 +111,7 @@ def new_part(
     params: Mapping[str, float] | None = None,
     **more: object,
 ) -> Part:
+    """A part with pins on `nodes`; `params` None: the pairs on the card; `more`: its other fields."""
     pins = tuple(
         Pin(number=str(index), net=place.net(f"?{element.ref}.{index}" if node == "?" else node))
         for index, node in enumerate(nodes, start=1)
