@@ -48,6 +48,7 @@ from checker.summary.ledger import Ledger
 from checker.summary.parts import parts
 from checker.summary.stages import group_records, stage_records
 from checker.summary.surroundings import cautions, gains, islands, nets, ports, rails
+from checker.trouble import InputTrouble
 
 MOST_PASSES, MOST_EVALUATIONS = 1_500, 200_000
 """Newton passes and device evaluations after which no further remedy is sought: a bound on time that is the same on
@@ -162,7 +163,10 @@ def part_values(netlist_path: Path, intent_path: Path | None, reading: Reading |
 
 def _read(path: Path, reading: Reading | None) -> Netlist:
     how = reading or Reading()
-    return read_netlist(path, include_dirs=how.folders, limits=how.limits)
+    netlist = read_netlist(path, include_dirs=how.folders, limits=how.limits)
+    if netlist.format == "spice" and not netlist.parts:
+        raise InputTrouble("holds no part, only models or subcircuits; give the netlist of a board", file=netlist.path)
+    return netlist
 
 
 def starter_intent(netlist_path: Path, reading: Reading | None = None) -> str:

@@ -9,12 +9,13 @@ from pathlib import Path
 
 from checker.netlist.limits import ReadLimits
 from checker.netlist.spice_cards import CardReader
-from checker.netlist.spice_deck import Deck, Definition
+from checker.netlist.spice_deck import Deck, Definition, Element
 from checker.netlist.spice_expand import GROUND, GROUND_NAMES, Expansion
 from checker.netlist.spice_includes import Folders
 from checker.netlist.spice_lines import cards_of, without_comment
 from checker.netlist.spice_pads import REFERENCE, sign_of_pads, without_guesses
 from checker.netlist.spice_title import is_element, title_of
+from checker.netlist.spice_words import Words
 from checker.netlist.types import Netlist, Remark
 from checker.quantity.value import Origin
 from checker.trouble import InputTrouble
@@ -93,9 +94,24 @@ def _declared(text: str, name: str, path: Path, include_dirs: tuple[Path, ...], 
     for definition in _all(deck.root):
         deck.remarks += definition.settle()
     if not deck.root.elements and deck.root.subcircuits:
-        names = ", ".join(definition.name[:40] for definition in list(deck.root.subcircuits.values())[:5])
-        deck.remarks.append(_remark(name, 0, f"a library: only subcircuits ({names}) and no part that uses them"))
+        _without_board(deck, name)
     return deck
+
+
+def _without_board(deck: Deck, name: str) -> None:
+    """Take the one subcircuit that no other uses for the board, its ports for nets; of several, none."""
+    inner = _all(deck.root)[1:]
+    used = {each.words.positional[-1].lower() for every in inner for each in every.elements if each.letter == "X"}
+    tops = [(every, every.card) for key, every in deck.root.subcircuits.items() if key not in used and every.card]
+    if len(tops) != 1:
+        names = ", ".join(every.name[:40] for every in list(deck.root.subcircuits.values())[:5])
+        deck.remarks.append(_remark(name, 0, f"a library: only subcircuits ({names}) and no part that uses them"))
+        return
+    ((top, card),) = tops
+    words = Words(positional=(f"X{top.name}", *top.ports, top.name), named={}, groups={})
+    deck.root.elements.append(Element(name=f"X{top.name}", ref=top.name, letter="X", words=words, card=card))
+    text = f"no part stands outside the subcircuits; {top.name[:40]} is taken for the board, its ports for nets"
+    deck.remarks.append(card.remark(text))
 
 
 def _title(deck: Deck, first: str, others: str, name: str) -> bool:

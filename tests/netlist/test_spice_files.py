@@ -176,9 +176,25 @@ def test_library_sections(read: Read) -> None:
 def test_files_of_models_or_subcircuits_alone(read: Read) -> None:
     models = read("* lib\n.model a npn\n.model b pnp\n")
     assert (set(models.models), models.parts, models.remarks) == ({"a", "b"}, (), ())
-    subcircuits = read("* lib\n.subckt amp in out\nR1 in out 1k\n.ends\n")
+    two = "".join(f".subckt {name} in out\nR1 in out 1k\n.ends\n" for name in ("amp", "pad"))
+    subcircuits = read(f"* lib\n{two}")
     assert subcircuits.parts == ()
-    assert "amp" in subcircuits.remarks[0].text
+    assert "amp, pad" in subcircuits.remarks[0].text
+
+
+def test_the_one_subcircuit_that_no_other_uses_is_the_board(read: Read) -> None:
+    netlist = read(
+        "* lib\n.subckt pad a b r=1k\nR1 a b {r}\n.ends\n"
+        ".subckt Amp in 0 Vcc\nX1 in mid pad r=2k\nQ1 vcc mid 0 BC547\n.ends\n"
+    )
+    assert {part.ref: [pin.net for pin in part.pins] for part in netlist.parts} == {
+        "Amp.X1.R1": ["in", "Amp.mid"],
+        "Amp.Q1": ["Vcc", "Amp.mid", "0"],
+    }
+    assert [(remark.origin.line, "Amp is taken for the board" in remark.text) for remark in netlist.remarks] == [
+        (5, True)
+    ]
+    assert netlist.ground == ("0",)
 
 
 @pytest.mark.parametrize(

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import random
 import re
 from pathlib import Path
 
@@ -107,3 +108,46 @@ def named_back(value: object, back: dict[str, str]) -> object:
     if isinstance(value, str):
         return re.sub(r"\bN\d{3}\b", lambda found: back.get(found[0], found[0]), value)
     return value
+
+
+@pytest.mark.parametrize("form", ["cir", "net"])
+@pytest.mark.parametrize("seed", range(6))
+def test_random_boards_in_another_order_under_other_names(form: str, seed: int, tmp_path: Path) -> None:
+    """A sample board with resistors drawn anew, against itself with lines, inner nets and comments at random."""
+    chance = random.Random(f"equal input {seed}")  # noqa: S311 - no secret
+    board = chance.choice(BOARDS)
+    netlist, intent = texts(board)
+    first, lines = netlist.splitlines()[0], [line for line in netlist.splitlines()[1:] if line[:1] not in ("*", "")]
+    drawn = [re.sub(r"^(R\w+ \S+ \S+) \S+", lambda found: f"{found[1]} {chance.choice(E12)}", line) for line in lines]
+    declared = set(re.findall(r'"([^"]+)"', intent)) | {"0", "GND"}
+    inner = sorted(set(inner_nets("\n".join([first, *drawn]))) - declared)
+    names = {net: f"N{number:03}" for number, net in enumerate(chance.sample(inner, len(inner)))}
+    other = [with_names(line, names) for line in drawn if line[0] != "."]
+    chance.shuffle(other)
+    if form == "cir":
+        other = [line + chance.choice(["", " ; note", "\n* note\n"]) for line in other]
+    one = "\n".join([first, *drawn]) + "\n"
+    two = "\n".join([first, *other, *(line for line in drawn if line[0] == ".")]) + "\n"
+    reports = []
+    for place, text in (("one", one), ("two", two)):
+        (tmp_path / place).mkdir()
+        written_text = text if form == "cir" else kicad_export(board, text)
+        data = rounded(as_data(checked(written(tmp_path / place, written_text, intent, f"{board}.{form}"))))
+        assert isinstance(data, dict) and data["stages"]
+        reports.append(data)
+    other_report = named_back(reports[1], {name: net for net, name in names.items()})
+    found = differences(reports[0], other_report)
+    apart = {place for place in found if place not in SOURCE and not place.endswith(PLACES)}
+    # By names of nets, or naming the intent file.
+    ordered = ("islands", "unavailable.islands", "assumptions", "findings.limit.source")
+    assert {place for place in apart if not place.startswith(ordered)} == set()
+    assert islands_of(reports[0]) == islands_of(other_report)
+
+
+E12 = ("100", "330", "1k", "2.2k", "4.7k", "10k", "27k", "47k", "100k", "220k")
+
+
+def islands_of(report: object) -> set[frozenset[str]]:
+    """The nets of each island, in no order."""
+    assert isinstance(report, dict)
+    return {frozenset(island["nets"]) for island in report["islands"]}
