@@ -38,6 +38,7 @@ DIODE: Mapping[str, float] = {
 JFET: Mapping[str, float] = {
     "vto": -2.0, "beta": 1e-3, "lambda": 0.0, "b": 1.0, "is": 1e-14, "n": 1.0, "rd": 0.0, "rs": 0.0,
     "cgs": 0.0, "cgd": 0.0, "pb": 1.0, "m": 0.5, "fc": 0.5, "vtotc": 0.0, "betatce": 0.0, "eg": 1.11, "xti": 3.0,
+    "isr": 0.0, "nr": 2.0, "alpha": 0.0, "vk": 0.0, "bv": INF, "ibv": 1e-3, "nbv": 1.0,
 }  # fmt: skip
 MOSFET: Mapping[str, float] = {
     "vto": 2.0, "kp": 1e-3, "lambda": 0.0, "gamma": 0.0, "phi": 0.6, "channel": 1.0, "w": 1.0, "l": 1.0,

@@ -87,6 +87,13 @@ JFET: Final[Mapping[str, float]] = {
     "b": 1.0,
     "is": 1e-14,
     "n": 1.0,
+    "isr": 0.0,
+    "nr": 2.0,
+    "alpha": 0.0,
+    "vk": 0.0,
+    "bv": INF,
+    "ibv": 1e-3,
+    "nbv": 1.0,
     "rd": 0.0,
     "rs": 0.0,
     "cgs": 0.0,
@@ -232,7 +239,7 @@ BIPOLAR_TIMES_AREA: Final = (
 BIPOLAR_OVER_AREA: Final = ("rb", "rbm", "re", "rc")
 DIODE_TIMES_AREA: Final = ("is", "isr", "ikf", "ibv", "cjo")
 DIODE_OVER_AREA: Final = ("rs",)
-JFET_TIMES_AREA: Final = ("beta", "is", "cgs", "cgd")
+JFET_TIMES_AREA: Final = ("beta", "is", "isr", "ibv", "cgs", "cgd")
 JFET_OVER_AREA: Final = ("rd", "rs")
 MOSFET_TIMES_COUNT: Final = ("w", "is", "cbd", "cbs", "cgbo", "cox")
 MOSFET_OVER_COUNT: Final = ("rd", "rs")

@@ -42,6 +42,8 @@ JFET_SETS: dict[str, dict[str, float]] = {
     "ideal": {},
     "full": {"vto": -2.8, "beta": 1.28e-3, "lambda": 0.012, "is": 3e-14, "n": 1.1, "rd": 12.0, "rs": 8.0,
              "cgs": 4e-12, "cgd": 5e-12, "pb": 0.8, "m": 0.4, "vtotc": -2.2e-3, "betatce": -0.5},
+    "ionising, breaking down": {"vto": -1.9, "beta": 2e-3, "lambda": 0.01, "is": 2e-14, "isr": 3e-12, "nr": 2.1,
+                                "alpha": 3e-4, "vk": 25.0, "bv": 9.0, "ibv": 1e-6, "nbv": 1.5, "rd": 5.0, "rs": 5.0},
     "doping tail": {"vto": -1.8, "beta": 9e-4, "lambda": 0.02, "b": 0.6, "pb": 0.9},
 }  # fmt: skip
 MOSFET_SETS: dict[str, dict[str, float]] = {

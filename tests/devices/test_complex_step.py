@@ -127,7 +127,7 @@ def _volts(family: str, rng: np.random.Generator, p: dict[str, np.ndarray]) -> n
 def test_the_matrix_is_the_complex_step_of_the_currents(family: str, which: str, sign: float, t_c: float) -> None:
     model, make, sets = MAKERS[family]
     p = make(sets[which], ROWS, t_c)
-    if family == "diode":
+    if "bv" in p:
         # Complex numbers cannot be divided with an infinite part: no breakdown is one at a megavolt.
         p["bv"] = np.minimum(p["bv"], 1e6)
     polarity = np.array([sign if family not in ("diode", "opamp") else 1.0])
@@ -157,7 +157,7 @@ def _stepped(function: Any, at: tuple[np.ndarray, ...]) -> list[Any]:
 
 CORES: dict[str, dict[str, tuple[str, ...]]] = {
     "bipolar": {"ic": ("ic_vbe", "ic_vbc"), "ib": ("ib_vbe", "ib_vbc"), "qb": ("qb_vbe", "qb_vbc"), "i_f": ("g_f", "")},
-    "jfet": {"i_d": ("a_gs", "a_gd"), "i_gs": ("g_gs", ""), "i_gd": ("", "g_gd")},
+    "jfet": {"i_d": ("a_gs", "a_gd"), "i_gs": ("g_gs", ""), "i_gd": ("", "g_gd"), "i_ion": ("ion_gs", "ion_gd")},
     "mosfet": {"i_d": ("d_vgs", "d_vds", "d_vbs"), "i_bs": ("", "", "g_bs"), "i_bd": ("", "-g_bd", "g_bd")},
 }
 """Family -> value of its `Core` -> its derivatives to each junction voltage; "" where it does not depend on one."""
@@ -167,6 +167,8 @@ CORES: dict[str, dict[str, tuple[str, ...]]] = {
 def test_every_derivative_of_a_core(family: str, which: str) -> None:
     model, make, sets = MAKERS[family]
     p = make(sets[which], ROWS)
+    if "bv" in p:
+        p["bv"] = np.minimum(p["bv"], 1e6)
     v = _volts(family, np.random.default_rng(7), p)
     at = model.junctions(v, np.array([1.0]))
     arguments = tuple(at[..., k] for k in range(at.shape[-1]))

@@ -19,6 +19,8 @@ JFET_AT = {
     "reversed ohmic": (-0.6, -0.4),
     "cut off": (-4.0, -9.0),
     "gate forward": (0.55, -3.0),
+    "gate in breakdown": (-0.5, -9.2),
+    "reversed, in breakdown": (-9.1, -0.5),
     "one microvolt past pinch-off of the drain": (-0.3, -1.8 - 1e-6),
     "no drain voltage": (-0.2, -0.2 - 1e-6),
 }
@@ -43,8 +45,12 @@ def test_junction_fet_currents_and_derivatives(which: str, where: str, t_c: floa
     vgs, vgd = JFET_AT[where]
     reference = Jfet(JFET_SETS[which], t_c)
     k = jfet.core(p, np.array([[vgs]]), np.array([[vgd]]))
-    ours = {"d": k.i_d - k.i_gd, "g": k.i_gs + k.i_gd}
-    slopes = {"d": (k.a_gs, k.a_gd - k.g_gd), "g": (k.g_gs, k.g_gd)}
+    on = 1.0 if vgs >= vgd else 0.0
+    ours = {"d": k.i_d - k.i_gd + on * k.i_ion, "g": k.i_gs + k.i_gd - k.i_ion}
+    slopes = {
+        "d": (k.a_gs + on * k.ion_gs, k.a_gd - k.g_gd + on * k.ion_gd),
+        "g": (k.g_gs - k.ion_gs, k.g_gd - k.ion_gd),
+    }
     # Rounding of exp(x) - 1, and of the threshold behind a corner, is all that is allowed for.
     floor = 4e-15 * float(reference.p["beta"]) + 1e-15 * float(reference.p["is"])
     for index, name in enumerate(("d", "g")):

@@ -50,6 +50,7 @@ class Jfet:
         p["vto"] += p["vtotc"] * (t - t0)
         p["beta"] *= mp.mpf("1.01") ** (p["betatce"] * (t - t0))
         p["is"] *= (t / t0) ** (p["xti"] / p["n"]) * mp.exp(p["eg"] / p["n"] * (1 / vt0 - 1 / self.vt))
+        p["isr"] *= (t / t0) ** (p["xti"] / p["nr"]) * mp.exp(p["eg"] / p["nr"] * (1 / vt0 - 1 / self.vt))
         p["pb"] = _potential(pb, t, t0)
         for name in ("cgs", "cgd"):
             p[name] *= 1 + p["m"] * (mp.mpf("4e-4") * (t - t0) + 1 - p["pb"] / pb)
@@ -71,12 +72,28 @@ class Jfet:
         return p["beta"] * (1 + p["lambda"] * vds) * shape
 
     def gate(self, v: Num) -> Num:
-        """Current of one gate junction."""
-        return self.p["is"] * mp.expm1(v / (self.p["n"] * self.vt))
+        """Current of one gate junction: diffusion, recombination, breakdown."""
+        p = self.p
+        recombined = (
+            p["isr"] * mp.expm1(v / (p["nr"] * self.vt)) * ((1 - v / p["pb"]) ** 2 + mp.mpf("0.005")) ** (p["m"] / 2)
+        )
+        broken = p["ibv"] * mp.exp(-(v + p["bv"]) / (p["nbv"] * self.vt)) if mp.isfinite(p["bv"]) else 0
+        return p["is"] * mp.expm1(v / (p["n"] * self.vt)) + recombined - broken
+
+    def ionised(self, vgs: Num, vgd: Num) -> Num:
+        """Current that the channel's carriers set free between the gate and the end that acts as drain."""
+        p = self.p
+        over, vds = max(vgs, vgd) - p["vto"], abs(vgs - vgd)
+        w = vds - over
+        if over <= 0 or w <= 0:
+            return mp.mpf(0)
+        return abs(self.channel(vgs, vgd)) * p["alpha"] * w * mp.exp(-p["vk"] / w)
 
     def terminal(self, vgs: Num, vgd: Num) -> tuple[Num, Num]:
         """(drain, gate) current into the inner device."""
-        return self.channel(vgs, vgd) - self.gate(vgd), self.gate(vgs) + self.gate(vgd)
+        ion = self.ionised(vgs, vgd)
+        drain = self.channel(vgs, vgd) - self.gate(vgd) + (ion if vgs >= vgd else 0)
+        return drain, self.gate(vgs) + self.gate(vgd) - ion
 
     def at(self, vgs: Num, vgd: Num) -> Flow:
         """Terminal quantities; outer gate-source and gate-drain voltage."""
