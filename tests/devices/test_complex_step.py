@@ -89,6 +89,7 @@ def _mosfet_volts(rng: np.random.Generator, rows: int, p: dict[str, np.ndarray])
     vds = np.where(kind == 2, off, vds)
     source = vds >= 0.0
     vth, _ = mosfet._threshold(p, np.where(source, vbs, vbs - vds)[:, None])
+    vth = vth + p["weak"] * p["vt"]
     at_end = np.where(kind == 3, vth[:, 0] + off, vgs - np.where(source, 0.0, vds))
     at_end = np.where(kind == 4, vth[:, 0] + np.abs(vds) + off, at_end)
     vgs = at_end + np.where(source, 0.0, vds)

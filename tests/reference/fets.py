@@ -12,7 +12,7 @@ from typing import Any
 
 import mpmath as mp
 
-from tests.bench import JFET, MOSFET
+from tests.bench import JFET, MOSFET, both_diodes
 
 Num = Any
 K_OVER_Q = mp.mpf("1.380649e-23") / mp.mpf("1.602176634e-19")
@@ -106,7 +106,7 @@ class Mosfet:
     """Level-1 MOSFET: currents into inner drain and body as functions of vgs, vds, vbs; N channel."""
 
     def __init__(self, given: dict[str, float], t_c: float = 27.0) -> None:
-        p = {k: mp.mpf(v) for k, v in {**MOSFET, **{n.rstrip("_"): x for n, x in given.items()}}.items()}
+        p = {k: mp.mpf(v) for k, v in {**MOSFET, **{n.rstrip("_"): x for n, x in both_diodes(given).items()}}.items()}
         t, t0 = mp.mpf(t_c) + mp.mpf("273.15"), mp.mpf(27) + mp.mpf("273.15")
         self.vt = K_OVER_Q * t
         phi, pb = p["phi"], p["pb"]
@@ -115,7 +115,8 @@ class Mosfet:
         flat_band += p["channel"] * (_gap(t0) - _gap(t)) / 2 + (p["phi"] - phi) / 2
         p["vto"] = flat_band + p["gamma"] * mp.sqrt(p["phi"])
         p["kp"] /= (t / t0) ** mp.mpf("1.5")
-        p["is"] *= mp.exp((_gap(t0) / (K_OVER_Q * t0) - _gap(t) / self.vt) / p["n"])
+        for name in ("isd", "iss"):
+            p[name] *= mp.exp((_gap(t0) / (K_OVER_Q * t0) - _gap(t) / self.vt) / p["n"])
         for name in ("cbd", "cbs"):
             p[name] *= 1 + p["mj"] * (mp.mpf("4e-4") * (t - t0) + 1 - p["pb"] / pb)
         self.p = p
@@ -132,19 +133,22 @@ class Mosfet:
         if vds < 0:
             return -self.channel(vgs - vds, -vds, vbs - vds)
         p = self.p
-        over = vgs - self.threshold(vbs)
-        if over <= 0:
+        over, fade = vgs - self.threshold(vbs), mp.mpf(1)
+        knee = p["weak"] * self.vt
+        if knee > 0 and over < knee:
+            over, fade = knee, mp.exp((over - knee) / knee)
+        elif over <= 0:
             return mp.mpf(0)
         shape = vds * (over - vds / 2) if vds < over else over**2 / 2
-        return p["kp"] * p["w"] / p["l"] * (1 + p["lambda"] * vds) * shape
+        return p["kp"] * p["w"] / p["l"] * (1 + p["lambda"] * vds) * shape * fade
 
-    def diode(self, v: Num) -> Num:
-        """Current of one body diode."""
-        return self.p["is"] * mp.expm1(v / (self.p["n"] * self.vt))
+    def diode(self, v: Num, end: str) -> Num:
+        """Current of the body diode at drain (`d`) or source (`s`)."""
+        return self.p[f"is{end}"] * mp.expm1(v / (self.p["n"] * self.vt))
 
     def terminal(self, vgs: Num, vds: Num, vbs: Num) -> tuple[Num, Num]:
         """(drain, body) current into the inner device."""
-        drain, source = self.diode(vbs - vds), self.diode(vbs)
+        drain, source = self.diode(vbs - vds, "d"), self.diode(vbs, "s")
         return self.channel(vgs, vds, vbs) - drain, drain + source
 
     def at(self, vgs: Num, vds: Num, vbs: Num) -> Flow:
