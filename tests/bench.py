@@ -38,11 +38,12 @@ DIODE: Mapping[str, float] = {
 JFET: Mapping[str, float] = {
     "vto": -2.0, "beta": 1e-3, "lambda": 0.0, "b": 1.0, "is": 1e-14, "n": 1.0, "rd": 0.0, "rs": 0.0,
     "cgs": 0.0, "cgd": 0.0, "pb": 1.0, "m": 0.5, "fc": 0.5, "vtotc": 0.0, "betatce": 0.0, "eg": 1.11, "xti": 3.0,
+    "isr": 0.0, "nr": 2.0, "alpha": 0.0, "vk": 0.0, "bv": INF, "ibv": 1e-3, "nbv": 1.0,
 }  # fmt: skip
 MOSFET: Mapping[str, float] = {
     "vto": 2.0, "kp": 1e-3, "lambda": 0.0, "gamma": 0.0, "phi": 0.6, "channel": 1.0, "w": 1.0, "l": 1.0,
-    "rd": 0.0, "rs": 0.0, "is": 1e-14, "n": 1.0, "cbd": 0.0, "cbs": 0.0, "pb": 0.8, "mj": 0.5, "fc": 0.5,
-    "cgso": 0.0, "cgdo": 0.0, "cgbo": 0.0, "cox": 0.0,
+    "rd": 0.0, "rs": 0.0, "isd": 1e-14, "iss": 1e-14, "n": 1.0, "cbd": 0.0, "cbs": 0.0, "cbdsw": 0.0, "cbssw": 0.0,
+    "pb": 0.8, "mj": 0.5, "mjsw": 0.5, "fc": 0.5, "cgso": 0.0, "cgdo": 0.0, "cgbo": 0.0, "cox": 0.0, "weak": 0.0,
 }  # fmt: skip
 
 
@@ -55,6 +56,14 @@ class _Table:
     polarity: list[float] = field(default_factory=list)
     tnom_k: list[float] = field(default_factory=list)
     rth: list[float] = field(default_factory=list)
+
+
+def both_diodes(given: Mapping[str, Number]) -> dict[str, Number]:
+    """Parameters of a MOSFET with a saturation current `is_` written out for the diodes at drain and source."""
+    out = dict(given)
+    if "is_" in out:
+        out["isd"] = out["iss"] = out.pop("is_")
+    return out
 
 
 class Bench:
@@ -120,7 +129,9 @@ class Bench:
         self._device("j", name, (d, g, s), JFET, -1.0 if p else 1.0, given)
 
     def m(self, name: str, d: str, g: str, s: str, body: str = "", *, p: bool = False, **given: Number) -> None:
-        """MOSFET, its body on its source unless named; `vto` positive for enhancement; `is_`, `lambda_`."""
+        """MOSFET, its body on its source unless named; `vto` positive for enhancement; `is_` of both body diodes;
+        `lambda_`."""
+        given = both_diodes(given)
         given.setdefault("channel", -1.0 if p else 1.0)
         self._device("m", name, (d, g, s, body or s), MOSFET, -1.0 if p else 1.0, given)
 

@@ -27,6 +27,7 @@ from checker.circuit.models import (
     jfet_parameters,
     mosfet_parameters,
 )
+from checker.circuit.parameters import LEFT_OUT
 from checker.circuit.parts import symbol_name
 from checker.circuit.pins import Unit, kicad_terminals, spice_terminals
 from checker.netlist.types import Part
@@ -42,6 +43,12 @@ _SUPPRESSOR: Final = lazy(
 _ABOVE_STANDOFF: Final = 1.17
 """Nominal breakdown over stand-off voltage of such parts: their tables give 1.11 to 1.23 (from memory)."""
 _MODEL_WANTED: Final = 'a .model, a known part number, or [[part]] card = "…"'
+_SIZES: Final = frozenset({"w", "l", "ad", "as", "pd", "ps", "nrd", "nrs"})
+_TAKEN: Final = {
+    **dict.fromkeys("QDJ", frozenset({"area", "m"})),
+    "M": _SIZES | {"m"},
+}
+"""Letter -> what is taken into account of what stands beside the model's name."""
 _VOLTS: Final = lazy(r"\d+(?:\.\d+)?V\d*|\d+[.,]?\d* ?V", re.IGNORECASE)
 
 
@@ -64,7 +71,7 @@ def add_bipolar(draft: Draft, part: Part) -> None:
         leave_out(draft, part, "bipolar", f"pin order of {part.ref}", "pin names B, C, E on the symbol, or Sim.Pins")
         return
     parameters = bipolar_parameters(known.written, area=part.params.get("area", 1.0), count=part.params.get("m", 1.0))
-    _tell_unused(draft, known, parameters)
+    _tell_unused(draft, part, known, parameters)
     for unit in units:
         for inner, each in _inside(draft, part, unit, known):
             order = (inner.nets["C"], inner.nets["B"], inner.nets["E"], _substrate(draft, unit))
@@ -104,7 +111,7 @@ def add_diode(draft: Draft, part: Part) -> None:
         leave_out(draft, part, "diode", f"pin order of {part.ref}", "pin names A and K on a two-pin symbol")
         return
     parameters = diode_parameters(written, area=part.params.get("area", 1.0), count=part.params.get("m", 1.0))
-    _tell_unused(draft, known, parameters)
+    _tell_unused(draft, part, known, parameters)
     for unit in units:
         place_device(draft, "diode", part, unit, (unit.nets["A"], unit.nets["K"]), known, parameters)
 
@@ -132,7 +139,7 @@ def add_fet(draft: Draft, part: Part) -> None:
         polarity = polarity_of(known.kind)
         size = part.params if known.model is not None else {}
         parameters = mosfet_parameters(known.written, polarity=polarity, size=size, count=count)
-    _tell_unused(draft, known, parameters)
+    _tell_unused(draft, part, known, parameters)
     for unit in units:
         order = (unit.nets["D"], unit.nets["G"], unit.nets["S"])
         if known.kind in JUNCTION_FET:
@@ -202,7 +209,22 @@ def _breakdown(part: Part) -> float | None:
         return None
 
 
-def _tell_unused(draft: Draft, known: Identity, parameters: Parameters) -> None:
-    if known.model is not None and parameters.unused:
-        text = f".model {known.model.name}: not used: {', '.join(parameters.unused)}"
-        draft.notes.add("models", text)
+def _tell_unused(draft: Draft, part: Part, known: Identity, parameters: Parameters) -> None:
+    """Remarks on what was written of a device, in its model or beside it, and is not taken into account."""
+    beside = sorted(set(part.params) - _TAKEN[part.letter.upper()]) if part.letter.upper() in _TAKEN else []
+    if known.model is None and known.kind in FET:
+        beside = sorted({*beside, *part.params.keys() & _SIZES})
+    # Initial conditions bear on a run in time alone.
+    beside = [name for name in beside if not name.startswith("ic")]
+    if beside:
+        draft.notes.add("models", f"not used: {', '.join(beside)}", part.ref)
+    if known.model is None:
+        return
+    rest = list(parameters.unused)
+    for effect, names in LEFT_OUT.items() if known.kind in BIPOLAR else ():
+        asked = [name for name in rest if name in names]
+        if asked:
+            draft.notes.add("models", f".model {known.model.name}: {effect} is left out: {', '.join(asked)} not used")
+            rest = [name for name in rest if name not in names]
+    if rest:
+        draft.notes.add("models", f".model {known.model.name}: not used: {', '.join(rest)}")

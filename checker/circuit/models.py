@@ -78,25 +78,52 @@ def mosfet_parameters(
     """Level-1 parameters of `count` MOSFETs in parallel; `polarity` +1 N channel, -1 P channel; `size`: `w`, `l` [m] of
     this one.
 
-    KP follows from mobility and oxide where it is not given, GAMMA and PHI from the doping (level-1 rules of the SPICE
-    2G6 guide, from memory). A JS without a junction area is not used.
+    KP follows from mobility and oxide where it is not given, GAMMA and PHI from the doping; junctions from their areas
+    where no whole figure is given; conduction below threshold where NFS asks for it (level-1 rules of the SPICE 2G6
+    guide, NFS as its level 2 has it; from memory). What needs an area or an oxide that is not there is not used.
     """
     given = _respelt(written, p.MOSFET_SPELLINGS)
     values = {name: given.get(name, default) for name, default in p.MOSFET.items()}
-    values |= {name: value for name, value in (size or {}).items() if name in ("w", "l") and value > 0.0}
+    own = {name: value for name, value in (size or {}).items() if math.isfinite(value) and value >= 0.0}
+    values |= {name: own[name] for name in ("w", "l") if own.get(name, 0.0) > 0.0}
     _require_sound("tox", given.get("tox", 0.0))
     values["l"] = max(values["l"] - 2.0 * given.get("ld", 0.0), 1e-9)
     values["channel"] = polarity
     values["vto"] *= polarity
     oxide = OXIDE_F_PER_M / given["tox"] if given.get("tox", 0.0) > 0.0 else 0.0
     values["cox"] = oxide * values["w"] * values["l"]
+    used = {"ld"} | _junctions(values, given, own)
     if oxide:
+        used |= {"tox", "u0", "nsub", "nfs"}
         if "kp" not in given:
             values["kp"] = given.get("u0", 600.0) * 1e-4 * oxide
         _from_doping(values, given, oxide)
+        if given.get("nfs", 0.0) > 0.0:
+            states = CHARGE_C * given["nfs"] * 1e4 / oxide
+            values["weak"] = 1.0 + states + 0.5 * values["gamma"] / math.sqrt(values["phi"])
     values = _scaled(values, count, p.MOSFET_TIMES_COUNT, p.MOSFET_OVER_COUNT)
-    derived = {"tox", "u0", "nsub", "ld"} if oxide else {"ld"}
-    return _finished(values, {k: v for k, v in given.items() if k not in derived}, p.MOSFET)
+    return _finished(values, {k: v for k, v in given.items() if k not in used}, p.MOSFET)
+
+
+def _junctions(values: dict[str, float], given: Mapping[str, float], own: Mapping[str, float]) -> set[str]:
+    """Fill in leakage, capacitance and lead of both junctions from the areas, perimeters and squares of this device
+    where the model has figures per area; the names of those that were used."""
+    both = own.get("ad", 0.0) > 0.0 and own.get("as", 0.0) > 0.0
+    by_area = both and given.get("js", 0.0) > 0.0
+    used = {"is"} | ({"js"} if by_area else set())
+    for end in "ds":
+        area, edge = own.get(f"a{end}", 0.0), own.get(f"p{end}", 0.0)
+        values[f"is{end}"] = given["js"] * area if by_area else given.get("is", p.MOSFET[f"is{end}"])
+        if area and f"cb{end}" not in given:
+            values[f"cb{end}"] = given.get("cj", 0.0) * area
+            used.add("cj")
+        if edge:
+            values[f"cb{end}sw"] = given.get("cjsw", 0.0) * edge
+            used.add("cjsw")
+        if f"r{end}" not in given:
+            values[f"r{end}"] = given.get("rsh", 0.0) * own.get(f"nr{end}", 1.0)
+            used.add("rsh")
+    return used
 
 
 def _from_doping(values: dict[str, float], given: Mapping[str, float], oxide: float) -> None:
@@ -144,6 +171,7 @@ def _finished(values: dict[str, float], given: Mapping[str, float], known: Mappi
         values["bv"] = abs(values["bv"])
     for name, value in (*values.items(), ("tnom", given.get("tnom", DEFAULT_AMBIENT_C))):
         _require_sound(name, value)
-    unused = sorted(name for name in given if name not in known and name not in p.SILENT)
+    off = {name for names in p.LEFT_OUT.values() for name in names if given.get(name) == 0.0}
+    unused = sorted(name for name in given if name not in known and name not in p.SILENT and name not in off)
     tnom_c = given.get("tnom", DEFAULT_AMBIENT_C)
     return Parameters(values=values, tnom_k=tnom_c + ZERO_CELSIUS_K, unused=tuple(unused))

@@ -40,7 +40,6 @@ BIPOLAR: Final[Mapping[str, float]] = {
     "xtf": 0.0,
     "vtf": INF,
     "itf": 0.0,
-    "ptf": 0.0,
     "cjc": 0.0,
     "vjc": 0.75,
     "mjc": 0.33,
@@ -87,6 +86,13 @@ JFET: Final[Mapping[str, float]] = {
     "b": 1.0,
     "is": 1e-14,
     "n": 1.0,
+    "isr": 0.0,
+    "nr": 2.0,
+    "alpha": 0.0,
+    "vk": 0.0,
+    "bv": INF,
+    "ibv": 1e-3,
+    "nbv": 1.0,
     "rd": 0.0,
     "rs": 0.0,
     "cgs": 0.0,
@@ -113,22 +119,29 @@ MOSFET: Final[Mapping[str, float]] = {
     "l": 1e-4,
     "rd": 0.0,
     "rs": 0.0,
-    "is": 1e-14,
+    "isd": 1e-14,
+    "iss": 1e-14,
     "n": 1.0,
     "cbd": 0.0,
     "cbs": 0.0,
+    "cbdsw": 0.0,
+    "cbssw": 0.0,
     "pb": 0.8,
     "mj": 0.5,
+    "mjsw": 0.5,
     "fc": 0.5,
     "cgso": 0.0,
     "cgdo": 0.0,
     "cgbo": 0.0,
     "cox": 0.0,
+    "weak": 0.0,
     "kf": 0.0,
     "af": 1.0,
 }
 """`vto` is counted positive for enhancement of either polarity, `channel` is +1 for N and -1 for P, `l` is the
-effective length, `cox` [F] the oxide over the whole channel."""
+effective length, `cox` [F] the oxide over the whole channel; `isd`, `cbd`, `cbdsw` are of the drain's whole junction
+and its sidewall, `iss`, `cbs`, `cbssw` of the source's; `weak` is the slope n of exp(VGS/(n VT)) below threshold, 0 for
+none."""
 
 OPAMP: Final[Mapping[str, float]] = {"gain": 1e5, "gbw": 1e6, "rout": 75.0, "high": 1.5, "low": 1.5}
 """Open-loop gain, gain-bandwidth product [Hz], output resistance [ohm], what the output keeps from its supplies [V]."""
@@ -206,10 +219,10 @@ RANGES: Final[Mapping[str, tuple[float, float]]] = {
     **_EMISSION,
     **_BUILT_IN,
     **_GRADING,
-    **dict.fromkeys(("is", "w", "l", "ibv"), (1e-60, LARGEST)),
+    **dict.fromkeys(("is", "isd", "iss", "w", "l", "ibv"), (1e-60, LARGEST)),
     **dict.fromkeys(("bf", "br"), (1e-6, 1e9)),
     **dict.fromkeys(("vaf", "var", "ikf", "ikr", "irb", "vtf", "bv"), (1e-9, INF)),
-    **dict.fromkeys(("xti", "xtb", "tbv1", "vto", "ptf", "vtotc", "betatce"), (-1e4, 1e4)),
+    **dict.fromkeys(("xti", "xtb", "tbv1", "vto", "vtotc", "betatce"), (-1e4, 1e4)),
     "eg": (0.1, 10.0),
     "xcjc": (0.0, 1.0),
     "channel": (-1.0, 1.0),
@@ -232,10 +245,16 @@ BIPOLAR_TIMES_AREA: Final = (
 BIPOLAR_OVER_AREA: Final = ("rb", "rbm", "re", "rc")
 DIODE_TIMES_AREA: Final = ("is", "isr", "ikf", "ibv", "cjo")
 DIODE_OVER_AREA: Final = ("rs",)
-JFET_TIMES_AREA: Final = ("beta", "is", "cgs", "cgd")
+JFET_TIMES_AREA: Final = ("beta", "is", "isr", "ibv", "cgs", "cgd")
 JFET_OVER_AREA: Final = ("rd", "rs")
-MOSFET_TIMES_COUNT: Final = ("w", "is", "cbd", "cbs", "cgbo", "cox")
+MOSFET_TIMES_COUNT: Final = ("w", "isd", "iss", "cbd", "cbs", "cbdsw", "cbssw", "cgbo", "cox")
 MOSFET_OVER_COUNT: Final = ("rd", "rs")
 
 SILENT: Final = frozenset({"level", "tnom", "vceo", "vcbo", "icrating", "iave", "vpk", "irms", "isurge", "mfg", "type"})
 """Written in models without an effect on what is computed here: no remark is made."""
+
+LEFT_OUT: Final[Mapping[str, tuple[str, ...]]] = {
+    "quasi-saturation": ("rco", "vo", "gamma", "qco", "quasimod", "vg", "cn", "d"),
+    "excess phase": ("ptf",),
+}
+"""Effects of a bipolar that are not modelled, with the parameters that ask for them where they are not zero."""

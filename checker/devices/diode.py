@@ -16,13 +16,15 @@ import numpy as np
 from checker.arrays import FloatArray
 from checker.devices.evaluation import Evaluation
 from checker.devices.junction import (
+    breakdown,
     capacitance_at,
     critical_v,
     depletion,
     excess,
-    exponential,
     limited,
+    limited_in_breakdown,
     potential_at,
+    recombination,
     saturation_ratio,
     thermal_v,
 )
@@ -63,10 +65,7 @@ def limit(p: Mapping[str, FloatArray], new: FloatArray, old: FloatArray) -> Floa
     n_vt = p["n"] * p["vt"]
     crit = critical_v(p["is"], n_vt)
     forward = limited(new[..., 0], old[..., 0], n_vt, crit)
-    bv = np.where(np.isfinite(p["bv"]), p["bv"], 1e30)
-    knee = p["nbv"] * p["vt"]
-    mirrored = -limited(-(new[..., 0] + bv), -(old[..., 0] + bv), knee, 10.0 * knee) - bv
-    return np.where(new[..., 0] < -bv, mirrored, forward)[..., None]
+    return limited_in_breakdown(new[..., 0], old[..., 0], forward, p["bv"], p["nbv"] * p["vt"])[..., None]
 
 
 def current(p: Mapping[str, FloatArray], v: FloatArray) -> tuple[FloatArray, FloatArray]:
@@ -77,17 +76,9 @@ def current(p: Mapping[str, FloatArray], v: FloatArray) -> tuple[FloatArray, Flo
     g_f = p["is"] * de / n_vt
     root = np.sqrt(1.0 + np.maximum(i_f, 0.0) / p["ikf"])
     g_h = np.where(i_f > 0.0, g_f * (1.0 / root - 0.5 * i_f / p["ikf"] / root**3), g_f)
-    i = i_f / root
-    e_r, de_r = excess(v / (p["nr"] * p["vt"]))
-    depth = (1.0 - v / p["vj"]) ** 2 + 0.005
-    grow = depth ** (p["m"] / 2.0)
-    d_grow = -p["m"] * grow / depth * (1.0 - v / p["vj"]) / p["vj"]
-    i_r = p["isr"] * e_r
-    i = i + i_r * grow
-    g = g_h + p["isr"] * de_r / (p["nr"] * p["vt"]) * grow + i_r * d_grow
-    knee = p["nbv"] * p["vt"]
-    e_b, de_b = exponential(-(v + p["bv"]) / knee)
-    return i - p["ibv"] * e_b, g + p["ibv"] * de_b / knee
+    i_r, g_r = recombination(v, p["isr"], p["nr"] * p["vt"], p["vj"], p["m"])
+    i_b, g_b = breakdown(v, p["bv"], p["ibv"], p["nbv"] * p["vt"])
+    return i_f / root + i_r + i_b, g_h + g_r + g_b
 
 
 def evaluate(

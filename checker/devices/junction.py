@@ -91,3 +91,33 @@ def limited(new: FloatArray, old: FloatArray, n_vt: FloatArray, crit: FloatArray
         n_vt * np.log(np.maximum(new / n_vt, 1e-12)),
     )
     return np.where((new > crit) & (np.abs(step) > 2.0 * n_vt), forward, new)
+
+
+def recombination(
+    v: FloatArray, isr: FloatArray, nr_vt: FloatArray, vj: FloatArray, mj: FloatArray
+) -> tuple[FloatArray, FloatArray]:
+    """Current [A] of recombination in the depletion layer, ISR (exp(v/(NR VT)) - 1) ((1 - v/VJ)^2 + 0.005)^(M/2), and
+    its conductance [S]."""
+    e, de = excess(v / nr_vt)
+    depth = (1.0 - v / vj) ** 2 + 0.005
+    grow = depth ** (mj / 2.0)
+    d_grow = -mj * grow / depth * (1.0 - v / vj) / vj
+    i = isr * e
+    return i * grow, isr * de / nr_vt * grow + i * d_grow
+
+
+def breakdown(v: FloatArray, bv: FloatArray, ibv: FloatArray, knee: FloatArray) -> tuple[FloatArray, FloatArray]:
+    """Current [A] of a junction in breakdown, -IBV exp(-(v + BV)/knee), and its conductance [S]."""
+    e, de = exponential(-(v + bv) / knee)
+    return -ibv * e, ibv * de / knee
+
+
+def limited_in_breakdown(
+    new: FloatArray, old: FloatArray, forward: FloatArray, bv: FloatArray, knee: FloatArray
+) -> FloatArray:
+    """`forward`, the step already held there, but beyond -BV a step that the exponential of breakdown can follow."""
+    at = np.where(np.isfinite(bv), bv, 1e30)
+    beyond = -(new + at)
+    held = limited(beyond, -(old + at), knee, 10.0 * knee)
+    # What is not held comes back to the last digit.
+    return np.where(new < -at, np.where(held == beyond, new, -held - at), forward)

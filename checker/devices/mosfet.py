@@ -1,17 +1,20 @@
 """MOSFET of level 1 after Shichman and Hodges: square-law channel with body effect, body diodes, leads, charges.
 
-Terminals: drain, gate, source, body, inner drain, inner source. Subthreshold conduction, velocity saturation,
-mobility reduction and avalanche are not modelled; the law has its hard corner at the threshold. A power transistor
-is the same law with the width, length and transconductance of its card.
+Terminals: drain, gate, source, body, inner drain, inner source. Velocity saturation, mobility reduction and avalanche
+are not modelled; the law has its hard corner at the threshold, but where a model asks for conduction below it. A power
+transistor is the same law with the width, length and transconductance of its card.
 
 Symbol, variable, meaning (all counted for an N channel; a P channel has its voltages and currents times -1):
     VTO, vto    threshold at zero body bias [V], positive for enhancement of either polarity
     KP, kp      ID = KP/2 W/L VOV^2 (1 + LAMBDA VDS) in the active region [A/V^2];   LAMBDA, lambda  [1/V]
     GAMMA, PHI  body effect: VTH = VTO + GAMMA (sqrt(PHI - VBS) - sqrt(PHI))
     COX, cox    capacitance of the gate oxide over the channel [F]; 0 where the oxide is not given
+    n, weak     below VTH + n VT the current is that at VOV = n VT times exp((VGS - VTH)/(n VT) - 1); 0: it is none
+    ISD, ISS    saturation currents of the body diodes at drain and source [A]
 
 Source: Shichman and Hodges, IEEE J. Solid-State Circuits SC-3(3):285-289 (1968); gate charges after Meyer, RCA Review
-32:42-63 (1971); body diodes and temperature laws after the guide of the SPICE 3F5 program (all from memory).
+32:42-63 (1971); conduction below threshold after Swanson and Meindl, IEEE J. Solid-State Circuits SC-7(2):146-153
+(1972); body diodes and temperature laws after the guide of the SPICE 3F5 program (all from memory).
 """
 
 from __future__ import annotations
@@ -74,10 +77,11 @@ def at_temperature(p: Mapping[str, FloatArray], t_k: FloatArray, tnom_k: FloatAr
     q["phi"] = potential_at(p["phi"], t_k, tnom_k)
     flat = 0.5 * p["channel"] * (gap_nom - gap) + 0.5 * (q["phi"] - p["phi"])
     q["vto"] = p["vto"] + flat + p["gamma"] * (np.sqrt(q["phi"]) - np.sqrt(p["phi"]))
-    q["is"] = p["is"] * np.exp((gap_nom / vt_nom - gap / vt) / p["n"])
+    grown = np.exp((gap_nom / vt_nom - gap / vt) / p["n"])
+    q["isd"], q["iss"] = p["isd"] * grown, p["iss"] * grown
     q["pb"] = potential_at(p["pb"], t_k, tnom_k)
-    for name in ("cbd", "cbs"):
-        q[name] = capacitance_at(p[name], p["mj"], p["pb"], q["pb"], t_k, tnom_k)
+    for name, grading in (("cbd", "mj"), ("cbs", "mj"), ("cbdsw", "mjsw"), ("cbssw", "mjsw")):
+        q[name] = capacitance_at(p[name], p[grading], p["pb"], q["pb"], t_k, tnom_k)
     return q
 
 
@@ -113,10 +117,9 @@ def limit(p: Mapping[str, FloatArray], new: FloatArray, old: FloatArray) -> Floa
     at_drain = np.where(at_drain == over_drain, new[..., 0], at_drain + vds)
     out[..., 0] = np.where(source, at_source, at_drain)
     n_vt = p["n"] * p["vt"]
-    crit = critical_v(p["is"], n_vt)
-    vbs = limited(new[..., 2], old[..., 2], n_vt, crit)
+    vbs = limited(new[..., 2], old[..., 2], n_vt, critical_v(p["iss"], n_vt))
     over_body = vbs - vds
-    vbd = limited(over_body, old[..., 2] - old[..., 1], n_vt, crit)
+    vbd = limited(over_body, old[..., 2] - old[..., 1], n_vt, critical_v(p["isd"], n_vt))
     out[..., 2] = vbs
     out[..., 1] = np.where(vbd == over_body, vds, vbs - vbd)
     return out
@@ -138,15 +141,24 @@ def core(p: Mapping[str, FloatArray], vgs: FloatArray, vds: FloatArray, vbs: Flo
     x = np.abs(vds)
     vg, vb = np.where(forward, vgs, vgs - vds), np.where(forward, vbs, vbs - vds)
     vth, vth_vb = _threshold(p, vb)
-    vov = np.maximum(vg - vth, 0.0)
+    over = vg - vth
+    vov, fade = np.maximum(over, 0.0), np.ones_like(over)
+    n_vt = p["weak"] * p["vt"]
+    below = (over < n_vt) & (n_vt > 0.0)
+    knee = np.where(below, n_vt, 1.0)
+    if np.any(below):
+        # The law at VOV = n VT, fading as the exponential below.
+        vov = np.where(below, knee, vov)
+        fade = np.exp(np.where(below, over / knee - 1.0, 0.0))
     beta = p["kp"] * p["w"] / p["l"]
     u = np.minimum(x, vov)
     early = 1.0 + p["lambda"] * x
     shape = u * (vov - 0.5 * u)
     # d shape/d vov: in the ohmic region u = VDS, beyond pinch-off u = VOV; both give u.
-    i = beta * early * shape
+    i = beta * early * shape * fade
     i_g = beta * early * u
-    i_x = beta * (p["lambda"] * shape + early * np.where(x < vov, vov - u, 0.0))
+    i_x = beta * (p["lambda"] * shape + early * np.where(x < vov, vov - u, 0.0)) * fade
+    i_g = np.where(below, i / knee, i_g)
     i_b = -i_g * vth_vb
     n_vt = p["n"] * p["vt"]
     e_d, de_d = exponential((vbs - vds) / n_vt)
@@ -157,10 +169,10 @@ def core(p: Mapping[str, FloatArray], vgs: FloatArray, vds: FloatArray, vbs: Flo
         d_vds=np.where(forward, i_x, i_g + i_b + i_x),
         d_vbs=np.where(forward, i_b, -i_b),
         vth=vth,
-        i_bd=p["is"] * (e_d - 1.0),
-        g_bd=p["is"] * de_d / n_vt,
-        i_bs=p["is"] * (e_s - 1.0),
-        g_bs=p["is"] * de_s / n_vt,
+        i_bd=p["isd"] * (e_d - 1.0),
+        g_bd=p["isd"] * de_d / n_vt,
+        i_bs=p["iss"] * (e_s - 1.0),
+        g_bs=p["iss"] * de_s / n_vt,
     )
 
 
@@ -213,12 +225,17 @@ def _capacitances(
     forward = at[..., 1] >= 0.0
     vg = np.where(forward, at[..., 0], at[..., 0] - at[..., 1])
     near, far, body = _meyer(p, vg - k.vth, np.abs(at[..., 1]))
+    vbd, vbs = at[..., 2] - at[..., 1], at[..., 2]
+    cbd, cbs = (depletion(v, p[name], p["pb"], p["mj"], p["fc"]) for v, name in ((vbd, "cbd"), (vbs, "cbs")))
+    if np.any(p["cbdsw"]) or np.any(p["cbssw"]):
+        cbd = cbd + depletion(vbd, p["cbdsw"], p["pb"], p["mjsw"], p["fc"])
+        cbs = cbs + depletion(vbs, p["cbssw"], p["pb"], p["mjsw"], p["fc"])
     return (
         np.where(forward, near, far) + p["cgso"] * p["w"],
         np.where(forward, far, near) + p["cgdo"] * p["w"],
         body + p["cgbo"] * p["l"],
-        depletion(at[..., 2] - at[..., 1], p["cbd"], p["pb"], p["mj"], p["fc"]),
-        depletion(at[..., 2], p["cbs"], p["pb"], p["mj"], p["fc"]),
+        cbd,
+        cbs,
     )
 
 

@@ -111,6 +111,19 @@ def test_parameters_in_vain_are_told() -> None:
     assert assumed(circuit, ".model N: not used: tre1")
 
 
+def test_effects_that_are_left_out_are_named() -> None:
+    given = {"rco": 10.0, "vo": 5.0, "gamma": 1e-9, "qco": 0.0, "ptf": 30.0}
+    circuit = spice(bipolar("Q1", "c b e", "N"), models=[model("N", "npn", **given)])
+    assert assumed(circuit, ".model N: quasi-saturation is left out: gamma, rco, vo not used")
+    assert assumed(circuit, ".model N: excess phase is left out: ptf not used")
+
+
+def test_effects_that_a_model_switches_off_are_no_remark() -> None:
+    circuit = spice(bipolar("Q1", "c b e", "N"), models=[model("N", "npn", rco=0.0, qco=0.0, ptf=0.0)])
+    assert not assumed(circuit, "left out")
+    assert not assumed(circuit, "not used")
+
+
 def test_gain_limits_of_a_plain_model_are_assumed() -> None:
     circuit = spice(bipolar("Q1", "c b e", "N"), models=[model("N", "npn", bf=200.0)])
     assert (circuit.parts["Q1"].gain_min, circuit.parts["Q1"].gain_max) == (100.0, 400.0)

@@ -117,6 +117,75 @@ def test_parameters_in_vain_are_told() -> None:
     assert assumed(circuit, ".model MX: not used: delta")
 
 
+AREAS = {"w": 1e-5, "l": 1e-6, "ad": 2e-11, "as": 3e-11, "pd": 1.2e-5, "ps": 1.6e-5, "nrd": 2.0}
+
+
+def test_junctions_follow_from_areas_and_perimeters() -> None:
+    """JS and CJ times the area, CJSW times the perimeter, RSH times the squares (one where they are not given)."""
+    given = {"vto": 0.8, "js": 1e-3, "cj": 4e-4, "cjsw": 3e-10, "mjsw": 0.3, "rsh": 25.0}
+    circuit = spice(spice_part("M1", "d g s 0", model="MX", params=AREAS), models=[model("MX", "nmos", **given)])
+    wanted = {"isd": 2e-14, "iss": 3e-14, "cbd": 8e-15, "cbs": 12e-15, "cbdsw": 3.6e-15, "cbssw": 4.8e-15,
+              "mjsw": 0.3, "rd": 50.0, "rs": 25.0}  # fmt: skip
+    for key, value in wanted.items():
+        assert param(circuit, "M1", key) == pytest.approx(value, rel=1e-12), key
+    assert not assumed(circuit, "not used")
+
+
+def test_whole_figures_outrank_those_per_area() -> None:
+    given = {"vto": 0.8, "cbd": 7e-13, "rd": 3.0, "is": 5e-15, "cj": 4e-4, "rsh": 25.0}
+    circuit = spice(spice_part("M1", "d g s 0", model="MX", params=AREAS), models=[model("MX", "nmos", **given)])
+    wanted = {"isd": 5e-15, "iss": 5e-15, "cbd": 7e-13, "cbs": 12e-15, "rd": 3.0, "rs": 25.0}
+    for key, value in wanted.items():
+        assert param(circuit, "M1", key) == pytest.approx(value, rel=1e-12), key
+
+
+def test_figures_per_area_without_an_area_are_told() -> None:
+    given = {"vto": 0.8, "js": 1e-3, "cj": 4e-4, "cjsw": 3e-10, "nfs": 1e11}
+    circuit = spice(spice_part("M1", "d g s 0", model="MX"), models=[model("MX", "nmos", **given)])
+    assert assumed(circuit, ".model MX: not used: cj, cjsw, js, nfs")
+    assert param(circuit, "M1", "isd") == param(circuit, "M1", "iss") == 1e-14
+    assert param(circuit, "M1", "weak") == 0.0
+
+
+def test_three_in_parallel_have_three_times_the_junction() -> None:
+    given = {"vto": 0.8, "js": 1e-3, "cj": 4e-4, "cjsw": 3e-10}
+    part = spice_part("M1", "d g s 0", model="MX", params={**AREAS, "m": 3.0})
+    circuit = spice(part, models=[model("MX", "nmos", **given)])
+    for key, value in {"isd": 6e-14, "cbd": 24e-15, "cbdsw": 10.8e-15}.items():
+        assert param(circuit, "M1", key) == pytest.approx(value, rel=1e-12)
+
+
+def test_slope_below_threshold_follows_from_surface_states() -> None:
+    """n = 1 + q NFS/COX + GAMMA/(2 sqrt PHI), NFS per square centimetre; worked out from the constants' values."""
+    given = {"vto": 0.8, "tox": 2e-8, "nfs": 2e11, "gamma": 0.5, "phi": 0.64}
+    circuit = spice(spice_part("M1", "d g s", model="MX"), models=[model("MX", "nmos", **given)])
+    cox = OXIDE_F_PER_M / 2e-8
+    assert param(circuit, "M1", "weak") == pytest.approx(1.0 + 1.602176634e-19 * 2e15 / cox + 0.5 / 1.6, rel=1e-12)
+    assert not assumed(circuit, "not used")
+
+
+def test_what_stands_beside_a_model_in_vain_is_told() -> None:
+    parts = [
+        spice_part("M1", "d g s", model="MX", params={"w": 1e-5, "temp": 80.0, "ic": 1.0}),
+        spice_part("J1", "d g s", model="JX", params={"area": 2.0, "dtemp": 5.0}),
+        spice_part("M2", "d g s", model="2N7002", text="2N7002", params={"w": 1e-5}),
+    ]
+    circuit = spice(*parts, models=[model("MX", "nmos", vto=1.0), model("JX", "njf", vto=-2.0)])
+    assert assumed(circuit, "M1: not used: temp")
+    assert assumed(circuit, "J1: not used: dtemp")
+    assert assumed(circuit, "M2: not used: w")
+
+
+def test_gate_junction_of_a_model_that_states_it() -> None:
+    given = {"vto": -2.0, "beta": 1e-3, "isr": 1e-12, "nr": 2.0, "alpha": 1e-4, "vk": 80.0, "bv": 30.0, "ibv": 1e-6}
+    part = spice_part("J1", "d g s", model="JX", params={"area": 2.0})
+    circuit = spice(part, models=[model("JX", "njf", **given)])
+    scaled = {**given, "beta": 2e-3, "isr": 2e-12, "ibv": 2e-6}
+    for key, value in scaled.items():
+        assert param(circuit, "J1", key) == pytest.approx(value, rel=1e-12), key
+    assert not assumed(circuit, "not used")
+
+
 # --- schematic ----------------------------------------------------------------------------------------------
 def schematic(*parts: Part) -> Circuit:
     """A board with ground and a supply around."""

@@ -42,15 +42,18 @@ JFET_SETS: dict[str, dict[str, float]] = {
     "ideal": {},
     "full": {"vto": -2.8, "beta": 1.28e-3, "lambda": 0.012, "is": 3e-14, "n": 1.1, "rd": 12.0, "rs": 8.0,
              "cgs": 4e-12, "cgd": 5e-12, "pb": 0.8, "m": 0.4, "vtotc": -2.2e-3, "betatce": -0.5},
+    "ionising, breaking down": {"vto": -1.9, "beta": 2e-3, "lambda": 0.01, "is": 2e-14, "isr": 3e-12, "nr": 2.1,
+                                "alpha": 3e-4, "vk": 25.0, "bv": 9.0, "ibv": 1e-6, "nbv": 1.5, "rd": 5.0, "rs": 5.0},
     "doping tail": {"vto": -1.8, "beta": 9e-4, "lambda": 0.02, "b": 0.6, "pb": 0.9},
 }  # fmt: skip
 MOSFET_SETS: dict[str, dict[str, float]] = {
     "ideal": {},
     "full": {"vto": 0.9, "kp": 5e-5, "lambda": 0.02, "gamma": 0.55, "phi": 0.65, "w": 40e-6, "l": 4e-6, "rd": 9.0,
-             "rs": 6.0, "is": 2e-14, "n": 1.1, "cbd": 3e-13, "cbs": 4e-13, "cgso": 3e-10, "cgdo": 2e-10,
+             "rs": 6.0, "isd": 2e-14, "iss": 3e-14, "n": 1.1, "cbd": 3e-13, "cbs": 4e-13, "cgso": 3e-10, "cgdo": 2e-10,
              "cgbo": 1e-10, "cox": 1.1e-13},
+    "below threshold": {"vto": 0.7, "kp": 2e-4, "lambda": 0.03, "gamma": 0.4, "phi": 0.7, "weak": 1.7, "rd": 4.0},
     "depletion": {"vto": -2.5, "kp": 1e-3, "lambda": 0.01, "gamma": 0.3},
-    "power": {"vto": 3.0, "kp": 28.0, "lambda": 0.005, "rd": 0.031, "is": 1e-13, "n": 1.2, "cgdo": 4e-11,
+    "power": {"vto": 3.0, "kp": 28.0, "lambda": 0.005, "rd": 0.031, "isd": 1e-13, "iss": 1e-13, "n": 1.2, "cgdo": 4e-11,
               "cgso": 1.9e-9},
 }  # fmt: skip
 

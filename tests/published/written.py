@@ -11,6 +11,8 @@ from tests.bench import BIPOLAR, DIODE, JFET, MOSFET, Bench
 from tests.whole import intent_text, set_up_from
 
 KINDS = {"q": (BIPOLAR, "NPN", "PNP"), "d": (DIODE, "D", "D"), "j": (JFET, "NJF", "PJF"), "m": (MOSFET, "NMOS", "PMOS")}
+UNWRITTEN = ("channel", "cox", "w", "l", "iss", "cbdsw", "cbssw", "weak")
+"""What the netlist's text says otherwise, or a bench of text leaves at nothing."""
 
 
 def text_of(b: Bench) -> str:
@@ -38,8 +40,10 @@ def _devices(b: Bench, kind: str) -> list[str]:
         written = {
             key: value * sign if (kind, key) == ("m", "vto") else value
             for key, value in given.items()
-            if key in defaults and key not in ("channel", "cox", "w", "l") and math.isfinite(float(value))
+            if key in defaults and key not in UNWRITTEN and math.isfinite(float(value))
         }
+        if kind == "m":
+            written["is"] = written.pop("isd")
         words = " ".join(f"{key.upper()}={float(value)!r}" for key, value in written.items())
         out.append(f".model X{name} {positive if sign > 0 else negative}({words} TNOM={tnom_k - ZERO_CELSIUS_K:.10g})")
     return out

@@ -12,7 +12,7 @@ from typing import Any
 
 import mpmath as mp
 
-from tests.bench import JFET, MOSFET
+from tests.bench import JFET, MOSFET, both_diodes
 
 Num = Any
 K_OVER_Q = mp.mpf("1.380649e-23") / mp.mpf("1.602176634e-19")
@@ -50,6 +50,7 @@ class Jfet:
         p["vto"] += p["vtotc"] * (t - t0)
         p["beta"] *= mp.mpf("1.01") ** (p["betatce"] * (t - t0))
         p["is"] *= (t / t0) ** (p["xti"] / p["n"]) * mp.exp(p["eg"] / p["n"] * (1 / vt0 - 1 / self.vt))
+        p["isr"] *= (t / t0) ** (p["xti"] / p["nr"]) * mp.exp(p["eg"] / p["nr"] * (1 / vt0 - 1 / self.vt))
         p["pb"] = _potential(pb, t, t0)
         for name in ("cgs", "cgd"):
             p[name] *= 1 + p["m"] * (mp.mpf("4e-4") * (t - t0) + 1 - p["pb"] / pb)
@@ -71,12 +72,28 @@ class Jfet:
         return p["beta"] * (1 + p["lambda"] * vds) * shape
 
     def gate(self, v: Num) -> Num:
-        """Current of one gate junction."""
-        return self.p["is"] * mp.expm1(v / (self.p["n"] * self.vt))
+        """Current of one gate junction: diffusion, recombination, breakdown."""
+        p = self.p
+        recombined = (
+            p["isr"] * mp.expm1(v / (p["nr"] * self.vt)) * ((1 - v / p["pb"]) ** 2 + mp.mpf("0.005")) ** (p["m"] / 2)
+        )
+        broken = p["ibv"] * mp.exp(-(v + p["bv"]) / (p["nbv"] * self.vt)) if mp.isfinite(p["bv"]) else 0
+        return p["is"] * mp.expm1(v / (p["n"] * self.vt)) + recombined - broken
+
+    def ionised(self, vgs: Num, vgd: Num) -> Num:
+        """Current that the channel's carriers set free between the gate and the end that acts as drain."""
+        p = self.p
+        over, vds = max(vgs, vgd) - p["vto"], abs(vgs - vgd)
+        w = vds - over
+        if over <= 0 or w <= 0:
+            return mp.mpf(0)
+        return abs(self.channel(vgs, vgd)) * p["alpha"] * w * mp.exp(-p["vk"] / w)
 
     def terminal(self, vgs: Num, vgd: Num) -> tuple[Num, Num]:
         """(drain, gate) current into the inner device."""
-        return self.channel(vgs, vgd) - self.gate(vgd), self.gate(vgs) + self.gate(vgd)
+        ion = self.ionised(vgs, vgd)
+        drain = self.channel(vgs, vgd) - self.gate(vgd) + (ion if vgs >= vgd else 0)
+        return drain, self.gate(vgs) + self.gate(vgd) - ion
 
     def at(self, vgs: Num, vgd: Num) -> Flow:
         """Terminal quantities; outer gate-source and gate-drain voltage."""
@@ -89,7 +106,7 @@ class Mosfet:
     """Level-1 MOSFET: currents into inner drain and body as functions of vgs, vds, vbs; N channel."""
 
     def __init__(self, given: dict[str, float], t_c: float = 27.0) -> None:
-        p = {k: mp.mpf(v) for k, v in {**MOSFET, **{n.rstrip("_"): x for n, x in given.items()}}.items()}
+        p = {k: mp.mpf(v) for k, v in {**MOSFET, **{n.rstrip("_"): x for n, x in both_diodes(given).items()}}.items()}
         t, t0 = mp.mpf(t_c) + mp.mpf("273.15"), mp.mpf(27) + mp.mpf("273.15")
         self.vt = K_OVER_Q * t
         phi, pb = p["phi"], p["pb"]
@@ -98,7 +115,8 @@ class Mosfet:
         flat_band += p["channel"] * (_gap(t0) - _gap(t)) / 2 + (p["phi"] - phi) / 2
         p["vto"] = flat_band + p["gamma"] * mp.sqrt(p["phi"])
         p["kp"] /= (t / t0) ** mp.mpf("1.5")
-        p["is"] *= mp.exp((_gap(t0) / (K_OVER_Q * t0) - _gap(t) / self.vt) / p["n"])
+        for name in ("isd", "iss"):
+            p[name] *= mp.exp((_gap(t0) / (K_OVER_Q * t0) - _gap(t) / self.vt) / p["n"])
         for name in ("cbd", "cbs"):
             p[name] *= 1 + p["mj"] * (mp.mpf("4e-4") * (t - t0) + 1 - p["pb"] / pb)
         self.p = p
@@ -115,19 +133,22 @@ class Mosfet:
         if vds < 0:
             return -self.channel(vgs - vds, -vds, vbs - vds)
         p = self.p
-        over = vgs - self.threshold(vbs)
-        if over <= 0:
+        over, fade = vgs - self.threshold(vbs), mp.mpf(1)
+        knee = p["weak"] * self.vt
+        if knee > 0 and over < knee:
+            over, fade = knee, mp.exp((over - knee) / knee)
+        elif over <= 0:
             return mp.mpf(0)
         shape = vds * (over - vds / 2) if vds < over else over**2 / 2
-        return p["kp"] * p["w"] / p["l"] * (1 + p["lambda"] * vds) * shape
+        return p["kp"] * p["w"] / p["l"] * (1 + p["lambda"] * vds) * shape * fade
 
-    def diode(self, v: Num) -> Num:
-        """Current of one body diode."""
-        return self.p["is"] * mp.expm1(v / (self.p["n"] * self.vt))
+    def diode(self, v: Num, end: str) -> Num:
+        """Current of the body diode at drain (`d`) or source (`s`)."""
+        return self.p[f"is{end}"] * mp.expm1(v / (self.p["n"] * self.vt))
 
     def terminal(self, vgs: Num, vds: Num, vbs: Num) -> tuple[Num, Num]:
         """(drain, body) current into the inner device."""
-        drain, source = self.diode(vbs - vds), self.diode(vbs)
+        drain, source = self.diode(vbs - vds, "d"), self.diode(vbs, "s")
         return self.channel(vgs, vds, vbs) - drain, drain + source
 
     def at(self, vgs: Num, vds: Num, vbs: Num) -> Flow:

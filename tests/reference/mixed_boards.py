@@ -15,7 +15,8 @@ from tests.reference.physics import Diode, Transistor
 
 NJF: dict[str, float] = {
     "vto": -2.8, "beta": 1.28e-3, "lambda_": 0.012, "is_": 3e-14, "n": 1.1, "rd": 12.0, "rs": 8.0,
-    "pb": 0.8, "b": 0.9, "vtotc": -2.2e-3, "betatce": -0.5,
+    "pb": 0.8, "b": 0.9, "vtotc": -2.2e-3, "betatce": -0.5, "isr": 1.5e-13, "nr": 2.1, "alpha": 3e-4, "vk": 60.0,
+    "bv": 40.0, "ibv": 1e-6, "nbv": 1.4,
 }  # fmt: skip
 PJF: dict[str, float] = {"vto": -2.2, "beta": 9e-4, "lambda_": 0.02, "is_": 5e-14, "rd": 20.0, "rs": 20.0}
 NMOS: dict[str, float] = {

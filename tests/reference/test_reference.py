@@ -43,8 +43,9 @@ def solved(make: Callable[[], Board]) -> tuple[Board, SimpleNamespace, Operating
     def rough(x: np.ndarray) -> list[float]:
         return [float(r) for r in board.dc(_named(board, [float(v) for v in x]))]
 
-    found = optimize.root(rough, list(board.guess.values()), method="hybr", tol=1e-12)
-    assert np.max(np.abs(found.fun)) < 1e-3, found.message
+    tried = (optimize.root(rough, list(board.guess.values()), method=method, tol=1e-12) for method in ("hybr", "lm"))
+    found = next((one for one in tried if np.max(np.abs(one.fun)) < 1e-3), None)
+    assert found is not None, "no rough root from the guess"
     root = mp.findroot(
         lambda *x: board.dc(_named(board, list(x))), [mp.mpf(v) for v in found.x], tol=mp.mpf("1e-46"), maxsteps=30
     )

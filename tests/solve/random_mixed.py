@@ -6,7 +6,7 @@ from dataclasses import dataclass
 
 from hypothesis import strategies as st
 
-from tests.bench import BIPOLAR, DIODE, JFET, MOSFET, Bench
+from tests.bench import BIPOLAR, DIODE, JFET, MOSFET, Bench, both_diodes
 from tests.reference.boards import NPN, PNP, SIGNAL_DIODE
 from tests.reference.mixed_boards import NJF, NMOS, PJF, PMOS, SOFT_ZENER
 from tests.solve.random_circuits import RAILS, SUPPLY, ohms
@@ -15,7 +15,7 @@ MODELS: dict[str, dict[str, float]] = {
     "npn": NPN, "pnp": PNP, "njf": NJF, "pjf": PJF, "nmos": NMOS, "pmos": PMOS, "diode": SIGNAL_DIODE,
     "zener": SOFT_ZENER,
 }  # fmt: skip
-CURRENTS = {"is", "ise", "isc", "isr", "ikf", "ikr", "irb", "itf", "ibv", "beta", "kp"}
+CURRENTS = {"is", "isd", "iss", "ise", "isc", "isr", "ikf", "ikr", "irb", "itf", "ibv", "beta", "kp"}
 CURRENTS_AND_CHARGES = CURRENTS | {"cje", "cjc", "cjs", "cjo", "cgs", "cgd", "cbd", "cbs", "cgso", "cgdo", "cgbo"}
 LEADS = {"rb", "rbm", "rc", "re", "rs", "rd"}
 DEFAULTS = {"q": BIPOLAR, "j": JFET, "m": MOSFET, "d": DIODE}
@@ -24,7 +24,8 @@ DEFAULTS = {"q": BIPOLAR, "j": JFET, "m": MOSFET, "d": DIODE}
 def scaled(letter: str, given: dict[str, float], ohm: float) -> dict[str, float]:
     """Model parameters at `ohm` times the impedance: currents (of a channel its transconductance) and capacitances
     divided, leads multiplied."""
-    full = {**DEFAULTS[letter], **{key.rstrip("_"): value for key, value in given.items()}}
+    written = both_diodes(given) if letter == "m" else given
+    full = {**DEFAULTS[letter], **{key.rstrip("_"): float(value) for key, value in written.items()}}
     by = {**dict.fromkeys(CURRENTS_AND_CHARGES, 1.0 / ohm), **dict.fromkeys(LEADS, ohm)}
     if letter == "q":
         full.setdefault("rbm", full["rb"])

@@ -685,6 +685,15 @@ def _jfet_gate_of_ten_gigohm(b: Bench) -> None:
     b.j("J1", "d", "g", "s", **JFET)
 
 
+@circuit(d=(17.0, 22.0))
+def _jfet_gate_in_breakdown(b: Bench) -> None:
+    """The drain rises until the gate's junction carries what the channel, pinched off, does not."""
+    b.v("V", "vcc", "0", 60.0)
+    b.v("VG", "g", "0", -10.0)
+    b.r("RD", "vcc", "d", 33e3)
+    b.j("J1", "d", "g", "0", **JFET, bv=30.0, ibv=1e-3, isr=1e-12, alpha=1e-4, vk=50.0)
+
+
 @circuit(d=(0.0, 0.6))
 def _mosfet_load_switch_on(b: Bench) -> None:
     b.v("V", "vcc", "0", 24.0)
