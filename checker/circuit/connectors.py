@@ -28,6 +28,9 @@ class Family:
 
 
 FAMILIES: Final = (
+    Family(name="HD-BNC", pattern=r"HD[-_ ]?BNC", ohm=75.0, source="IEC 61169-70"),
+    Family(name="SMP3", pattern=r"SMP[-_ ]?3", ohm=50.0, source="IEC 61169-69"),
+    Family(name="4.3-10", pattern=r"4[.,_]?3[-/_]10", ohm=50.0, source="IEC 61169-54"),
     Family(name="BNC", pattern=r"BNC", ohm=50.0, also=75.0, source="IEC 61169-8"),
     Family(name="TNC", pattern=r"TNC", ohm=50.0, source="IEC 61169-17"),
     Family(name="SMA", pattern=r"SMA", ohm=50.0, source="IEC 61169-15"),

@@ -78,7 +78,7 @@ _DEVICE: Final[dict[str, Kind]] = {
 them: it repeats the letter of the reference, so every connector J1 would be a transistor."""
 
 COAXIAL: Final = lazy(
-    r"COAX|(?<![A-Z0-9])(?:BNC|TNC|SMA|SMB|SMC|SMP|MCX|MMCX|UFL|U\.FL|IPEX|RF[-_ ]?CONN)(?![A-Z])",
+    r"COAX|(?<![A-Z0-9])(?:HD-?BNC|BNC|TNC|SMA|SMB|SMC|SMP3?|4[.,]3-10|MCX|MMCX|UFL|U\.FL|IPEX|RF[-_ ]?CONN)(?![A-Z])",
     re.IGNORECASE,
 )
 _SMA_DIODE: Final = lazy(r"(?:^|[:_\[ -])D(?:O-?214A[CB])?_?(?:SM[ABC])|DIODE", re.IGNORECASE)
