@@ -14,6 +14,7 @@ from checker.pattern import lazy
 _SORTS: Final = (
     ("loudspeaker", r"SPEAKER\w*|LOUDSPEAKER\w*", ("LS", "SP", "SPK")),
     ("buzzer", r"BUZZER\w*|BEEPER\w*", ("BZ", "LS")),
+    ("microphone", r"MIC(?:ROPHONE)?(?:_\w+)?", ("MK", "MIC")),
     ("motor", r"MOTOR\w*", ("M", "MOT")),
     ("solenoid", r"SOLENOID\w*|ELECTROMAGNET\w*", ("L", "Y")),
     ("lamp", r"LAMP\w*|BULB\w*", ("LA", "H", "DS")),
