@@ -94,7 +94,29 @@ _FACT_KINDS: Final[dict[Kind, PartKind]] = {
 }
 """Kinds that an export which the reader did not understand leaves unusable."""
 _ENTER: Final = frozenset(
-    {"m", "area", "tol", "rser", "lser", "rpar", "cpar", "w", "l", "r", "c", "value", "val", "ic", "off"}
+    {
+        "m",
+        "area",
+        "tol",
+        "rser",
+        "lser",
+        "rpar",
+        "cpar",
+        "w",
+        "l",
+        "ad",
+        "as",
+        "pd",
+        "ps",
+        "nrd",
+        "nrs",
+        "r",
+        "c",
+        "value",
+        "val",
+        "ic",
+        "off",
+    }
 )
 """Pairs of SPICE elements that are used, and two that only start a simulation."""
 _VALUED: Final[tuple[Kind, ...]] = ("resistor", "capacitor", "inductor", "potentiometer", "array")

@@ -280,11 +280,12 @@ def _without_value(draft: Draft, part: Part, kind: str, ends: tuple[str, str]) -
 
 
 def _fact(draft: Draft, part: Part, kind: PartKind, ends: tuple[str, str], value: Value | None) -> PartFact:
-    ratings, whence = Ratings(), ""
+    ratings, whence, dielectric = Ratings(), "", ""
     if draft.netlist.format == "kicad":
-        from checker.circuit.sizes import ratings_of
+        from checker.circuit.sizes import dielectric_of, ratings_of
 
         ratings, whence = ratings_of(part, kind)
+        dielectric = dielectric_of(part) if kind == "capacitor" else ""
     return PartFact(
         ref=part.ref,
         kind=kind,
@@ -293,6 +294,7 @@ def _fact(draft: Draft, part: Part, kind: PartKind, ends: tuple[str, str], value
         value=value,
         ratings=ratings,
         ratings_source=whence,
+        dielectric=dielectric,
         footprint=part.footprint,
     )
 

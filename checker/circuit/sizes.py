@@ -25,6 +25,12 @@ PRACTICE: Final = "common practice, no source"
 _SIZE: Final = lazy(r"(?<!\d)(0201|0402|0603|0805|1206|1210|1812|2010|2512)(?!\d)")
 _DIN: Final = lazy(r"(?:AXIAL_DIN|DIN)(\d{4})", re.IGNORECASE)
 _WATTS: Final = lazy(r"(?<![\w.])(?:(\d)/(\d)|(\d+(?:[.,]\d+)?)\s*(m)?)\s*W(?![A-Z0-9])", re.IGNORECASE)
+_DIELECTRIC: Final = lazy(
+    r"(?<![A-Z0-9])(?:[CN][0P][G0]|X[5-8][RST]|Y5V|Z5U|U2J|PET|PPS|PEN|MKP|MKT|MKS|FKP|film|mica|ceramic|tantal(?:um)?"
+    r"|electrolytic|polymer|polyester|polypropylene|polystyrene)(?![A-Z0-9])",
+    re.IGNORECASE,
+)
+_POLARIZED: Final = lazy(r"C_?POL|CP\d?(?:_|$|\W)|POLARIZED", re.IGNORECASE)
 _FIELDS: Final = ("Voltage", "Rated Voltage", "Voltage Rating", "V", "Rating")
 
 
@@ -51,6 +57,16 @@ def ratings_of(part: Part, kind: str) -> tuple[Ratings, str]:
             said.append(f"{what} by the {rated[1]}")
     ratings = Ratings(p_max_w=watts[0] if watts else None, v_max_v=volts[0] if volts else None)
     return ratings, "; ".join(said)
+
+
+def dielectric_of(part: Part) -> str:
+    """What a capacitor is made with and where that is said; class letters as in EIA-198 (from memory)."""
+    fields = [(f"field {key}", part.fields.get(key, "")) for key in ("Dielectric", "Type", "Description")]
+    for who, text in (("value", part.value), *fields, ("description", part.description)):
+        found = _DIELECTRIC.search(text)
+        if found is not None:
+            return f"{found[0].upper() if len(found[0]) < 4 else found[0].lower()} by the {who}"
+    return "electrolytic by the symbol" if _POLARIZED.search(part.symbol) else ""
 
 
 def stated_watts(text: str) -> float | None:

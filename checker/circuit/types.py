@@ -194,6 +194,8 @@ class PartFact:
     model_source: str = ""
     ratings: Ratings = field(default_factory=Ratings)
     ratings_source: str = ""
+    dielectric: str = ""
+    """Of a capacitor, with where it is said: "X7R by the value"; empty where nothing says it."""
     gain_min: float | None = None
     gain_max: float | None = None
     footprint: str = ""

@@ -149,6 +149,8 @@ def _plain_number(head: re.Match[str], folded: str, unit: str, text: str) -> tup
 
 def _exponent(prefix: str, unit: str, text: str) -> int:
     if prefix.lower().startswith("meg"):
+        if unit in _NEEDS_PREFIX:
+            raise _refusal(text, unit, f"the prefix {prefix} would make it absurdly large")
         return 6
     if unit == "ohm" and prefix in ("u", "U", "n", "N", "p", "P", "f"):
         raise _refusal(text, unit, f"the prefix {prefix} belongs to another kind of part")

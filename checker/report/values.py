@@ -45,6 +45,8 @@ class FactShown(Protocol):
     def ratings(self) -> RatingsShown: ...
     @property
     def ratings_source(self) -> str: ...
+    @property
+    def dielectric(self) -> str: ...
 
 
 def render_values(facts: Iterable[FactShown], *, width: int, colour: bool) -> str:
@@ -67,4 +69,5 @@ def _told(fact: FactShown) -> str:
     ratings = [given(number, unit) for number, unit in rated if number is not None]
     if ratings:
         words.append(f"{' and '.join(ratings)} ({clean(fact.ratings_source)})")
+    words += [clean(fact.dielectric)] if fact.dielectric else []
     return ", ".join(words)
