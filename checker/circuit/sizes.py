@@ -63,10 +63,13 @@ def dielectric_of(part: Part) -> str:
     """What a capacitor is made with and where that is said; class letters as in EIA-198 (from memory)."""
     fields = [(f"field {key}", part.fields.get(key, "")) for key in ("Dielectric", "Type", "Description")]
     for who, text in (("value", part.value), *fields, ("description", part.description)):
-        found = _DIELECTRIC.search(text)
+        # Most values are a number and a letter; the long pattern is for the others.
+        plain = not text or (who == "value" and text.isalnum())
+        found = None if plain else _DIELECTRIC.search(text)
         if found is not None:
             return f"{found[0].upper() if len(found[0]) < 4 else found[0].lower()} by the {who}"
-    return "electrolytic by the symbol" if _POLARIZED.search(part.symbol) else ""
+    polarized = "P" in part.symbol.upper() and _POLARIZED.search(part.symbol) is not None
+    return "electrolytic by the symbol" if polarized else ""
 
 
 def stated_watts(text: str) -> float | None:

@@ -9,11 +9,12 @@ from __future__ import annotations
 from collections import Counter, defaultdict
 from collections.abc import Iterable, Mapping, Sequence
 from dataclasses import replace
+from pathlib import Path
 
 from checker.netlist.fitting import is_left_out
 from checker.netlist.limits import ReadLimits, over
 from checker.netlist.sexpr import Parsed, Tree, child, children, own_text, parse, text_of
-from checker.netlist.types import Net, Netlist, Part, Pin, Remark
+from checker.netlist.types import Model, Net, Netlist, Part, Pin, Remark
 from checker.pattern import lazy
 from checker.quantity.value import Origin
 from checker.shape import frozen
@@ -22,6 +23,8 @@ from checker.trouble import InputTrouble
 _VERSIONS = ("D", "E")
 _LETTERS = lazy(r"[^\W\d_]+")
 _DIGITS = lazy(r"(\d+)")
+MODEL_FIELDS = ("Sim.Params", "Sim.Library", "Spice_Lib_File")
+"""A part with none of them has no model of its own."""
 _OF_THE_TOOL = ("Sheetname", "Sheetfile", "ki_keywords", "ki_fp_filters", "ki_description")
 
 _PinTable = Mapping[tuple[str, str], Mapping[str, tuple[str, str]]]
@@ -35,8 +38,17 @@ class _Nodes:
     lines: dict[str, int]
 
 
-def read_kicad(text: str, *, name: str, sha256: str, limits: ReadLimits) -> Netlist:
-    """Read the export in `text`; `name` is the file's name in messages and origins.
+def read_kicad(
+    text: str,
+    *,
+    name: str,
+    sha256: str,
+    path: Path,
+    include_dirs: tuple[Path, ...],
+    limits: ReadLimits,
+    size: int,
+) -> Netlist:
+    """Read the export in `text`; `name` is the file's name in messages and origins, `size` its bytes.
 
     Raises `InputTrouble` for damaged text, no component list, or a limit exceeded.
     """
@@ -50,6 +62,13 @@ def read_kicad(text: str, *, name: str, sha256: str, limits: ReadLimits) -> Netl
     parts = _told_apart(parts, remarks)
     remarks += _lost_nodes(parts, nodes, name)
     remarks += _doubled_pins(parts)
+    models: dict[str, Model] = {}
+    if any(part.fields.get(key) for part in parts for key in MODEL_FIELDS):
+        from checker.netlist.kicad_models import with_models  # few exports carry models
+
+        found = with_models(parts, path=path, include_dirs=include_dirs, limits=limits, size=size)
+        parts, models = found.parts, found.models
+        remarks += found.remarks
     return Netlist(
         path=name,
         format="kicad",
@@ -57,6 +76,7 @@ def read_kicad(text: str, *, name: str, sha256: str, limits: ReadLimits) -> Netl
         title=_title(root),
         parts=tuple(parts),
         nets=nodes.nets,
+        models=models,
         remarks=tuple(remarks),
     )
 

@@ -64,7 +64,16 @@ def _read(path: Path, include_dirs: tuple[Path, ...], limits: ReadLimits) -> Net
         )
     from checker.netlist.kicad_read import read_kicad
 
-    return read_kicad(text, name=name, sha256=sha256, limits=limits)
+    with _room_for(limits.depth):
+        return read_kicad(
+            text,
+            name=name,
+            sha256=sha256,
+            path=path,
+            include_dirs=include_dirs,
+            limits=limits,
+            size=len(data),
+        )
 
 
 @contextmanager

@@ -111,7 +111,8 @@ def new_part(
     params: Mapping[str, float] | None = None,
     **more: object,
 ) -> Part:
-    """A part with pins on `nodes`; `params` None: the pairs on the card; `more`: its other fields."""
+    """The part of a card with these nodes; `params`: instead of the pairs on the card. Raises `NotAQuantity` where a
+    pair does not compute."""
     pins = tuple(
         Pin(number=str(index), net=place.net(f"?{element.ref}.{index}" if node == "?" else node))
         for index, node in enumerate(nodes, start=1)

@@ -156,7 +156,10 @@ def _exponent(prefix: str, unit: str, text: str) -> int:
         raise _refusal(text, unit, f"the prefix {prefix} belongs to another kind of part")
     if unit in _NEEDS_PREFIX and prefix in ("M", "K", "k", "G", "T"):
         raise _refusal(text, unit, f"the prefix {prefix} would make it absurdly large")
-    return EXPONENTS[prefix if prefix in EXPONENTS else prefix.lower()]
+    power = EXPONENTS.get(prefix, EXPONENTS.get(prefix.lower()))
+    if power is None:
+        raise _refusal(text, unit, f"{prefix} is no prefix")
+    return power
 
 
 def _ends(rest: str) -> bool:

@@ -26,6 +26,9 @@ SEEDS: dict[str, tuple[bytes, ...]] = {
         b"D1 a k dd 2\n.lib tt\n.param z={if(1>2,3,4)+limit(1,2,3)**2}\n.endl tt\n.options temp=40\nI1 0 a "
         b"PWL(0 1 1m 2)\nT1 a 0 b 0 Z0=50 TD=1n\nG1 a 0 VALUE={V(b)*2}\nF1 a 0 V1 3\nB1 a 0 V=V(b)\n"
         b"S1 a 0 b 0 sw\n.END\nrest\n",
+        b"* formulas\nB1 a 0 V=2*V(b,c)\nE1 a 0 VALUE={V(b)/2}\nG1 a 0 cur='I(V1)*2' m=2\nB2 a 0 I=1m\nV1 a 0 1\n"
+        b"R1 a 0 10k 1% 1/4W\nR2 b 0 1k tol=5\nF1 a 0 V1 2\nH1 a 0 V1 2\nO1 a 0 b 0 line\n.model line ltra(l=1u)\n"
+        b".subckt only a b\nR1 a b 1k\n.ends\n.model q npn(bf=oops 7)\nQ1 a b 0 q\nL1 a 0 1u Rser=1\n",
         b"* pads\nU1 a b c d OPA\nQ1 a b c BC850\nQ_Q2 a [s] b x Net-(Q1-B) ~{RST} mine\n.macro m 1 2\n.eom\n"
         b".title t\n",
     ),
@@ -36,6 +39,12 @@ SEEDS: dict[str, tuple[bytes, ...]] = {
         b"(libparts (libpart (lib a) (part b) (aliases (alias c)) (pins (pin (num 1) (name C) (type x)))))\n"
         b'(nets (net (code 1) (name "") (node (ref Q1) (pin 1) (pinfunction "C_1") (pintype "passive")))\n'
         b"(net (code 1) (name t) (node (ref Q2) (pin 2)))))\n",
+        b"(export (version E) (components (comp (ref Q1) (value x) (property (name Sim.Device) (value NPN))\n"
+        b'(property (name Sim.Params) (value "bf=1M is=1f")) (property (name Sim.Pins) (value "1=C 2=B 3=E")))\n'
+        b"(comp (ref Q2) (value y) (fields (field (name Sim.Library) a.lib) (field (name Sim.Name) QX)))\n"
+        b"(comp (ref V1) (value 5) (fields (field (name Sim.Device) V) (field (name Sim.Params) dc=5)))\n"
+        b"(comp (ref RV1) (value 10kB) (libsource (lib Device) (part R_Potentiometer))))\n"
+        b"(nets (net (code 1) (name A) (node (ref Q1) (pin 1)) (node (ref V1) (pin 1)))))\n",
         b"(export (version D)\n  (components\n    (comp (ref t) (value nil) (tstamp 5E123456))\n"
         b"    (comp (ref R1) (value 4k7;x) (fields (field (name Sim.Device) R)) (property (name p) (value v))))\n"
         b"  (nets (net (code 2) (name /a/b) (node (ref R1) (pin 1)) (node (ref R1) (pin 1)))))\n",
@@ -56,13 +65,14 @@ WORDS: dict[str, tuple[bytes, ...]] = {
         b"}", b"'", b"=", b"(", b")", b",", b"if(", b"pow(9,", b"1e400", b"e999999999", b"POLY(1)", b"DC", b"AC",
         b"PWL(", b"%", b"\n.model a npn(", b"\n.include a\n", b"\n.lib a b\n", b"\n.global a\n", b"\n.control\n",
         b";", b" $ ", b"//", b"\xff\xfe", b"\xc2\xb5", b"\xe2\x80\xae", b"\x00", b"\x85", b"m=", b"[s]", b"_",
-        b"\xc2\xa7", b".",
+        b"\xc2\xa7", b".", b"\nB1 a 0 V=", b"V(a)", b"I(V1)", b"VALUE={", b"1%", b"tol=", b"Rser=", b"LIMIT(",
     ),
     "kicad": (
         b"(", b")", b'"', b"\\", b"'", b";", b"(comp (ref R1))", b"(net (code 1) (name A)",
         b"(node (ref R1) (pin 1))", b"(property (name dnp))", b"(fields ", b"(libparts ", b"(libpart ",
         b"(pin (num 1))", b"~", b"#", b"\\n", b"\x00", b"(export ", b"(components ", b"(nets ", b"\xff", b"\xc2\x85",
-        b"9999999999999999999999", b"\xd9\xa3",
+        b"9999999999999999999999", b"\xd9\xa3", b"(field (name Sim.Params) bf=", b"(field (name Sim.Device) NPN)",
+        b"(field (name Sim.Library) board)", b"1000g", b"4k7", b"10uF/25V", b"2-10p", b"T50-6 18T", b"(part R)",
     ),
     "intent": (
         b'"""', b"'''", b"[[", b"]]", b"[", b"]", b"{", b"}", b"=", b"\n", b".", b"inf", b"nan", b"-0", b"1e400",

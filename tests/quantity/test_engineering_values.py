@@ -118,6 +118,9 @@ def test_tolerance_and_rating(text: str, unit: str, si: float, tolerance: float 
 @pytest.mark.parametrize(
     ("text", "unit"),
     [
+        ("1000g", "ohm"),
+        ("5t", "ohm"),
+        ("10g", "V"),
         *(
             (text, unit)
             for text in ("R", "C", "L", "TODO", "*", "NC", "DNP", "", " ", "?")
@@ -160,7 +163,14 @@ def test_refused(text: str, unit: str) -> None:
         parse_engineering(text, unit)
 
 
-@given(st.text(max_size=30), st.sampled_from(["ohm", "F", "H", "V", "A", "Hz", "W", "S", "degC", "%"]))
+LIKELY = "0159.,eEmkKMGgTtuUnNpPfFRrLlVvAaHhz%Ω/ +-"
+"""Signs that values are made of."""
+
+
+@given(
+    st.text(max_size=30) | st.text(LIKELY, max_size=9),
+    st.sampled_from(["ohm", "F", "H", "V", "A", "Hz", "W", "S", "degC", "%"]),
+)
 def test_any_text_is_a_number_or_refused(text: str, unit: str) -> None:
     try:
         reading = parse_engineering(text, unit)
