@@ -2,7 +2,8 @@
 
 Each pass evaluates all devices of all scenarios once and solves every island's small system in a few stacked calls.
 Islands that have converged stop moving. Ladder: plain; then steps of a conductance across every junction and to
-ground; then steps of all sources together. No helper is left in when convergence is judged.
+ground; then steps of all sources together; last, as if every node had a capacitor and the board were switched on. No
+helper is left in when convergence is judged.
 """
 
 from __future__ import annotations
@@ -46,7 +47,7 @@ class Solved:
 
 SOLVES_REL = 1e-9
 """A least-squares step counts as a solution if it leaves no more than this part of the right side."""
-HELPERS = ("plain", "conductance", "sources")
+HELPERS = ("plain", "conductance", "sources", "settling")
 """The ladder of hard starts, in order."""
 
 
@@ -64,11 +65,11 @@ def solve(assembler: Assembler, x0: FloatArray | None = None, *, quick: bool = F
     if count:
         start = assembler.start() if x0 is None else assembler.junctions(assembler.voltages(x))
         x, done, _ = iterate(assembler, x, start, done, limit=QUICK_ITERATIONS if quick else MAX_ITERATIONS)
-        for place, ladder in enumerate((BY_CONDUCTANCE, BY_SOURCES), start=1):
+        for place, climb in enumerate((_by_conductance, _by_sources, _by_settling), start=1):
             if quick or done.all():
                 break
             helper[~done] = place
-            x, done = follow(assembler, x, done, ladder)
+            x, done = climb(assembler, x, done)
     solved = _certify(assembler, x, done, helper)
     restless = solved.done & (solved.kcl > KCL_REL)
     if restless.any():
@@ -88,14 +89,22 @@ def iterate(
     gmin: float = 0.0,
     source_scale: float = 1.0,
     limit: int = MAX_ITERATIONS,
+    pull: float = 0.0,
+    anchor: FloatArray | None = None,
 ) -> tuple[FloatArray, BoolArray, Junctions]:
-    """Newton passes until every island not yet `done` holds still or has run away, or `limit` passes."""
+    """Newton passes until every island not yet `done` holds still or has run away, or `limit` passes.
+
+    `pull` [S]: a conductance from each node to where it stands in `anchor` (S, U).
+    """
+    nodes = assembler.plan.unknown[assembler.plan.unknown >= 0]
     fresh = done.copy()
     lost = np.zeros_like(done)
     for _ in range(limit):
         columns, entries = assembler.contributions(x, at, gmin, source_scale)
-        f = assembler.residual(x, columns, source_scale, gmin)
-        dx = newton_step(assembler, f, assembler.jacobian(entries, gmin))
+        f = assembler.residual(x, columns, source_scale, gmin + pull)
+        if anchor is not None:
+            f[:, nodes] -= pull * anchor[:, nodes]
+        dx = newton_step(assembler, f, assembler.jacobian(entries, gmin + pull))
         lost |= per_island(assembler, np.where(np.isfinite(dx), np.abs(dx), np.inf)) > RUNAWAY
         dx[expand(assembler, fresh | lost)] = 0.0
         x = x + dx
@@ -209,6 +218,20 @@ def follow(assembler: Assembler, x: FloatArray, done: BoolArray, helper: _Helper
             break
     reached = done | (~given_up & (t >= 1.0))
     return np.where(expand(assembler, reached), state[0], x), reached
+
+
+def _by_conductance(assembler: Assembler, x: FloatArray, done: BoolArray) -> tuple[FloatArray, BoolArray]:
+    return follow(assembler, x, done, BY_CONDUCTANCE)
+
+
+def _by_sources(assembler: Assembler, x: FloatArray, done: BoolArray) -> tuple[FloatArray, BoolArray]:
+    return follow(assembler, x, done, BY_SOURCES)
+
+
+def _by_settling(assembler: Assembler, x: FloatArray, done: BoolArray) -> tuple[FloatArray, BoolArray]:
+    from checker.solve.settling import settle
+
+    return settle(assembler, x, done)
 
 
 def _certify(assembler: Assembler, x: FloatArray, done: BoolArray, helper: IntArray) -> Solved:
