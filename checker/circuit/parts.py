@@ -157,9 +157,13 @@ _LETTERS: Final[tuple[tuple[Kind, str], ...]] = (
 
 
 def symbol_name(part: Part) -> str:
-    """The symbol's own name, without library and without the tail that a rescue library adds."""
-    name = part.symbol.rsplit(":", 1)[-1]
-    return _RESCUE.sub("", name) if "-" in name else name
+    """The symbol's own name, without library and without the tail that a rescue library adds: the library that the
+    symbol was rescued from, or its own name."""
+    library, _, name = part.symbol.rpartition(":")
+    if "-" not in name:
+        return name
+    bare = _RESCUE.sub("", name.removesuffix(f"-{library}"))
+    return name.rpartition("-")[0] if bare == name and library.lower().endswith("-rescue") else bare
 
 
 def classify(part: Part, *, spice: bool) -> Kind:

@@ -83,6 +83,9 @@ def _pads_of_card(part: Part, card: Card, notes: Notes) -> Mapping[str, str] | N
     if part.footprint or len(card.packages) != 1 or not any(pin.function for pin in part.pins):
         return pin_map(card, part.footprint)
     ((package, pads),) = card.packages.items()
+    named = ((pads.get(pin.number, "")[:1], letter_of(pin.function)[0]) for pin in part.pins)
+    if any(letter in _TERMINALS and letter != by_card for by_card, letter in named):
+        return None
     notes.add("pins", f"no footprint; pads as in {package}, the only package of its card", part.ref)
     return pads
 

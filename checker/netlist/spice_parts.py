@@ -33,6 +33,7 @@ _UNIT = lazy(
     re.IGNORECASE,
 )
 """A number with its unit; a lone `f` is femto."""
+_UNIT_ENDS = frozenset("sSmMΩωzZdDyYhHfF")
 _UNIT_OF = {"o": "R", "ω": "R", "f": "C", "h": "L"}
 _PARTED = lazy(r"(?:meg|[tgkmunpxµμ])(?:ohms?|Ω|f|h)?", re.IGNORECASE)
 _BESIDE = lazy(
@@ -175,8 +176,9 @@ def _passive(element: Element, place: Place) -> Part:
         raise NotAQuantity("no value is written")
     text = words[0] if words else named[key] if key else ""
     params = _params(element, place)
-    for word in _behind_value(words[1:]):
-        params.setdefault("tol", place.number(word))
+    if len(words) > 1:
+        for word in _behind_value(words[1:]):
+            params.setdefault("tol", place.number(word))
     number = place.number(_of_its_kind(element, text)) if text else None
     return new_part(element, place, nodes, params=params, value=" ".join(words) or text, number=number, model=model)
 
@@ -194,7 +196,8 @@ def _behind_value(words: list[str]) -> list[str]:
 
 def _of_its_kind(element: Element, text: str) -> str:
     """`text`, unless it bears the unit of another kind of part: `10uF` of a coil."""
-    found = _UNIT.fullmatch(text)
+    # Most values end in a digit or a prefix.
+    found = _UNIT.fullmatch(text) if text[-1] in _UNIT_ENDS else None
     unit = (found[1] or found[2]).lower() if found else ""
     if unit and (unit == "hz" or _UNIT_OF[unit[0]] != element.letter):
         raise NotAQuantity(f"{text[:40]!r} is the value of another kind of part")

@@ -235,6 +235,24 @@ def test_a_dual_is_two_devices() -> None:
     assert nets_of(circuit, "Q1.B")[:3] == ("c2", "b2", "e2")
 
 
+def test_two_pins_of_one_name_are_one_terminal_where_they_are_one_net() -> None:
+    """A tab beside a pin; on two nets nobody can tell which of them is the collector."""
+    pins = {"1": "b|B", "2": "c|C", "3": "e|E", "4": "c|C"}
+    assert nets_of(schematic(kicad_part("Q1", "my:T", "2N3904", pins)), "Q1")[:3] == ("c", "b", "e")
+    circuit = schematic(kicad_part("Q1", "my:T", "2N3904", {**pins, "4": "other|C"}))
+    assert [unknown.datum for unknown in circuit.unknowns] == ["pin order of Q1"]
+
+
+def test_a_dual_whose_pins_bear_the_same_names_twice_goes_by_its_pads() -> None:
+    pins = {"1": "e1|E", "2": "b1|B", "3": "c2|C", "4": "e2|E", "5": "b2|B", "6": "c1|C"}
+    part = kicad_part("Q1", "my:T", "BC847BS", pins, footprint="Package_TO_SOT_SMD:SOT-363_SC-70-6")
+    circuit = schematic(part)
+    assert {name: nets_of(circuit, name)[:3] for name in circuit.bipolars.names} == {
+        "Q1.A": ("c1", "b1", "e1"),
+        "Q1.B": ("c2", "b2", "e2"),
+    }
+
+
 @pytest.mark.parametrize(
     ("value", "description", "datum"),
     [

@@ -126,3 +126,12 @@ def test_long_lines_take_linear_time(tmp_path: Path, text: str) -> None:
     path.write_text("* long\nR1 a 0 " + text * 50_000 + "\nR2 a 0 1\nR3 a 0 1\n")
     # A reader of quadratic time would need minutes here: that it comes to R2 and R3 is the test.
     assert [part.ref for part in read_netlist(path).parts][-2:] == ["R2", "R3"]
+
+
+def test_many_lost_lines_among_many_nets_take_linear_time(tmp_path: Path) -> None:
+    path = tmp_path / "lost.net"
+    parts = "".join(f"R{n} a{n} 0 1\n" for n in range(40_000))
+    path.write_text(f"* lost\n{parts}" + "".join(f"9X a{n} what\n" for n in range(40_000)))
+    # Every lost line against every net would take a quarter of an hour: that it ends is the test.
+    netlist = read_netlist(path)
+    assert [remark.nets for remark in netlist.remarks[:2]] == [("a0",), ("a1",)]

@@ -151,3 +151,39 @@ def islands_of(report: object) -> set[frozenset[str]]:
     """The nets of each island, in no order."""
     assert isinstance(report, dict)
     return {frozenset(island["nets"]) for island in report["islands"]}
+
+
+ROLES = {"1": "2", "2": "3", "3": "1"}
+"""Pads of a transistor in another case or of another symbol."""
+
+
+@pytest.mark.parametrize("named", ["pinfunction", "library"])
+@pytest.mark.parametrize("board", BOARDS)
+def test_the_same_circuit_with_another_order_of_pins(board: str, named: str, tmp_path: Path) -> None:
+    """Transistors whose symbol numbers its pins otherwise, named on the nodes or in the library parts alone, and inner
+    nets that bear the pad in their name: the stages are the same to the last figure."""
+    netlist, intent = texts(board)
+    one = re.sub(r'\(footprint "[^"]*TO[-_]?(?:92|SOT)[^"]*"\)', "", kicad_export(board, netlist))
+    other = re.sub(r'(\(node \(ref "Q\d+"\) \(pin ")([123])"', lambda found: f'{found[1]}{ROLES[found[2]]}"', one)
+    other = re.sub(
+        r'(\(pin \(num ")([123])("\) \(name "[BCE]")', lambda found: f"{found[1]}{ROLES[found[2]]}{found[3]}", other
+    )
+    assert other != one
+    if named == "library":
+        one, other = (re.sub(r' \(pinfunction "[BCE]"\)', "", text) for text in (one, other))
+    reports = []
+    for place, text in (("one", one), ("other", other)):
+        (tmp_path / place).mkdir()
+        data = rounded(as_data(checked(written(tmp_path / place, text, intent, f"{board}.net"))))
+        assert isinstance(data, dict) and len(data["stages"]) >= 1
+        reports.append(data)
+    apart = {place for place in differences(*reports) if place not in SOURCE and not place.endswith(PLACES)}
+    assert {place for place in apart if not place.startswith(("assumptions", "findings.limit.source"))} == set()
+
+
+@pytest.mark.parametrize("board", BOARDS)
+def test_an_export_with_a_line_for_every_word(board: str, tmp_path: Path) -> None:
+    netlist, _ = texts(board)
+    export = kicad_export(board, netlist)
+    words = re.findall(r'"(?:[^"\\]|\\.)*"|\(|\)|[^\s()"]+', export)
+    assert apart(board, " \n".join(words), tmp_path, f"{board}.net") == set()
