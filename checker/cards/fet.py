@@ -6,7 +6,7 @@ Keys of a row in `data/` (SI; lists are in this order)::
     vgs_off   [min, typical, max]            cut-off voltage as printed (negative for N)
     vgs_th    [min, typical, max]            MOSFET: threshold as printed
     gfs       [ID, transconductance]         MOSFET, typical
-    rds_on    [VGS, resistance]              MOSFET, typical; VGS as printed
+    rds_on    [VGS, resistance]              MOSFET, typical; VGS as printed; without it the channel's own
     ciss, crss    [VDS, typical]             input and reverse transfer capacitance, VGS = 0
     lam       channel-length modulation 1/V  taken as it is, as are is, pb, n
 
@@ -51,10 +51,12 @@ def mosfet_model(row: Mapping[str, Any]) -> dict[str, float]:
     vto = row["vgs_th"][1]
     id_a, gfs = row["gfs"]
     kp = gfs**2 / (2.0 * id_a)
-    vgs, rds_on = row["rds_on"]
-    rd = rds_on - 1.0 / (kp * abs(vgs - vto))
-    if rd < 0.0:
-        raise ValueError(f"{row['name']}: its channel alone has {rds_on - rd:.3g} ohm, more than stated")
+    rd = 0.0
+    if "rds_on" in row:
+        vgs, rds_on = row["rds_on"]
+        rd = rds_on - 1.0 / (kp * abs(vgs - vto))
+        if rd < 0.0:
+            raise ValueError(f"{row['name']}: its channel alone has {rds_on - rd:.3g} ohm, more than stated")
     crss = row["crss"][1]
     return {
         "level": 1.0,

@@ -87,8 +87,9 @@ def card_from(row: Mapping[str, Any], group: str = "") -> Card:
         assumed=bool(row.get("assumed", False)),
         note=row.get("note", ""),
         resistors={key: float(row[key]) for key in _RESISTORS if row.get(key)},
-        driver=_driver(row, name),
+        driver=_inner(row, "driver", name),
         free_wheel=bool(row.get("free_wheel", False)),
+        upper=_inner(row, "upper", name),
         spread=_spread(row),
     )
 
@@ -108,12 +109,13 @@ def _model(row: Mapping[str, Any]) -> Mapping[str, float]:
     return made
 
 
-def _driver(row: Mapping[str, Any], name: str) -> Card | None:
-    """The first transistor of a Darlington: what its own figures leave open is as in the second; no ratings."""
-    if "driver" not in row:
+def _inner(row: Mapping[str, Any], key: str, name: str) -> Card | None:
+    """Another transistor of the same part, by its key: what its own figures leave open is as in the part; no
+    ratings."""
+    if key not in row:
         return None
-    own = {key: value for key, value in row.items() if key not in ("driver", "packages", "aliases", *_RATINGS)}
-    return card_from({**own, **row["driver"], "name": f"{name} (driver)"})
+    own = {name: value for name, value in row.items() if name not in (key, "packages", "aliases", *_RATINGS)}
+    return card_from({**own, **row[key], "name": f"{name} ({key})"})
 
 
 def _grouped(name: str, group: str) -> str:

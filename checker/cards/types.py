@@ -33,6 +33,8 @@ class Card:
     `resistors` [ohm], built in: of a pre-biased transistor `r1` in the base lead and `r2` from base to emitter; of a
     Darlington `be1` and `be2` from base to emitter of its two transistors. `driver`: the first transistor of a
     Darlington, whose second one the card itself describes. `free_wheel`: a diode from emitter to collector is built in.
+    `upper`: the half at gate 2 of a dual-gate MOSFET, whose half at gate 1 the card itself describes (its pads: "G1",
+    "G2"); ratings are of both halves together.
     `spread`: of a field-effect transistor, what its model parameters are multiplied by at the end of its range with the
     lowest current and at that with the highest (cut-off voltage and current go together).
     `assumed`: a generic card stood in for an unknown part. `source`: where the figures come from, in words.
@@ -52,4 +54,5 @@ class Card:
     resistors: Mapping[str, float] = field(default_factory=dict)
     driver: Card | None = None
     free_wheel: bool = False
+    upper: Card | None = None
     spread: tuple[Mapping[str, float], Mapping[str, float]] | None = None

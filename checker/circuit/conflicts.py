@@ -22,7 +22,7 @@ POLARITY: Final = "part-polarity"
 PACKAGE: Final = "package-mismatch"
 
 _SURFACE: Final = frozenset(
-    {"SOT-23", "SOT-323", "SOT-363", "SOT-343", "SOT-223", "SOT-89", "SC-59", "TO-252", "TO-263"}
+    {"SOT-23", "SOT-323", "SOT-363", "SOT-343", "SOT-143", "SOT-143R", "SOT-223", "SOT-89", "SC-59", "TO-252", "TO-263"}
 )
 _SMALL_CANS: Final = frozenset({"TO-92", "TO-18", "TO-39", "TO-72"})
 """Leaded outlines in which one type number is often sold: no conflict among these."""

@@ -3,10 +3,11 @@
 from __future__ import annotations
 
 import re
-from collections.abc import Iterable
+from collections.abc import Iterable, Mapping
 from typing import Final
 
 from checker.circuit.draft import Draft
+from checker.circuit.dual_gate import dual_gate_pins, halves
 from checker.circuit.entry import leave_out, place_device
 from checker.circuit.identity import (
     BIPOLAR,
@@ -124,6 +125,10 @@ def add_fet(draft: Draft, part: Part) -> None:
         add_bipolar(draft, part)
         return
     known = identify(draft, part, FET)
+    two_gates = dual_gate_pins(part, card) if draft.netlist.format == "kicad" else None
+    if two_gates is not None:
+        _add_two_gates(draft, part, two_gates, known)
+        return
     lacking = _lacking_fet(part, known)
     if known is None or lacking is not None:
         leave_out(draft, part, "fet", *(lacking or (f"model of {part.ref}", _MODEL_WANTED)))
@@ -132,21 +137,31 @@ def add_fet(draft: Draft, part: Part) -> None:
     if not units:
         leave_out(draft, part, "fet", f"pin order of {part.ref}", "pin names D, G, S on the symbol, or Sim.Pins")
         return
+    for unit in units:
+        _add_one_fet(draft, part, unit, known)
+
+
+def _add_two_gates(draft: Draft, part: Part, nets: Mapping[str, str], known: Identity | None) -> None:
+    card = None if known is None or known.model is not None else known.card
+    if known is None or card is None or card.upper is None:
+        leave_out(draft, part, "fet", f"a model of the dual-gate MOSFET {part.ref}", "a part number with a card")
+        return
+    for half, own in halves(draft, part, nets, known, card, card.upper):
+        _add_one_fet(draft, part, half, own)
+
+
+def _add_one_fet(draft: Draft, part: Part, unit: Unit, known: Identity) -> None:
+    order = (unit.nets["D"], unit.nets["G"], unit.nets["S"])
     count = part.params.get("m", 1.0)
     if known.kind in JUNCTION_FET:
         parameters = jfet_parameters(known.written, area=part.params.get("area", 1.0), count=count)
+        place_device(draft, "jfet", part, unit, order, known, parameters)
     else:
         polarity = polarity_of(known.kind)
         size = part.params if known.model is not None else {}
         parameters = mosfet_parameters(known.written, polarity=polarity, size=size, count=count)
+        place_device(draft, "mosfet", part, unit, (*order, unit.nets.get("B", unit.nets["S"])), known, parameters)
     _tell_unused(draft, part, known, parameters)
-    for unit in units:
-        order = (unit.nets["D"], unit.nets["G"], unit.nets["S"])
-        if known.kind in JUNCTION_FET:
-            place_device(draft, "jfet", part, unit, order, known, parameters)
-        else:
-            body = unit.nets.get("B", unit.nets["S"])
-            place_device(draft, "mosfet", part, unit, (*order, body), known, parameters)
 
 
 def _lacking_fet(part: Part, known: Identity | None) -> tuple[str, str] | None:

@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+from typing import Final
+
 import numpy as np
 
 from checker.arrays import ComplexArray
@@ -84,6 +86,10 @@ def terminal_output(bench: Bench, stage: str) -> Figure:
     )
 
 
+OPEN_OHM: Final = 1e13
+"""More than any part or leakage on a board has."""
+
+
 @frozen
 class Around:
     """What stands around a device at f0, nominal, in ohm, with the device out: at the `emitter`, at the `base`
@@ -129,7 +135,9 @@ def _out(bench: Bench, response: Response, outer: Outer, s: ComplexArray) -> com
 
 
 def _size(response: Response, node: int) -> float:
-    return float(np.abs(response.impedance(node)[0, MIDDLE]))
+    """Magnitude at a node; infinite where no part leads anywhere (what is left is rounding)."""
+    size = float(np.abs(response.impedance(node)[0, MIDDLE]))
+    return size if size < OPEN_OHM else np.inf
 
 
 def beside(a: float, b: float) -> float:

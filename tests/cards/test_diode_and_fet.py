@@ -84,6 +84,12 @@ def test_mosfet(name: str) -> None:
     assert min(row["vgs_th"]) <= model["vto"] <= max(row["vgs_th"])
     id_a, gfs = row["gfs"]
     assert np.sqrt(2 * model["kp"] * id_a) == pytest.approx(gfs, rel=1e-12)
+    assert model["cgso"] > 0 and model["cgdo"] > 0
+
+
+@pytest.mark.parametrize("name", [name for name in MOSFETS if "rds_on" in ROWS[name]])
+def test_resistance_of_a_mosfet_switched_on(name: str) -> None:
+    row, model = ROWS[name], card_from(ROWS[name]).model
     vgs, rds = row["rds_on"]
     sign = -1.0 if row["kind"] == "pmos" else 1.0
     overdrive = sign * (vgs - model["vto"])
@@ -91,7 +97,6 @@ def test_mosfet(name: str) -> None:
     slope = 1e-6  # ohmic region: ID = KP (VOV - VDS/2) VDS
     channel = slope / (model["kp"] * (overdrive - slope / 2) * slope)
     assert channel + model["rd"] == pytest.approx(rds, rel=1e-5)
-    assert model["cgso"] > 0 and model["cgdo"] > 0
 
 
 @pytest.mark.parametrize("name", sorted(name for name, row in ROWS.items() if not row.get("assumed")))

@@ -110,6 +110,14 @@ def test_gain_of_a_source_resistor_stage() -> None:
     assert hand == pytest.approx(-2.2e3 / (1.0 / gm + 680.0), rel=1e-9)
 
 
+def test_a_drain_without_a_resistor_has_no_hand_figure_for_its_output() -> None:
+    """The lower half of a cascode: nothing but a transistor stands at its drain, so RD does not exist."""
+    netlist = "V1 VCC 0 15\nVG2 G2 0 3\nCIN IN G 100n\nRG G 0 1Meg\nJ1 X G S JN\nRS S 0 680\nCS S 0 100u\n"
+    netlist += "J2 D G2 X JN\nRD VCC D 2.2k\nCO D OUT 100n"
+    hand = board_from(netlist, OPEN_PORTS).rule_of_thumb("J1")
+    assert "voltage_gain" in hand and "output_impedance_ohm" not in hand
+
+
 def test_a_reversed_channel_is_told_and_turned() -> None:
     """Drain at the lower end: VDS is counted from the more negative terminal, and `reversed` says so."""
     netlist = "V1 VCC 0 10\nV2 G 0 6\nRD VCC S 1k\nM1 0 G S 0 MN"

@@ -125,7 +125,12 @@ def _hand_row(stage: Stage, key: str, thumb: Thumb) -> tuple[str, ...]:
         words(clean(key)),
         number(thumb.value, unit),
         number(thumb.exact, unit),
-        "—" if thumb.deviation is None else f"{thumb.deviation * 100:+.0f} %",
+        "—" if thumb.deviation is None else _off(thumb.deviation),
         {True: "yes", False: "no", None: "—"}[thumb.agrees],
         f"{clean(thumb.formula)}{note}",
     )
+
+
+def _off(deviation: float) -> str:
+    """A deviation in percent; from ten times on as the multiple of the exact figure."""
+    return f"{deviation * 100:+.0f} %" if abs(deviation) < 10.0 else f"{1.0 + deviation:.2g} ×"
