@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Iterable, Mapping
+from collections.abc import Iterable, Mapping, Sequence
 from dataclasses import replace
 
 import numpy as np
@@ -91,7 +91,13 @@ def _devices(devices: Mapping[str, DraftDevice], node: Mapping[str, int], keys: 
         params={key: _column([entry.params[key] for entry in entries]) for key in keys},
         tnom_k=frozen(np.array([entry.tnom_k for entry in entries], dtype=np.float64)),
         rth_kpw=frozen(np.array([entry.rth_kpw for entry in entries], dtype=np.float64)),
+        one_chip=_one_chip([entry.chip for entry in entries]),
     )
+
+
+def _one_chip(chips: Sequence[str]) -> tuple[tuple[int, int], ...]:
+    first: dict[str, int] = {}
+    return tuple((first[chip], row) for row, chip in enumerate(chips) if chip and first.setdefault(chip, row) != row)
 
 
 def _four_poles(draft: Draft, node: Mapping[str, int], sources: Mapping[str, int]) -> FourPoles:

@@ -40,13 +40,14 @@ class Wire:
 
 @frozen
 class DraftDevice:
-    """A semiconductor with its nets in the order of `Devices.nodes`."""
+    """A semiconductor with its nets in the order of `Devices.nodes`; `chip` is the same for two that share one."""
 
     nets: tuple[str, ...]
     polarity: float
     params: Mapping[str, float]
     tnom_k: float
     rth_kpw: float
+    chip: str = ""
 
 
 @frozen

@@ -41,24 +41,13 @@ def _name(function: str) -> str:
 def halves(
     draft: Draft, part: Part, nets: Mapping[str, str], known: Identity, card: Card, second: Card
 ) -> Iterator[tuple[Unit, Identity]]:
-    """The two transistors of a part: what it was identified as, its card, and the card's `upper` half.
-
-    Ratings are of both together; each half is held to half of the dissipation, with twice the thermal resistance, which
-    judges the more loaded half too strictly rather than the part too mildly.
-    """
-    whole = card.ratings
-    own = replace(
-        whole,
-        p_max_w=None if whole.p_max_w is None else whole.p_max_w / 2.0,
-        rth_ja_kpw=None if whole.rth_ja_kpw is None else whole.rth_ja_kpw * 2.0,
-    )
+    """The two transistors of a part: what it was identified as, its card, and the card's `upper` half, which takes
+    over the ratings."""
     draft.notes.add(
-        "models",
-        "dual-gate MOSFET taken as two transistors, .A at gate 1 below .B at gate 2; each held to half of the rating",
-        part.ref,
+        "models", "dual-gate MOSFET taken as two transistors on one chip, .A at gate 1 below .B at gate 2", part.ref
     )
     middle = f"{part.ref}.n"
     lower = {"D": middle, "G": nets["G1"], "S": nets["S"], "B": nets["S"]}
     upper = {"D": nets["D"], "G": nets["G2"], "S": middle, "B": nets["S"]}
-    yield Unit(suffix=".A", nets=lower), replace(known, card=replace(card, ratings=own))
-    yield Unit(suffix=".B", nets=upper), replace(known, card=replace(second, ratings=own))
+    yield Unit(suffix=".A", nets=lower, shares_chip=True), known
+    yield Unit(suffix=".B", nets=upper, shares_chip=True), replace(known, card=replace(second, ratings=card.ratings))

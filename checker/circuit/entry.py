@@ -60,6 +60,7 @@ def place_device(
         params=parameters.values,
         tnom_k=parameters.tnom_k,
         rth_kpw=math.nan if ratings.rth_ja_kpw is None else ratings.rth_ja_kpw,
+        chip=part.ref if unit.shares_chip else "",
     )
     draft.place(kind, name, device)
     used = set(device.nets)

@@ -40,10 +40,12 @@ _WANTED: Final = {"bipolar": frozenset("CBE"), "fet": frozenset("DGS"), "diode":
 
 @frozen
 class Unit:
-    """One device of a part: `suffix` "" or ".A", ".B"...; `nets` by terminal letter."""
+    """One device of a part: `suffix` "" or ".A", ".B"...; `nets` by terminal letter. `shares_chip`: the part's ratings
+    and thermal resistance are of it and the other unit together."""
 
     suffix: str
     nets: Mapping[str, str]
+    shares_chip: bool = False
 
 
 def spice_terminals(part: Part, kind: str) -> tuple[Unit, ...]:

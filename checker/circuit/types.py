@@ -63,7 +63,8 @@ class Devices:
     `nodes` int64 (n, k): bipolar (collector, base, emitter, substrate; substrate 0 where absent), junction FET (drain,
     gate, source), MOSFET (drain, gate, source, body), diode (anode, cathode). `polarity` float64 (n,): +1 NPN,
     N channel or diode, -1 PNP or P channel. `params`: SPICE-style names, lower case, SI, at
-    `tnom_k` (n,), each float64 (S, n). `rth_kpw` (n,): nan where unknown.
+    `tnom_k` (n,), each float64 (S, n). `rth_kpw` (n,): nan where unknown. `one_chip`: pairs of rows that share one
+    chip, so that each is heated by both and the rating is of both together.
     """
 
     names: tuple[str, ...]
@@ -72,6 +73,16 @@ class Devices:
     params: Mapping[str, FloatArray]
     tnom_k: FloatArray
     rth_kpw: FloatArray
+    one_chip: tuple[tuple[int, int], ...] = ()
+
+    def chip_power(self, power_w: FloatArray) -> FloatArray:
+        """Dissipation (S, n) [W] of the chip on which each device is, from that of the devices."""
+        if not self.one_chip:
+            return power_w
+        whole = power_w.copy()
+        for one, other in self.one_chip:
+            whole[:, [one, other]] = power_w[:, [one]] + power_w[:, [other]]
+        return whole
 
 
 NO_DEVICES: Final = Devices(

@@ -11,6 +11,7 @@ from checker.measure.feeds import reach, require_not_fed, require_supplied
 from checker.measure.make import figure, first, missing
 from checker.measure.registry import quantity
 from checker.quantity.figure import Figure
+from checker.solve.operating import OperatingPoint
 from checker.stages.region import REGIONS, headroom_v, is_reversed, region_codes
 from checker.trouble import CannotTell
 
@@ -130,7 +131,7 @@ def junction_temperature(bench: Bench, stage: str) -> Figure:
     if not np.isfinite(rth):
         raise CannotTell(datum=f"thermal resistance of {stage}", supply=f'[[part]] ref = "{stage}" with rth_ja_kpw')
     tj = bench.heated.device_k[bench.family(stage)][:, bench.place(stage)] - ZERO_CELSIUS_K
-    p = bench.heated.transistor["power_w"][:, index]
+    p = _chip_power(bench, bench.heated, stage)
     ambient = bench.circuit.temperature_k - ZERO_CELSIUS_K
     return figure(
         "tj_c",
@@ -161,15 +162,29 @@ def power_limit(bench: Bench, stage: str) -> Figure:
     ambient = bench.circuit.temperature_k - ZERO_CELSIUS_K
     tj = ratings.tj_max_c if ratings.tj_max_c is not None else 150.0
     values = ratings.p_max_w * np.clip((tj - ambient) / (tj - 25.0), 0.0, 1.0)
+    own = bench.point.transistor["power_w"][:, bench.stage(stage).index]
+    others = np.nan_to_num(_chip_power(bench, bench.point, stage) - own)
+    shared = bool(np.any(others != 0.0))
     return figure(
         "power_limit_w",
         stage,
-        values,
+        values - others,
         "W",
-        formula="Ptot (TJmax - TA)/(TJmax - 25 degC), at most Ptot",
-        numbers=(("Ptot", ratings.p_max_w, "W"), ("TJmax", tj, "degC"), ("TA", first(ambient), "degC")),
+        formula="Ptot (TJmax - TA)/(TJmax - 25 degC), at most Ptot" + (", less the other half's" if shared else ""),
+        numbers=(
+            ("Ptot", ratings.p_max_w, "W"),
+            ("TJmax", tj, "degC"),
+            ("TA", first(ambient), "degC"),
+            *((("P of the other half", first(others), "W"),) if shared else ()),
+        ),
         source=_origin(bench, stage),
     )
+
+
+def _chip_power(bench: Bench, point: OperatingPoint, stage: str) -> FloatArray:
+    """Dissipation (S,) [W] of the chip on which a stage's device is."""
+    family = bench.family(stage)
+    return bench.circuit.devices[family].chip_power(point.devices[family]["power_w"])[:, bench.place(stage)]
 
 
 def _origin(bench: Bench, stage: str) -> str:

@@ -148,7 +148,9 @@ def self_heated(cold: OperatingPoint, *, rounds: int = 8, quick: bool = False) -
     point = cold
     for _ in range(rounds):
         rise = {
-            kind: np.minimum(np.nan_to_num(table["power_w"]) * np.nan_to_num(cold.circuit.devices[kind].rth_kpw), 500.0)
+            kind: np.minimum(
+                _heating_w(cold.circuit, kind, table) * np.nan_to_num(cold.circuit.devices[kind].rth_kpw), 500.0
+            )
             for kind, table in point.devices.items()
             if "power_w" in table
         }
@@ -158,6 +160,11 @@ def self_heated(cold: OperatingPoint, *, rounds: int = 8, quick: bool = False) -
             break
         point = operating_point(cold.circuit, near=point, rise_k=rise, quick=quick)
     return point
+
+
+def _heating_w(circuit: Circuit, kind: str, table: Mapping[str, FloatArray]) -> FloatArray:
+    """What heats each device of a family (S, n) [W]: its own dissipation and that of a partner on its chip."""
+    return circuit.devices[kind].chip_power(np.nan_to_num(table["power_w"]))
 
 
 def _collect(

@@ -7,7 +7,7 @@ from collections.abc import Mapping
 import pytest
 
 from checker.circuit.types import Circuit
-from checker.solve.operating import operating_point
+from checker.solve.operating import operating_point, self_heated
 from tests.circuit.make import assumed, kicad, kicad_part, resistor
 
 NAMED = {"1": "GND|S", "2": "drain|D", "3": "g2|G2", "4": "g1|G1"}
@@ -40,7 +40,8 @@ def test_it_is_two_transistors_in_series() -> None:
     nets = [tuple(circuit.nets[node] for node in row) for row in circuit.devices["mosfet"].nodes]
     assert nets == [("Q1.n", "g1", "GND", "GND"), ("drain", "g2", "Q1.n", "GND")]
     assert assumed(circuit, "Q1", "taken as two transistors")
-    assert circuit.parts["Q1.A"].ratings.p_max_w == circuit.parts["Q1.B"].ratings.p_max_w == 0.1
+    assert circuit.parts["Q1.A"].ratings == circuit.parts["Q1.B"].ratings
+    assert circuit.devices["mosfet"].one_chip == ((0, 1),)
 
 
 def test_the_order_of_pins_does_not_matter_where_they_are_named() -> None:
@@ -88,3 +89,17 @@ def test_a_dual_with_two_drains_is_another_part() -> None:
     circuit = stage("BSS138", pins=pins)
     assert circuit.devices["mosfet"].names == ("Q1.A", "Q1.B")
     assert [circuit.nets[row[0]] for row in circuit.devices["mosfet"].nodes] == ["drain", "d2"]
+
+
+def test_both_halves_heat_the_one_chip() -> None:
+    """TJ = TA + (PA + PB) RthJA for both; the figures by hand from the heated solution's own voltages and current."""
+    hot = self_heated(operating_point(stage("BF998")))
+    v = dict(zip(hot.circuit.nets, hot.v_v[0], strict=False))
+    rise = (8.0 - v["drain"]) * v["drain"] * 500.0
+    assert rise > 20.0
+    assert (hot.device_k["mosfet"][0] - hot.circuit.temperature_k[0]).tolist() == pytest.approx([rise, rise], rel=1e-3)
+
+
+def test_two_transistors_of_a_dual_are_heated_apart() -> None:
+    pins = {"1": "GND|S1", "2": "g1|G1", "3": "d2|D2", "4": "GND|S2", "5": "g2|G2", "6": "drain|D1"}
+    assert stage("BSS138", pins=pins).devices["mosfet"].one_chip == ()
