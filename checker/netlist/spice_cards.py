@@ -27,6 +27,7 @@ _COMMANDS = frozenset(
 _QUIET = frozenset(
     {"op", "tran", "ac", "dc", "probe", "print", "plot", "backanno", "save", "meas", "measure", "four", "fft"}
     | {"noise", "pz", "sens", "tf", "ic", "nodeset", "width", "disto", "wave", "net", "sp", "hb", "endc"}
+    | {"prot", "protect", "unprot", "unprotect"}
 )
 """Dot cards that only ask for analyses or output."""
 
@@ -35,6 +36,9 @@ def _is_diode(text: str) -> bool:
     """Whether a line that starts with DC is the diode of that name: it ends in a model, a sweep in numbers."""
     words = text.split()
     return words[0].lower() == "dc" and len(words) >= 4 and words[3][0].isalpha()
+
+
+_CONDITIONS = frozenset({"if", "elseif", "else", "endif"})
 
 
 class CardReader:
@@ -97,6 +101,9 @@ class CardReader:
             self.actions[word](card, rest)
         elif word in _QUIET:
             self.deck.directives += 1
+        elif word in _CONDITIONS:
+            text = f".{word}: conditions are not followed, the lines of every branch are read"
+            self.deck.remarks.append(card.lost(text, everywhere=True))
         else:
             self.deck.remarks.append(card.lost(f".{word[:30]} is not understood and passed over"))
 

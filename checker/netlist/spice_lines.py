@@ -1,7 +1,7 @@
 """SPICE-style text into cards: comments off, continuation lines joined, control blocks passed over.
 
 A `+` line continues the last card, also across blank and comment lines. Comments: a line that begins with
-`*`, `;`, `#` or `//`; the rest of a line after `;`, after ` $ ` or after ` //`.
+`*`, `;`, `#` or `//`; the rest of a line after `;`, after ` $` or after ` //`.
 """
 
 from __future__ import annotations
@@ -14,8 +14,9 @@ from checker.pattern import lazy
 from checker.quantity.value import Origin
 from checker.shape import frozen
 
-_COMMENT = lazy(r"\"[^\"]*\"|(;|(?<!\S)\$(?=\s|$)|(?<!\S)//)")
+_COMMENT = lazy(r"\"[^\"]*\"|(;|(?<!\S)\$(?![A-Za-z]_)|(?<!\S)//)")
 _PATH_COMMENT = lazy(r"\"[^\"]*\"|(;|(?<!\S)\$(?=\s|$))")
+"""What a `$` begins is a comment, but for nets such as `$N_0001` and paths."""
 _PATH_CARD = lazy(r"\s*\.(inc|lib)", re.IGNORECASE)
 
 
@@ -47,21 +48,22 @@ def cards_of(text: str, *, file: str, limits: ReadLimits, first_line: int = 1) -
     pieces: list[tuple[int, list[str]]] = []
     remarks: list[Remark] = []
     control = ended = 0
+    last = ""
     for number, line in enumerate(text.split("\n"), start=first_line):
         bare = without_comment(line)
         if not bare:
             continue
         word = bare.split(None, 1)[0].lower()
         if ended:
-            remarks.append(_remark(f"what follows the .end of line {ended} is not read", file, number))
+            remarks.append(_remark(f"what follows the {last} of line {ended} is not read", file, number))
             break
         if control:
             control = 0 if word == ".endc" else control
         elif word == ".control":
             control = number
             remarks.append(_remark("a control block is passed over: it holds commands, no parts", file, number))
-        elif word == ".end":
-            ended = number
+        elif word in (".end", ".alter"):
+            ended, last = number, word
         elif bare[0] != "+":
             pieces.append((number, [bare]))
             if len(pieces) > limits.parts:

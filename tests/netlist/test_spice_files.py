@@ -197,6 +197,19 @@ def test_the_one_subcircuit_that_no_other_uses_is_the_board(read: Read) -> None:
     assert netlist.ground == ("0",)
 
 
+def test_alternatives_are_not_read_on_top_of_each_other(read: Read) -> None:
+    netlist = read("* a\nR1 a 0 1k\n.alter\nR1 a 0 2k\n.end\n")
+    assert [(part.ref, part.number) for part in netlist.parts] == [("R1", 1e3)]
+    assert [remark.origin.line for remark in netlist.remarks] == [4]
+
+
+def test_conditions_bear_on_everything(read: Read) -> None:
+    netlist = read("* a\n.param x=1\n.if (x==1)\nR1 a 0 1k\n.else\nR1 b 0 2k\n.endif\n.protect\n")
+    lost = [remark for remark in netlist.remarks if remark.lost]
+    assert [remark.origin.line for remark in lost] == [3, 5, 7]
+    assert all(set(remark.nets) == {"a", "b", "0"} for remark in lost)
+
+
 @pytest.mark.parametrize(
     ("line", "parts"),
     [("dc V1 0 5 0.1", 0), ("DC V1 0 5", 0), ("op", 0), ("DC in out DX", 1), ("dc in 0 1N4148 area=2", 0)],
