@@ -250,7 +250,8 @@ def _certify(assembler: Assembler, x: FloatArray, done: BoolArray, helper: IntAr
     balance = np.where(node, np.abs(f) / np.maximum(assembler.largest(columns), floor), 0.0)
     step = np.where(node, np.abs(dx), 0.0)
     step_isl = per_island(assembler, step)
-    within = per_island(assembler, np.where(node, step / (STEP_ABS_V + STEP_REL * np.abs(x)), 0.0)) <= 1.0
+    with np.errstate(over="ignore"):  # a step beyond all numbers is not within them either
+        within = per_island(assembler, np.where(node, step / (STEP_ABS_V + STEP_REL * np.abs(x)), 0.0)) <= 1.0
     kcl = per_island(assembler, balance)
     jacobian = tuple(block[0].copy() for block in assembler.block_views(flat))
     return Solved(x=x, done=done & within, step=step_isl, kcl=kcl, jacobian=jacobian, helper=helper)

@@ -59,3 +59,31 @@ def test_absurd_figures(seed: int, tmp_path: Path) -> None:
             return
         form("text")(report, width=80, colour=False)
     assert report.faults == ()
+
+
+LOOSE = """* a ladder of transistors of which hardly one is fed
+Q4 n18 n13 n10 n00 BC557B
+Q11 n10 n16 n08 n01 BC557B
+Q7 n11 n16 n09 n02 BC557B
+Q10 n08 n15 n06 n03 BC557B
+Q6 n09 n15 n07 n04 BC557B
+R11 n15 n16 150
+R12 n16 n13 150
+R13 n13 n19 150
+R14 n19 VEE 220
+R6 n17 n15 150
+Q9 n06 n14 n12 n05 BC557B
+R15 n17 n14 470
+V2 0 VEE 5
+.end
+"""
+
+
+def test_a_ladder_that_hangs_in_the_air(tmp_path: Path) -> None:
+    """Once an overflow, told on standard error, in the proof of a point whose last step was without measure."""
+    path = tmp_path / "board.cir"
+    path.write_text(LOOSE, "utf-8")
+    with warnings.catch_warnings():
+        warnings.simplefilter("error")
+        report = check_board(path, None).report
+    assert report.faults == () and len(report.stages) == 6
