@@ -267,14 +267,16 @@ def conditions(solved: Solved) -> tuple[FloatArray, FloatArray]:
         COUNTERS.factorisations += 2 * a.shape[0]
         finite = np.isfinite(scaled).all(axis=(-1, -2))
         found.append(np.where(finite, np.linalg.cond(np.where(finite[..., None, None], scaled, 0.0)), np.inf))
-        signs.append(np.where(finite, np.linalg.slogdet(a)[0], 0.0))
+        with np.errstate(divide="ignore"):
+            signs.append(np.where(finite, np.linalg.slogdet(a)[0], 0.0))
     return np.concatenate(found), np.concatenate(signs)
 
 
 def signs(assembler: Assembler, x: FloatArray) -> FloatArray:
     """Sign of det J at `x` (S, U), (S, islands), with each branch equation's own -1 taken out: a stable rest has +1."""
     _, entries = assembler.contributions(x, assembler.junctions(assembler.voltages(x)))
-    out = [np.linalg.slogdet(block)[0] for block in assembler.block_views(assembler.jacobian(entries))]
+    with np.errstate(divide="ignore"):  # the sign of a singular matrix is zero
+        out = [np.linalg.slogdet(block)[0] for block in assembler.block_views(assembler.jacobian(entries))]
     count = len(assembler.island_sizes)
     branches = np.array([i.size - len(i.nodes) for i in assembler.plan.islands[:count]])
     raw = np.concatenate(out, axis=1) if out else np.zeros((x.shape[0], 0))
