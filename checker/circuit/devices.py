@@ -3,11 +3,11 @@
 from __future__ import annotations
 
 import re
-from collections.abc import Iterable, Mapping
+from collections.abc import Iterable
 from typing import Final
 
+from checker.cards.types import Card
 from checker.circuit.draft import Draft
-from checker.circuit.dual_gate import dual_gate_pins, halves
 from checker.circuit.entry import leave_out, place_device
 from checker.circuit.identity import (
     BIPOLAR,
@@ -125,9 +125,7 @@ def add_fet(draft: Draft, part: Part) -> None:
         add_bipolar(draft, part)
         return
     known = identify(draft, part, FET)
-    two_gates = dual_gate_pins(part, card) if draft.netlist.format == "kicad" else None
-    if two_gates is not None:
-        _add_two_gates(draft, part, two_gates, known)
+    if draft.netlist.format == "kicad" and _added_with_two_gates(draft, part, card, known):
         return
     lacking = _lacking_fet(part, known)
     if known is None or lacking is not None:
@@ -141,13 +139,20 @@ def add_fet(draft: Draft, part: Part) -> None:
         _add_one_fet(draft, part, unit, known)
 
 
-def _add_two_gates(draft: Draft, part: Part, nets: Mapping[str, str], known: Identity | None) -> None:
+def _added_with_two_gates(draft: Draft, part: Part, by_value: Card | None, known: Identity | None) -> bool:
+    """Whether a part is a dual-gate MOSFET, which then is in the draft or named as lacking a model."""
+    from checker.circuit.dual_gate import dual_gate_pins, halves
+
+    nets = dual_gate_pins(part, by_value)
+    if nets is None:
+        return False
     card = None if known is None or known.model is not None else known.card
     if known is None or card is None or card.upper is None:
         leave_out(draft, part, "fet", f"a model of the dual-gate MOSFET {part.ref}", "a part number with a card")
-        return
+        return True
     for half, own in halves(draft, part, nets, known, card, card.upper):
         _add_one_fet(draft, part, half, own)
+    return True
 
 
 def _add_one_fet(draft: Draft, part: Part, unit: Unit, known: Identity) -> None:
