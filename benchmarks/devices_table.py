@@ -55,6 +55,8 @@ def rows_of(path: Path, setup: Setup) -> list[tuple[str, str]]:
 
 def main() -> None:
     """Print the drawn rows and the totals."""
+    if len(sys.argv) < 2:
+        sys.exit(__doc__)
     folder = Path(sys.argv[1])
     count, seed = int((sys.argv[2:] or ["50"])[0]), int((sys.argv[3:] or ["1"])[0])
     rows: list[tuple[str, str]] = []

@@ -45,6 +45,8 @@ def counted(netlist: Netlist, circuit: Circuit) -> tuple[Counter[str], list[str]
 
 def main() -> None:
     """Print the table."""
+    if len(sys.argv) < 2:
+        sys.exit(__doc__)
     folder, verbose = Path(sys.argv[1]), "-v" in sys.argv[2:]
     total: Counter[str] = Counter()
     print(f"{'file':24}" + "".join(f"{name:>8}" for name in COLUMNS))
