@@ -44,6 +44,11 @@ def unknowns(setup: Setup) -> tuple[Unchecked, ...]:
         part = parts.get(each.ref) if not each.pin else None
         return each.nets if part is None else {*each.nets, *(pin.net for pin in part.pins if pin.net not in held)}
 
+    def own(each: Unknown) -> tuple[str, ...]:
+        """A transistor that cannot be solved with is a stage itself."""
+        fact = setup.circuit.parts.get(each.ref)
+        return (each.ref,) if fact is not None and fact.kind in ("bipolar", "fet") else ()
+
     return tuple(
         Unchecked(
             subject=each.ref,
@@ -51,7 +56,7 @@ def unknowns(setup: Setup) -> tuple[Unchecked, ...]:
             datum=each.datum,
             supply=each.supply,
             location=_location(parts[each.ref].origin) if each.ref in parts else None,
-            touches=stages.of(nets(each)),
+            touches=tuple(dict.fromkeys((*own(each), *stages.of(nets(each))))),
         )
         for each in setup.circuit.unknowns
     )

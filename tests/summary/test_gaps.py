@@ -9,6 +9,7 @@ import pytest
 from checker.pipeline import check_board
 from checker.record import Report, Unchecked
 from checker.report.forms import FORMS, form
+from checker.summary.gaps import FORM
 from tests.whole import MODELS, outcome_from
 
 DECK = """V1 VCC 0 12
@@ -83,7 +84,28 @@ def test_what_a_block_without_an_end_or_a_beginning_bears_on() -> None:
 def test_a_part_bears_on_the_stage_that_only_its_gate_is_on() -> None:
     """M1 has no model; its gate draws nothing, yet what Q1 drives there is not known."""
     found = gap(outcome_from(DECK + "M1 D C 0 0 nowhere\nRD VCC D 1k").report, "M1", "model")
-    assert found.touches == Q1
+    assert found.touches == ("M1", "Q1")
+
+
+def test_many_parts_that_bear_on_no_stage_are_only_named_in_the_text() -> None:
+    """Up to three have entries of their own; a line that was not understood always has."""
+    lost = [f"R{k} X{k} 0 4.7äk" for k in range(11, 15)]
+    for count, folded in ((3, False), (4, True)):
+        report = outcome_from(DECK + "\n".join(lost[:count]) + "\n.frob 17").report
+        text = form("text")(report, width=200, colour=False)
+        assert (f"{count} that bear on no stage" in text) == folded
+        assert sum(f"for     R{k} everything" in text for k in range(11, 15)) == (0 if folded else count)
+        assert all(f"what R{k} is" in text for k in range(11, 11 + count))
+        assert "for     line" in text and FORM in text
+
+
+def test_data_that_one_thing_would_supply_share_an_entry() -> None:
+    report = outcome_from(DECK).report
+    shared = [gap for gap in report.unchecked if gap.location is None]
+    text = form("text")(report, width=400, colour=False)
+    for supply in {gap.supply for gap in shared if gap.supply}:
+        assert text.count(f"supply  {supply}\n") == 1
+    assert all(gap.datum in text for gap in shared)
 
 
 def export(*extra: str) -> str:
