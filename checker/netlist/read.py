@@ -4,7 +4,7 @@ from __future__ import annotations
 
 import gc
 import sys
-from collections.abc import Iterator
+from collections.abc import Callable, Iterator
 from contextlib import contextmanager
 from pathlib import Path
 
@@ -41,31 +41,9 @@ def _read(path: Path, include_dirs: tuple[Path, ...], limits: ReadLimits) -> Net
     if not text.strip():
         raise InputTrouble("is empty; expected a netlist", file=name)
     sha256 = sha256_hex(data)
-    start = text.lstrip()
-    # Only the reader in use is loaded: start-up time.
-    if not _S_EXPRESSION.match(start):
-        from checker.netlist.spice_read import read_spice
-
-        with _room_for(limits.depth):
-            return read_spice(
-                text,
-                name=name,
-                sha256=sha256,
-                path=path,
-                include_dirs=include_dirs,
-                limits=limits,
-                size=len(data),
-            )
-    if not _EXPORT.match(start):
-        raise InputTrouble(
-            "an S-expression, but not a netlist export (expected `(export ...`); export the netlist",
-            file=name,
-            line=1,
-        )
-    from checker.netlist.kicad_read import read_kicad
-
+    reader = _reader_of(text.lstrip(), name)
     with _room_for(limits.depth):
-        return read_kicad(
+        return reader(
             text,
             name=name,
             sha256=sha256,
@@ -74,6 +52,23 @@ def _read(path: Path, include_dirs: tuple[Path, ...], limits: ReadLimits) -> Net
             limits=limits,
             size=len(data),
         )
+
+
+def _reader_of(start: str, name: str) -> Callable[..., Netlist]:
+    """The reader of the form that the text has by its beginning; only that one is loaded: start-up time."""
+    if not _S_EXPRESSION.match(start):
+        from checker.netlist.spice_read import read_spice
+
+        return read_spice
+    if not _EXPORT.match(start):
+        raise InputTrouble(
+            "an S-expression, but not a netlist export (expected `(export ...`); export the netlist",
+            file=name,
+            line=1,
+        )
+    from checker.netlist.kicad_read import read_kicad
+
+    return read_kicad
 
 
 @contextmanager
