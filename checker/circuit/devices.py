@@ -50,7 +50,7 @@ _TAKEN: Final = {
     "M": _SIZES | {"m"},
 }
 """Letter -> what is taken into account of what stands beside the model's name."""
-_VOLTS: Final = lazy(r"\d+(?:\.\d+)?V\d*|\d+[.,]?\d* ?V", re.IGNORECASE)
+_VOLTS: Final = lazy(r"(?<!\d)(?:\d++(?:\.\d++)?V\d*|\d++[.,]?\d*+ ?V)", re.IGNORECASE)
 
 
 def add_bipolar(draft: Draft, part: Part) -> None:

@@ -32,7 +32,8 @@ _MODEL_KIND: Final[Mapping[str, CardKind]] = {
     "pmos": "pmos",
 }
 _FET_WORD: Final = lazy(
-    r"(?<![A-Z])([NP])[-_ ]?(?:channel|ch)?(?:[\s-]+[\w-]+){0,4}?[\s_-]*(JFET|JF|D?MOS|FET)", re.IGNORECASE
+    r"(?<![A-Z])([NP])[-_ ]?(?:channel|ch)?(?:(?:[\s-]++\w++){0,6}?[\s-]++\w*?)?[\s_-]*(JFET|JF|D?MOS|FET)",
+    re.IGNORECASE,
 )
 _FET_WORD_LAST: Final = lazy(r"(JFET|MOS(?:FET)?|FET)_?([NP])(?![A-Z])", re.IGNORECASE)
 _WORD: Final = lazy(r"NPN|PNP", re.IGNORECASE)

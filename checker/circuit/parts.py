@@ -102,20 +102,20 @@ _SYMBOLS: Final[tuple[tuple[Kind, str], ...]] = (
         r"(?:PC|LTV-?|EL|HCPL-?|KB)817\w*|PC123\w*|4N[23][5-8]\w*|CNY17\w*(?:-\d)?|SFH61[07]A?-\d\w*|TLP\d{3}(?:-1)?",
     ),
     ("transformer", r".*TRANSFORMER.*|.*TRANSF|.*TRAFO.*|XMFR.*|.*BALUN.*|.*BIFILAR.*"),
-    ("resistor", r"R(?:ES(?:ISTOR)?)?(?:[-_ ]\w+)*"),
-    ("capacitor", r"CP?1?(?:[-_](?:SMALL|POL\w*|US\w*|EU\w*|ALUM\w*|DEVICE|TRIM\w*|VARIABLE|\d+)[\w.-]*)*"),
-    ("capacitor", r"CAP(?:ACITOR)?(?:[-_]\w+)*|C_?TRIM\w*|CPOL\w*"),
+    ("resistor", r"R(?:ES(?:ISTOR)?)?(?:[-_ ]\w++)*+"),
+    ("capacitor", r"CP?1?(?:[-_](?:SMALL|POL\w*|US\w*|EU\w*|ALUM\w*|DEVICE|TRIM\w*|VARIABLE|\d+)[\w.-]*)?"),
+    ("capacitor", r"CAP(?:ACITOR)?(?:[-_]\w++)*+|C_?TRIM\w*|CPOL\w*"),
     (
         "inductor",
-        r"L(?:[-_](?:SMALL|CORE\w*|IRON\w*|FERRITE\w*|US|DEVICE|\d+)\w*)*|IND(?:UCTOR)?(?:_SMALL|_IRON\w*)?|CHOKE",
+        r"L(?:[-_](?:SMALL|CORE|IRON|FERRITE|US|DEVICE|\d)\w*+)*+|IND(?:UCTOR)?(?:_SMALL|_IRON\w*)?|CHOKE",
     ),
     ("voltage", r"V(?:SOURCE|DC|AC|SIN|PULSE|PWL)"),
     ("current", r"I(?:SOURCE|DC|AC|SIN|PULSE|PWL)"),
     ("battery", r"BATTERY\w*|BAT"),
-    ("diode", r"(?:IR_?)?LED(?:[-_](?:SMALL|ALT|FILLED|US|PAD|DEVICE|\d+)\w*)*|LD271"),
+    ("diode", r"(?:IR_?)?LED(?:[-_](?:SMALL|ALT|FILLED|US|PAD|DEVICE|\d)\w*+)*+|LD271"),
     (
         "diode",
-        r"D(?:[-_](?:SMALL|ALT|ZENER|SCHOTTKY|TVS|PHOTO|FILLED|DEVICE)\w*)*|DIODE(?:SCH)?|ZENER\w*|SCHOTTKY\w*",
+        r"D(?:[-_](?:SMALL|ALT|ZENER|SCHOTTKY|TVS|PHOTO|FILLED|DEVICE)\w*+)*+|DIODE(?:SCH)?|ZENER\w*|SCHOTTKY\w*",
     ),
     ("diode", r"1N\d{2,4}\w*|1SS\d+\w*|F?D?LL4148\w*|S[1-5][A-M]|SS[1-3]\d|BZX\w+|BAT8[1-6]\w*"),
     ("bipolar", r"(?:Q_|TRANSISTOR_|BJT_)?(?:NPN|PNP)(?!.*DARL)(?:_[BCES]{3,4}|_SMALL)?"),
@@ -125,9 +125,9 @@ _SYMBOLS: Final[tuple[tuple[Kind, str], ...]] = (
     ),
     (
         "connector",
-        r"(?:CONN|HEADER|HEAD|BORNIER|SCREW_?TERMINAL|USB|BARREL_?JACK|\w*JACK|DB\d|DIN)\w*(?:[-_ ]\w+)*",
+        r"(?:CONN|HEADER|HEAD|BORNIER|SCREW_?TERMINAL|USB|BARREL_?JACK|\w*JACK|DB\d|DIN)\w*+(?:[- ]\w++)*+",
     ),
-    ("connector", r"PHONES\w*|PJ301[\w-]*|\w*JACK\w*(?:[-_]\w+)*|M0\dX\w*|EURO_PWR\w*"),
+    ("connector", r"PHONES\w*|PJ301[\w-]*|\w*JACK\w*+(?:-\w++)*+|M0\dX\w*|EURO_PWR\w*"),
 )
 USUAL: Final[dict[str, Kind]] = {
     **dict.fromkeys(("R", "R_Small", "R_US", "R_Small_US"), "resistor"),

@@ -26,7 +26,9 @@ from checker.trouble import NotAQuantity
 _KINDS = {"NPN": "npn", "PNP": "pnp", "NJFET": "njf", "PJFET": "pjf", "NMOS": "nmos", "PMOS": "pmos", "D": "d"}
 _TYPES = frozenset({"", "GUMMELPOON", "SHICHMANHODGES", "MOS1", "VDMOS"})
 """Sorts of model whose parameters mean what those of a `.model` card mean; an empty one is the plain sort."""
-_MEGA = lazy(r".*\d\s*M(?![Ee][Gg]).*")
+_MEGA = lazy(r"\d\s*M(?![Ee][Gg])")
+_LONGEST = 200
+"""Characters of a number at most."""
 _PROJECT = "${KIPRJMOD}/"
 
 
@@ -77,7 +79,7 @@ def _numbers(part: Part, found: Found) -> dict[str, float]:
     params: dict[str, float] = {}
     for key, text in split_words(f"params {part.fields['Sim.Params']}").named.items():
         try:
-            if _MEGA.fullmatch(text):
+            if _MEGA.search(text[:_LONGEST]):
                 raise NotAQuantity(f"{text[:40]!r} may mean milli or mega")
             params[key] = parse_spice_number(text.strip("\"'"))
         except NotAQuantity as error:

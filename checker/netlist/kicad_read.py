@@ -12,7 +12,7 @@ from dataclasses import replace
 from pathlib import Path
 
 from checker.netlist.fitting import is_left_out
-from checker.netlist.limits import ReadLimits, over
+from checker.netlist.limits import MOST_TEXT, ReadLimits, over
 from checker.netlist.sexpr import Parsed, Tree, child, children, own_text, parse, text_of
 from checker.netlist.types import Model, Net, Netlist, Part, Pin, Remark
 from checker.pattern import lazy
@@ -59,7 +59,7 @@ def read_kicad(
     remarks = list(_version_remark(root, name))
     nodes = _nodes(parsed, name, limits)
     parts = _parts(parsed, nodes, name, limits)
-    parts = _told_apart(parts, remarks)
+    parts = _told_apart([_clipped(part, remarks) for part in parts], remarks)
     remarks += _lost_nodes(parts, nodes, name)
     remarks += _doubled_pins(parts)
     models: dict[str, Model] = {}
@@ -182,6 +182,26 @@ def _part(tree: Tree, nodes: _Nodes, table: _PinTable, name: str, line: int) -> 
         symbol=f"{library}:{symbol}" if library or symbol else "",
         description=text_of(tree, "description") or text_of(source, "description"),
         do_not_fit=bool(child(tree, "dnp")) or is_left_out(value, fields),
+    )
+
+
+def _clipped(part: Part, remarks: list[Remark]) -> Part:
+    """The part with texts of bearable length, and a remark where one was cut; parameters of a model are never cut."""
+    texts = (part.value, part.symbol, part.footprint, part.description, *(pin.function for pin in part.pins))
+    fields = {key: text for key, text in part.fields.items() if key != "Sim.Params"}
+    longest = max(map(len, (*texts, *fields.values())))
+    if longest <= MOST_TEXT:
+        return part
+    text = f"{part.ref[:40]} has a text of {longest} characters; what follows the first {MOST_TEXT} is not read"
+    remarks.append(Remark(text=text, origin=part.origin, parts=(part.ref,)))
+    return replace(
+        part,
+        value=part.value[:MOST_TEXT],
+        symbol=part.symbol[:MOST_TEXT],
+        footprint=part.footprint[:MOST_TEXT],
+        description=part.description[:MOST_TEXT],
+        fields={**part.fields, **{key: text[:MOST_TEXT] for key, text in fields.items()}},
+        pins=tuple(replace(pin, function=pin.function[:MOST_TEXT]) for pin in part.pins),
     )
 
 

@@ -10,6 +10,10 @@ from typing import Literal, NoReturn
 from checker.shape import frozen
 from checker.trouble import InputTrouble
 
+MOST_TEXT = 500
+"""Characters read of a text that says what a part is: its value, symbol, description, a field, a pin's name. Real ones
+have some hundred at most, and patterns are tried on them. Names of nets and parts are kept whole."""
+
 Limit = Literal["bytes", "parts", "depth", "elements", "steps"]
 
 

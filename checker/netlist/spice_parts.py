@@ -8,6 +8,7 @@ import re
 from collections.abc import Callable, Mapping
 from typing import Protocol
 
+from checker.netlist.limits import MOST_TEXT
 from checker.netlist.spice_deck import Element
 from checker.netlist.spice_pads import REFERENCE
 from checker.netlist.spice_source import read_source
@@ -16,7 +17,7 @@ from checker.pattern import lazy
 from checker.quantity.value import Origin
 from checker.trouble import NotAQuantity
 
-PLAIN_NUMBER = lazy(r"(\d+\.?\d*|\.\d+)(e[+-]?\d+)?", re.IGNORECASE)
+PLAIN_NUMBER = lazy(r"(\d++\.?\d*+|\.\d++)(e[+-]?\d++)?", re.IGNORECASE)
 _KINDS = {
     "R": {"r", "res"},
     "C": {"c", "cap"},
@@ -100,7 +101,7 @@ def unknown_part(element: Element, place: Place, reason: str, count: int | None 
     # A coupling that is not understood still touches its inductors.
     coupling = element.letter == "K" and not place.lists_pads()
     controls = tuple(place.ref(word) for word in words[:-1]) if coupling else ()
-    value = " ".join(words[len(nodes) :])
+    value = " ".join(words[len(nodes) :])[:MOST_TEXT]
     return new_part(element, place, nodes, value=value, unknown=reason, params={}, controls=controls)
 
 
@@ -119,6 +120,11 @@ def new_part(
         for index, node in enumerate(nodes, start=1)
     )
     given = _params(element, place) if params is None else params
+    for key, text in more.items():
+        if isinstance(text, str) and len(text) > MOST_TEXT:
+            if key == "model":
+                raise NotAQuantity(f"a name of {len(text)} characters is none of a model")
+            more[key] = text[:MOST_TEXT]
     return Part(
         ref=place.ref(element.name),
         letter=element.letter,

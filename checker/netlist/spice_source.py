@@ -24,8 +24,8 @@ _WAVEFORMS = {
 _KEYWORDS = frozenset({*_WAVEFORMS, "dc", "ac", "distof1", "distof2"})
 _REST_INDEX = {"sin": 0, "pulse": 0, "exp": 0, "sffm": 0, "pwl": 1}
 """Which number of the waveform is its value at rest: offset, initial value, first value."""
-_VOLTS = lazy(r"[+-]?(?:\d+\.?\d*|\.\d+)(?:[eE][+-]?\d+)?(?:meg|[kmunp])?v(?:dc)?", re.IGNORECASE)
-_AMPERES = lazy(r"([+-]?(?:\d+\.?\d*|\.\d+)(?:[eE][+-]?\d+)?)[aA]")
+_VOLTS = lazy(r"[+-]?(?:\d++\.?\d*+|\.\d++)(?:[eE][+-]?\d++)?(?:meg|[kmunp])?v(?:dc)?", re.IGNORECASE)
+_AMPERES = lazy(r"([+-]?(?:\d++\.?\d*+|\.\d++)(?:[eE][+-]?\d++)?)[aA]")
 
 
 def read_source(words: Sequence[str], named: Mapping[str, str], number: Number, *, amperes: bool) -> Source:

@@ -60,9 +60,9 @@ def parse_engineering(text: str, unit: str) -> Reading:
     (dielectric, package, taper) are passed over. Raises `NotAQuantity` for placeholders, ranges, a unit of
     another kind, and whatever could be read in two ways. Source of the codes: IEC 60062.
     """
+    if not text.strip() or len(text) > _LONGEST:
+        raise _refusal(text, unit, "it is too long" if text.strip() else "it is empty")
     folded = _decimal_comma(plain(text))
-    if not folded or len(folded) > _LONGEST:
-        raise _refusal(text, unit, "it is empty" if not folded else "it is too long")
     if unit == "F" and _EIA_CODE.fullmatch(folded):
         # EIA three-digit code: two digits and a count of zeros, in pF. Common practice.
         return Reading(si=float(f"{folded[:2]}e{int(folded[2]) - 12}"), tolerance=None, rating_v=None, text=text)

@@ -24,6 +24,8 @@ _SUFFIXES = {
     "a": "e-18",
     "r": "e0",
 }
+_LONGEST = 200
+"""Characters of a number at most."""
 _MIL_M = 25.4e-6
 """One thousandth of an inch [m]."""
 
@@ -47,6 +49,8 @@ def parse_spice_number(text: str) -> float:
     numbers that do not fit (`1e400`). The suffix rules are common practice, no
     source.
     """
+    if len(text) > _LONGEST:
+        raise NotAQuantity(f"{text[:60]!r} and {len(text) - 60} more characters are not a number")
     if text[-1:].isdigit() and _DECIMAL.fullmatch(text):
         return _finite(float(text), text)
     if text[-1:] in _SHORT and _WHOLE.fullmatch(text, 0, len(text) - 1):

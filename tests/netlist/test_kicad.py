@@ -266,7 +266,15 @@ def test_pin_names_that_carry_their_number(
 def test_apostrophes_are_letters(read: Read) -> None:
     # Once a recursion without bound: the library nests a quoted form for each apostrophe.
     many = "'" * 5_000
-    assert read(board(f"(comp (ref R1) (value {many}10k'))")).parts[0].value == f"{many}10k'"
+    assert list(read(board("(comp (ref R1))", f"(net (code 1) (name {many}10k'))")).nets) == [f"{many}10k'"]
+
+
+def test_texts_without_end_are_cut_and_told(read: Read) -> None:
+    fields = f'(fields (field (name F) "{"y" * 700}"))'
+    netlist = read(board(f'\n(comp (ref R1) (value "10k {"x" * 600}") {fields})\n(comp (ref R2) (value 1k))'))
+    assert (len(netlist.parts[0].value), len(netlist.parts[0].fields["F"])) == (500, 500)
+    assert [(remark.origin.line, remark.parts) for remark in netlist.remarks] == [(3, ("R1",))]
+    assert "700 characters" in netlist.remarks[0].text
 
 
 def test_lists_where_texts_should_be_do_no_harm(read: Read) -> None:
